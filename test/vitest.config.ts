@@ -1,0 +1,75 @@
+import { existsSync } from 'node:fs';
+import path from 'node:path';
+import { cloudflareTest, readD1Migrations } from '@cloudflare/vitest-plugin';
+import { defineConfig } from 'vitest/config';
+
+// Wrangler stays quiet and offline, whoever starts the tests.
+process.env['WRANGLER_SEND_METRICS'] = 'false';
+process.env['WRANGLER_SEND_ERROR_REPORTS'] = 'false';
+process.env['WRANGLER_HIDE_BANNER'] = 'true';
+process.env['CLOUDFLARE_CF_FETCH_ENABLED'] = 'false';
+process.env['WRANGLER_LOG_PATH'] = '.data/logs';
+
+const root = path.resolve(import.meta.dirname, '..');
+const workerSetup = 'test/worker/setup.ts';
+
+export default defineConfig({
+  root,
+  test: {
+    passWithNoTests: true,
+    // On demand only: `npx vitest run --config test/vitest.config.ts --coverage`.
+    coverage: { provider: 'istanbul', include: ['lib/**', 'worker/**'], reporter: ['text', 'json-summary'] },
+    projects: [
+      {
+        root,
+        test: {
+          name: 'lib',
+          environment: 'node',
+          include: ['lib', 'reference', 'properties', 'config'].map((folder) => `test/${folder}/**/*.test.ts`),
+        },
+      },
+      {
+        root,
+        plugins: [
+          cloudflareTest(async () => ({
+            wrangler: { configPath: path.join(root, 'wrangler.toml') },
+            miniflare: {
+              bindings: { TEST_MIGRATIONS: await readD1Migrations(path.join(root, 'worker/store/migrations')) },
+              // A closed world: a worker test that wants an answer from outside replaces fetch itself.
+              outboundService: (request: Request) => new Response(`blocked ${request.url}`, { status: 599 }),
+            },
+          })),
+        ],
+        test: {
+          name: 'worker',
+          include: ['test/worker/**/*.test.ts'],
+          setupFiles: existsSync(path.join(root, workerSetup)) ? [workerSetup] : [],
+        },
+      },
+      {
+        root,
+        test: {
+          name: 'e2e',
+          environment: 'node',
+          include: ['test/e2e/**/*.test.ts', 'test/faults/**/*.test.ts'],
+          testTimeout: 60_000,
+          hookTimeout: 60_000,
+          fileParallelism: false,
+          sequence: { groupOrder: 1 },
+        },
+      },
+      {
+        root,
+        test: {
+          name: 'browser',
+          environment: 'node',
+          include: ['test/browser/**/*.test.ts'],
+          testTimeout: 60_000,
+          hookTimeout: 60_000,
+          fileParallelism: false,
+          sequence: { groupOrder: 2 },
+        },
+      },
+    ],
+  },
+});
