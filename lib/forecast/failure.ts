@@ -1,0 +1,27 @@
+/**
+ * Why a source has no vote. Evidence is numbers and words of ours only: nothing a provider wrote is ever kept here,
+ * so that none of it can reach a page or a message.
+ */
+export type SourceFailure =
+  | { readonly kind: 'unreachable' }
+  | { readonly kind: 'timeout'; readonly afterMs: number }
+  | { readonly kind: 'too-large'; readonly limitBytes: number }
+  | { readonly kind: 'redirected' }
+  | { readonly kind: 'refused'; readonly status: number }
+  | { readonly kind: 'rate-limited'; readonly retryAfterS: number | null }
+  | { readonly kind: 'server-error'; readonly status: number }
+  | { readonly kind: 'breaker-open'; readonly until: string }
+  | { readonly kind: 'not-json' }
+  | { readonly kind: 'content-type' }
+  | { readonly kind: 'shape'; readonly path: string }
+  | { readonly kind: 'unit'; readonly field: string; readonly expected: string; readonly found: string | null }
+  | { readonly kind: 'times'; readonly why: 'unsorted' | 'duplicate' | 'gap' | 'not-hourly' | 'not-utc' | 'wrong-day' | 'empty' }
+  | { readonly kind: 'run-missing' }
+  | { readonly kind: 'run-old'; readonly ageHours: number }
+  | { readonly kind: 'run-future'; readonly aheadHours: number }
+  | { readonly kind: 'place'; readonly distanceKm: number }
+  | { readonly kind: 'ground'; readonly why: 'missing' | 'changed'; readonly byM: number | null }
+  | { readonly kind: 'constant'; readonly field: 'wind10m' | 'gustMps' | 'temperature2mC' }
+  | { readonly kind: 'withheld' }
+  | { readonly kind: 'not-covered' }
+  | { readonly kind: 'not-fetched' };
