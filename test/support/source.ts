@@ -5,7 +5,7 @@ import path from 'node:path';
 import { parseSync } from 'vite';
 import { root } from './run-tool.ts';
 
-/** A node of an ESTree. Rules look at few kinds of node, so the fields stay open and each rule narrows what it reads. */
+/** A node of an ESTree. Rules look at few kinds of node: the fields stay open and each rule narrows what it reads. */
 export interface Node {
   readonly type: string;
   readonly start: number;

@@ -61,8 +61,8 @@ function libComplaint(source: Source, item: Import, target: Target): string | un
     const rule = libPackages[target.package];
     if (rule === undefined) return `lib may not import "${target.package}"`;
     if (!source.file.startsWith(rule.folder)) return `"${target.package}" belongs in ${rule.folder} only`;
-    if (target.package === 'zod' && !item.typeOnly && !item.namespace) return "zod is imported as import * as z from 'zod'";
-    return undefined;
+    const isWhole = item.namespace || item.typeOnly;
+    return target.package === 'zod' && !isWhole ? "zod is imported as import * as z from 'zod'" : undefined;
   }
   if (!target.file.startsWith('lib/')) return 'lib imports nothing but lib';
   if (target.file.endsWith('.json')) return 'lib is handed its data, it does not import it';
@@ -129,6 +129,7 @@ export function crowdedPackages(sources: readonly Source[]): string[] {
     const files = sources
       .filter((source) => source.file.startsWith('lib/') && importsOf(source).some((item) => item.specifier === name))
       .map((source) => source.file);
-    return files.length > rule.files ? [`"${name}" is imported in ${files.join(' and ')}, allowed: ${rule.files} file`] : [];
+    const isCrowded = files.length > rule.files;
+    return isCrowded ? [`"${name}" is imported in ${files.join(' and ')}, allowed: ${rule.files} file`] : [];
   });
 }

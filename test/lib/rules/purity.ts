@@ -19,16 +19,14 @@ function* variables(node: Node): Generator<Node> {
   for (const [field, child] of children(node)) {
     const isName = (field === 'property' || field === 'key') && node['computed'] !== true && node['shorthand'] !== true;
     if (!isName && !node.type.startsWith('TS')) yield* variables(child);
-    else if (['TSAsExpression', 'TSNonNullExpression', 'TSSatisfiesExpression'].includes(node.type) && field === 'expression') {
-      yield* variables(child);
-    }
+    else if (field === 'expression') yield* variables(child);
   }
 }
 
 function complaintAbout(node: Node): string | undefined {
   if (node.type === 'MemberExpression') {
-    const property = node['computed'] === true && isNode(node['property']) ? node['property']['value'] : nameOf(node['property']);
-    const member = `${nameOf(node['object'])}.${String(property)}`;
+    const property = node['property'] as Node;
+    const member = `${nameOf(node['object'])}.${nameOf(property) || String(property['value'])}`;
     if (forbiddenMembers.has(member)) return member;
   }
   const isDate = nameOf(node['callee']) === 'Date';
