@@ -19,12 +19,16 @@ export default defineConfig({
     passWithNoTests: true,
     // On demand only: `npx vitest run --config test/vitest.config.ts --coverage`.
     coverage: { provider: 'istanbul', include: ['lib/**', 'worker/**'], reporter: ['text', 'json-summary'] },
+    // One group after the other, the browser last. No group is 0: vitest runs a group 0 without parallel files last.
     projects: [
       {
         root,
         test: {
           name: 'lib',
           environment: 'node',
+          // Pure functions leave nothing behind, so the files share a process.
+          isolate: false,
+          sequence: { groupOrder: 1 },
           include: ['lib', 'reference', 'properties', 'config'].map((folder) => `test/${folder}/**/*.test.ts`),
         },
       },
@@ -42,6 +46,7 @@ export default defineConfig({
         ],
         test: {
           name: 'worker',
+          sequence: { groupOrder: 2 },
           include: ['test/worker/**/*.test.ts'],
           setupFiles: existsSync(path.join(root, workerSetup)) ? [workerSetup] : [],
         },
@@ -55,7 +60,7 @@ export default defineConfig({
           testTimeout: 60_000,
           hookTimeout: 60_000,
           fileParallelism: false,
-          sequence: { groupOrder: 1 },
+          sequence: { groupOrder: 3 },
         },
       },
       {
@@ -67,7 +72,7 @@ export default defineConfig({
           testTimeout: 60_000,
           hookTimeout: 60_000,
           fileParallelism: false,
-          sequence: { groupOrder: 2 },
+          sequence: { groupOrder: 4 },
         },
       },
     ],
