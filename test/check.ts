@@ -15,7 +15,7 @@ for (const project of projects) {
   const hasFiles = globSync('**/*.ts', { cwd: path.join(root, project) }).length > 0;
   if (hasFiles) await step(`types of ${project}`, toolEntry('typescript', 'tsc'), ['-p', project]);
 }
-await step('lint', toolEntry('oxlint', 'oxlint'), ['-c', 'test/oxlint.json', '--type-aware', '--deny-warnings']);
+await step('lint', toolEntry('oxlint', 'oxlint'), ['--type-aware', '--deny-warnings']);
 // Under npm test the rules run with all the other tests.
 if (process.env['npm_lifecycle_event'] !== 'test' && existsSync(path.join(root, 'test/lib/rules'))) {
   await step('rules', vitestEntry, ['run', '--config=test/vitest.config.ts', '--project=lib', 'test/lib/rules']);
