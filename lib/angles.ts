@@ -1,0 +1,31 @@
+/** Angles in degrees, clockwise from true north. */
+export const RAD_PER_DEG = Math.PI / 180;
+
+export function radians(deg: number): number {
+  return deg * RAD_PER_DEG;
+}
+
+export function degrees(rad: number): number {
+  return rad / RAD_PER_DEG;
+}
+
+/** The same direction in [0, 360). */
+export function normalDeg(deg: number): number {
+  const turned = deg % 360;
+  return turned < 0 ? turned + 360 : turned === 0 ? 0 : turned;
+}
+
+/** From `fromDeg` to `toDeg` the short way round, in [-180, 180); positive clockwise. */
+export function turnDeg(fromDeg: number, toDeg: number): number {
+  return normalDeg(toDeg - fromDeg + 180) - 180;
+}
+
+/** The angle between two directions, 0 to 180. */
+export function angleBetweenDeg(aDeg: number, bDeg: number): number {
+  return Math.abs(turnDeg(aDeg, bDeg));
+}
+
+/** Whether a direction lies in the sector that runs clockwise from `fromDeg` to `toDeg`, both edges included. */
+export function inSector(deg: number, sector: { readonly fromDeg: number; readonly toDeg: number }): boolean {
+  return normalDeg(deg - sector.fromDeg) <= normalDeg(sector.toDeg - sector.fromDeg);
+}
