@@ -20,7 +20,8 @@ export type SourceFailure =
   | { readonly kind: 'run-old'; readonly ageHours: number }
   | { readonly kind: 'run-future'; readonly aheadHours: number }
   | { readonly kind: 'place'; readonly distanceKm: number }
-  | { readonly kind: 'ground'; readonly why: 'missing' | 'changed'; readonly byM: number | null }
+  /** `byM`: how far the model's ground moved since it was stored, or how far it lies above the site. */
+  | { readonly kind: 'ground'; readonly why: 'missing' | 'changed' | 'above-site'; readonly byM: number | null }
   | { readonly kind: 'constant'; readonly field: 'wind10m' | 'gustMps' | 'temperature2mC' }
   | { readonly kind: 'withheld' }
   | { readonly kind: 'not-covered' }
