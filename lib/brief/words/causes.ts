@@ -1,0 +1,124 @@
+/**
+ * What a margin says, in a pilot's words: "a gust leaves 1.2 m/s forward; the sheet asks 2.5". The number found comes
+ * first and the limit after it, so that a sentence cut short never shows a limit without what was held against it.
+ */
+import type { CombinedMargin, JudgedDay } from '../day.ts';
+import type { MarginId } from '../../margin/ids.ts';
+import { pairTexts, quantityText, type Quantity } from '../units-out.ts';
+import { hourName } from './clock.ts';
+import { missingPhrase } from './fields.ts';
+import { limitOwner, limitSense, marginName } from './margins.ts';
+import { sentence } from './plain.ts';
+import type { Reader } from './reader.ts';
+
+type Said = Pick<CombinedMargin, 'id' | 'spare' | 'limit' | 'demand' | 'unit' | 'status' | 'missing' | 'source'>;
+
+/** What was found, with its unit already written: "gusts reach 7.9 m/s". */
+function foundPhrase(id: MarginId, found: string): string {
+  switch (id) {
+    case 'meanWind': return `the mean wind at launch reaches ${found}`;
+    case 'gust': return `a gust at launch reaches ${found}`;
+    case 'gustSpread': return `gusts stand ${found} above the mean wind`;
+    case 'crosswind': return `a gust blows ${found} across the launch`;
+    case 'tailwind': return `a gust blows ${found} from behind the launch`;
+    case 'offAxis': return `the wind stands ${found} off the launch axis`;
+    case 'forwardLaunch': return `a gust leaves ${found} forward`;
+    case 'forwardAloft': return `the wind above launch leaves ${found} of airspeed`;
+    case 'upperWind': return `the wind above launch reaches ${found}`;
+    case 'overTheBack': return `above launch the wind comes over the back with ${found}`;
+    case 'arrival': return `the glide arrives ${found} above the landing`;
+    case 'landingGradient': return `the gradient at the landing leaves ${found} above stall`;
+    case 'run': return `the take-off run needs ${found}`;
+    case 'slope': return `the slope is ${found} steep`;
+    case 'thermal': return `thermals reach ${found}`;
+    case 'cloudBase': return `the cloud base lies ${found} above launch`;
+    case 'storm': return `CAPE reaches ${found}`;
+    case 'rain': return `rain reaches ${found}`;
+    case 'rainChance': return `the chance of rain is ${found}`;
+    case 'visibility': return `the visibility is ${found}`;
+    case 'daylight': return `it is ${found} to the nearer end of the legal day`;
+    case 'pressureStep': return `the pressure step across the mountains is ${found}`;
+    case 'sector': return `the wind comes from a sheltered sector with ${found}`;
+    case 'ridgeLift': return `the ridge lifts ${found} more than the wing sinks`;
+    case 'agreement': return `${found} of the forecast members agree`;
+    case 'stripWind': return `the mean wind on the strip reaches ${found}`;
+    case 'stripGust': return `a gust on the strip reaches ${found}`;
+    case 'stripCross': return `a gust blows ${found} across the strip`;
+    case 'stripTail': return `a gust blows ${found} from behind on the strip`;
+    case 'climbShear': return `the wind changes by ${found} in the climb`;
+    case 'towHeight': return `the tow releases at ${found}`;
+    case 'forwardAtRelease': return `the wind at release leaves ${found} of airspeed`;
+  }
+}
+
+/** A found value below zero reads better as what it does than with a minus sign. */
+function foundBelowZero(id: MarginId, size: string): string | null {
+  switch (id) {
+    case 'forwardLaunch': return `a gust pushes the wing back at ${size}`;
+    case 'forwardAloft': return `the wind above launch is ${size} faster than the wing`;
+    case 'forwardAtRelease': return `the wind at release is ${size} faster than the wing`;
+    case 'arrival': return `the glide ends ${size} below the landing`;
+    case 'landingGradient': return `the gradient at the landing takes the wing ${size} below stall`;
+    case 'ridgeLift': return `the ridge lifts ${size} less than the wing sinks`;
+    case 'daylight': return `the legal day is over or not begun by ${size}`;
+    default: return null;
+  }
+}
+
+/** Beyond a limit without a number: there is no solution, or a sign that needs none. */
+function noSolution(id: MarginId): string {
+  switch (id) {
+    case 'forwardLaunch': return 'a gust across the launch is faster than the wing: nothing is left forward';
+    case 'arrival': return 'the glide does not arrive at the landing';
+    case 'storm': return 'a thunderstorm is signalled in this hour or the next two';
+    case 'cloudBase': return 'the launch is in cloud';
+    default: return `${lower(marginName(id))} has no solution`;
+  }
+}
+
+function lower(name: string): string {
+  return name.slice(0, 1).toLowerCase() + name.slice(1);
+}
+
+function limitPhrase(id: MarginId, limit: string): string {
+  const verb = limitSense(id) === 'most' ? 'allows' : 'asks';
+  switch (limitOwner(id)) {
+    case 'sheet': return `the sheet ${verb} ${limit}`;
+    case 'site': return `the site ${verb} ${limit}`;
+    case 'law': return `the law ${verb} ${limit}`;
+  }
+}
+
+function quantity(margin: Said, value: number): Quantity {
+  return { value, unit: margin.unit, distance: margin.id === 'visibility' };
+}
+
+/** The margin as a clause without its hour. */
+export function causeClause(margin: Said, reader: Reader): string {
+  const { id, status, demand, limit } = margin;
+  if (status === 'unknown') {
+    const why = margin.source === null && margin.missing.length === 0 ? 'no source has a vote on it' : missingPhrase(margin.missing);
+    return `nothing is known of the ${lower(marginName(id))}: ${why}`;
+  }
+  if (margin.spare === null || demand === null) return noSolution(id);
+  if (id === 'cloudBase' && demand === 0) return noSolution(id);
+  if (limit === null) return foundPhrase(id, quantityText(quantity(margin, demand), reader.units));
+  const size = quantity(margin, Math.abs(demand));
+  const pair = pairTexts({ first: size, second: quantity(margin, limit) }, reader.units);
+  const found = (demand < 0 ? foundBelowZero(id, pair.first) : null)
+    ?? foundPhrase(id, pairTexts({ first: quantity(margin, demand), second: quantity(margin, limit) }, reader.units).first);
+  // A limit of nothing on the legal day is no news.
+  if (id === 'daylight') return found;
+  return `${found}; ${limitPhrase(id, pair.second)}`;
+}
+
+/** The margin as a sentence of its hour: "At 13 h a gust leaves 1.2 m/s forward; the sheet asks 2.5." */
+export function causeSentence(
+  day: Pick<JudgedDay, 'timeZone' | 'hours'>, cause: { readonly id: MarginId; readonly validAt: string }, reader: Reader,
+): string {
+  const hour = day.hours.find((candidate) => candidate.validAt === cause.validAt);
+  const margin = hour?.margins.find((candidate) => candidate.id === cause.id);
+  const at = `At ${hourName(cause.validAt, day.timeZone)}`;
+  if (margin === undefined) return sentence(`${at} nothing is known of the ${lower(marginName(cause.id))}`);
+  return sentence(`${at} ${causeClause(margin, reader)}`);
+}

@@ -1,0 +1,58 @@
+/** Hours and dates of a site as words: "13 h", "11:48", "9 to 12 h", "Tuesday 1 December 2026". */
+import { epochOf, localDate, localDateTime } from '../../time.ts';
+
+/** "9:05": the wall clock at the site. No leading zero, so that a clock cut short can only read as earlier. */
+export function clockTime(iso: string, timeZone: string): string {
+  const at = epochOf(iso);
+  if (!Number.isFinite(at)) return 'a time not given';
+  const { hour, minute } = localDateTime(at, timeZone);
+  return `${hour}:${String(minute).padStart(2, '0')}`;
+}
+
+/** "13 h" on the hour, "13:45" in a zone whose instants are not on it. */
+export function hourName(iso: string, timeZone: string): string {
+  const clock = clockTime(iso, timeZone);
+  return clock.endsWith(':00') ? `${clock.slice(0, -3)} h` : clock;
+}
+
+/** "9 to 12 h"; a single instant is "9 h". */
+export function hourSpan(span: { readonly from: string; readonly to: string }, timeZone: string): string {
+  const from = hourName(span.from, timeZone);
+  const to = hourName(span.to, timeZone);
+  if (span.from === span.to) return from;
+  return from.endsWith(' h') && to.endsWith(' h') ? `${from.slice(0, -2)} to ${to}` : `${from} to ${to}`;
+}
+
+const dateFormat = new Map<string, Intl.DateTimeFormat>();
+
+/** "Tuesday 1 December 2026" of a yyyy-mm-dd. */
+export function dateName(date: string, form: 'long' | 'short' = 'long'): string {
+  const at = Date.parse(`${date}T00:00:00Z`);
+  if (!Number.isFinite(at)) return 'a date not given';
+  let format = dateFormat.get(form);
+  if (format === undefined) {
+    format = new Intl.DateTimeFormat('en-GB', {
+      timeZone: 'UTC', weekday: form, day: 'numeric', month: form, ...(form === 'long' ? { year: 'numeric' as const } : {}),
+    });
+    dateFormat.set(form, format);
+  }
+  return format.format(at).replace(',', '');
+}
+
+/** "5:12" today at the site, "30 November 21:40" on another date there. */
+export function momentName(iso: string, day: { readonly timeZone: string; readonly localDate: string }): string {
+  const at = epochOf(iso);
+  if (!Number.isFinite(at)) return 'a time not given';
+  const date = localDate(at, day.timeZone);
+  const clock = clockTime(iso, day.timeZone);
+  return date === day.localDate ? clock : `${dateName(date, 'short')} ${clock}`;
+}
+
+/** "just now", "40 min", "6 h", "2 days": how old something is. */
+export function ageName(ms: number): string {
+  if (!Number.isFinite(ms)) return 'of an age not known';
+  const minutes = Math.max(0, Math.round(ms / 60_000));
+  if (minutes < 90) return `${minutes} min`;
+  const hours = Math.round(minutes / 60);
+  return hours < 48 ? `${hours} h` : `${Math.round(hours / 24)} days`;
+}

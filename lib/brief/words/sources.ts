@@ -1,0 +1,94 @@
+/** Forecast sources by name, their votes with ages, and whom to thank. */
+import type { JudgedDay, SourceVote } from '../day.ts';
+import type { Verdict } from '../../margin/ids.ts';
+import { momentName } from './clock.ts';
+import { counted, listed, plainText, sentence } from './plain.ts';
+import { restrictiveness } from './verdicts.ts';
+
+/** Services whose ids begin like this, with the link they ask for. */
+interface Service {
+  readonly prefix: string;
+  readonly name: string;
+  readonly credit: { readonly text: string; readonly href: string } | null;
+}
+
+const SERVICES: readonly Service[] = [
+  { prefix: 'demo', name: 'Demo weather', credit: null },
+  { prefix: 'open-meteo', name: 'Open-Meteo', credit: { text: 'Weather data by Open-Meteo.com', href: 'https://open-meteo.com/' } },
+  { prefix: 'met-norway', name: 'MET Norway', credit: { text: 'Data from MET Norway', href: 'https://www.met.no/' } },
+  { prefix: 'nws', name: 'US National Weather Service', credit: { text: 'Data from the US National Weather Service', href: 'https://www.weather.gov/' } },
+];
+
+function serviceOf(id: string): Service | undefined {
+  return SERVICES.find(({ prefix }) => id === prefix || id.startsWith(`${prefix}:`) || id.startsWith(`${prefix}-`));
+}
+
+/** `open-meteo:icon_d2` is "Open-Meteo ICON D2". */
+export function sourceName(id: string): string {
+  const service = serviceOf(id);
+  const model = id.includes(':') ? plainText(id.slice(id.indexOf(':') + 1)).replaceAll('_', ' ').toUpperCase() : '';
+  if (service === undefined) return plainText(id) || 'a source without a name';
+  return model === '' ? service.name : `${service.name} ${service.prefix === 'demo' ? model.toLowerCase() : model}`;
+}
+
+/** "Open-Meteo ICON D2 (no answer within 10 s)". */
+export function votePhrase(vote: SourceVote): string {
+  const name = sourceName(vote.source);
+  if (vote.state === 'voted') return vote.runAgeHours === null ? `${name} (run time not given)` : `${name} (run ${Math.floor(vote.runAgeHours)} h old)`;
+  return `${name} (${plainText(vote.why ?? 'no reason given', 200)})`;
+}
+
+/** A source in full: its vote, the time of its run and of the fetch, its ground. */
+export function voteSentence(vote: SourceVote, day: Pick<JudgedDay, 'timeZone' | 'localDate'>): string {
+  const name = sourceName(vote.source);
+  if (vote.state === 'no vote') return sentence(`No vote: ${name}, ${plainText(vote.why ?? 'no reason given', 200)}`);
+  const run = vote.runAt === null
+    ? 'run time not given'
+    : `run of ${momentName(vote.runAt, day)}${vote.runAgeHours === null ? '' : `, ${Math.floor(vote.runAgeHours)} h old`}`;
+  const members = vote.kind === 'ensemble' ? `, ${counted(vote.members, 'member', 'members')}` : '';
+  const fetched = vote.fetchedAt === null ? '' : `, fetched ${momentName(vote.fetchedAt, day)}`;
+  const ground = vote.gridElevationM === null ? '' : `, its ground at ${Math.round(vote.gridElevationM)} m`;
+  return sentence(`${name}${members}: ${run}${fetched}${ground}`);
+}
+
+/** Age and sources as one line, which stands with every verdict. */
+export function provenance(day: Pick<JudgedDay, 'sources' | 'issuedAt' | 'timeZone' | 'localDate'>): string {
+  const voted = day.sources.filter((source) => source.state === 'voted');
+  const silent = day.sources.filter((source) => source.state === 'no vote');
+  const parts = [
+    ...(silent.length === 0 ? [] : [`without a vote: ${listed(silent.map(votePhrase))}`]),
+    voted.length === 0 ? 'no source voted' : `from ${listed(voted.map(votePhrase))}`,
+    `computed ${momentName(day.issuedAt, day)}`,
+  ];
+  return sentence(parts.join('; '));
+}
+
+/** One source's view of an hour, in words that are not the hour's own verdict. */
+function view(verdict: Verdict): string {
+  switch (verdict) {
+    case 'beyond': return 'sees a limit passed';
+    case 'unknown': return 'gives no answer';
+    case 'close': return 'sees a limit near';
+    case 'within': return 'sees none near';
+  }
+}
+
+/** How the sources differ about one hour, the most restrictive first; null when they do not. */
+export function disagreement(bySource: JudgedDay['hours'][number]['bySource']): string | null {
+  if (new Set(bySource.map(({ verdict }) => verdict)).size < 2) return null;
+  const views = [...bySource]
+    .sort((a, b) => restrictiveness(b.verdict) - restrictiveness(a.verdict))
+    .map(({ source, verdict }) => `${sourceName(source)} ${view(verdict)}`);
+  return sentence(`The sources differ: ${listed(views)}`);
+}
+
+/** The links that the sources of a day ask for. */
+export function credits(day: Pick<JudgedDay, 'sources'>): { readonly text: string; readonly href: string }[] {
+  const found = new Map<string, { readonly text: string; readonly href: string }>();
+  for (const { source } of day.sources) {
+    const credit = serviceOf(source)?.credit;
+    if (credit !== undefined && credit !== null) found.set(credit.href, credit);
+  }
+  return [...found.values()];
+}
+

@@ -1,0 +1,29 @@
+/** Windows in words. The verdict and the last launch come before the hours, so that a cut leaves less, never more. */
+import type { JudgedDay, JudgedWindow } from '../day.ts';
+import { epochOf } from '../../time.ts';
+import { clockTime, hourName, hourSpan } from './clock.ts';
+import { capital, listed } from './plain.ts';
+import { verdictPhrase } from './verdicts.ts';
+
+function hasLaunch(window: JudgedWindow): boolean {
+  return epochOf(window.lastLaunch) >= epochOf(window.from);
+}
+
+/** "Close to a limit, last launch 11:48, window 9 to 12 h." */
+export function windowSentence(window: JudgedWindow, day: Pick<JudgedDay, 'timeZone'>): string {
+  const last = hasLaunch(window) ? `last launch ${clockTime(window.lastLaunch, day.timeZone)}` : 'too short for a flight to end in it';
+  return `${capital(verdictPhrase(window.verdict))}, ${last}, window ${hourSpan(window, day.timeZone)}.`;
+}
+
+/** "9 h to last launch 11:48 (close to a limit)": the window as an exception in the day sentence. */
+export function windowException(window: JudgedWindow, day: Pick<JudgedDay, 'timeZone'>): string {
+  const from = hourName(window.from, day.timeZone);
+  const until = hasLaunch(window) ? ` to last launch ${clockTime(window.lastLaunch, day.timeZone)}` : ', too short for a flight,';
+  return `${from}${until} (${verdictPhrase(window.verdict)})`;
+}
+
+/** All windows as one exception, or null without any. */
+export function exceptions(day: Pick<JudgedDay, 'timeZone' | 'windows'>): string | null {
+  if (day.windows.length === 0) return null;
+  return listed(day.windows.map((window) => windowException(window, day)));
+}
