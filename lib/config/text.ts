@@ -1,0 +1,34 @@
+/** Text that will be printed in messages, calendars and pages: what may stand in it, and how long it may be. */
+import * as z from 'zod';
+
+/**
+ * Control characters, line and paragraph separators, halves of pairs, private use, and everything that prints nothing
+ * or turns the direction of what follows (category Cf: zero width, bidi overrides, soft hyphen, tags), with the fillers
+ * that print as blank.
+ */
+const unprintable = /[\p{Cc}\p{Cf}\p{Zl}\p{Zp}\p{Cs}\p{Co}\u{115f}\u{1160}\u{2800}\u{3164}\u{ffa0}]/u;
+
+/** One line of at most `most` characters, not blank. */
+export function line(most: number): z.ZodString {
+  const allowed = `1 to ${most} characters on one line`;
+  const error = (): string => allowed;
+  return z
+    .string({ error })
+    .refine((text) => text.trim() !== '', { error, params: { problem: 'this text is empty' } })
+    .refine((text) => [...text].length <= most, { error, params: { problem: 'this text is too long' } })
+    .refine((text) => !unprintable.test(text), {
+      error: () => `${allowed}, all of them printable`,
+      params: { problem: 'this text holds a line break, a control, a zero-width or a direction-turning character' },
+    });
+}
+
+/** Like a line, but it may be empty. */
+export function lineOrNothing(most: number): z.ZodUnion<readonly [z.ZodLiteral<''>, z.ZodString]> {
+  return z.union([z.literal(''), line(most)]);
+}
+
+/** An id: kebab-case, so that it can stand in paths, file names, links and tables as it is. */
+export function kebabId(): z.ZodString {
+  const error = (): string => 'lower-case letters and digits in words joined by single hyphens (kebab-case), at most 64 characters';
+  return z.string({ error }).regex(/^[a-z0-9]+(?:-[a-z0-9]+)*$/, { error }).max(64, { error });
+}
