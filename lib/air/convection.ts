@@ -26,29 +26,34 @@ function virtualPotentialK(air: { readonly temperatureC: number; readonly dewPoi
   return (air.temperatureC + ZERO_CELSIUS_K) * (1000 / air.pressureHpa) ** 0.2857 * (1 + 0.61 * mixingRatio);
 }
 
+/** Parts into which each layer is cut when looking for the critical value. */
+const PARTS = 8;
+
 /**
- * Mixed-layer depth above the ground, m, by the bulk Richardson number of the column against its surface values
- * (2 m air, 10 m wind), critical 0.25: Vogelezang & Holtslag (1996) Boundary-Layer Meteorol. 81, without their
- * friction-velocity term, which a forecast column does not give. Linear between nodes; NaN when the number does not
- * reach the critical value inside the column or a needed node is missing.
+ * Mixed-layer depth above the ground, m: the lowest height at which the bulk Richardson number of the column against
+ * its 2 m air reaches 0.25, Ri = (g/thetaV0)(thetaV - thetaV0) z / (u^2 + v^2). After Vogelezang & Holtslag (1996)
+ * Boundary-Layer Meteorol. 81, with the surface at rest and without their friction-velocity term, which a forecast
+ * column does not give (both make the layer deeper, never shallower). NaN when the value is not reached inside the
+ * column or a needed node is missing.
  */
 export function richardsonDepthM(column: Column, profile: Profile): number {
   const groundM = column.altitudeM[0]!;
   const surface = virtualPotentialK(airAt(column, groundM));
-  const base = windAt(profile, groundM + 10);
   let below = { heightM: 0, richardson: 0 };
   for (let node = 1; node < column.altitudeM.length; node += 1) {
-    const altitudeM = column.altitudeM[node]!;
-    const wind = windAt(profile, altitudeM);
-    const heightM = altitudeM - groundM;
-    const shear = (wind.uMps - base.uMps) ** 2 + (wind.vMps - base.vMps) ** 2;
-    const potential = virtualPotentialK(airAt(column, altitudeM));
-    const richardson = ((GRAVITY_MPS2 / surface) * (potential - surface) * heightM) / Math.max(shear, 0.01);
-    if (!Number.isFinite(richardson)) return NaN;
-    if (richardson >= CRITICAL_RICHARDSON) {
-      return below.heightM + ((heightM - below.heightM) * (CRITICAL_RICHARDSON - below.richardson)) / (richardson - below.richardson);
+    const layerM = column.altitudeM[node]! - column.altitudeM[node - 1]!;
+    for (let part = 1; part <= PARTS; part += 1) {
+      const altitudeM = column.altitudeM[node - 1]! + (layerM * part) / PARTS;
+      const wind = windAt(profile, altitudeM, true);
+      const heightM = altitudeM - groundM;
+      const potential = virtualPotentialK(airAt(column, altitudeM));
+      const richardson = ((GRAVITY_MPS2 / surface) * (potential - surface) * heightM) / Math.max(wind.uMps ** 2 + wind.vMps ** 2, 0.01);
+      if (!Number.isFinite(richardson)) return NaN;
+      if (richardson >= CRITICAL_RICHARDSON) {
+        return below.heightM + ((heightM - below.heightM) * (CRITICAL_RICHARDSON - below.richardson)) / (richardson - below.richardson);
+      }
+      below = { heightM, richardson };
     }
-    below = { heightM, richardson };
   }
   return NaN;
 }

@@ -157,7 +157,7 @@ export function checkHour(hour: Conditions): CheckedHour {
     capeJkg: plausible(hour.capeJkg, 'capeJkg'),
     precipitationMm: plausible(hour.precipitationMm, 'precipitationMm'),
     precipitationProbabilityPct: plausible(hour.precipitationProbabilityPct, 'percent'),
-    weatherCode: plausible(hour.weatherCode, 'weatherCode'),
+    weatherCode: Number.isInteger(hour.weatherCode) ? plausible(hour.weatherCode, 'weatherCode') : NaN,
     visibilityM: plausible(hour.visibilityM, 'visibilityM'),
     lowCloudPct: plausible(hour.lowCloudPct, 'percent'),
   };

@@ -5,7 +5,7 @@ import { radians } from '../angles.ts';
  * below the horizon at the wing. Balance of forces along and across the path gives
  *   gamma = atan(t cos b / (1 + t sin b)) - atan(1/glide),   V = trim (t^2 + 2 t sin b + 1)^(1/4),
  * then dz = V sin gamma dt and the distance to the winch shrinks by V cos gamma - headwind(z). Release at the release
- * angle, where the climb ends, or where the line would have to grow longer than it is.
+ * angle, or where the line would have to grow longer than it is; a tension that lifts nothing releases on the ground.
  */
 export interface Tow {
   readonly trimMps: number;
@@ -84,7 +84,7 @@ export function flyTow(tow: Tow, visit?: (point: TowPoint) => void): TowEnd {
   for (let n = 0; n < MAX_STEPS; n += 1) {
     const next = step(tow, x, z, dt);
     if (Number.isNaN(next.x) || Number.isNaN(next.z)) return { releaseM: NaN, durationS: NaN, why: 'release angle' };
-    if (next.z - z <= 1e-6 * dt) return { releaseM: z, durationS: timeS, why: 'no climb' };
+    if (next.z <= 0) return { releaseM: 0, durationS: timeS, why: 'no climb' };
     const angleShare = shareToAngle(x, z, next, releaseTangent);
     const lineShare = shareToLine(x, z, next, tow.lineLengthM);
     if (angleShare < 1 || lineShare < 1) {
@@ -98,7 +98,7 @@ export function flyTow(tow: Tow, visit?: (point: TowPoint) => void): TowEnd {
     timeS += dt;
     visit?.({ timeS, toWinchM: x, heightM: z, lineAngleDeg: (Math.atan2(z, x) * 180) / Math.PI });
   }
-  return { releaseM: z, durationS: timeS, why: 'no climb' };
+  return { releaseM: NaN, durationS: NaN, why: 'release angle' };
 }
 
 /** Share of a step at which z = x tan(release), 1 or more when it lies beyond the step. */
