@@ -1,0 +1,55 @@
+import type { JudgedDay } from '../../lib/brief/day.ts';
+import type { Verdict } from '../../lib/margin/ids.ts';
+import type { MessageKind } from '../store/outbox.ts';
+
+/** What one subscriber is told, ready in words; a channel only carries it. */
+export interface Message {
+  /** Stable: every attempt at one message has the same. */
+  readonly id: string;
+  readonly kind: MessageKind;
+  readonly title: string;
+  readonly text: string;
+  readonly issuedAtMs: number;
+  /** The oldest run behind it, null when there is none or one is not known. */
+  readonly dataRunAtMs: number | null;
+  readonly validUntilMs: number;
+  /** Holds invented weather. */
+  readonly demo: boolean;
+  readonly days: readonly MessageDay[];
+}
+
+export interface MessageDay {
+  readonly siteId: string;
+  readonly localDate: string;
+  readonly verdict: Verdict;
+  readonly windows: JudgedDay['windows'];
+}
+
+/** Where it goes: a row of the table `channel`. */
+export interface Address {
+  readonly id: string;
+  readonly target: string;
+  readonly secretVersion: number;
+  readonly oldestSecretVersion: number;
+}
+
+export type SendOutcome =
+  | { readonly state: 'sent' }
+  /** The world failed for now. */
+  | { readonly state: 'retry'; readonly reason: string; readonly afterMs: number | null }
+  /** This message will never be taken there, another may be. */
+  | { readonly state: 'refused'; readonly reason: string }
+  /** Nothing will be taken there any more. */
+  | { readonly state: 'gone'; readonly reason: string };
+
+export interface Attempt {
+  readonly nowMs: number;
+  readonly timeoutMs: number;
+}
+
+/** A way to reach a subscriber. It never throws for anything the world did, and repeats nothing on its own account. */
+export interface Channel {
+  /** Messages of one lane are sent one after the other: a host, so that a slow one holds up only its own. */
+  lane(address: Address): string;
+  send(message: Message, address: Address, attempt: Attempt): Promise<SendOutcome>;
+}

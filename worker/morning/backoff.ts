@@ -1,0 +1,25 @@
+import { MINUTE_MS } from '../../lib/time.ts';
+
+/** Waits before the next attempt, after the first, second, ... has failed: seven attempts within an hour and a quarter. */
+const WAITS_MS = [15_000, MINUTE_MS, 3 * MINUTE_MS, 8 * MINUTE_MS, 20 * MINUTE_MS, 45 * MINUTE_MS] as const;
+
+export type NextAttempt = { readonly atMs: number } | { readonly never: 'given up' | 'too late' };
+
+export interface FailedAttempt {
+  readonly nowMs: number;
+  /** Attempts so far. */
+  readonly attempts: number;
+  readonly validUntilMs: number;
+  /** What the receiver asked for, by Retry-After. */
+  readonly afterMs: number | null;
+  /** 0 to 1. */
+  readonly random: number;
+}
+
+/** Full jitter: anywhere between at once and the whole wait, so that what failed together does not come back together. */
+export function nextAttempt({ nowMs, attempts, validUntilMs, afterMs, random }: FailedAttempt): NextAttempt {
+  const waitMs = WAITS_MS[attempts - 1];
+  if (waitMs === undefined) return { never: 'given up' };
+  const atMs = nowMs + Math.max(Math.round(waitMs * random), afterMs ?? 0);
+  return atMs < validUntilMs ? { atMs } : { never: 'too late' };
+}

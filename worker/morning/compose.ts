@@ -1,0 +1,69 @@
+import type { Message } from '../channels/channel.ts';
+import type { Services } from '../service-set.ts';
+import type { BriefHead, BriefKey } from '../store/brief.ts';
+import type { StoredChannel } from '../store/channel.ts';
+import type { OutboxRow } from '../store/outbox.ts';
+import { briefMessage, contentOf, missedMessage, pairDayKey, type Content, type MessageParts } from './message.ts';
+import { placesOf } from './places.ts';
+import { judgedDate } from './times.ts';
+
+export interface Composed {
+  readonly row: OutboxRow;
+  readonly channel: StoredChannel;
+  /** null when there is nothing left to tell: the channel or every site is gone. */
+  readonly message: Message;
+}
+
+export interface Composition {
+  readonly composed: readonly Composed[];
+  /** Rows whose channel or sites are gone. */
+  readonly orphans: readonly OutboxRow[];
+}
+
+/** Puts rows of the outbox into words. What a message says is fixed at its first attempt and stays for all later ones. */
+export async function compose(services: Services, rows: readonly OutboxRow[]): Promise<Composition> {
+  const { stores, clock } = services;
+  const nowMs = clock.nowMs();
+  const channels = new Map((await stores.channel.some(rows.map((row) => row.channelId))).map((channel) => [channel.id, channel]));
+  const pairs = await stores.subscription.pairsOf([...new Set(rows.map((row) => row.subscriptionId))]);
+  const places = await placesOf(services, [...new Set(pairs.map((pair) => pair.siteId))]);
+  const contents = new Map<string, Content>();
+  for (const row of rows) if (row.content !== null) contents.set(row.id, JSON.parse(row.content) as Content);
+
+  const open = rows.filter((row) => !contents.has(row.id)).map((row) => ({
+    row,
+    pairDays: pairs.filter((pair) => pair.subscriptionId === row.subscriptionId).flatMap(({ siteId, wingKey, sheetId }) => {
+      const place = places.get(siteId);
+      return place === undefined ? [] : [{ siteId, wingKey, sheetId, localDate: judgedDate(place.site, row.dueAtMs) }];
+    }),
+  }));
+  const wanted = new Map(open.flatMap(({ pairDays }) => pairDays).map((pairDay) => [pairDayKey(pairDay), pairDay]));
+  const newest = wanted.size === 0 ? [] : await stores.brief.heads([...wanted.values()]);
+  const heads = byKey(newest);
+  for (const { row, pairDays } of open) contents.set(row.id, contentOf(pairDays, heads, nowMs));
+  if (open.length > 0) await stores.outbox.pin(open.map(({ row }) => ({ id: row.id, content: JSON.stringify(contents.get(row.id)) })));
+  const pinned = rows.filter((row) => row.content !== null).flatMap((row) => contents.get(row.id)?.briefs ?? []);
+  const exact = pinned.length === 0 ? [] : await stores.brief.exact(pinned.filter((brief): brief is BriefKey => brief.revision !== null));
+
+  const composed: Composed[] = [];
+  const orphans: OutboxRow[] = [];
+  const exactHeads = byKey(exact);
+  for (const row of rows) {
+    const channel = channels.get(row.channelId);
+    const content = contents.get(row.id);
+    const message = content === undefined ? null : messageOf({ row, content, heads: row.content === null ? heads : exactHeads, places });
+    if (channel === undefined || channel.state !== 'active' || message === null) orphans.push(row);
+    else composed.push({ row, channel, message });
+  }
+  return { composed, orphans };
+}
+
+function byKey(heads: readonly BriefHead[]): ReadonlyMap<string, BriefHead> {
+  return new Map(heads.map((head) => [pairDayKey(head), head]));
+}
+
+function messageOf(parts: MessageParts): Message | null {
+  if (parts.row.kind === 'brief') return briefMessage(parts);
+  const demo = parts.content.briefs.some((brief) => parts.places.get(brief.siteId)?.demo === true);
+  return missedMessage(parts.row, { demo, nowMs: parts.content.issuedAtMs });
+}

@@ -1,0 +1,71 @@
+import { isoUtc } from '../../lib/time.ts';
+import { failure } from '../../lib/result.ts';
+import type { Place, Services } from '../service-set.ts';
+import type { Source, SourceAnswer } from '../sources/source.ts';
+import { runKeyOf, type FetchOutcome } from '../store/forecast.ts';
+import type { FetchRun } from '../store/run-work.ts';
+import { placesOf } from './places.ts';
+import { ASSESS_CHUNK, FETCH_CHUNK } from './sizes.ts';
+import { instantsAround, LEASE_MS } from './times.ts';
+
+/**
+ * Second step: takes open fetches of one source, asks it once for all their sites, and stores what it said, forecast or
+ * failure. A source is asked once a morning; whether its silence matters is decided by whoever judges. True when there
+ * was something to do.
+ */
+export async function fetchStep(services: Services): Promise<boolean> {
+  const { stores, clock } = services;
+  const runs = await stores.runWork.claimFetches({ nowMs: clock.nowMs(), leaseMs: LEASE_MS, by: services.ids.next(), limit: FETCH_CHUNK });
+  const [first] = runs;
+  if (first === undefined) return false;
+  const places = await placesOf(services, runs.map((run) => run.siteId));
+  const answers = await answersOf(services, runs, places);
+  const nowMs = clock.nowMs();
+  const given = [...answers].flatMap(([siteId, answer]) => (answer.ok ? [{ siteId, forecast: answer.value }] : []));
+  await stores.db.together([
+    stores.forecast.put(given, nowMs),
+    stores.sourceGround.keepFirst(given.flatMap(({ siteId, forecast }) => groundOf(forecast.members).map((groundM) => ({ siteId, source: forecast.source, groundM }))), nowMs),
+    stores.runWork.finishFetches(runs.map((run) => ({ key: run.key, outcome: outcomeOf(answers.get(run.siteId)) })), nowMs),
+    stores.meta.setting('last-fetch', String(nowMs)),
+  ]);
+  const ready = await stores.run.ready(nowMs, ASSESS_CHUNK, runs.map((run) => run.siteId));
+  await services.wake('assess', ready.assessJobs);
+  if (ready.fetch > 0) await services.wake('fetch', 1);
+  return true;
+}
+
+async function answersOf(services: Services, runs: readonly FetchRun[], places: ReadonlyMap<string, Place>): Promise<ReadonlyMap<string, SourceAnswer>> {
+  const asked = runs.flatMap((run) => {
+    const place = places.get(run.siteId);
+    const source = place === undefined ? undefined : services.sourcesFor(place).find((candidate) => candidate.id === run.source);
+    return place === undefined || source === undefined ? [] : [{ place, source, date: run.localDate }];
+  });
+  const [first] = asked;
+  if (first === undefined) return new Map();
+  const instants = asked.map(({ place, date }) => instantsAround(place.site, date));
+  try {
+    return await askedOf(first.source, asked.map(({ place }) => place), {
+      fromMs: Math.min(...instants.map(({ fromMs }) => fromMs)),
+      toMs: Math.max(...instants.map(({ toMs }) => toMs)),
+    });
+  } catch {
+    // A source that throws has a fault of ours; for the morning it is a source without an answer.
+    await services.stores.log.write([{ level: 'error', step: 'fetch', event: 'source-threw', detail: { source: first.source.id } }], services.clock.nowMs());
+    return new Map(asked.map(({ place }) => [place.site.id, failure({ kind: 'unreachable' })]));
+  }
+}
+
+function askedOf(source: Source, places: readonly Place[], { fromMs, toMs }: { fromMs: number; toMs: number }): Promise<ReadonlyMap<string, SourceAnswer>> {
+  return source.fetch({ sites: places.map(({ site }) => site), fromUtc: isoUtc(fromMs), toUtc: isoUtc(toMs) });
+}
+
+function outcomeOf(answer: SourceAnswer | undefined): FetchOutcome {
+  if (answer === undefined) return { ok: false, error: { kind: 'not-covered' } };
+  return answer.ok ? { ok: true, runAt: runKeyOf(answer.value) } : { ok: false, error: answer.error };
+}
+
+/** The model's ground, from the first hour that has it. */
+function groundOf(members: readonly (readonly { readonly gridElevationM: number }[])[]): number[] {
+  const groundM = members[0]?.[0]?.gridElevationM;
+  return groundM !== undefined && Number.isFinite(groundM) ? [groundM] : [];
+}

@@ -1,0 +1,31 @@
+import { MINUTE_MS } from '../../lib/time.ts';
+import type { Services } from '../service-set.ts';
+import { SCHEMA_VERSION } from '../store/meta.ts';
+import { planDue } from './due.ts';
+import { sweep, tidy } from './sweep.ts';
+
+/** Ticks further apart than this mean that the platform did not call us. */
+const GAP_MS = 5 * MINUTE_MS;
+
+/**
+ * Once a minute. The run's key comes from the scheduled time, so that a tick that is called twice works once; a tick that
+ * never came is made up for by the next, because what is due is found by its time and not by the tick.
+ */
+export async function tick(services: Services, scheduledAtMs: number): Promise<void> {
+  const { stores, clock } = services;
+  const meta = await stores.meta.all();
+  if (Number(meta.get('schema')) !== SCHEMA_VERSION) {
+    throw new Error(`the database has schema ${meta.get('schema') ?? 'none'}, this code needs ${SCHEMA_VERSION}: apply the migrations`);
+  }
+  const nowMs = clock.nowMs();
+  if (!(await stores.run.beginTick(scheduledAtMs, nowMs))) return;
+  const lastTickMs = Number(meta.get('last-tick') ?? nowMs);
+  if (nowMs - lastTickMs > GAP_MS) {
+    await stores.log.write([{ level: 'warning', step: 'tick', event: 'ticks-absent', detail: { minutes: Math.round((nowMs - lastTickMs) / MINUTE_MS) } }], nowMs);
+  }
+  await planDue(services, nowMs);
+  await sweep(services, nowMs);
+  await tidy(services, nowMs, Number(meta.get('last-tidy') ?? 0));
+  const done = stores.meta.setting('last-tick', String(nowMs));
+  await stores.db.write(done.sql, ...done.values);
+}

@@ -1,0 +1,42 @@
+import { legalDay } from '../../lib/sky/sun.ts';
+import type { Site } from '../../lib/site.ts';
+import { instantOfLocal, localDate, localDay, MINUTE_MS, HOUR_MS, shiftDate } from '../../lib/time.ts';
+
+/**
+ * The times of a morning, in one place. A fetch older than three hours is made again before a brief; one that failed is
+ * tried again sooner. Whatever the forecasts do, the message leaves: it waits for its briefs for ten minutes, and the
+ * briefs for their forecasts for four.
+ */
+export const REFETCH_AFTER_MS = 3 * HOUR_MS;
+export const RETRY_FAILED_FETCH_AFTER_MS = 10 * MINUTE_MS;
+export const ASSESS_BY_MS = 4 * MINUTE_MS;
+export const READY_BY_MS = 10 * MINUTE_MS;
+/** A brief that could not be handed over within six hours is of no use for the morning it was made for. */
+export const DELIVER_WITHIN_MS = 6 * HOUR_MS;
+
+export const LEASE_MS = MINUTE_MS;
+export const SEND_TIMEOUT_MS = 15_000;
+
+/** The instant after `afterMs` at which a zone's clocks next show this minute of the day. */
+export function followingDueMs(group: { readonly timeZone: string; readonly deliverMinute: number }, afterMs: number): number {
+  const clock = { hour: Math.floor(group.deliverMinute / 60), minute: group.deliverMinute % 60 };
+  const today = localDate(afterMs, group.timeZone);
+  for (let days = 0; days <= 3; days += 1) {
+    const at = instantOfLocal(shiftDate(today, days), clock, group.timeZone);
+    if (at > afterMs) return at;
+  }
+  throw new Error(`no ${clock.hour}:${clock.minute} within three days of ${new Date(afterMs).toISOString()} in "${group.timeZone}"`);
+}
+
+/** The local date that a brief asked for at an instant is about: once the legal day has ended, "this morning" is tomorrow's. */
+export function judgedDate(site: Site, atMs: number): string {
+  const today = localDate(atMs, site.timeZone);
+  const legal = legalDay(site, today);
+  return 'toMs' in legal && atMs > legal.toMs ? shiftDate(today, 1) : today;
+}
+
+/** What to ask a source for: the whole local day and an hour more on each side, on the hour. */
+export function instantsAround(site: Site, date: string): { readonly fromMs: number; readonly toMs: number } {
+  const day = localDay(date, site.timeZone);
+  return { fromMs: Math.floor(day.fromMs / HOUR_MS) * HOUR_MS - HOUR_MS, toMs: Math.ceil(day.toMs / HOUR_MS) * HOUR_MS + HOUR_MS };
+}

@@ -1,0 +1,89 @@
+import type { DayInput } from '../lib/brief/day-input.ts';
+import type { JudgedDay } from '../lib/brief/day.ts';
+import type { LimitSheet } from '../lib/margin/sheet.ts';
+import type { Issue, Result } from '../lib/result.ts';
+import type { Site } from '../lib/site.ts';
+import type { Wing } from '../lib/wing/wing.ts';
+import type { Channel } from './channels/channel.ts';
+import type { Step } from './morning/job.ts';
+import type { Settings } from './settings.ts';
+import type { Source } from './sources/source.ts';
+import type { BreakerStore } from './store/breaker.ts';
+import type { BriefStore } from './store/brief.ts';
+import type { ChannelStore } from './store/channel.ts';
+import type { Database } from './store/database.ts';
+import type { ForecastStore } from './store/forecast.ts';
+import type { LogStore } from './store/log.ts';
+import type { MetaStore } from './store/meta.ts';
+import type { OutboxStore } from './store/outbox.ts';
+import type { OutboxUpkeepStore } from './store/outbox-upkeep.ts';
+import type { PublishedStore } from './store/published.ts';
+import type { RunStore } from './store/run.ts';
+import type { RunWorkStore } from './store/run-work.ts';
+import type { SheetStore, StoredSheet } from './store/sheet.ts';
+import type { SiteStore, StoredSite } from './store/site.ts';
+import type { SourceCacheStore } from './store/source-cache.ts';
+import type { SourceGroundStore } from './store/source-ground.ts';
+import type { SubscriptionStore } from './store/subscription.ts';
+import type { TerminalStore } from './store/terminal.ts';
+import type { StoredWing, WingStore } from './store/wing.ts';
+
+/** What one invocation works with. Nothing in the worker reaches the world, the clock or chance but through this. */
+export interface Services {
+  readonly settings: Settings;
+  readonly clock: Clock;
+  readonly ids: IdSource;
+  /** 0 to 1; spreads retries. */
+  readonly random: () => number;
+  readonly stores: Stores;
+  /** Sends wake-up calls. Never fails: a call that cannot be sent is made up for by the sweep. */
+  readonly wake: (step: Step, calls: number) => Promise<void>;
+  /** The sources to ask about a site, in the order of config. */
+  readonly sourcesFor: (place: Place) => readonly Source[];
+  readonly channels: Readonly<Record<string, Channel>>;
+  readonly read: Readers;
+  readonly judge: (input: DayInput) => JudgedDay;
+}
+
+export interface Clock {
+  readonly nowMs: () => number;
+}
+
+export interface IdSource {
+  readonly next: () => string;
+}
+
+/** A site with what the table knows besides. */
+export interface Place {
+  readonly site: Site;
+  readonly demo: boolean;
+}
+
+/** From stored texts to typed values; a row that does not parse is an outcome, not a crash. */
+export interface Readers {
+  readonly site: (row: StoredSite) => Result<Place, Issue[]>;
+  readonly sheet: (row: StoredSheet) => Result<LimitSheet, Issue[]>;
+  readonly wing: (row: StoredWing) => Result<Wing, Issue[]>;
+}
+
+export interface Stores {
+  readonly db: Database;
+  readonly meta: MetaStore;
+  readonly site: SiteStore;
+  readonly sheet: SheetStore;
+  readonly wing: WingStore;
+  readonly published: PublishedStore;
+  readonly sourceGround: SourceGroundStore;
+  readonly forecast: ForecastStore;
+  readonly brief: BriefStore;
+  readonly subscription: SubscriptionStore;
+  readonly channel: ChannelStore;
+  readonly outbox: OutboxStore;
+  readonly outboxUpkeep: OutboxUpkeepStore;
+  readonly run: RunStore;
+  readonly runWork: RunWorkStore;
+  readonly breaker: BreakerStore;
+  readonly sourceCache: SourceCacheStore;
+  readonly terminal: TerminalStore;
+  readonly log: LogStore;
+}

@@ -1,0 +1,112 @@
+import { failure, success, type Issue, type Result } from '../lib/result.ts';
+import type { Job } from './morning/job.ts';
+
+/** What the platform binds, and the settings as they arrive: texts, all optional. */
+export interface Env {
+  readonly DB: D1Database;
+  readonly ASSETS?: Fetcher;
+  readonly FETCH_QUEUE: Queue<Job>;
+  readonly ASSESS_QUEUE: Queue<Job>;
+  readonly DELIVER_QUEUE: Queue<Job>;
+  readonly PUBLIC_URL?: string;
+  readonly LOCAL?: string;
+  /** Guards /local/*; made anew by each start of the local command. */
+  readonly LOCAL_TOKEN?: string;
+  readonly OPEN_METEO_URL?: string;
+  readonly OPEN_METEO_ENSEMBLE_URL?: string;
+  readonly MET_NORWAY_URL?: string;
+  readonly NWS_URL?: string;
+  readonly OPEN_METEO_KEY?: string;
+  readonly CONTACT?: string;
+  readonly LINK_KEY?: string;
+  readonly VAPID_PUBLIC_KEY?: string;
+  readonly VAPID_PRIVATE_KEY?: string;
+  readonly OPERATOR_TOKEN_SHA256?: string;
+  readonly SMTP_URL?: string;
+  readonly MAIL_FROM?: string;
+  readonly HEARTBEAT_URL?: string;
+}
+
+export interface Settings {
+  /** Origin under which people reach this service. */
+  readonly publicUrl: string;
+  readonly local: boolean;
+  readonly localToken: string | null;
+  readonly openMeteoUrl: string;
+  readonly openMeteoEnsembleUrl: string;
+  readonly metNorwayUrl: string;
+  readonly nwsUrl: string;
+  readonly openMeteoKey: string | null;
+  readonly contact: string | null;
+  readonly linkKey: string | null;
+  readonly vapid: { readonly publicKey: string; readonly privateKey: string } | null;
+  readonly operatorTokenSha256: string | null;
+  readonly smtpUrl: string | null;
+  readonly mailFrom: string | null;
+  readonly heartbeatUrl: string | null;
+}
+
+const LOOPBACK = new Set(['127.0.0.1', '[::1]', 'localhost']);
+
+/** Every setting, or every one that is wrong. A value that may be secret is never repeated. */
+export function readSettings(env: Partial<Record<keyof Env, unknown>>): Result<Settings, Issue[]> {
+  const issues: Issue[] = [];
+  const wrong = (name: string, value: string, problem: string, allowed: string): null => {
+    issues.push({ path: name, value, problem, allowed });
+    return null;
+  };
+  const text = (name: keyof Env): string | null => {
+    const value = env[name];
+    return typeof value === 'string' && value.trim() !== '' ? value.trim() : null;
+  };
+  const local = text('LOCAL') === '1';
+  if (text('LOCAL') !== null && !local) wrong('LOCAL', 'a text', 'LOCAL is a switch', '1, or left out');
+
+  const origin = (name: keyof Env, fallback: string): string => {
+    const value = text(name);
+    if (value === null) return fallback;
+    const url = URL.canParse(value) ? new URL(value) : null;
+    const isPlain = url !== null && url.pathname === '/' && url.search === '' && url.hash === '' && url.username === '' && url.password === '';
+    const isAllowed = url?.protocol === 'https:' || (local && url?.protocol === 'http:' && LOOPBACK.has(url.hostname));
+    if (url !== null && isPlain && isAllowed) return url.origin;
+    wrong(name, JSON.stringify(value.slice(0, 80)), 'not an origin that may be used', 'https://host, without a path (http on this machine with LOCAL=1)');
+    return fallback;
+  };
+  const secret = (name: keyof Env, form: RegExp, allowed: string): string | null => {
+    const value = text(name);
+    if (value === null || form.test(value)) return value;
+    return wrong(name, 'not shown', 'this setting has the wrong form', allowed);
+  };
+
+  const publicKey = secret('VAPID_PUBLIC_KEY', /^B[A-Za-z0-9_-]{86}$/, '87 characters of base64url: an uncompressed P-256 point');
+  const privateKey = secret('VAPID_PRIVATE_KEY', /^[A-Za-z0-9_-]{43}$/, '43 characters of base64url');
+  if ((text('VAPID_PUBLIC_KEY') === null) !== (text('VAPID_PRIVATE_KEY') === null)) {
+    wrong('VAPID_PRIVATE_KEY', 'missing', 'the two keys of VAPID belong together', 'VAPID_PUBLIC_KEY and VAPID_PRIVATE_KEY, or neither');
+  }
+  const contact = text('CONTACT');
+  if (contact !== null && !/^(mailto:)?[^\s@<>"]+@[^\s@<>"]+$|^https:\/\/[^\s<>"]+$/.test(contact)) {
+    wrong('CONTACT', JSON.stringify(contact.slice(0, 80)), 'providers could not reach anyone there', 'a mail address or an https address');
+  }
+  const heartbeatUrl = text('HEARTBEAT_URL');
+  if (heartbeatUrl !== null && !(URL.canParse(heartbeatUrl) && new URL(heartbeatUrl).protocol === 'https:')) {
+    wrong('HEARTBEAT_URL', 'not shown', 'not an https address', 'https://…');
+  }
+  const settings: Settings = {
+    publicUrl: origin('PUBLIC_URL', 'http://127.0.0.1:8787'),
+    local,
+    localToken: secret('LOCAL_TOKEN', /^[A-Za-z0-9_-]{32,}$/, '32 or more characters of base64url'),
+    openMeteoUrl: origin('OPEN_METEO_URL', 'https://api.open-meteo.com'),
+    openMeteoEnsembleUrl: origin('OPEN_METEO_ENSEMBLE_URL', 'https://ensemble-api.open-meteo.com'),
+    metNorwayUrl: origin('MET_NORWAY_URL', 'https://api.met.no'),
+    nwsUrl: origin('NWS_URL', 'https://api.weather.gov'),
+    openMeteoKey: secret('OPEN_METEO_KEY', /^[\x21-\x7e]{1,200}$/, 'up to 200 characters without spaces'),
+    contact,
+    linkKey: secret('LINK_KEY', /^[\x21-\x7e]{32,500}$/, 'at least 32 characters without spaces, made by chance'),
+    vapid: publicKey !== null && privateKey !== null ? { publicKey, privateKey } : null,
+    operatorTokenSha256: secret('OPERATOR_TOKEN_SHA256', /^[0-9a-f]{64}$/, '64 lower-case hexadecimal digits'),
+    smtpUrl: text('SMTP_URL'),
+    mailFrom: text('MAIL_FROM'),
+    heartbeatUrl,
+  };
+  return issues.length > 0 ? failure(issues) : success(settings);
+}

@@ -1,0 +1,25 @@
+import type { Database, Statement } from './database.ts';
+
+/** The version of the schema that this code was written for; the migrations write it. */
+export const SCHEMA_VERSION = 1;
+
+export type MetaKey = 'schema' | 'last-tick' | 'last-fetch' | 'last-assess' | 'last-deliver' | 'last-sweep' | 'last-tidy';
+
+export function metaStore(db: Database) {
+  return {
+    async all(): Promise<ReadonlyMap<string, string>> {
+      const rows = await db.read<{ key: string; value: string }>('SELECT key, value FROM meta');
+      return new Map(rows.map((row) => [row.key, row.value]));
+    },
+    set(key: MetaKey, value: string): Promise<number> {
+      return db.write(setting(key, value).sql, ...setting(key, value).values);
+    },
+    setting,
+  };
+}
+
+function setting(key: MetaKey, value: string): Statement {
+  return { sql: 'INSERT INTO meta (key, value) VALUES (?, ?) ON CONFLICT (key) DO UPDATE SET value = excluded.value', values: [key, value] };
+}
+
+export type MetaStore = ReturnType<typeof metaStore>;

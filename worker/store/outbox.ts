@@ -1,0 +1,136 @@
+import type { Database, Statement } from './database.ts';
+
+/** What a message is: the morning's brief, or the notice that there was none because this service did not run. */
+export type MessageKind = 'brief' | 'missed';
+
+export type SettledState = 'sent' | 'expired' | 'dead' | 'suppressed';
+
+/** The format of the rows that this code writes; rows of a newer one are left to newer code. */
+export const OUTBOX_FORMAT = 1;
+
+/** Messages of one instant to a group of subscribers. */
+export interface PlannedGroup {
+  readonly timeZone: string;
+  readonly deliverMinute: number;
+  readonly nextDueAtMs: number;
+  readonly kind: MessageKind;
+  readonly dueLocalDate: string;
+  readonly dueAtMs: number;
+  /** From then on it is sent as it is: what has not been computed by then is said to be missing. */
+  readonly readyByMs: number;
+  readonly validUntilMs: number;
+}
+
+export interface OutboxRow {
+  readonly id: string;
+  readonly subscriptionId: string;
+  readonly channelId: string;
+  readonly kind: MessageKind;
+  readonly dueLocalDate: string;
+  readonly seq: number;
+  readonly dueAtMs: number;
+  readonly validUntilMs: number;
+  /** Attempts so far, this one included. */
+  readonly attempts: number;
+  readonly leaseUntilMs: number;
+  readonly content: string | null;
+}
+
+export interface Claim {
+  readonly nowMs: number;
+  readonly leaseMs: number;
+  readonly by: string;
+  readonly limit: number;
+}
+
+/** Not before every brief it needs is computed, or the time is up. */
+const READY = `o.state = 'pending' AND o.format <= ${OUTBOX_FORMAT} AND o.next_attempt_at <= ?1 AND o.valid_until > ?1
+  AND (o.lease_until IS NULL OR o.lease_until <= ?1)
+  AND (o.ready_by <= ?1 OR o.kind <> 'brief' OR NOT EXISTS (
+    SELECT 1 FROM subscription_site AS p CROSS JOIN run AS r ON r.site_id = p.site_id AND r.step = 'assess'
+    WHERE p.subscription_id = o.subscription_id AND r.state = 'wanted' AND r.due_at <= o.due_at
+      AND r.wing_key = p.wing_key AND r.sheet_id = p.sheet_id))`;
+
+export function outboxStore(db: Database) {
+  return {
+    /** One row for every first-rank channel of everyone in the groups; a row that exists stays as it is. */
+    plan(groups: readonly PlannedGroup[], nowMs: number): Statement {
+      return {
+        sql: `INSERT INTO outbox (id, subscription_id, channel_id, due_local_date, kind, seq, format, due_at, ready_by, valid_until,
+            state, next_attempt_at, created_at)
+          SELECT 'msg_' || lower(hex(randomblob(16))), s.id, c.id, g.value ->> 'dueLocalDate', g.value ->> 'kind', 1, ${OUTBOX_FORMAT},
+            g.value ->> 'dueAtMs', g.value ->> 'readyByMs', g.value ->> 'validUntilMs', 'pending', g.value ->> 'dueAtMs', ?2
+          FROM json_each(?1) AS g
+          JOIN subscription AS s ON s.state = 'active' AND s.next_due_at = g.value ->> 'nextDueAtMs'
+            AND s.time_zone = g.value ->> 'timeZone' AND s.deliver_minute = g.value ->> 'deliverMinute'
+          JOIN channel AS c ON c.subscription_id = s.id AND c.state = 'active'
+            AND c.rank = (SELECT MIN(rank) FROM channel WHERE subscription_id = s.id AND state = 'active')
+          WHERE true
+          ON CONFLICT (subscription_id, channel_id, due_local_date, kind, seq) DO NOTHING`,
+        values: [JSON.stringify(groups), nowMs],
+      };
+    },
+    /** Leases rows that may be sent now, the longest waiting first; a row is leased to one at a time. */
+    claim({ nowMs, leaseMs, by, limit }: Claim): Promise<OutboxRow[]> {
+      return db.take<OutboxRow>(
+        `UPDATE outbox SET lease_until = ?1 + ?2, lease_by = ?3, attempts = attempts + 1
+          WHERE id IN (SELECT o.id FROM outbox AS o WHERE ${READY} ORDER BY o.next_attempt_at, o.id LIMIT ?4)
+          RETURNING id, subscription_id AS subscriptionId, channel_id AS channelId, kind, due_local_date AS dueLocalDate, seq,
+            due_at AS dueAtMs, valid_until AS validUntilMs, attempts, lease_until AS leaseUntilMs, content`,
+        nowMs, leaseMs, by, limit,
+      );
+    },
+    async readyCount(nowMs: number): Promise<number> {
+      const [row] = await db.read<{ n: number }>(`SELECT COUNT(*) AS n FROM outbox AS o WHERE ${READY}`, nowMs);
+      return row?.n ?? 0;
+    },
+    /** Fixes what the messages will say before the first of them leaves: a repeat says the same. */
+    pin(contents: readonly { readonly id: string; readonly content: string }[]): Promise<number> {
+      return db.write(
+        `UPDATE outbox SET content = j.content FROM (SELECT value ->> 'id' AS id, value ->> 'content' AS content FROM json_each(?)) AS j
+          WHERE outbox.id = j.id AND outbox.content IS NULL`,
+        JSON.stringify(contents),
+      );
+    },
+    /** Ends a row, once. What was sent is sent, whoever holds the lease by now. */
+    settle(id: string, end: { readonly state: SettledState; readonly reason: string }, nowMs: number): Statement {
+      return {
+        sql: `UPDATE outbox SET state = ?2, reason = ?3, settled_at = ?4, lease_until = NULL, lease_by = NULL WHERE id = ?1 AND state = 'pending'`,
+        values: [id, end.state, end.reason, nowMs],
+      };
+    },
+    /** Gives a leased row back for another attempt. */
+    retry(id: string, by: string, next: { readonly atMs: number; readonly reason: string }): Statement {
+      return {
+        sql: `UPDATE outbox SET next_attempt_at = ?3, reason = ?4, lease_until = NULL, lease_by = NULL
+          WHERE id = ?1 AND lease_by = ?2 AND state = 'pending'`,
+        values: [id, by, next.atMs, next.reason],
+      };
+    },
+    /** Gives a leased row back as if it had not been taken. */
+    putBack(ids: readonly string[], by: string): Statement {
+      return {
+        sql: `UPDATE outbox SET lease_until = NULL, lease_by = NULL, attempts = attempts - 1
+          WHERE id IN (SELECT value FROM json_each(?1)) AND lease_by = ?2 AND state = 'pending'`,
+        values: [JSON.stringify(ids), by],
+      };
+    },
+    /** The same message for the channels of the next rank, when one is dead. */
+    fallBack(id: string, nowMs: number): Statement {
+      return {
+        sql: `INSERT INTO outbox (id, subscription_id, channel_id, due_local_date, kind, seq, format, due_at, ready_by, valid_until,
+            state, next_attempt_at, content, created_at)
+          SELECT 'msg_' || lower(hex(randomblob(16))), o.subscription_id, c.id, o.due_local_date, o.kind, o.seq, ${OUTBOX_FORMAT}, o.due_at,
+            o.ready_by, o.valid_until, 'pending', ?2, o.content, ?2
+          FROM outbox AS o JOIN channel AS was ON was.id = o.channel_id
+          JOIN channel AS c ON c.subscription_id = o.subscription_id AND c.state = 'active'
+            AND c.rank = (SELECT MIN(rank) FROM channel WHERE subscription_id = o.subscription_id AND state = 'active' AND rank > was.rank)
+          WHERE o.id = ?1 AND o.state = 'dead'
+          ON CONFLICT (subscription_id, channel_id, due_local_date, kind, seq) DO NOTHING`,
+        values: [id, nowMs],
+      };
+    },
+  };
+}
+
+export type OutboxStore = ReturnType<typeof outboxStore>;

@@ -1,0 +1,97 @@
+import type { PairDay } from './brief.ts';
+import type { Database, Statement } from './database.ts';
+import type { FetchOutcome } from './forecast.ts';
+import type { Claim } from './outbox.ts';
+
+/** The work of a run: taking it, ending it, putting it off. What is wanted at all is the business of run.ts. */
+
+/** A fetch of one source for one site-day. */
+export interface FetchRun {
+  readonly key: string;
+  readonly siteId: string;
+  readonly localDate: string;
+  readonly source: string;
+  readonly attempts: number;
+}
+
+/** The assessment of one pair-day. */
+export interface AssessRun extends PairDay {
+  readonly key: string;
+  readonly attempts: number;
+}
+
+/** Work that ended three times without an answer is given up. */
+const MAX_ATTEMPTS = 3;
+
+/** Rows of `run`, named t, that may be taken at ?1. */
+export function free(t: string): string {
+  return `${t}.state = 'wanted' AND ${t}.next_attempt_at <= ?1 AND (${t}.lease_until IS NULL OR ${t}.lease_until <= ?1) AND ${t}.attempts < ${MAX_ATTEMPTS}`;
+}
+
+/** Assessments, named a, all of whose fetches have ended, or whose time is up. */
+export const FETCHED = `(a.start_by <= ?1 OR NOT EXISTS (SELECT 1 FROM run AS f WHERE f.site_id = a.site_id
+  AND f.local_date = a.local_date AND f.step = 'fetch' AND f.state = 'wanted'))`;
+
+export function runWorkStore(db: Database) {
+  return {
+    /** Leases fetches of one source for one date. */
+    claimFetches({ nowMs, leaseMs, by, limit }: Claim): Promise<FetchRun[]> {
+      return db.take<FetchRun>(
+        `UPDATE run SET lease_until = ?1 + ?2, lease_by = ?3, attempts = attempts + 1 WHERE key IN (
+          SELECT r.key FROM run AS r JOIN (SELECT source, local_date FROM run AS f WHERE step = 'fetch' AND ${free('f')} ORDER BY due_at, key LIMIT 1) AS first
+            ON r.source = first.source AND r.local_date = first.local_date
+          WHERE r.step = 'fetch' AND ${free('r')} ORDER BY r.due_at, r.key LIMIT ?4)
+          RETURNING key, site_id AS siteId, local_date AS localDate, source, attempts`,
+        nowMs, leaseMs, by, limit,
+      );
+    },
+    /** Leases assessments of one site-day. */
+    claimAssessments({ nowMs, leaseMs, by, limit }: Claim): Promise<AssessRun[]> {
+      return db.take<AssessRun>(
+        `UPDATE run SET lease_until = ?1 + ?2, lease_by = ?3, attempts = attempts + 1 WHERE key IN (
+          SELECT r.key FROM run AS r JOIN (SELECT a.site_id, a.local_date FROM run AS a WHERE a.step = 'assess' AND ${free('a')}
+              AND ${FETCHED} ORDER BY a.due_at, a.key LIMIT 1) AS first
+            ON r.site_id = first.site_id AND r.local_date = first.local_date
+          WHERE r.step = 'assess' AND ${free('r')} ORDER BY r.due_at, r.key LIMIT ?4)
+          RETURNING key, site_id AS siteId, local_date AS localDate, wing_key AS wingKey, sheet_id AS sheetId, attempts`,
+        nowMs, leaseMs, by, limit,
+      );
+    },
+    finishFetches(ended: readonly { readonly key: string; readonly outcome: FetchOutcome }[], nowMs: number): Statement {
+      const list = ended.map(({ key, outcome }) => ({ key, outcome: JSON.stringify(outcome) }));
+      return {
+        sql: `UPDATE run SET state = 'done', outcome = j.outcome, finished_at = ?2, lease_until = NULL, lease_by = NULL
+          FROM (SELECT value ->> 'key' AS key, value ->> 'outcome' AS outcome FROM json_each(?1)) AS j WHERE run.key = j.key`,
+        values: [JSON.stringify(list), nowMs],
+      };
+    },
+    finishAssessments(keys: readonly string[], nowMs: number): Statement {
+      return {
+        sql: `UPDATE run SET state = 'done', outcome = NULL, finished_at = ?2, lease_until = NULL, lease_by = NULL
+          WHERE key IN (SELECT value FROM json_each(?1))`,
+        values: [JSON.stringify(keys), nowMs],
+      };
+    },
+    /** Tries again later; after the third time it is given up, with the reason. */
+    putOff(keys: readonly string[], reason: string, times: { readonly againAtMs: number; readonly nowMs: number }): Statement {
+      return {
+        sql: `UPDATE run SET lease_until = NULL, lease_by = NULL, next_attempt_at = ?3, outcome = json_object('ok', 0, 'reason', ?2),
+            state = CASE WHEN attempts < ${MAX_ATTEMPTS} THEN 'wanted' ELSE 'failed' END,
+            finished_at = CASE WHEN attempts < ${MAX_ATTEMPTS} THEN finished_at ELSE ?4 END
+          WHERE key IN (SELECT value FROM json_each(?1)) AND state = 'wanted'`,
+        values: [JSON.stringify(keys), reason, times.againAtMs, times.nowMs],
+      };
+    },
+    /** Work that was begun three times and never came back. */
+    giveUp(nowMs: number): Statement {
+      return {
+        sql: `UPDATE run SET state = 'failed', outcome = json_object('ok', 0, 'reason', 'begun ' || attempts || ' times without an answer'),
+            finished_at = ?1, lease_until = NULL, lease_by = NULL
+          WHERE state = 'wanted' AND attempts >= ${MAX_ATTEMPTS} AND (lease_until IS NULL OR lease_until <= ?1)`,
+        values: [nowMs],
+      };
+    },
+  };
+}
+
+export type RunWorkStore = ReturnType<typeof runWorkStore>;
