@@ -1,4 +1,4 @@
-import { GRAVITY_MPS2, HEAT_CAPACITY_JKGK, ZERO_CELSIUS_K } from '../units.ts';
+import { GAS_DRY_JKGK, GRAVITY_MPS2, HEAT_CAPACITY_JKGK, ZERO_CELSIUS_K } from '../units.ts';
 import { airAt, type Column } from './column.ts';
 import { saturationPressureHpa } from './moist-air.ts';
 import { windAt, type Profile } from './profile.ts';
@@ -6,6 +6,8 @@ import { windAt, type Profile } from './profile.ts';
 /** Part of the downwelling shortwave that warms the air: starting value, common practice, no source. */
 export const SHORTWAVE_TO_HEAT = 0.35;
 const CRITICAL_RICHARDSON = 0.25;
+/** Rd / cp of the potential temperature. */
+const KAPPA = GAS_DRY_JKGK / HEAT_CAPACITY_JKGK;
 
 /**
  * Deardorff's convective velocity scale w* = ((g/T) zi H/(rho cp))^(1/3), m/s (Deardorff 1970, J. Atmos. Sci. 27).
@@ -23,7 +25,7 @@ export function convectiveVelocityMps(air: {
 function virtualPotentialK(air: { readonly temperatureC: number; readonly dewPointC: number; readonly pressureHpa: number }): number {
   const vapourHpa = saturationPressureHpa(air.dewPointC);
   const mixingRatio = (0.622 * vapourHpa) / (air.pressureHpa - vapourHpa);
-  return (air.temperatureC + ZERO_CELSIUS_K) * (1000 / air.pressureHpa) ** 0.2857 * (1 + 0.61 * mixingRatio);
+  return (air.temperatureC + ZERO_CELSIUS_K) * (1000 / air.pressureHpa) ** KAPPA * (1 + 0.61 * mixingRatio);
 }
 
 /** Parts into which each layer is cut when looking for the critical value. */
@@ -38,22 +40,37 @@ const PARTS = 8;
  */
 export function richardsonDepthM(column: Column, profile: Profile): number {
   const groundM = column.altitudeM[0]!;
-  const surface = virtualPotentialK(airAt(column, groundM));
-  let below = { heightM: 0, richardson: 0 };
+  const surfaceK = virtualPotentialK(airAt(column, groundM));
+  /** Positive where the number exceeds the critical value, NaN where it is unknown. */
+  const excess = (altitudeM: number): number => {
+    const wind = windAt(profile, altitudeM, true);
+    const warmerK = virtualPotentialK(airAt(column, altitudeM)) - surfaceK;
+    const buoyancy = (GRAVITY_MPS2 / surfaceK) * warmerK * (altitudeM - groundM);
+    return warmerK > 0 ? buoyancy - CRITICAL_RICHARDSON * (wind.uMps ** 2 + wind.vMps ** 2) : Math.min(buoyancy, 0) - (Number.isNaN(wind.uMps) ? NaN : 1e-9);
+  };
+  let belowM = groundM + 1;
+  if (excess(belowM) >= 0) return belowM - groundM;
   for (let node = 1; node < column.altitudeM.length; node += 1) {
-    const layerM = column.altitudeM[node]! - column.altitudeM[node - 1]!;
+    const fromM = column.altitudeM[node - 1]!;
     for (let part = 1; part <= PARTS; part += 1) {
-      const altitudeM = column.altitudeM[node - 1]! + (layerM * part) / PARTS;
-      const wind = windAt(profile, altitudeM, true);
-      const heightM = altitudeM - groundM;
-      const potential = virtualPotentialK(airAt(column, altitudeM));
-      const richardson = ((GRAVITY_MPS2 / surface) * (potential - surface) * heightM) / Math.max(wind.uMps ** 2 + wind.vMps ** 2, 0.01);
-      if (!Number.isFinite(richardson)) return NaN;
-      if (richardson >= CRITICAL_RICHARDSON) {
-        return below.heightM + ((heightM - below.heightM) * (CRITICAL_RICHARDSON - below.richardson)) / (richardson - below.richardson);
-      }
-      below = { heightM, richardson };
+      const aboveM = fromM + ((column.altitudeM[node]! - fromM) * part) / PARTS;
+      const value = excess(aboveM);
+      if (Number.isNaN(value)) return NaN;
+      if (value >= 0) return crossing(excess, belowM, aboveM) - groundM;
+      belowM = aboveM;
     }
   }
   return NaN;
+}
+
+/** Where a function that is negative at the first height and not at the second changes sign, within a metre. */
+function crossing(excess: (altitudeM: number) => number, belowM: number, aboveM: number): number {
+  let low = belowM;
+  let high = aboveM;
+  while (high - low > 1) {
+    const middle = (low + high) / 2;
+    if (excess(middle) >= 0) high = middle;
+    else low = middle;
+  }
+  return high;
 }

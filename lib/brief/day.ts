@@ -39,7 +39,8 @@ export interface JudgedDay {
 export interface JudgedWindow {
   readonly from: string;
   readonly to: string;
-  readonly lastLaunch: string;
+  /** Whole minute; null when the flight time is unknown or longer than the window. */
+  readonly lastLaunch: string | null;
   readonly verdict: Verdict;
 }
 

@@ -108,13 +108,13 @@ function checkedLevels(list: readonly Level[] | null | undefined): CheckedLevel[
 }
 
 /**
- * Heights must rise as pressure falls: a pair that does not loses both. A level without a height becomes a hole, a NaN
+ * Heights must rise as pressure falls: of any two levels that do not, both lose theirs. A level without a height becomes a hole, a NaN
  * node as high as it could lie below the next known one, so that nothing is ever interpolated across it.
  */
 function placed(levels: readonly CheckedLevel[]): CheckedLevel[] {
   const heights = levels.map((level) => level.altitudeM);
-  for (let i = 1; i < levels.length; i += 1) {
-    if (levels[i]!.altitudeM <= levels[i - 1]!.altitudeM) heights[i - 1] = heights[i] = NaN;
+  for (let i = 0; i < levels.length; i += 1) {
+    for (let j = i + 1; j < levels.length; j += 1) if (levels[j]!.altitudeM <= levels[i]!.altitudeM) heights[i] = heights[j] = NaN;
   }
   let ceilingM = Infinity;
   for (let i = heights.length - 1; i >= 0; i -= 1) {

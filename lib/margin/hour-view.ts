@@ -140,9 +140,11 @@ export function nodeVector(wind: CheckedWind): { readonly uMps: number; readonly
   return isCalm(wind.speedMps) ? { uMps: 0, vMps: 0 } : vectorOf(wind.speedMps, wind.fromDeg);
 }
 
-/** Top of the winds an hour delivers, or out of sight when levels are declared and none came. */
-export function windTopM(hour: CheckedHour, declares: ReadonlySet<ConditionField>): number {
-  return topM(profileOf(hour, declares));
+/** The highest altitude at which any of these hours delivers a wind; out of sight when levels are declared and none ever came. */
+export function reachOf(hours: readonly CheckedHour[], declares: ReadonlySet<ConditionField>): number {
+  const delivering = declares.has('levels') ? hours.filter(({ levels }) => levels.length > 0) : hours;
+  if (delivering.length === 0) return declares.has('levels') ? OUT_OF_SIGHT_M : -Infinity;
+  return delivering.reduce((highest, hour) => Math.max(highest, topM(profileOf(hour, declares))), -Infinity);
 }
 
 function profileOf(hour: CheckedHour, declares: ReadonlySet<ConditionField>): Profile {

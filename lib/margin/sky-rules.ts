@@ -1,4 +1,5 @@
 import { condensationHeightM } from '../air/moist-air.ts';
+import type { CheckedLevel } from '../forecast/ranges.ts';
 import { localDate, MINUTE_MS } from '../time.ts';
 import { thermalNeeds } from './arrival-rule.ts';
 import type { HourView } from './hour-view.ts';
@@ -47,12 +48,19 @@ function cloudBaseM(view: HourView): { readonly heightM: number; readonly origin
   const parcel = { heightM: parcelM, origin: `condensation level of ${fixed(temperatureC)} °C with dew point ${fixed(dewPointC)} °C` };
   if (!view.declares('levels')) return parcel;
   if (view.hour.levels.length === 0) return { heightM: NaN, origin: '' };
-  for (const level of view.hour.levels) {
-    if (level.altitudeM <= view.hour.gridElevationM + 10 || level.altitudeM < lowestM) continue;
-    const heightM = level.altitudeM - placeM;
+  const flown = view.hour.levels.filter(({ altitudeM }) => altitudeM > view.hour.gridElevationM + 10 && altitudeM >= lowestM);
+  const humid = (level: CheckedLevel): boolean => level.relativeHumidityPct >= CLOUD_HUMIDITY_PCT;
+  const origin = (level: CheckedLevel): string => `humidity ${fixed(level.relativeHumidityPct, 0)} % at ${level.pressureHpa} hPa`;
+  const inCloud = flown.find((level) => level.altitudeM <= placeM && humid(level));
+  if (inCloud !== undefined) return { heightM: 0, origin: origin(inCloud) };
+  let belowM = lowestM;
+  for (const level of flown) {
+    // A level whose height is not known may lie as low as the one below it.
+    const heightM = (Number.isNaN(level.speedMps) && Number.isNaN(level.temperatureC) ? belowM : level.altitudeM) - placeM;
     if (heightM >= parcelM || (heightM > 0 && Number.isNaN(parcelM))) return parcel;
     if (Number.isNaN(level.relativeHumidityPct)) return { heightM: NaN, origin: '' };
-    if (level.relativeHumidityPct >= CLOUD_HUMIDITY_PCT) return { heightM: Math.max(0, heightM), origin: `humidity ${fixed(level.relativeHumidityPct, 0)} % at ${level.pressureHpa} hPa` };
+    if (humid(level)) return { heightM, origin: origin(level) };
+    belowM = level.altitudeM;
   }
   return parcel;
 }
@@ -81,7 +89,8 @@ const cloudBase: Rule = {
 export function towNeeds(view: HourView): Need[] {
   const { site } = view.setup;
   const winds = (['wind10m', 'nearGround', 'levels'] as const).filter((field) => view.declares(field));
-  const reached = site.kind !== 'strip' || view.declares('levels') || view.reaches(readAtM(view, site, site.lineLengthM / 2));
+  // A climb that ends where the declared winds end says that they do not reach.
+  const reached = site.kind !== 'strip' || !Number.isNaN(view.tow.end.releaseM);
   return [...winds, ...(reached ? [] : ['levels' as const]), ...airNeeds(view, site.kind === 'strip' ? readAtM(view, site, 0) : site.elevationM)];
 }
 

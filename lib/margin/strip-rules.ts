@@ -1,4 +1,3 @@
-import { speedAt } from '../air/profile.ts';
 import type { StripSite } from '../site.ts';
 import type { HourView } from './hour-view.ts';
 import { airNeeds, fixed, fromSheet, limitTerm, term, type Rule } from './rule.ts';
@@ -18,15 +17,18 @@ export function releaseAltitudeM(view: HourView): number {
   return readAtM(view, stripOf(view), view.tow.end.releaseM);
 }
 
+/** Height of the wind that the shear is measured against, m. */
+const FROM_M = 10;
+
 /** Largest vector difference between the 10 m wind and the profile up to release height, and where. */
 function largestShear(view: HourView): { readonly shearMps: number; readonly heightM: number } {
   const site = stripOf(view);
   const { releaseM } = view.tow.end;
   const [wind] = view.winds;
   if (wind === undefined || Number.isNaN(releaseM)) return { shearMps: NaN, heightM: NaN };
-  let largest = { shearMps: 0, heightM: 10 };
-  for (const heightM of stripHeightsBetween(view, site, [10, releaseM])) {
-    if (heightM > releaseM) continue;
+  let largest = { shearMps: 0, heightM: FROM_M };
+  if (releaseM <= FROM_M) return largest;
+  for (const heightM of stripHeightsBetween(view, site, [FROM_M, releaseM])) {
     const { uMps, vMps } = windOverStrip(view, site, heightM);
     const shearMps = Math.hypot(uMps - wind.uMps, vMps - wind.vMps);
     if (Number.isNaN(shearMps)) return { shearMps, heightM };
@@ -58,18 +60,25 @@ const towHeight: Rule = {
   },
 };
 
+/** Wind at release, never read lower than 10 m: a tow that the wind ends on the ground has not found less wind there. */
+function speedAtRelease(view: HourView): number {
+  const { releaseM } = view.tow.end;
+  const { uMps, vMps } = windOverStrip(view, stripOf(view), Number.isNaN(releaseM) ? NaN : Math.max(FROM_M, releaseM));
+  return Math.hypot(uMps, vMps);
+}
+
 const forwardAtRelease: Rule = {
   id: 'forwardAtRelease', unit: 'm/s', sense: 'atLeast', limit: fromSheet('minForwardAloftMps'),
   needs: (view) => [...towNeeds(view), ...airNeeds(view, Number.isNaN(view.tow.end.releaseM) ? readAtM(view, stripOf(view), 0) : releaseAltitudeM(view))],
   demand(view) {
     const altitudeM = releaseAltitudeM(view);
-    return view.trimAt(altitudeM) - speedAt(view.profile, altitudeM);
+    return view.trimAt(altitudeM) - speedAtRelease(view);
   },
   terms(view, limit) {
     const altitudeM = releaseAltitudeM(view);
     return [
       term('trim airspeed', view.trimAt(altitudeM), 'm/s', `${fixed(view.setup.polar.trimMps, 2)} m/s × ${fixed(view.factorAt(altitudeM), 3)} at release height`),
-      term('wind at release height', -speedAt(view.profile, altitudeM), 'm/s', `profile ${fixed(view.tow.end.releaseM, 0)} m above the strip`),
+      term('wind at release height', -speedAtRelease(view), 'm/s', `profile ${fixed(view.tow.end.releaseM, 0)} m above the strip`),
       limitTerm(view, 'minForwardAloftMps', -limit, 'm/s'),
     ];
   },

@@ -95,7 +95,7 @@ const offAxis = windRule({
     const { lightWindMps } = view.setup.sheet.parameters;
     const blowing = view.winds.filter(({ raw, calm }) => Number.isNaN(raw.speedMps) || (!calm && raw.speedMps >= lightWindMps));
     if (blowing.length === 0) return { estimate: null, value: 0 };
-    return pick(blowing, 'largest', ({ raw }) => angleBetweenDeg(raw.fromDeg, axisDeg(view)));
+    return pick(blowing, 'largest', ({ raw }) => (Number.isNaN(raw.speedMps) ? NaN : angleBetweenDeg(raw.fromDeg, axisDeg(view))));
   },
   parts: (view, { estimate, value }) => [term('angle off the axis', -value, '°', `${estimateOrigin({ ...estimate, speedUp: 0 })}, axis ${fixed(axisDeg(view), 0)}°`)],
 });
@@ -108,6 +108,7 @@ const sector: Rule = {
     const { estimate, value } = largestMean(view);
     if (Number.isNaN(value)) return NaN;
     if (estimate === null || estimate.calm) return null;
+    if (Number.isNaN(estimate.fromDeg)) return NaN;
     const inside = view.setup.site.sectors.filter((each) => inSector(estimate.fromDeg, each));
     return inside.length === 0 ? null : inside.reduce((least, { maxMps }) => smaller(least, maxMps), Infinity);
   },

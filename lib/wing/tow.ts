@@ -1,4 +1,4 @@
-import { radians } from '../angles.ts';
+import { degrees, radians } from '../angles.ts';
 
 /**
  * A static-winch tow, quasi-steady, on a straight weightless line: tension t as a share of all-up weight, line angle b
@@ -47,8 +47,11 @@ function balance(tow: Pick<Tow, 'trimMps' | 'glideAtTrim' | 'tensionRatio'>, sin
   };
 }
 
-/** Steps across a still-air climb; fourth-order steps of this size leave the height good to better than 0.1 %. */
-const STEPS = 160;
+/** Longest step as a share of the time the line takes at trim speed; fourth order, height good to 0.1 %. */
+const LONGEST_STEP = 1 / 100;
+/** Steps begin this much shorter and grow with time: near the ground the log law bends the wind most. */
+const FIRST_STEP = 1 / 40;
+const STEP_GROWTH = 0.12;
 const MAX_STEPS = 4000;
 
 interface Rate {
@@ -75,43 +78,49 @@ function step(tow: Tow, x: number, z: number, dt: number): { readonly x: number;
 
 /** Flies the tow from the strip. `visit` is told of each step, for a picture; leave it out and nothing is kept. */
 export function flyTow(tow: Tow, visit?: (point: TowPoint) => void): TowEnd {
-  const dt = tow.lineLengthM / tow.trimMps / STEPS;
-  const releaseTangent = Math.tan(radians(tow.releaseAngleDeg));
+  const longestS = (tow.lineLengthM / tow.trimMps) * LONGEST_STEP;
+  const tangent = Math.tan(radians(tow.releaseAngleDeg));
+  const pastAngle = (x: number, z: number): boolean => z >= x * tangent;
+  const pastLine = (x: number, z: number): boolean => Math.hypot(x, z) > tow.lineLengthM + 1e-9;
   let x = tow.lineLengthM;
   let z = 0;
   let timeS = 0;
   visit?.({ timeS, toWinchM: x, heightM: z, lineAngleDeg: 0 });
   for (let n = 0; n < MAX_STEPS; n += 1) {
+    const dt = Math.min(longestS, Math.max(longestS * FIRST_STEP, STEP_GROWTH * timeS));
     const next = step(tow, x, z, dt);
     if (Number.isNaN(next.x) || Number.isNaN(next.z)) return { releaseM: NaN, durationS: NaN, why: 'release angle' };
     if (next.z <= 0) return { releaseM: 0, durationS: timeS, why: 'no climb' };
-    const angleShare = shareToAngle(x, z, next, releaseTangent);
-    const lineShare = shareToLine(x, z, next, tow.lineLengthM);
-    if (angleShare < 1 || lineShare < 1) {
-      const share = Math.min(angleShare, lineShare);
-      const end = step(tow, x, z, dt * share);
-      visit?.({ timeS: timeS + dt * share, toWinchM: end.x, heightM: end.z, lineAngleDeg: (Math.atan2(end.z, end.x) * 180) / Math.PI });
-      return { releaseM: end.z, durationS: timeS + dt * share, why: angleShare <= lineShare ? 'release angle' : 'line length' };
+    const why = pastLine(next.x, next.z) ? 'line length' : pastAngle(next.x, next.z) ? 'release angle' : null;
+    if (why !== null) {
+      const endS = lastBefore(dt, (partS) => {
+        const end = step(tow, x, z, partS);
+        return pastLine(end.x, end.z) || pastAngle(end.x, end.z);
+      });
+      const end = step(tow, x, z, endS);
+      visit?.(pointAt(timeS + endS, end.x, end.z));
+      return { releaseM: Math.max(0, end.z), durationS: timeS + endS, why };
     }
     x = next.x;
     z = next.z;
     timeS += dt;
-    visit?.({ timeS, toWinchM: x, heightM: z, lineAngleDeg: (Math.atan2(z, x) * 180) / Math.PI });
+    visit?.(pointAt(timeS, x, z));
   }
   return { releaseM: NaN, durationS: NaN, why: 'release angle' };
 }
 
-/** Share of a step at which z = x tan(release), 1 or more when it lies beyond the step. */
-function shareToAngle(x: number, z: number, next: { readonly x: number; readonly z: number }, tangent: number): number {
-  const before = z - x * tangent;
-  const after = next.z - next.x * tangent;
-  return after < 0 ? Infinity : before / (before - after);
+function pointAt(timeS: number, toWinchM: number, heightM: number): TowPoint {
+  return { timeS, toWinchM, heightM, lineAngleDeg: degrees(Math.atan2(heightM, toWinchM)) };
 }
 
-/** Share of a step at which the wing is a full line away from the winch again; the start itself does not count. */
-function shareToLine(x: number, z: number, next: { readonly x: number; readonly z: number }, lineM: number): number {
-  const before = Math.hypot(x, z) - lineM;
-  const after = Math.hypot(next.x, next.z) - lineM;
-  if (after <= 1e-9) return Infinity;
-  return after === before ? 0 : Math.max(0, -before / (after - before));
+/** The longest part of a step after which the tow has not ended, by bisection. */
+function lastBefore(dt: number, ended: (partS: number) => boolean): number {
+  let low = 0;
+  let high = dt;
+  for (let i = 0; i < 30; i += 1) {
+    const middle = (low + high) / 2;
+    if (ended(middle)) high = middle;
+    else low = middle;
+  }
+  return low;
 }
