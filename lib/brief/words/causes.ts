@@ -112,13 +112,17 @@ export function causeClause(margin: Said, reader: Reader): string {
   return `${found}; ${limitPhrase(id, pair.second)}`;
 }
 
-/** The margin as a sentence of its hour: "At 13 h a gust leaves 1.2 m/s forward; the sheet asks 2.5." */
+/**
+ * The margin as a sentence of its hour: "At 13 h a gust leaves 1.2 m/s forward; the sheet asks 2.5." On a day that
+ * nothing closes it is no cause but the tightest margin: "Tightest at 13 h: a gust leaves ...".
+ */
 export function causeSentence(
-  day: Pick<JudgedDay, 'timeZone' | 'hours'>, cause: { readonly id: MarginId; readonly validAt: string }, reader: Reader,
+  day: Pick<JudgedDay, 'timeZone' | 'hours'>, cause: { readonly id: MarginId; readonly validAt: string }, reader: Reader, as: 'cause' | 'tightest' = 'cause',
 ): string {
   const hour = day.hours.find((candidate) => candidate.validAt === cause.validAt);
   const margin = hour?.margins.find((candidate) => candidate.id === cause.id);
-  const at = `At ${hourName(cause.validAt, day.timeZone)}`;
+  const hourText = hourName(cause.validAt, day.timeZone);
+  const at = as === 'cause' ? `At ${hourText}` : `Tightest at ${hourText}:`;
   if (margin === undefined) return sentence(`${at} nothing is known of the ${lower(marginName(cause.id))}`);
   return sentence(`${at} ${causeClause(margin, reader)}`);
 }

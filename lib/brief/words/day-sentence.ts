@@ -67,7 +67,7 @@ function unknownSentence(day: JudgedDay, reader: Reader): string | null {
 function reasons(day: JudgedDay, reader: Reader): string[] {
   const nobody = nobodyVoted(day);
   if (nobody !== null) return [nobody];
-  const cause = day.cause === null ? null : causeSentence(day, day.cause, reader);
+  const cause = day.cause === null ? null : causeSentence(day, day.cause, reader, day.hours.every((hour) => isOpen(hour.verdict)) ? 'tightest' : 'cause');
   return [cause, unknownSentence(day, reader)].filter((text) => text !== null);
 }
 

@@ -1,5 +1,6 @@
 /** The catalogue: every word that a person reads in a brief, a page, a feed or a message comes from this folder. */
 export { briefText, briefTitle, dayVerdict, inBriefOrder, siteBlock } from './brief.ts';
+export { speedToFlySentence } from './advice.ts';
 export { causeClause, causeSentence } from './causes.ts';
 export { cautionSentence } from './cautions.ts';
 export { ageName, clockTime, dateName, hourName, hourSpan, momentName } from './clock.ts';

@@ -12,7 +12,8 @@ export interface NotJudgedGroup {
 export function notJudgedGroups(day: Pick<JudgedDay, 'notJudged'>): NotJudgedGroup[] {
   const groups = new Map<string, string[]>();
   for (const { id, why } of day.notJudged) {
-    const reason = plainText(why, 200);
+    // One limit name a reason would make a group of every margin; the margin's own name says which limit it is.
+    const reason = /^the sheet has no \w+$/u.test(why) ? 'the sheet sets no limit' : plainText(why, 200);
     groups.set(reason, [...(groups.get(reason) ?? []), marginName(id)]);
   }
   return [...groups].map(([why, names]) => ({ why, names }));

@@ -24,11 +24,11 @@ describe('the day sentence', () => {
   test.each([
     ['bbbb', 'Beyond a limit all day. At 6 h a gust leaves 1.2 m/s forward; the sheet asks 2.5.'],
     ['bwbb', 'Beyond a limit, no window. At 6 h a gust leaves 1.2 m/s forward; the sheet asks 2.5.'],
-    ['wwww', 'Within limits, last launch 8:48, all day 6 to 9 h. At 6 h a gust leaves 4.9 m/s forward; the sheet asks 2.5.'],
-    ['wccw', 'Close to a limit, last launch 8:48, all day 6 to 9 h. At 7 h a gust leaves 2.8 m/s forward; the sheet asks 2.5.'],
+    ['wwww', 'Within limits, last launch 8:48, all day 6 to 9 h. Tightest at 6 h: a gust leaves 4.9 m/s forward; the sheet asks 2.5.'],
+    ['wccw', 'Close to a limit, last launch 8:48, all day 6 to 9 h. Tightest at 7 h: a gust leaves 2.8 m/s forward; the sheet asks 2.5.'],
     ['uuuu', 'Cannot say all day. At 6 h nothing is known of the forward speed at launch: gust missing.'],
     ['wwub', 'Beyond a limit or cannot say except 6 h to last launch 6:48 (within limits). At 9 h a gust leaves 1.2 m/s forward; the sheet asks 2.5. At 8 h nothing is known of the forward speed at launch: gust missing.'],
-    ['w', 'No window: 6 h alone was judged. At 6 h a gust leaves 4.9 m/s forward; the sheet asks 2.5.'],
+    ['w', 'No window: 6 h alone was judged. Tightest at 6 h: a gust leaves 4.9 m/s forward; the sheet asks 2.5.'],
   ])('%s', (letters, expected) => {
     expect(daySentence(dayOf(letters), reader)).toBe(expected);
   });

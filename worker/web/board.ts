@@ -1,0 +1,68 @@
+/** The board: a line of words a site, its columns of airspeed small beside it, windows, cautions, ages. */
+import type { JudgedDay } from '../../lib/brief/day.ts';
+import {
+  briefTitle, cautionSentence, credits, dateName, dayStatement, EXPIRED, inBriefOrder, placeName, plainText, provenance, windowSentence, type Reader,
+} from '../../lib/brief/words/index.ts';
+import { html, type Html } from './html.ts';
+import { layout } from './layout.ts';
+import type { BoardSite } from './page-services.ts';
+import { columnsPicture, SMALL } from './pictures/columns.ts';
+import { hourScale } from './pictures/runs.ts';
+import { address, unitsPart } from './units-query.ts';
+
+export function isExpired(day: Pick<JudgedDay, 'validUntil'>, now: Date): boolean {
+  const until = Date.parse(day.validUntil);
+  // A brief that does not say how long it holds does not hold.
+  return Number.isNaN(until) || now.getTime() >= until;
+}
+
+function dayHref(day: JudgedDay, reader: Reader): string {
+  return address(`/sites/${encodeURIComponent(day.siteId)}`, { date: day.localDate, wing: day.wingKey, sheet: day.sheetId, ...unitsPart(reader.units) });
+}
+
+function siteHead(day: JudgedDay, reader: Reader): Html {
+  return html`<h2><a href="${dayHref(day, reader)}">${placeName({ name: day.siteName, id: day.siteId })}</a></h2>
+<p class="aside">${dateName(day.localDate, 'short')}<br>${plainText(day.wingName)}<br>${plainText(day.sheetName)}</p>`;
+}
+
+function entry(day: JudgedDay, options: { readonly reader: Reader; readonly now: Date; readonly id: string }): Html {
+  const { reader, now, id } = options;
+  if (isExpired(day, now)) {
+    return html`<article class="entry"><div class="margin">${siteHead(day, reader)}</div><div class="body"><p class="day">${EXPIRED}</p></div></article>`;
+  }
+  const cautions = day.cautions.filter((caution) => caution.id !== 'demo').map((caution) => html`<li>${cautionSentence(caution, day, reader)}</li>`);
+  const picture = day.hours.length === 0 ? null : html`<div class="small">${columnsPicture(day, reader, { size: SMALL, id })}${hourScale(day)}</div>`;
+  return html`<article class="entry" data-valid-until="${day.validUntil}"><div class="margin">${siteHead(day, reader)}</div><div class="body">
+<p class="day">${day.demo ? html`<span class="tag">Invented weather.</span> ` : null}${dayStatement(day, reader)}</p>
+${day.windows.length === 0 ? null : html`<ul class="windows">${day.windows.map((window) => html`<li>${windowSentence(window, day)}</li>`)}</ul>`}
+${cautions.length === 0 ? null : html`<ul class="cautions" aria-label="Cautions">${cautions}</ul>`}
+${day.localRules === null ? null : html`<p class="rules">${plainText(day.localRules, 300)}</p>`}
+<p class="ages">${provenance(day)}</p></div>${picture}</article>`;
+}
+
+function notMade(site: BoardSite): Html {
+  return html`<article class="entry"><div class="margin"><h2>${placeName({ name: site.siteName, id: site.siteId })}</h2></div>
+<div class="body"><p class="day">Cannot say: no brief has been made for today yet.</p></div></article>`;
+}
+
+export function boardPage(sites: readonly BoardSite[], options: { readonly reader: Reader; readonly now: Date }): string {
+  const { reader, now } = options;
+  const days = inBriefOrder(sites.flatMap((site) => site.days));
+  const valid = days.filter((day) => !isExpired(day, now));
+  const [first] = days;
+  const missing = sites.filter((site) => site.days.length === 0);
+  const body = html`<div class="top"><h1>${first === undefined ? 'No site yet' : dateName(first.localDate)}</h1>
+<p class="lede">What is left of the airspeed this morning, once wind, gust and reserve are paid.</p></div>
+${missing.map(notMade)}${days.map((day, index) => entry(day, { reader, now, id: `c${index}` }))}
+${sites.length === 0 ? html`<p class="day">Cannot say: no site is set up.</p>` : null}`;
+  return layout({
+    title: valid.length === 0 ? 'Cannot say: no valid brief - Dawnmargin' : `${briefTitle(valid)} - Dawnmargin`,
+    description: 'Margins of the morning for every launch and strip: wind, gusts, glide, thermals, rain and daylight against the limits of a sheet.',
+    body, demo: days.some((day) => day.demo), credits: creditsOf(days), keep: address('', unitsPart(reader.units)),
+  });
+}
+
+export function creditsOf(days: readonly JudgedDay[]): { readonly text: string; readonly href: string }[] {
+  const all = days.flatMap((day) => credits(day));
+  return all.filter((credit, index) => all.findIndex(({ href }) => href === credit.href) === index);
+}

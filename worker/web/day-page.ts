@@ -1,0 +1,95 @@
+/** The day of one site: first the sentence that says it, then the columns, the cautions, and one hour in full. */
+import type { JudgedDay, JudgedHour } from '../../lib/brief/day.ts';
+import {
+  briefTitle, capital, causeClause, cautionSentence, dateName, dayStatement, EXPIRED, hourName, placeName, plainText, provenance, sentence, verdictPhrase, windowSentence,
+  type Reader,
+} from '../../lib/brief/words/index.ts';
+import { creditsOf, isExpired } from './board.ts';
+import { chooseForm } from './choose-form.ts';
+import { hoursTable } from './hours-table.ts';
+import { html, type Html, type Piece } from './html.ts';
+import { layout } from './layout.ts';
+import { marginsList } from './margins-list.ts';
+import type { Choice, HourDetail } from './page-services.ts';
+import { columnsPicture, LARGE } from './pictures/columns.ts';
+import { columnsKey } from './pictures/key.ts';
+import { hourPictures } from './pictures/hour-pictures.ts';
+import { hourLinks, verdictRuns } from './pictures/runs.ts';
+import { sourcesSection } from './sources-section.ts';
+import { address, unitsPart } from './units-query.ts';
+
+export interface DayPageOptions {
+  readonly reader: Reader;
+  readonly now: Date;
+  /** The hour asked for, ISO 8601 UTC; null for the one that limits the day. */
+  readonly hour: string | null;
+  readonly detail: (validAt: string) => HourDetail;
+  readonly choices: { readonly wings: readonly Choice[]; readonly sheets: readonly Choice[] };
+}
+
+/** The hour asked for, else the one that limits the day, else the first. */
+export function chosenHour(day: JudgedDay, asked: string | null): JudgedHour | null {
+  const at = (validAt: string | undefined) => day.hours.find((hour) => hour.validAt === validAt);
+  return at(asked ?? undefined) ?? at(day.cause?.validAt) ?? day.hours[0] ?? null;
+}
+
+function hourHref(day: JudgedDay, hour: JudgedHour, reader: Reader): string {
+  return address(`/sites/${encodeURIComponent(day.siteId)}`, {
+    date: day.localDate, wing: day.wingKey, sheet: day.sheetId, hour: hour.validAt, ...unitsPart(reader.units),
+  }, '#hour');
+}
+
+function cautionsSection(day: JudgedDay, reader: Reader): Piece {
+  const list = day.cautions.filter(({ id }) => id !== 'demo');
+  if (list.length === 0) return null;
+  return html`<section class="cautions" aria-labelledby="cautions-h"><h2 id="cautions-h">Cautions</h2><ul>${list.map((caution) => html`<li>${cautionSentence(caution, day, reader)}</li>`)}</ul></section>`;
+}
+
+function columnsSection(day: JudgedDay, chosen: JudgedHour, reader: Reader): Html {
+  return html`<figure class="airspeed">${columnsPicture(day, reader, { size: LARGE, id: 'col' })}
+${hourLinks(day, { chosen: chosen.validAt, href: (hour) => hourHref(day, hour, reader) })}${verdictRuns(day)}
+<figcaption>${columnsKey(day, reader)}</figcaption>${hoursTable(day, reader)}</figure>`;
+}
+
+function causesOf(hour: JudgedHour, reader: Reader): Piece {
+  const causes = hour.causes.map((id) => hour.margins.find((margin) => margin.id === id)).filter((margin) => margin !== undefined);
+  return causes.length === 0 ? null : html`<ul class="causes">${causes.map((margin) => html`<li>${sentence(causeClause(margin, reader))}</li>`)}</ul>`;
+}
+
+function hourSection(day: JudgedDay, hour: JudgedHour, options: DayPageOptions): Html {
+  const { reader } = options;
+  const detail = options.detail(hour.validAt);
+  return html`<section id="hour" class="hour" aria-labelledby="hour-h"><h2 id="hour-h">${capital(verdictPhrase(hour.verdict))} at ${hourName(hour.validAt, day.timeZone)}</h2>
+${causesOf(hour, reader)}${hourPictures(day, hour, detail, reader)}
+<h3>Margins, tightest first</h3><p class="hint">Open a margin for its working.</p>${marginsList(hour, detail, reader)}</section>`;
+}
+
+function marginalia(day: JudgedDay): Html {
+  return html`<p class="aside">${dateName(day.localDate)}<br>${plainText(day.wingName)}<br>${plainText(day.sheetName)}, version ${day.sheetVersion}</p>`;
+}
+
+function judged(day: JudgedDay, options: DayPageOptions): Html {
+  const { reader } = options;
+  const hour = chosenHour(day, options.hour);
+  return html`<div class="judged" data-valid-until="${day.validUntil}">
+<p class="day">${day.demo ? html`<span class="tag">Invented weather.</span> ` : null}${dayStatement(day, reader)}</p>
+${day.windows.length === 0 ? null : html`<ul class="windows">${day.windows.map((window) => html`<li>${windowSentence(window, day)}</li>`)}</ul>`}
+<p class="ages">${provenance(day)}</p>
+${hour === null ? null : columnsSection(day, hour, reader)}${cautionsSection(day, reader)}
+${day.localRules === null ? null : html`<p class="rules"><strong>Local rules:</strong> ${plainText(day.localRules, 300)}</p>`}
+${hour === null ? null : hourSection(day, hour, options)}${sourcesSection(day, hour)}</div>`;
+}
+
+export function dayPage(day: JudgedDay, options: DayPageOptions): string {
+  const expired = isExpired(day, options.now);
+  const name = placeName({ name: day.siteName, id: day.siteId });
+  const hour = chosenHour(day, options.hour);
+  const body = html`<article class="site"><div class="margin"><h1>${name}</h1>${marginalia(day)}</div><div class="body">
+${expired ? html`<p class="day">${EXPIRED}</p>` : judged(day, options)}
+<section aria-labelledby="choose-h"><h2 id="choose-h">Another wing, sheet or unit</h2>${chooseForm(day, options.choices, { reader: options.reader, hour: hour?.validAt ?? '' })}</section></div></article>`;
+  return layout({
+    title: expired ? `Expired - ${name} - Dawnmargin` : `${briefTitle([day])} - Dawnmargin`,
+    description: `The morning margins of ${name}: hour by hour what wind, gusts, glide, thermals, rain and daylight leave against the limits of a sheet.`,
+    body, demo: day.demo, credits: creditsOf([day]), keep: address('', unitsPart(options.reader.units)),
+  });
+}

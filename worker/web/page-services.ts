@@ -1,0 +1,96 @@
+/** What the pages ask of the rest: stored briefs, one judged day, and the working behind its numbers. No page computes. */
+import type { JudgedDay } from '../../lib/brief/day.ts';
+import type { MarginId, Term } from '../../lib/margin/ids.ts';
+
+export interface BoardSite {
+  readonly siteId: string;
+  readonly siteName: string;
+  readonly kind: 'launch' | 'strip';
+  readonly timeZone: string;
+  /** Today's stored brief of every published wing and sheet; empty when none was made yet. */
+  readonly days: readonly JudgedDay[];
+}
+
+export interface DayQuery {
+  readonly siteId: string;
+  /** yyyy-mm-dd; null for the day that "this morning" means. */
+  readonly date: string | null;
+  readonly wing: string | null;
+  readonly sheet: string | null;
+}
+
+export interface Choice {
+  readonly id: string;
+  readonly name: string;
+}
+
+export interface MarginWorking {
+  readonly id: MarginId;
+  readonly terms: readonly Term[];
+}
+
+/** A point of a path: metres along the track, metres above mean sea level. */
+export interface PathPoint {
+  readonly alongM: number;
+  readonly altitudeM: number;
+}
+
+export interface GlidePicture {
+  readonly launchM: number;
+  readonly landingM: number;
+  readonly distanceM: number;
+  readonly stillAir: readonly PathPoint[];
+  readonly inWind: readonly PathPoint[];
+  readonly arrivalM: number | null;
+  readonly minArrivalM: number | null;
+}
+
+export interface LadderRung {
+  readonly altitudeM: number;
+  /** Along the launch axis, positive against the wing. */
+  readonly headMps: number;
+  /** Across it, positive from the right. */
+  readonly crossMps: number;
+}
+
+export interface LadderPicture {
+  readonly rungs: readonly LadderRung[];
+  readonly trimMps: number;
+  readonly launchM: number;
+  readonly landingM: number | null;
+}
+
+export interface TowPicture {
+  readonly headingDeg: number;
+  readonly lineLengthM: number;
+  /** Metres from the start toward the winch, metres above the strip. */
+  readonly climb: readonly { readonly alongM: number; readonly heightM: number }[];
+  readonly releaseM: number;
+  readonly driftM: number | null;
+  readonly lineClearM: number | null;
+  readonly headMps: number;
+  readonly crossMps: number;
+  readonly gustMps: number | null;
+}
+
+/** What belongs to one hour: the sums behind its margins, and its pictures. */
+export interface HourDetail {
+  readonly workings: readonly MarginWorking[];
+  readonly glide: GlidePicture | null;
+  readonly ladder: LadderPicture | null;
+  readonly tow: TowPicture | null;
+}
+
+export type DayAnswer =
+  | { readonly kind: 'day'; readonly day: JudgedDay; readonly detail: (validAt: string) => HourDetail }
+  | { readonly kind: 'no-site' }
+  | { readonly kind: 'bad-query'; readonly problems: readonly string[] }
+  | { readonly kind: 'not-made'; readonly siteName: string };
+
+export interface PageServices {
+  now(): Date;
+  board(): Promise<readonly BoardSite[]>;
+  day(query: DayQuery): Promise<DayAnswer>;
+  /** Wings and sheets that a visitor may choose for a kind of site. */
+  choices(kind: 'launch' | 'strip'): { readonly wings: readonly Choice[]; readonly sheets: readonly Choice[] };
+}
