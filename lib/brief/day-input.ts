@@ -1,3 +1,4 @@
+import type { Thresholds } from '../config/thresholds.ts';
 import type { Forecast } from '../forecast/conditions.ts';
 import type { SourceFailure } from '../forecast/failure.ts';
 import type { LimitSheet } from '../margin/sheet.ts';
@@ -23,6 +24,9 @@ export interface DayInput {
     readonly kind: 'deterministic' | 'ensemble';
     readonly outcome: Result<Forecast, SourceFailure>;
   }[];
+  /** The sources asked make invented weather: said on everything, also where they give nothing. */
+  readonly demo: boolean;
+  readonly thresholds: Thresholds;
   /** Model ground last stored for a source at this site, to notice that a grid point jumped. */
   readonly storedGroundM: Readonly<Record<string, number>>;
 }

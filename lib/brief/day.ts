@@ -1,5 +1,7 @@
 import type { Caution } from './cautions.ts';
+import type { HeadingReason } from '../margin/tow-heading.ts';
 import type { ConditionField } from '../forecast/conditions.ts';
+import type { MemberSpread } from '../margin/agreement.ts';
 import type { MarginId, MarginUnit, Verdict } from '../margin/ids.ts';
 
 /**
@@ -54,8 +56,12 @@ export interface JudgedHour {
   readonly bySource: readonly { readonly source: string; readonly verdict: Verdict }[];
   readonly airspeed: AirspeedColumn | null;
   readonly speedToFlyMps: number | null;
+  /** Mean wind where the wing is launched, least and most over the sources with a vote, and each one's direction; null when none says. */
+  readonly wind: { readonly leastMps: number; readonly mostMps: number; readonly bySource: readonly { readonly source: string; readonly meanMps: number; readonly gustMps: number | null; readonly fromDeg: number | null }[] } | null;
+  /** What the ensemble's members say: the margins they agree about, median and adverse decile of each spare. */
+  readonly ensemble: { readonly about: readonly MarginId[]; readonly spreads: readonly MemberSpread[] } | null;
   /** Strips: the recommended heading (direction of tow) and why. */
-  readonly heading: { readonly headingDeg: number; readonly reason: string } | null;
+  readonly heading: { readonly headingDeg: number; readonly reason: HeadingReason; readonly releaseM: number | null; readonly lineDriftM: number | null } | null;
 }
 
 export interface CombinedMargin {

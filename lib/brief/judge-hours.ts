@@ -2,7 +2,7 @@ import type { ConditionField, Conditions } from '../forecast/conditions.ts';
 import { checkHour } from '../forecast/ranges.ts';
 import { adviceMps, flightTimeS } from '../margin/advice.ts';
 import type { Margin, MarginId, Term, Verdict } from '../margin/ids.ts';
-import { judgedRules, measure, viewsOf, workingOf } from '../margin/judge-member.ts';
+import { alone, judgedRules, measure, viewsOf, workingOf } from '../margin/judge-member.ts';
 import { setUp } from '../margin/setup.ts';
 import type { LimitSheet } from '../margin/sheet.ts';
 import { causesOf, worstVerdict } from '../margin/verdict.ts';
@@ -44,7 +44,7 @@ export interface Assessment {
 export function judgeHours(input: HoursInput): Assessment {
   const setup = setUp(input);
   const { rules, notJudged } = judgedRules(setup);
-  const views = viewsOf(setup, input.hours.map(checkHour), new Set(input.declares), () => null);
+  const views = viewsOf(setup, input.hours.map(checkHour), alone(input.declares));
   const judged = views.map((view, i) => {
     const results = rules.flatMap((rule) => {
       const margin = measure(rule, view);

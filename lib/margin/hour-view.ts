@@ -9,7 +9,7 @@ import type { CheckedHour, CheckedWind } from '../forecast/ranges.ts';
 import { speedFactor } from '../wing/scaling.ts';
 import { launchWinds, stripWind, type Estimate } from './launch-wind.ts';
 import type { Setup } from './setup.ts';
-import { towOf, type ChosenTow } from './tow-heading.ts';
+import { towOf, towOnSetHeading, type ChosenTow } from './tow-heading.ts';
 
 /** Higher than any node: stands for winds a source gives but did not deliver this hour. */
 const OUT_OF_SIGHT_M = 100_000;
@@ -22,6 +22,8 @@ export interface HourContext {
   readonly next: readonly CheckedHour[];
   /** The highest altitude at which this member gives a wind in any hour: a declared wind that is missing is a hole, not an end. */
   readonly reachM: number;
+  /** The heading another source has chosen for the hour; null to choose one's own. Strips only. */
+  readonly setHeading: { readonly headingDeg: number; readonly by: string } | null;
   /** Mixed-layer depth of another source, used when this one does not declare its own. */
   readonly borrowedMixedLayer: { readonly depthM: number; readonly source: string } | null;
 }
@@ -129,9 +131,14 @@ export class HourView {
     });
   }
 
+  /** Strips: direction the wing is towed toward. */
+  get headingDeg(): number {
+    return this.context.setHeading?.headingDeg ?? this.tow.headingDeg;
+  }
+
   /** Strips: the heading chosen and its climb. Throws for a launch, which has no tow. */
   get tow(): ChosenTow {
-    return this.#once('tow', () => towOf(this));
+    return this.#once('tow', () => (this.context.setHeading === null ? towOf(this) : towOnSetHeading(this, this.context.setHeading)));
   }
 }
 

@@ -11,13 +11,28 @@ import type { Setup } from './setup.ts';
 /** Another source's mixed-layer depth at an instant, or null. */
 export type BorrowMixedLayer = (validAtMs: number) => { readonly depthM: number; readonly source: string } | null;
 
+/** The heading another source has chosen for an instant, or null. */
+export type SetHeading = (validAtMs: number) => { readonly headingDeg: number; readonly by: string } | null;
+
+export interface MemberContext {
+  readonly declares: ReadonlySet<ConditionField>;
+  readonly borrow: BorrowMixedLayer;
+  readonly setHeading: SetHeading;
+}
+
+/** A source that stands alone: nothing to borrow, nobody who sets its heading. */
+export function alone(declares: readonly ConditionField[]): MemberContext {
+  return { declares: new Set(declares), borrow: () => null, setHeading: () => null };
+}
+
 /** One member's hours as views, in the order given; each knows the next two hours where the member has them. */
-export function viewsOf(setup: Setup, hours: readonly CheckedHour[], declares: ReadonlySet<ConditionField>, borrow: BorrowMixedLayer): HourView[] {
+export function viewsOf(setup: Setup, hours: readonly CheckedHour[], context: MemberContext): HourView[] {
+  const { declares, borrow, setHeading } = context;
   const byInstant = new Map(hours.map((hour) => [hour.validAtMs, hour]));
   const reachM = reachOf(hours, declares);
   return hours.map((hour) => {
     const next = [1, 2].flatMap((step) => byInstant.get(hour.validAtMs + step * HOUR_MS) ?? []);
-    return new HourView(setup, hour, { declares, next, reachM, borrowedMixedLayer: borrow(hour.validAtMs) });
+    return new HourView(setup, hour, { declares, next, reachM, setHeading: setHeading(hour.validAtMs), borrowedMixedLayer: borrow(hour.validAtMs) });
   });
 }
 

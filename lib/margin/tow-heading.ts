@@ -10,6 +10,7 @@ import { readAtM, windOverStrip } from './strip-profile.ts';
 /** Why a heading was chosen over its opposite: data for one sentence. */
 export type HeadingReason =
   | { readonly kind: 'only one' }
+  | { readonly kind: 'set'; readonly by: string }
   | { readonly kind: 'larger spare'; readonly of: 'stripCross' | 'stripTail' | 'towHeight'; readonly otherHeadingDeg: number }
   | { readonly kind: 'more head'; readonly headMps: number; readonly otherHeadingDeg: number }
   | { readonly kind: 'as laid out'; readonly otherHeadingDeg: number };
@@ -71,6 +72,13 @@ function candidate(view: HourView, site: StripSite, headingDeg: number): Candida
 
 /** Spares nearer than this are a tie: rounding, not a reason to change ends. */
 const TIE = 1e-6;
+
+/** The tow on a heading that another source has set for everyone: what is recommended is one thing, and all judge that. */
+export function towOnSetHeading(view: HourView, set: { readonly headingDeg: number; readonly by: string }): ChosenTow {
+  const { site } = view.setup;
+  if (site.kind !== 'strip') throw new Error('only a strip has a tow');
+  return { headingDeg: set.headingDeg, reason: { kind: 'set', by: set.by }, end: flyTowOn(view, site, set.headingDeg) };
+}
 
 /** Of the usable headings the one whose smallest spare is larger; tie: more head; tie: the heading as laid out. */
 export function towOf(view: HourView): ChosenTow {

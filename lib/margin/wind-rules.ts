@@ -10,7 +10,7 @@ import type { LimitName } from './sheet.ts';
 /** Axis the wind is taken on: where the launch faces, or the heading of the tow. */
 export function axisDeg(view: HourView): number {
   const { site } = view.setup;
-  return site.kind === 'launch' ? site.facingDeg : view.tow.headingDeg;
+  return site.kind === 'launch' ? site.facingDeg : view.headingDeg;
 }
 
 interface WindRule {
