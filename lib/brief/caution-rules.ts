@@ -6,7 +6,6 @@ import { windAt } from '../air/profile.ts';
 import { logLawFactor } from '../air/surface-layer.ts';
 import { windChillC } from '../air/wind-chill.ts';
 import { componentsOfVector } from '../air/wind.ts';
-import { isAgeSaid } from '../forecast/ages.ts';
 import type { HourView } from '../margin/hour-view.ts';
 import type { Setup } from '../margin/setup.ts';
 import type { Window } from '../margin/window.ts';
@@ -67,10 +66,10 @@ const THUNDER_FROM = 91;
 
 function skyCautions(given: CautionInput): Caution[] {
   const { input: { thresholds }, setup } = given;
-  const cape = over('storm', 'J/kg', readings(given, ({ hour }) => hour.capeJkg).filter(({ value }) => value >= thresholds.capeHighJkg));
+  const cape = over('storm', 'J/kg', readings(given, ({ hour }) => hour.capeJkg).filter(({ value }) => value >= thresholds.stormCapeJkg));
   const signalled = readings(given, ({ hour }) => hour.weatherCode).filter(({ value }) => value >= THUNDER_FROM || value === 17 || value === 29);
   const thunder = over('storm', '', signalled).map((caution) => ({ ...caution, value: null, unit: null }));
-  const strongMps = (setup.sheet.limits.maxThermalMps ?? 3) * thresholds.strongThermalShare;
+  const strongMps = strongThermalMps(setup.sheet.limits.maxThermalMps, thresholds.thermalMps);
   const baseOf = (view: HourView): number => {
     const air = view.airAt(setup.site.elevationM);
     return condensationHeightM(air.temperatureC, air.dewPointC);
@@ -78,8 +77,8 @@ function skyCautions(given: CautionInput): Caution[] {
   return [
     ...cape, ...thunder,
     ...over('strongThermals', 'm/s', readings(given, (view) => view.thermalMps).filter(({ value }) => value >= strongMps)),
-    ...over('lowCloud', 'm', readings(given, baseOf, 'least').filter(({ value }) => value <= thresholds.lowCloudBaseM), 'least'),
-    ...(baseKnown(given, baseOf) ? [] : over('lowCloud', '%', readings(given, ({ hour }) => hour.lowCloudPct).filter(({ value }) => value >= thresholds.lowCloudPct))),
+    ...over('lowCloud', 'm', readings(given, baseOf, 'least').filter(({ value }) => value <= thresholds.lowCloudM), 'least'),
+    ...over('lowCloud', 'm of sight', readings(given, ({ hour }) => hour.visibilityM, 'least').filter(({ value }) => value <= thresholds.fogVisibilityM), 'least'),
     ...foehn(given),
     ...over('cold', '°C', readings(given, (view) => windChillC(view.airAt(setup.site.elevationM).temperatureC, view.trimAt(setup.site.elevationM)), 'least').filter(({ value }) => value <= thresholds.windChillC), 'least'),
     ...front(given),
@@ -87,8 +86,9 @@ function skyCautions(given: CautionInput): Caution[] {
   ];
 }
 
-function baseKnown(given: CautionInput, baseOf: (view: HourView) => number): boolean {
-  return readings(given, baseOf).length > 0;
+/** Three quarters of what the sheet allows, or the threshold where the sheet allows more or says nothing. */
+function strongThermalMps(allowedMps: number | undefined, thresholdMps: number): number {
+  return Math.min(0.75 * (allowedMps ?? Infinity), thresholdMps);
 }
 
 function foehn(given: CautionInput): Caution[] {
@@ -121,9 +121,9 @@ function turnOf(before: HourView, after: HourView): number {
 }
 
 function front(given: CautionInput): Caution[] {
-  const { frontFallHpa, frontTurnDeg } = given.input.thresholds;
+  const { frontFallHpa, frontVeerDeg } = given.input.thresholds;
   const fall = changes(given, 3, (before, after) => before.hour.seaLevelPressureHpa - after.hour.seaLevelPressureHpa).filter(({ value }) => value >= frontFallHpa);
-  const turn = changes(given, 2, turnOf).filter(({ value }) => value >= frontTurnDeg);
+  const turn = changes(given, 2, turnOf).filter(({ value }) => value >= frontVeerDeg);
   return fall.length > 0 ? over('front', 'hPa', fall) : over('front', '°', turn);
 }
 
@@ -137,12 +137,12 @@ function dew(given: CautionInput): Caution[] {
 }
 
 function windCautions(given: CautionInput): Caution[] {
-  const { input: { thresholds }, setup: { site, sheet } } = given;
-  const light = readings(given, (view) => (view.winds.length === 0 ? NaN : Math.max(...view.winds.map(({ meanMps }) => meanMps)))).filter(({ value }) => value < sheet.parameters.lightWindMps);
+  const { input: { thresholds }, setup: { site } } = given;
+  const light = readings(given, (view) => (view.winds.length === 0 ? NaN : Math.max(...view.winds.map(({ meanMps }) => meanMps)))).filter(({ value }) => value < thresholds.lightWindMps);
   const raised = readings(given, ({ hour, gustIncrementMps }) => (hour.gustRaised ? gustIncrementMps : NaN));
   const gradient = readings(given, (view) => gradientAtLanding(view));
   const cautions = [
-    ...over('lightWind', 'm/s', light).map((caution) => ({ ...caution, value: sheet.parameters.lightWindMps })),
+    ...over('lightWind', 'm/s', light).map((caution) => ({ ...caution, value: thresholds.lightWindMps })),
     ...over('lowQualityGust', 'm/s', raised).map((caution) => ({ ...caution, value: null, unit: null })),
     ...over('landingGradient', 'm/s', gradient.filter(({ value }) => value >= thresholds.landingGradientMps)),
   ];
@@ -209,7 +209,7 @@ function siteCautions(given: CautionInput): Caution[] {
     const axis = axisOf(hour);
     const atMs = Date.parse(hour.validAt);
     const sun = sunAt(atMs, site);
-    return axis !== null && sun.altitudeDeg > 0 && sun.altitudeDeg <= thresholds.lowSunElevationDeg && angleBetweenDeg(sun.azimuthDeg, axis) <= thresholds.lowSunOffAxisDeg ? [{ value: sun.altitudeDeg, atMs }] : [];
+    return axis !== null && sun.altitudeDeg > 0 && sun.altitudeDeg <= thresholds.lowSunDeg && angleBetweenDeg(sun.azimuthDeg, axis) <= thresholds.lowSunOffAxisDeg ? [{ value: sun.altitudeDeg, atMs }] : [];
   });
   return [
     ...over('thinAir', 'm', lastThin).map((caution) => ({ ...caution, value: (caution.value ?? 0) + site.elevationM })),
@@ -242,7 +242,7 @@ function sourceCautions({ input, poll, hours }: CautionInput): Caution[] {
   return [
     ...poll.failures.map(({ source }) => ({ id: 'noVote' as const, value: null, unit: null, ...whole, subject: source })),
     ...over('disagree', 'm/s', spread.filter(({ value }) => value >= input.thresholds.disagreeMps)),
-    ...poll.votes.flatMap(({ source, state, runAgeHours }) => (state === 'voted' && runAgeHours !== null && isAgeSaid(runAgeHours) ? [{ id: 'oldForecast' as const, value: runAgeHours, unit: 'h', ...whole, subject: source }] : [])),
+    ...poll.votes.flatMap(({ source, state, runAgeHours }) => (state === 'voted' && runAgeHours !== null && runAgeHours > input.thresholds.oldForecastH ? [{ id: 'oldForecast' as const, value: runAgeHours, unit: 'h', ...whole, subject: source }] : [])),
     ...(voices.length === 1 ? [{ id: 'singleSource' as const, value: null, unit: null, ...whole, subject: voices[0]?.source ?? null }] : []),
     ...poll.deterministic.flatMap(({ source, forecast }) => (forecast.runAt === null && forecast.trustedWithoutRunTime ? [{ id: 'noRunTime' as const, value: null, unit: null, ...whole, subject: source }] : [])),
     ...(poll.demo ? [{ id: 'demo' as const, value: null, unit: null, ...whole, subject: null }] : []),

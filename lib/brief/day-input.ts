@@ -1,4 +1,4 @@
-import type { Thresholds } from '../config/thresholds.ts';
+import type { CautionThresholds } from './thresholds.ts';
 import type { Forecast } from '../forecast/conditions.ts';
 import type { SourceFailure } from '../forecast/failure.ts';
 import type { LimitSheet } from '../margin/sheet.ts';
@@ -26,7 +26,7 @@ export interface DayInput {
   }[];
   /** The sources asked make invented weather: said on everything, also where they give nothing. */
   readonly demo: boolean;
-  readonly thresholds: Thresholds;
+  readonly thresholds: CautionThresholds;
   /** Model ground last stored for a source at this site, to notice that a grid point jumped. */
   readonly storedGroundM: Readonly<Record<string, number>>;
 }
