@@ -78,7 +78,7 @@ function skyCautions(given: CautionInput): Caution[] {
     ...cape, ...thunder,
     ...over('strongThermals', 'm/s', readings(given, (view) => view.thermalMps).filter(({ value }) => value >= strongMps)),
     ...over('lowCloud', 'm', readings(given, baseOf, 'least').filter(({ value }) => value <= thresholds.lowCloudM), 'least'),
-    ...over('lowCloud', 'm of sight', readings(given, ({ hour }) => hour.visibilityM, 'least').filter(({ value }) => value <= thresholds.fogVisibilityM), 'least'),
+    ...over('lowCloud', 'm', readings(given, ({ hour }) => hour.visibilityM, 'least').filter(({ value }) => value <= thresholds.fogVisibilityM), 'least').map((caution) => ({ ...caution, subject: 'visibility' })),
     ...foehn(given),
     ...over('cold', '°C', readings(given, (view) => windChillC(view.airAt(setup.site.elevationM).temperatureC, view.trimAt(setup.site.elevationM)), 'least').filter(({ value }) => value <= thresholds.windChillC), 'least'),
     ...front(given),

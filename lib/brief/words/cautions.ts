@@ -50,7 +50,7 @@ function words(caution: Caution, day: Day, reader: Reader): string {
     case 'windTurning': return `Wind turns fast${by(', by ')}${after(caution, day)}`;
     case 'front': return `A front may pass${unit === 'hPa' ? by(': pressure falls by ') : by(': wind veers by ')}${when}`;
     case 'foehn': return `Foehn: pressure step${about(caution)}${by(' of ')}${when}`;
-    case 'lowCloud': return `Low cloud or fog at launch${unit === '%' ? by(': cover ') : by(': base ', '')}${when}`;
+    case 'lowCloud': return `Low cloud or fog at launch${caution.subject === 'visibility' ? by(': visibility ') : unit === '%' ? by(': cover ') : by(': base ', '')}${when}`;
     case 'rainNear': return `Rain near a window${by(': ')}${when}`;
     case 'wet': return `Wing and slope may be wet${when}`;
     case 'localWind': return `Local wind${by(' of ')} usual at the landing${localHours(caution, day)}; the forecast does not show it`;

@@ -7,12 +7,12 @@
  */
 import type { JudgedDay, JudgedHour } from '../day.ts';
 import { causeClause, causeSentence } from './causes.ts';
-import { clockTime, hourName, hourSpan } from './clock.ts';
+import { hourName, hourSpan } from './clock.ts';
 import { capital, listed, placeName, plainText, sentence } from './plain.ts';
 import type { Reader } from './reader.ts';
 import { votePhrase } from './sources.ts';
 import { isOpen, verdictPhrase } from './verdicts.ts';
-import { exceptions } from './windows.ts';
+import { exceptions, lastLaunchWords } from './windows.ts';
 
 export const INVENTED = 'Invented weather';
 
@@ -44,7 +44,7 @@ function openAllDay(day: JudgedDay): string {
     const except = exceptions(day);
     return except === null && first !== undefined ? `No window: ${hourName(first.validAt, day.timeZone)} alone was judged` : `${phrase}, only ${except}`;
   }
-  const last = `last launch ${clockTime(window.lastLaunch, day.timeZone)}`;
+  const last = lastLaunchWords(window, day) ?? 'no last launch known';
   return `${phrase}, ${last}, all day ${hourSpan(window, day.timeZone)}`;
 }
 

@@ -5,20 +5,23 @@ import { clockTime, hourName, hourSpan } from './clock.ts';
 import { capital, listed } from './plain.ts';
 import { verdictPhrase } from './verdicts.ts';
 
-function hasLaunch(window: JudgedWindow): boolean {
-  return epochOf(window.lastLaunch) >= epochOf(window.from);
+/** "last launch 11:48", or null when no flight that begins in the window is known to end in it. */
+export function lastLaunchWords(window: JudgedWindow, day: Pick<JudgedDay, 'timeZone'>): string | null {
+  const { lastLaunch, from } = window;
+  return lastLaunch === null || epochOf(lastLaunch) < epochOf(from) ? null : `last launch ${clockTime(lastLaunch, day.timeZone)}`;
 }
 
 /** "Close to a limit, last launch 11:48, window 9 to 12 h." */
 export function windowSentence(window: JudgedWindow, day: Pick<JudgedDay, 'timeZone'>): string {
-  const last = hasLaunch(window) ? `last launch ${clockTime(window.lastLaunch, day.timeZone)}` : 'too short for a flight to end in it';
+  const last = lastLaunchWords(window, day) ?? 'too short for a flight to end in it';
   return `${capital(verdictPhrase(window.verdict))}, ${last}, window ${hourSpan(window, day.timeZone)}.`;
 }
 
 /** "9 h to last launch 11:48 (close to a limit)": the window as an exception in the day sentence. */
 export function windowException(window: JudgedWindow, day: Pick<JudgedDay, 'timeZone'>): string {
   const from = hourName(window.from, day.timeZone);
-  const until = hasLaunch(window) ? ` to last launch ${clockTime(window.lastLaunch, day.timeZone)}` : ', too short for a flight,';
+  const last = lastLaunchWords(window, day);
+  const until = last === null ? ', too short for a flight,' : ` to ${last}`;
   return `${from}${until} (${verdictPhrase(window.verdict)})`;
 }
 
