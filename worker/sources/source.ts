@@ -20,7 +20,20 @@ export interface Source {
   /** Stable id that appears in briefs and tables: `open-meteo:icon_d2`. */
   readonly id: string;
   readonly kind: 'deterministic' | 'ensemble';
+  /** How many sites may be asked in one go, where the service answers so much for each that fewer fit into a message. */
+  readonly maxSites?: number;
+  /** What one site costs of the service's quota, where it counts. */
+  readonly weightPerSite?: number;
   /** Whether the service's region holds this place at all. */
   covers(place: { readonly latDeg: number; readonly lonDeg: number }): boolean;
   fetch(request: SourceRequest): Promise<ReadonlyMap<string, SourceAnswer>>;
 }
+
+/** Something an operator should know about a source that still works. */
+export interface SourceNotice {
+  readonly source: string;
+  /** `deprecated`: the service says that this product is on its way out. */
+  readonly notice: 'deprecated';
+}
+
+export type Report = (notice: SourceNotice) => void;
