@@ -88,10 +88,12 @@ function stuckFault(members: Forecast['members']): SourceFailure | null {
 
 /** How far around the judged hours a frame is of use: for what comes before and after a window. */
 const AROUND_MS = 36 * HOUR_MS;
+/** What must be known beyond the last judged hour: a thunderstorm in the next two counts. */
+const AHEAD_MS = 2 * HOUR_MS;
 
 /**
- * Every hour from the first to the last that is judged or, within reach of those, delivered; what was not delivered has
- * no fields. Nothing is judged where there is no legal day: then the hours stay as they are.
+ * Every hour from the first to the last that is judged, or looked at for one that is, or, within reach of those,
+ * delivered; what was not delivered has no fields. Nothing is judged where there is no legal day: then the hours stay as they are.
  */
 function complete(hours: readonly Conditions[], stamps: readonly number[], judged: readonly number[]): readonly Conditions[] {
   const [firstMs, lastMs] = [Math.min(...judged), Math.max(...judged)];
@@ -99,7 +101,7 @@ function complete(hours: readonly Conditions[], stamps: readonly number[], judge
   const near = stamps.filter((at) => at >= firstMs - AROUND_MS && at <= lastMs + AROUND_MS);
   const gridElevationM = hours[0]?.gridElevationM ?? NaN;
   const byStamp = new Map(hours.map((hour, i) => [stamps[i], hour]));
-  return hourlyInstants(Math.min(firstMs, ...near), Math.max(lastMs, ...near)).map(
+  return hourlyInstants(Math.min(firstMs, ...near), Math.max(lastMs + AHEAD_MS, ...near)).map(
     (at) => byStamp.get(at) ?? { validAt: isoUtc(at), gridElevationM },
   );
 }

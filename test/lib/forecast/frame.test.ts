@@ -78,10 +78,11 @@ describe('the times', () => {
     expect(result.ok && result.value.members[0]).toEqual(expected);
   });
 
-  test('A26: where the frame ends, the rest of the judged day has no fields', () => {
+  test('A26: where the frame ends, the rest of the judged day, and the two hours that look ahead from it, have no fields', () => {
     const result = check(edited((all) => all.slice(0, 12)));
     const members = result.ok ? result.value.members[0]! : [];
-    expect(members.at(-1)?.validAt).toBe(judgedInstants.at(-1));
+    expect(members.at(-1)?.validAt).toBe('2027-05-14T21:00:00Z');
+    expect(judgedInstants.at(-1)).toBe('2027-05-14T19:00:00Z');
     expect(members.filter((one) => one.wind10m !== undefined)).toHaveLength(12);
     expect(members.slice(12).every((one) => one.wind10m === undefined)).toBe(true);
   });

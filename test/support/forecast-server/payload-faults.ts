@@ -69,7 +69,7 @@ export const openMeteoFaults: Readonly<Record<string, (location: Location) => vo
   'odd-types': columns((column) => column.map((_, i) => (['', [], [5], {}, true][i % 5] ?? null) as null)),
   sentinels: columns((column) => column.map((_, i) => [-999, -9999, 9999, 32767, 65535, 9.96921e36][i % 6]!)),
   infinite: columns((column) => column.map((_, i) => (i % 2 === 0 ? Infinity : -Infinity))),
-  'negative-wind': columns((column) => column.map(() => -3), /^wind_speed_10m/),
+  'negative-wind': columns((column) => column.map((_, i) => -3 - i), /^wind_speed_10m/),
   'absurd-wind': columns((column) => column.map((_, i) => 111 + i), /^wind_speed_10m/),
   'absurd-direction': columns((column) => column.map((_, i) => [361, -10, 720][i % 3]!), /^wind_direction/),
   'short-columns': columns((column) => column.slice(0, -1)),
@@ -111,6 +111,12 @@ export const openMeteoFaults: Readonly<Record<string, (location: Location) => vo
   'constant-temperature': columns((column) => column.map(() => 14.5), /^temperature_2m$/),
   'all-zero': columns((column) => column.map(() => 0)),
   'gust-below-mean': (location) => columns((_, __, { hourly }) => (hourly['wind_speed_10m'] ?? []).map((value) => Number(value) - 1.5), gusts)(location),
+  'gust-just-below-mean': (location) => columns((_, __, { hourly }) => (hourly['wind_speed_10m'] ?? []).map((value) => Number(value) - 0.5), gusts)(location),
+  'tiny-numbers': columns((column) => column.map((value, i) => (i % 2 === 0 ? -0 : value === 0 ? 1e-320 : value)), /^precipitation$/),
+  'direction-360': columns((column) => column.map(() => 360), /^wind_direction/),
+  'humidity-130': columns((column) => column.map(() => 130), /^relative_humidity/),
+  'probability-minus-1': columns((column) => column.map(() => -1), /^precipitation_probability$/),
+  knots: units(() => 'kn', wind),
   'far-300-km': (location) => {
     location.latitude += 2.7;
   },
