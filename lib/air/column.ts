@@ -1,5 +1,5 @@
-import { GAS_DRY_JKGK, GRAVITY_MPS2, ZERO_CELSIUS_K } from '../units.ts';
-import { moistDensityKgm3 } from './moist-air.ts';
+import { GAS_DRY_JKGK, GAS_VAPOUR_JKGK, GRAVITY_MPS2, ZERO_CELSIUS_K } from '../units.ts';
+import { moistDensityKgm3, saturationPressureHpa } from './moist-air.ts';
 
 /**
  * Temperature, dew point and pressure over a place. Temperature and dew point are linear in height between nodes,
@@ -26,23 +26,28 @@ const LAPSE_KPM = 0.0065;
 const DEW_LAPSE_KPM = 0.0018;
 const CARRY_UP_M = 150;
 
-function hydrostaticHpa(fromHpa: number, fromC: number, toC: number, riseM: number): number {
-  const meanK = (fromC + toC) / 2 + ZERO_CELSIUS_K;
-  return fromHpa * Math.exp((-GRAVITY_MPS2 * riseM) / (GAS_DRY_JKGK * meanK));
+/** Hydrostatic pressure `riseM` above (below when negative) air of known pressure, by the mean virtual temperature of the layer. */
+function hydrostaticHpa(from: AirAt, to: { readonly temperatureC: number; readonly dewPointC: number }, riseM: number): number {
+  const meanC = (from.temperatureC + to.temperatureC) / 2;
+  const vapourHpa = (saturationPressureHpa(from.dewPointC) + saturationPressureHpa(to.dewPointC)) / 2;
+  // Tv = T / (1 - (e/p)(1 - Rd/Rv)); pressure at the known end is near enough for e/p of a few percent.
+  const virtualK = (meanC + ZERO_CELSIUS_K) / (1 - (vapourHpa / from.pressureHpa) * (1 - GAS_DRY_JKGK / GAS_VAPOUR_JKGK));
+  return from.pressureHpa * Math.exp((-GRAVITY_MPS2 * riseM) / (GAS_DRY_JKGK * virtualK));
 }
 
 /** The air at a height above mean sea level; NaN fields where it is unknown. */
 export function airAt(column: Column, altitudeM: number): AirAt {
   const { altitudeM: z, temperatureC: t, dewPointC: dew, pressureHpa: p } = column;
   const last = z.length - 1;
+  const ground = { temperatureC: t[0]!, dewPointC: dew[0]!, pressureHpa: p[0]! };
   if (altitudeM <= z[0]!) {
-    const temperatureC = t[0]! + LAPSE_KPM * (z[0]! - altitudeM);
-    return { temperatureC, dewPointC: dew[0]!, pressureHpa: hydrostaticHpa(p[0]!, t[0]!, temperatureC, altitudeM - z[0]!) };
+    const below = { temperatureC: t[0]! + LAPSE_KPM * (z[0]! - altitudeM), dewPointC: dew[0]! };
+    return { ...below, pressureHpa: hydrostaticHpa(ground, below, altitudeM - z[0]!) };
   }
   if (column.carriesUp && altitudeM <= z[0]! + CARRY_UP_M) {
-    const rise = altitudeM - z[0]!;
-    const temperatureC = t[0]! - LAPSE_KPM * rise;
-    return { temperatureC, dewPointC: dew[0]! - DEW_LAPSE_KPM * rise, pressureHpa: hydrostaticHpa(p[0]!, t[0]!, temperatureC, rise) };
+    const riseM = altitudeM - z[0]!;
+    const above = { temperatureC: t[0]! - LAPSE_KPM * riseM, dewPointC: dew[0]! - DEW_LAPSE_KPM * riseM };
+    return { ...above, pressureHpa: hydrostaticHpa(ground, above, riseM) };
   }
   if (last < 1 || Number.isNaN(altitudeM) || altitudeM > z[last]!) return { temperatureC: NaN, dewPointC: NaN, pressureHpa: NaN };
   let above = 1;

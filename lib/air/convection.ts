@@ -28,8 +28,8 @@ function virtualPotentialK(air: { readonly temperatureC: number; readonly dewPoi
   return (air.temperatureC + ZERO_CELSIUS_K) * (1000 / air.pressureHpa) ** KAPPA * (1 + 0.61 * mixingRatio);
 }
 
-/** Parts into which each layer is cut when looking for the critical value. */
-const PARTS = 8;
+/** Layers are cut into parts of this thickness when looking for the critical value, m. */
+const PART_M = 50;
 
 /**
  * Mixed-layer depth above the ground, m: the lowest height at which the bulk Richardson number of the column against
@@ -52,8 +52,9 @@ export function richardsonDepthM(column: Column, profile: Profile): number {
   if (excess(belowM) >= 0) return belowM - groundM;
   for (let node = 1; node < column.altitudeM.length; node += 1) {
     const fromM = column.altitudeM[node - 1]!;
-    for (let part = 1; part <= PARTS; part += 1) {
-      const aboveM = fromM + ((column.altitudeM[node]! - fromM) * part) / PARTS;
+    const parts = Math.max(1, Math.ceil((column.altitudeM[node]! - fromM) / PART_M));
+    for (let part = 1; part <= parts; part += 1) {
+      const aboveM = fromM + ((column.altitudeM[node]! - fromM) * part) / parts;
       const value = excess(aboveM);
       if (Number.isNaN(value)) return NaN;
       if (value >= 0) return crossing(excess, belowM, aboveM) - groundM;

@@ -97,7 +97,11 @@ function orderIssues(items: readonly unknown[], path: Path): Issue[] {
   return issues;
 }
 
-const declaresSchema = once(() => list(oneOf(CONDITION_FIELDS), { min: 0, max: CONDITION_FIELDS.length }));
+/** Every hour has these two: naming them declares nothing more and is no mistake. */
+const ALWAYS_THERE = ['validAt', 'gridElevationM'] as const;
+const DECLARABLE = [...CONDITION_FIELDS, ...ALWAYS_THERE] as const;
+
+const declaresSchema = once(() => list(oneOf(DECLARABLE), { min: 0, max: DECLARABLE.length }));
 
 /** The fields a source can give at all, as its sender names them. */
 export function parseDeclares(json: unknown, path: Path = []): Result<ConditionField[], Issue[]> {

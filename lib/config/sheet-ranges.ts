@@ -15,7 +15,7 @@ export const LIMIT_RANGES: Readonly<Record<LimitName, Range>> = {
   maxBackMps: { min: 0, max: 25, unit: 'm/s' },
   minArrivalM: { min: 0, max: 2000, unit: 'm above the landing' },
   minLandingReserveMps: { min: 0, max: 10, unit: 'm/s above the stall' },
-  maxRunMps: { min: 0, max: 15, unit: 'm/s' },
+  maxRunMps: { min: 0, max: 30, unit: 'm/s' },
   slopeBufferDeg: { min: 0, max: 30, unit: '° steeper than the glide' },
   minSlopeDeg: { min: 0, max: 60, unit: '°' },
   maxThermalMps: { min: 0, max: 10, unit: 'm/s' },

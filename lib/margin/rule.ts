@@ -86,11 +86,12 @@ export function profileNeeds(view: HourView, topM: number): Need[] {
 }
 
 /** Fields behind the air at a height; a column without levels ends 150 m above the model's ground. */
-export function airNeeds(view: HourView, altitudeM: number): Need[] {
-  const needs: Need[] = ['temperature2mC', 'dewPoint2mC', 'surfacePressureHpa'];
-  const riseM = altitudeM - view.hour.gridElevationM;
-  if (riseM > 0 && (view.declares('levels') || riseM > 150)) needs.push('levels');
-  return needs;
+export function airNeeds(view: HourView, altitudeM: number): readonly Need[] {
+  const [groundM, lowestLevelM] = view.column.altitudeM;
+  if (lowestLevelM !== undefined && altitudeM >= lowestLevelM) return ['levels'];
+  const riseM = altitudeM - (groundM ?? NaN);
+  const surface = ['temperature2mC', 'dewPoint2mC', 'surfacePressureHpa'] as const;
+  return riseM > 0 && (!view.column.carriesUp || riseM > 150) ? [...surface, 'levels'] : surface;
 }
 
 export function fixed(value: number, digits = 1): string {

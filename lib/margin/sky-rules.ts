@@ -4,7 +4,7 @@ import { localDate, MINUTE_MS } from '../time.ts';
 import { thermalNeeds } from './arrival-rule.ts';
 import type { HourView } from './hour-view.ts';
 import type { MarginId, MarginUnit } from './ids.ts';
-import type { Demand } from './margin.ts';
+import { margin, type Demand } from './margin.ts';
 import { airNeeds, fixed, fromSheet, limitTerm, term, type Need, type Rule } from './rule.ts';
 import type { LimitName } from './sheet.ts';
 import { readAtM } from './strip-profile.ts';
@@ -112,8 +112,12 @@ const storm: Rule = {
   demand(view): Demand {
     const signal = thunder(view);
     if (signal === 'signalled') return 'no solution';
-    const capeJkg = view.setup.sheet.limits.maxCapeJkg === undefined ? 0 : view.hour.capeJkg;
-    return signal === 'unknown' ? NaN : capeJkg;
+    const { maxCapeJkg } = view.setup.sheet.limits;
+    if (maxCapeJkg === undefined) return signal === 'unknown' ? NaN : 0;
+    const { capeJkg } = view.hour;
+    // CAPE over the limit is proof enough; CAPE under it is none while a weather code is missing.
+    const proven = margin({ demand: capeJkg, limit: maxCapeJkg, sense: 'atMost', band: 0 }).status === 'beyond';
+    return signal === 'none' || proven ? capeJkg : NaN;
   },
   terms(view, limit) {
     if (view.setup.sheet.limits.maxCapeJkg === undefined) return [term('thunderstorm signals in this hour and the next two', 0, 'J/kg', 'the sheet limits no CAPE')];

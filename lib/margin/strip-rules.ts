@@ -25,7 +25,7 @@ function largestShear(view: HourView): { readonly shearMps: number; readonly hei
   const site = stripOf(view);
   const { releaseM } = view.tow.end;
   const [wind] = view.winds;
-  if (wind === undefined || Number.isNaN(releaseM)) return { shearMps: NaN, heightM: NaN };
+  if (wind === undefined || Number.isNaN(wind.uMps) || Number.isNaN(releaseM)) return { shearMps: NaN, heightM: NaN };
   let largest = { shearMps: 0, heightM: FROM_M };
   if (releaseM <= FROM_M) return largest;
   for (const heightM of stripHeightsBetween(view, site, [FROM_M, releaseM])) {
