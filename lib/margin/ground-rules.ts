@@ -103,7 +103,7 @@ const slope: Rule = {
     const glideDeg = degrees(Math.atan(1 / view.setup.wing.glideAtTrim));
     const first = term('slope of the launch', launchOf(view).slopeDeg, '°', 'site');
     const bufferDeg = slopeBufferDeg ?? 0;
-    if (Math.abs(glideDeg + bufferDeg - limit) > 1e-9) return [first, limitTerm(view, 'minSlopeDeg', -limit, '°')];
+    if (limit === view.setup.sheet.limits.minSlopeDeg) return [first, limitTerm(view, 'minSlopeDeg', -limit, '°')];
     return [first, term('glide angle of the wing', -glideDeg, '°', `atan(1 / ${fixed(view.setup.wing.glideAtTrim)})`), limitTerm(view, 'slopeBufferDeg', -bufferDeg, '°')];
   },
 };
