@@ -5,10 +5,10 @@ import path from 'node:path';
 import type { DayInput } from '../../../lib/brief/day-input.ts';
 import type { JudgedDay } from '../../../lib/brief/day.ts';
 import { judgeDay } from '../../../lib/brief/judge-day.ts';
+import type { CautionThresholds } from '../../../lib/brief/thresholds.ts';
 import { parseSheets } from '../../../lib/config/sheet.ts';
 import { parseSiteFeature } from '../../../lib/config/site.ts';
 import { parseSourceOrder, type OpenMeteoSource } from '../../../lib/config/source-order.ts';
-import { parseThresholds } from '../../../lib/config/thresholds.ts';
 import { parseWingClasses } from '../../../lib/config/wing-classes.ts';
 import { parseWing } from '../../../lib/config/wing.ts';
 import type { Forecast } from '../../../lib/forecast/conditions.ts';
@@ -37,7 +37,7 @@ function config(name: string): unknown {
 
 export const order = valueOf(parseSourceOrder(config('sources.json')));
 const sheets = valueOf(parseSheets(config('sheets.json'), { basis: 'required' }));
-const thresholds = valueOf(parseThresholds(config('thresholds.json')));
+const thresholds = config('thresholds.json') as CautionThresholds;
 const classes = valueOf(parseWingClasses(config('wing-classes.json')));
 
 /** As the live sources are built from it: without the depth that a companion lends. */

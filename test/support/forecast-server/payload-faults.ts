@@ -71,6 +71,8 @@ export const openMeteoFaults: Readonly<Record<string, (location: Location) => vo
   infinite: columns((column) => column.map((_, i) => (i % 2 === 0 ? Infinity : -Infinity))),
   'negative-wind': columns((column) => column.map((_, i) => -3 - i), /^wind_speed_10m/),
   'absurd-wind': columns((column) => column.map((_, i) => 111 + i), /^wind_speed_10m/),
+  'absurd-gusts': columns((column) => column.map((_, i) => 30 + i), gusts),
+  'third-of-wind': columns((column) => column.map((value) => Number((Number(value) / 3.6).toFixed(2))), wind),
   'absurd-direction': columns((column) => column.map((_, i) => [361, -10, 720][i % 3]!), /^wind_direction/),
   'short-columns': columns((column) => column.slice(0, -1)),
   'long-columns': columns((column) => [...column, 1]),

@@ -15,7 +15,9 @@ export function runAtOf(meta: unknown, nowMs: number): string | null {
   const runS = secondsOf(meta, 'last_run_initialisation_time');
   const availableS = secondsOf(meta, 'last_run_availability_time');
   if (runS === null || availableS === null) return null;
-  if (nowMs / 1000 >= availableS + SETTLED_AFTER_S) return isoUtc(runS * 1000);
+  // A run ahead of our clock is told as it is: the frame refuses it, and nothing before it may stand in for it.
+  const isSettled = nowMs / 1000 >= availableS + SETTLED_AFTER_S || runS * 1000 > nowMs;
+  if (isSettled) return isoUtc(runS * 1000);
   const intervalS = fieldOf(meta, 'update_interval_seconds');
   const isInterval = typeof intervalS === 'number' && intervalS > 0 && intervalS <= 86_400;
   return isInterval ? isoUtc((runS - intervalS) * 1000) : null;
