@@ -1,6 +1,6 @@
 /** The order in which the margins of an hour are told: what is passed, what is not known, then the least left first. */
 import type { CombinedMargin } from './day.ts';
-import { defaultBand } from '../margin/margin.ts';
+import { tightness } from '../margin/sources.ts';
 
 function rank(margin: CombinedMargin): number {
   switch (margin.status) {
@@ -11,16 +11,11 @@ function rank(margin: CombinedMargin): number {
   }
 }
 
-/** Spare in close bands of its own unit, so that metres and metres per second compare; no solution is tightest. */
-function spareInBands(margin: CombinedMargin): number {
-  return margin.spare === null ? -Infinity : margin.spare / (defaultBand(margin.id, margin.unit) || 1);
-}
-
 export function tightestFirst(margins: readonly CombinedMargin[]): CombinedMargin[] {
   return [...margins].sort((a, b) => {
     const byRank = rank(a) - rank(b);
     if (byRank !== 0) return byRank;
-    const [left, right] = [spareInBands(a), spareInBands(b)];
+    const [left, right] = [tightness(a), tightness(b)];
     return left === right ? 0 : left < right ? -1 : 1;
   });
 }

@@ -34,7 +34,7 @@ export function hourOf(validAt: string, verdict: Verdict, given: Partial<JudgedH
     validAt, verdict, causes: verdict === 'within' ? [] : ['forwardLaunch'],
     margins: [forward, marginOf('meanWind', { limit: 5.36, demand: 2.1, spare: 3.26 }), marginOf('arrival', { limit: 60, demand: 184, spare: 124 })],
     bySource: [{ source: DEMO_SOURCE, verdict }],
-    airspeed: spare === null ? null : columnOf(spare), speedToFlyMps: 11.2, heading: null, ...given,
+    airspeed: spare === null ? null : columnOf(spare), speedToFlyMps: 11.2, wind: null, ensemble: null, heading: null, ...given,
   };
 }
 
@@ -71,7 +71,7 @@ const SHORT: Readonly<Record<string, Verdict>> = { w: 'within', c: 'close', b: '
 
 /** A day at Vienna from one letter an hour, `bwwcbb`, the first at `firstHourUtc`. */
 export function dayOf(letters: string, given: Partial<JudgedDay> = {}, firstHourUtc = 4): JudgedDay {
-  const hours = [...letters].map((letter, index) => hourOf(isoUtc(Date.UTC(2027, 4, 14, firstHourUtc + index)), SHORT[letter] ?? 'unknown'));
+  const hours = Array.from(letters).map((letter, index) => hourOf(isoUtc(Date.UTC(2027, 4, 14, firstHourUtc + index)), SHORT[letter] ?? 'unknown'));
   const verdict = (['beyond', 'unknown', 'close', 'within'] as const).find((each) => hours.some((hour) => hour.verdict === each)) ?? 'unknown';
   const causing = hours.find((hour) => hour.verdict === verdict);
   return {

@@ -3,7 +3,7 @@ import type { JudgedDay } from '../../lib/brief/day.ts';
 import { HEIGHT_UNITS, SPEED_UNITS } from '../../lib/brief/units-out.ts';
 import { plainText, type Reader } from '../../lib/brief/words/index.ts';
 import { html, type Html } from './html.ts';
-import type { Choice } from './page-services.ts';
+import type { Choice, Choices } from './page-services.ts';
 
 function options(choices: readonly Choice[], selected: string): Html[] {
   const known = choices.some(({ id }) => id === selected) ? choices : [{ id: selected, name: selected }, ...choices];
@@ -17,7 +17,7 @@ function select(name: string, label: string, list: Html[]): Html {
 const inAddress = (unit: string): Choice => ({ id: unit.replace('/', ''), name: unit });
 
 export function chooseForm(
-  day: JudgedDay, choices: { readonly wings: readonly Choice[]; readonly sheets: readonly Choice[] }, options_: { readonly reader: Reader; readonly hour: string },
+  day: JudgedDay, choices: Choices, options_: { readonly reader: Reader; readonly hour: string },
 ): Html {
   const { units } = options_.reader;
   return html`<form class="choose" method="get" action="/sites/${encodeURIComponent(day.siteId)}">

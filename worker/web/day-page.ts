@@ -10,7 +10,7 @@ import { hoursTable } from './hours-table.ts';
 import { html, type Html, type Piece } from './html.ts';
 import { layout } from './layout.ts';
 import { marginsList } from './margins-list.ts';
-import type { Choice, HourDetail } from './page-services.ts';
+import type { Choices, HourDetail } from './page-services.ts';
 import { columnsPicture, LARGE } from './pictures/columns.ts';
 import { columnsKey } from './pictures/key.ts';
 import { hourPictures } from './pictures/hour-pictures.ts';
@@ -23,8 +23,8 @@ export interface DayPageOptions {
   readonly now: Date;
   /** The hour asked for, ISO 8601 UTC; null for the one that limits the day. */
   readonly hour: string | null;
-  readonly detail: (validAt: string) => HourDetail;
-  readonly choices: { readonly wings: readonly Choice[]; readonly sheets: readonly Choice[] };
+  readonly detail: (hour: JudgedHour) => HourDetail;
+  readonly choices: Choices;
 }
 
 /** The hour asked for, else the one that limits the day, else the first. */
@@ -58,7 +58,7 @@ function causesOf(hour: JudgedHour, reader: Reader): Piece {
 
 function hourSection(day: JudgedDay, hour: JudgedHour, options: DayPageOptions): Html {
   const { reader } = options;
-  const detail = options.detail(hour.validAt);
+  const detail = options.detail(hour);
   return html`<section id="hour" class="hour" aria-labelledby="hour-h"><h2 id="hour-h">${capital(verdictPhrase(hour.verdict))} at ${hourName(hour.validAt, day.timeZone)}</h2>
 ${causesOf(hour, reader)}${hourPictures(day, hour, detail, reader)}
 <h3>Margins, tightest first</h3><p class="hint">Open a margin for its working.</p>${marginsList(hour, detail, reader)}</section>`;

@@ -1,5 +1,5 @@
 /** What the pages ask of the rest: stored briefs, one judged day, and the working behind its numbers. No page computes. */
-import type { JudgedDay } from '../../lib/brief/day.ts';
+import type { JudgedDay, JudgedHour } from '../../lib/brief/day.ts';
 import type { MarginId, Term } from '../../lib/margin/ids.ts';
 
 export interface BoardSite {
@@ -73,24 +73,43 @@ export interface TowPicture {
   readonly gustMps: number | null;
 }
 
+/** Direct sun on the launch face, by the sun's place and the slope alone: ground around it is not known. */
+export interface SunPicture {
+  readonly first: string | null;
+  readonly last: string | null;
+  /** Between the sun and the slope's normal in this hour: 0 is square on; null when none falls on it. */
+  readonly incidenceDeg: number | null;
+}
+
 /** What belongs to one hour: the sums behind its margins, and its pictures. */
 export interface HourDetail {
+  /** Only of margins whose numbers can still be worked out: a forecast may have been renewed since the brief. */
   readonly workings: readonly MarginWorking[];
+  readonly sun: SunPicture | null;
   readonly glide: GlidePicture | null;
   readonly ladder: LadderPicture | null;
   readonly tow: TowPicture | null;
 }
 
 export type DayAnswer =
-  | { readonly kind: 'day'; readonly day: JudgedDay; readonly detail: (validAt: string) => HourDetail }
+  | {
+    readonly kind: 'day';
+    readonly day: JudgedDay;
+    readonly detail: (hour: JudgedHour) => HourDetail;
+    readonly choices: Choices;
+  }
   | { readonly kind: 'no-site' }
-  | { readonly kind: 'bad-query'; readonly problems: readonly string[] }
-  | { readonly kind: 'not-made'; readonly siteName: string };
+  /** A date, wing or sheet that cannot be, each as a sentence. */
+  | { readonly kind: 'bad-query'; readonly problems: readonly string[] };
+
+/** Wings and sheets that a visitor may choose at a site. */
+export interface Choices {
+  readonly wings: readonly Choice[];
+  readonly sheets: readonly Choice[];
+}
 
 export interface PageServices {
   now(): Date;
   board(): Promise<readonly BoardSite[]>;
   day(query: DayQuery): Promise<DayAnswer>;
-  /** Wings and sheets that a visitor may choose for a kind of site. */
-  choices(kind: 'launch' | 'strip'): { readonly wings: readonly Choice[]; readonly sheets: readonly Choice[] };
 }

@@ -51,29 +51,27 @@ function foundPhrase(id: MarginId, found: string): string {
   }
 }
 
-/** A found value below zero reads better as what it does than with a minus sign. */
-function foundBelowZero(id: MarginId, size: string): string | null {
-  switch (id) {
-    case 'forwardLaunch': return `a gust pushes the wing back at ${size}`;
-    case 'forwardAloft': return `the wind above launch is ${size} faster than the wing`;
-    case 'forwardAtRelease': return `the wind at release is ${size} faster than the wing`;
-    case 'arrival': return `the glide ends ${size} below the landing`;
-    case 'landingGradient': return `the gradient at the landing takes the wing ${size} below stall`;
-    case 'ridgeLift': return `the ridge lifts ${size} less than the wing sinks`;
-    case 'daylight': return `the legal day is over or not begun by ${size}`;
-    default: return null;
-  }
-}
+/** A found value below zero reads better as what it does than with a minus sign; margins not named cannot be below it. */
+const BELOW_ZERO: Readonly<Partial<Record<MarginId, (size: string) => string>>> = {
+  forwardLaunch: (size) => `a gust pushes the wing back at ${size}`,
+  forwardAloft: (size) => `the wind above launch is ${size} faster than the wing`,
+  forwardAtRelease: (size) => `the wind at release is ${size} faster than the wing`,
+  arrival: (size) => `the glide ends ${size} below the landing`,
+  landingGradient: (size) => `the gradient at the landing takes the wing ${size} below stall`,
+  ridgeLift: (size) => `the ridge lifts ${size} less than the wing sinks`,
+  daylight: (size) => `the legal day is over or not begun by ${size}`,
+};
 
 /** Beyond a limit without a number: there is no solution, or a sign that needs none. */
+const NO_SOLUTION: Readonly<Partial<Record<MarginId, string>>> = {
+  forwardLaunch: 'a gust across the launch is faster than the wing: nothing is left forward',
+  arrival: 'the glide does not arrive at the landing',
+  storm: 'a thunderstorm is signalled in this hour or the next two',
+  cloudBase: 'the launch is in cloud',
+};
+
 function noSolution(id: MarginId): string {
-  switch (id) {
-    case 'forwardLaunch': return 'a gust across the launch is faster than the wing: nothing is left forward';
-    case 'arrival': return 'the glide does not arrive at the landing';
-    case 'storm': return 'a thunderstorm is signalled in this hour or the next two';
-    case 'cloudBase': return 'the launch is in cloud';
-    default: return `${lower(marginName(id))} has no solution`;
-  }
+  return NO_SOLUTION[id] ?? `${lower(marginName(id))} has no solution`;
 }
 
 function lower(name: string): string {
@@ -93,6 +91,11 @@ function quantity(margin: Said, value: number): Quantity {
   return { value, unit: margin.unit, distance: margin.id === 'visibility' };
 }
 
+/** A sheet without a limit on CAPE is still held to the thunderstorm signal, which has no number. */
+export function isSignalOnly(margin: Pick<CombinedMargin, 'id' | 'limit' | 'demand'>): boolean {
+  return margin.id === 'storm' && margin.limit === 0 && margin.demand === 0;
+}
+
 /** The margin as a clause without its hour. */
 export function causeClause(margin: Said, reader: Reader): string {
   const { id, status, demand, limit } = margin;
@@ -101,11 +104,12 @@ export function causeClause(margin: Said, reader: Reader): string {
     return `nothing is known of the ${lower(marginName(id))}: ${why}`;
   }
   if (margin.spare === null || demand === null) return noSolution(id);
+  if (isSignalOnly(margin)) return 'no thunderstorm is signalled in this hour or the next two';
   if (id === 'cloudBase' && demand === 0) return noSolution(id);
   if (limit === null) return foundPhrase(id, quantityText(quantity(margin, demand), reader.units));
   const size = quantity(margin, Math.abs(demand));
   const pair = pairTexts({ first: size, second: quantity(margin, limit) }, reader.units);
-  const found = (demand < 0 ? foundBelowZero(id, pair.first) : null)
+  const found = (demand < 0 ? BELOW_ZERO[id]?.(pair.first) : undefined)
     ?? foundPhrase(id, pairTexts({ first: quantity(margin, demand), second: quantity(margin, limit) }, reader.units).first);
   // A limit of nothing on the legal day is no news.
   if (id === 'daylight') return found;

@@ -29,10 +29,11 @@ function isField(name: string): name is ConditionField {
   return (CONDITION_FIELDS as readonly string[]).includes(name);
 }
 
-/** A missing input: a field of the forecast, or a place in the air that it does not reach, in words of ours. */
+/** A missing input by name: `levels 850 hPa.speedMps` is wind and air aloft, whichever part of it is missing. */
 export function missingName(name: string): string {
-  const head = name.split(/[.[]/)[0] ?? '';
-  if (isField(name)) return fieldName(name);
+  const [head = ''] = /^\w*/.exec(name) ?? [];
+  if (head === 'gridElevationM') return 'height of the model ground';
+  if (name === 'levels (do not reach)') return 'wind and air at that height';
   return isField(head) ? fieldName(head) : plainText(name) || 'an input';
 }
 

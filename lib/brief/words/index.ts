@@ -9,10 +9,12 @@ export { INVENTED, dayStatement, daySentence, siteSentence } from './day-sentenc
 export { failureSentence } from './failures.ts';
 export { fieldName, missingName, missingPhrase } from './fields.ts';
 export { marginRow, spareText, type MarginRow } from './margin-row.ts';
+export { headingName, headingReason, headingSentence } from './heading.ts';
 export { limitOwner, limitSense, marginName } from './margins.ts';
 export { notJudgedGroups, notJudgedSentence, type NotJudgedGroup } from './not-judged.ts';
 export { capital, counted, listed, placeName, plainText, sentence } from './plain.ts';
 export type { Language, Reader } from './reader.ts';
 export { credits, disagreement, provenance, sourceName, votePhrase, voteSentence } from './sources.ts';
+export { sunSentence } from './sun.ts';
 export { isOpen, mostRestrictive, restrictiveness, verdictPhrase } from './verdicts.ts';
 export { windowException, windowSentence } from './windows.ts';

@@ -1,7 +1,7 @@
 /** A row of the margin table: spare and unit, the limit and what is held against it. No verdict stands in it. */
 import type { CombinedMargin } from '../day.ts';
 import { quantityText, type Rounding } from '../units-out.ts';
-import { causeClause } from './causes.ts';
+import { causeClause, isSignalOnly } from './causes.ts';
 import { missingPhrase } from './fields.ts';
 import { limitSense, marginName } from './margins.ts';
 import { sentence } from './plain.ts';
@@ -25,6 +25,7 @@ export function spareText(margin: CombinedMargin, reader: Reader): string {
     return `not known: ${missingPhrase(margin.missing)}`;
   }
   if (margin.spare === null) return 'none: no solution';
+  if (isSignalOnly(margin)) return 'no thunderstorm signalled';
   const size = { value: Math.abs(margin.spare), unit: margin.unit, distance: margin.id === 'visibility' };
   return margin.spare < 0
     ? `${quantityText(size, reader.units, 'up')} short`

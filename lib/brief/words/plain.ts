@@ -8,7 +8,7 @@ const INVISIBLE = /[\p{Cc}\p{Cf}\p{Cs}\p{Co}\p{Zl}\p{Zp}\u115f\u1160\u3164\uffa0
 /** A name or note that somebody typed, on one line, without anything that could move or hide its neighbours. */
 export function plainText(text: string, length: number = NAME_LENGTH): string {
   const flat = text.replace(INVISIBLE, ' ').replace(/\s+/gu, ' ').trim();
-  const points = [...flat];
+  const points = Array.from(flat);
   return points.length > length ? `${points.slice(0, length - 1).join('').trimEnd()}…` : flat;
 }
 

@@ -13,7 +13,7 @@ export function lastLaunchWords(window: JudgedWindow, day: Pick<JudgedDay, 'time
 
 /** "Close to a limit, last launch 11:48, window 9 to 12 h." */
 export function windowSentence(window: JudgedWindow, day: Pick<JudgedDay, 'timeZone'>): string {
-  const last = lastLaunchWords(window, day) ?? 'too short for a flight to end in it';
+  const last = lastLaunchWords(window, day) ?? 'no flight known to end in it';
   return `${capital(verdictPhrase(window.verdict))}, ${last}, window ${hourSpan(window, day.timeZone)}.`;
 }
 
@@ -21,7 +21,7 @@ export function windowSentence(window: JudgedWindow, day: Pick<JudgedDay, 'timeZ
 export function windowException(window: JudgedWindow, day: Pick<JudgedDay, 'timeZone'>): string {
   const from = hourName(window.from, day.timeZone);
   const last = lastLaunchWords(window, day);
-  const until = last === null ? ', too short for a flight,' : ` to ${last}`;
+  const until = last === null ? ' with no flight known to end in it' : ` to ${last}`;
   return `${from}${until} (${verdictPhrase(window.verdict)})`;
 }
 

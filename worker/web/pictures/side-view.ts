@@ -9,7 +9,7 @@ import type { GlidePicture, PathPoint } from '../page-services.ts';
 import { extent, scaleOf, type Scale } from './scale.ts';
 
 const WIDTH = 360;
-const HEIGHT = 216;
+const HEIGHT = 226;
 
 function line(points: readonly PathPoint[], x: Scale, y: Scale): string {
   return points.map(({ alongM, altitudeM }, index) => `${index === 0 ? 'M' : 'L'}${px(x(alongM))} ${px(y(altitudeM))}`).join('');
@@ -34,13 +34,13 @@ function description(glide: GlidePicture, reader: Reader): string {
 export function sideView(glide: GlidePicture, reader: Reader): Html {
   const [low, high] = extent([glide.launchM, glide.landingM, ...glide.inWind.map(({ altitudeM }) => altitudeM), ...glide.stillAir.map(({ altitudeM }) => altitudeM)]);
   const x = scaleOf([0, glide.distanceM], [26, WIDTH - 74]);
-  const y = scaleOf([low, high], [HEIGHT - 34, 30]);
+  const y = scaleOf([low, high], [HEIGHT - 50, 30]);
   const [landX, landY] = [x(glide.distanceM), y(glide.landingM)];
   const asked = glide.minArrivalM === null || glide.minArrivalM <= 0 ? null
     : html`<rect class="edge-ochre" fill="url(#h-reserve)" x="${px(landX - 9)}" width="18" y="${px(y(glide.landingM + glide.minArrivalM))}" height="${px(landY - y(glide.landingM + glide.minArrivalM))}"/>`;
   const arrives = glide.arrivalM === null ? null
     : html`<path class="line" d="M${px(landX)} ${px(landY)}V${px(y(glide.landingM + glide.arrivalM))}"/><circle class="mark" cx="${px(landX)}" cy="${px(y(glide.landingM + glide.arrivalM))}" r="3.5"/>`;
-  const labelY = glide.arrivalM === null ? landY : Math.min(Math.max(y(glide.landingM + glide.arrivalM) + 4, 16), HEIGHT - 40);
+  const labelY = glide.arrivalM === null ? landY : Math.min(Math.max(y(glide.landingM + glide.arrivalM) + 4, 16), HEIGHT - 56);
   const label = glide.arrivalM === null ? ['does not', 'arrive'] : [metres(Math.abs(glide.arrivalM), reader), glide.arrivalM < 0 ? 'below' : 'above'];
   return html`<svg class="view" role="img" aria-labelledby="side-t side-d" viewBox="0 0 ${WIDTH} ${HEIGHT}">
 <title id="side-t">The glide from the side</title><desc id="side-d">${description(glide, reader)}</desc>
@@ -50,7 +50,7 @@ export function sideView(glide: GlidePicture, reader: Reader): Html {
 <text class="lbl" x="${px(x(0) - 8)}" y="${px(y(glide.launchM) - 8)}">launch ${metres(glide.launchM, reader)}</text>
 <text class="lbl mid" x="${px(landX)}" y="${px(landY + 16)}">landing ${metres(glide.landingM, reader)}</text>
 <text class="lbl big" x="${px(landX + 13)}" y="${px(labelY)}">${label[0] ?? ''}<tspan x="${px(landX + 13)}" dy="13">${label[1] ?? ''}</tspan></text>
-<text class="lbl faint" x="14" y="${HEIGHT - 6}">Dashed: the straight line; the ground between is not known.</text></svg>`;
+<text class="lbl faint" x="14" y="${HEIGHT - 8}">Dashed: the straight line; the ground between is not known.</text></svg>`;
 }
 
 export function sideViewFigure(glide: GlidePicture, reader: Reader): Html {

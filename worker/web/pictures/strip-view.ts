@@ -3,7 +3,7 @@
  * where the released line falls; and the climb from the side.
  */
 import { quantityText } from '../../../lib/brief/units-out.ts';
-import type { Reader } from '../../../lib/brief/words/index.ts';
+import { headingName, type Reader } from '../../../lib/brief/words/index.ts';
 import { html, px, type Html } from '../html.ts';
 import type { TowPicture } from '../page-services.ts';
 import { scaleOf } from './scale.ts';
@@ -16,10 +16,6 @@ function speed(mps: number, reader: Reader): string {
 
 function height(m: number, reader: Reader): string {
   return quantityText({ value: m, unit: 'm' }, reader.units);
-}
-
-export function heading(deg: number): string {
-  return `${String(Math.round(((deg % 360) + 360) % 360)).padStart(3, '0')}°`;
 }
 
 function windWords(tow: TowPicture, reader: Reader): string {
@@ -54,11 +50,11 @@ export function stripFromAbove(tow: TowPicture, reader: Reader): Html {
   const crossX = winchX - 26;
   const cross = tow.crossMps >= 0 ? arrow({ x: crossX, y: 40 + reach(tow.crossMps) - 26 }, { x: crossX, y: 14 }) : arrow({ x: crossX, y: 14 }, { x: crossX, y: 40 + reach(tow.crossMps) - 26 });
   return html`<svg class="view" role="img" aria-labelledby="above-t above-d" viewBox="0 0 ${WIDTH} 176">
-<title id="above-t">The strip from above</title><desc id="above-d">Tow along ${heading(tow.headingDeg)}, line ${Math.round(tow.lineLengthM)} m, ${windWords(tow, reader)}. ${driftWords(tow)}</desc>
+<title id="above-t">The strip from above</title><desc id="above-d">Tow along ${headingName(tow.headingDeg)}, line ${Math.round(tow.lineLengthM)} m, ${windWords(tow, reader)}. ${driftWords(tow)}</desc>
 ${clear}<path class="post" d="M${startX} ${middleY}H${winchX}"/><path class="mark" d="M${startX - 7} ${middleY}l10 -7v14z"/><rect class="mark" x="${winchX - 4}" y="${middleY - 6}" width="12" height="12"/>${fall}
 ${Math.abs(tow.headMps) < 0.05 ? null : head}<text class="lbl" x="${px(startX + 16 + reach(tow.headMps))}" y="26">${speed(tow.headMps, reader)}</text>
 ${Math.abs(tow.crossMps) < 0.05 ? null : cross}<text class="lbl end" x="${crossX - 8}" y="26">${speed(tow.crossMps, reader)}</text>
-<text class="lbl" x="${startX - 26}" y="170">launch here, tow along ${heading(tow.headingDeg)}</text><text class="lbl end" x="${WIDTH - 14}" y="170">winch</text></svg>`;
+<text class="lbl" x="${startX - 26}" y="170">launch here, tow along ${headingName(tow.headingDeg)}</text><text class="lbl end" x="${WIDTH - 14}" y="170">winch</text></svg>`;
 }
 
 export function climbSideView(tow: TowPicture, reader: Reader): Html {
@@ -75,6 +71,6 @@ export function climbSideView(tow: TowPicture, reader: Reader): Html {
 }
 
 export function stripFigures(tow: TowPicture, reader: Reader): Html {
-  return html`<figure><h3>Strip from above</h3>${stripFromAbove(tow, reader)}<figcaption>Tow along ${heading(tow.headingDeg)}: ${windWords(tow, reader)}. ${driftWords(tow)}</figcaption></figure>
+  return html`<figure><h3>Strip from above</h3>${stripFromAbove(tow, reader)}<figcaption>Tow along ${headingName(tow.headingDeg)}: ${windWords(tow, reader)}. ${driftWords(tow)}</figcaption></figure>
 <figure><h3>Climb</h3>${climbSideView(tow, reader)}<figcaption>Release expected at ${height(tow.releaseM, reader)} above the strip; dashed: the line at release.</figcaption></figure>`;
 }
