@@ -1,4 +1,5 @@
 /** All of `config/` at once: the imported JSON values in, one typed Config or every problem of every file out. */
+import type { CautionThresholds } from '../brief/thresholds.ts';
 import type { Scenario } from '../forecast/invented/scenario.ts';
 import type { LimitSheet } from '../margin/sheet.ts';
 import { failure, success, type Issue, type Result } from '../result.ts';
@@ -9,7 +10,7 @@ import { parseSheets } from './sheet.ts';
 import { parseSites } from './sites.ts';
 import { parseSourceOrder, type SourceOrder } from './source-order.ts';
 import { parseSubscribers, type SeedSubscriber } from './subscribers.ts';
-import { parseThresholds, type Thresholds } from './thresholds.ts';
+import { parseThresholds } from './thresholds.ts';
 import { parseWingClasses } from './wing-classes.ts';
 import type { WingClasses } from './wing.ts';
 
@@ -31,7 +32,7 @@ export interface Config {
   readonly wingClasses: WingClasses;
   readonly published: Published;
   readonly sources: SourceOrder;
-  readonly thresholds: Thresholds;
+  readonly thresholds: CautionThresholds;
   readonly subscribers: readonly SeedSubscriber[];
   readonly demo: Scenario;
 }
