@@ -1,5 +1,7 @@
 import type { DayInput } from '../lib/brief/day-input.ts';
 import type { JudgedDay } from '../lib/brief/day.ts';
+import type { CautionThresholds } from '../lib/brief/thresholds.ts';
+import type { WingClasses } from '../lib/config/wing.ts';
 import type { LimitSheet } from '../lib/margin/sheet.ts';
 import type { Issue, Result } from '../lib/result.ts';
 import type { Site } from '../lib/site.ts';
@@ -42,6 +44,8 @@ export interface Services {
   readonly sourcesFor: (place: Place) => readonly Source[];
   readonly channels: Readonly<Record<string, Channel>>;
   readonly read: Readers;
+  readonly wingClasses: () => WingClasses;
+  readonly thresholds: () => CautionThresholds;
   readonly judge: (input: DayInput) => JudgedDay;
 }
 

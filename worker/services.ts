@@ -1,12 +1,13 @@
-import wingClassesJson from '../config/wing-classes.json' with { type: 'json' };
-import { parseWingClasses } from '../lib/config/wing-classes.ts';
-import type { WingClasses } from '../lib/config/wing.ts';
+import { judgeDay } from '../lib/brief/judge-day.ts';
+import { success, type Issue, type Result } from '../lib/result.ts';
 import { terminalChannel } from './channels/terminal.ts';
 import { webhookChannel } from './channels/webhook.ts';
 import type { Job, Step } from './morning/job.ts';
-import { readers } from './readers.ts';
+import { ownData, ownReaders } from './own-data.ts';
 import type { Clock, IdSource, Services, Stores } from './service-set.ts';
-import type { Settings } from './settings.ts';
+import { readSettings, type Env, type Settings } from './settings.ts';
+import { demoSources } from './sources/demo.ts';
+import { liveSources } from './sources/order.ts';
 import { breakerStore } from './store/breaker.ts';
 import { briefStore } from './store/brief.ts';
 import { channelStore } from './store/channel.ts';
@@ -30,20 +31,6 @@ import { waker } from './wake.ts';
 
 const DATABASE_TIMEOUT_MS = 10_000;
 
-function ownData<T>(read: () => { readonly ok: true; readonly value: T } | { readonly ok: false; readonly error: readonly { readonly path: string; readonly problem: string }[] }, file: string): () => T {
-  let value: T | undefined;
-  return () => {
-    if (value !== undefined) return value;
-    const result = read();
-    if (!result.ok) throw new Error(`config/${file}: ${result.error.map((issue) => `${issue.path}: ${issue.problem}`).join('; ')}`);
-    value = result.value;
-    return value;
-  };
-}
-
-const wingClasses: () => WingClasses = ownData(() => parseWingClasses(wingClassesJson), 'wing-classes.json');
-const read = readers(wingClasses);
-
 /** What of the world the services are made from. */
 export interface World {
   readonly settings: Settings;
@@ -56,17 +43,49 @@ export interface World {
   readonly random: () => number;
 }
 
-export function assemble(world: World, thinking: Pick<Services, 'sourcesFor' | 'judge'>): Services {
+/** The services of one invocation, or every setting that is wrong. */
+export function createServices(env: Env): Result<Services, Issue[]> {
+  const settings = readSettings(env);
+  if (!settings.ok) return settings;
+  return success(assemble({
+    settings: settings.value,
+    db: env.DB,
+    queues: { fetch: env.FETCH_QUEUE, assess: env.ASSESS_QUEUE, deliver: env.DELIVER_QUEUE },
+    fetch: (url, init) => fetch(url, init),
+    sleep: (ms) => new Promise((resolve) => setTimeout(resolve, ms)),
+    clock: { nowMs: () => Date.now() },
+    ids: { next: () => crypto.randomUUID() },
+    random: () => Math.random(),
+  }));
+}
+
+export function assemble(world: World, instead: Partial<Pick<Services, 'sourcesFor' | 'judge'>> = {}): Services {
   const { settings, clock, ids, random } = world;
   const stores = storesOn(database(world.db, { sleep: world.sleep, random, timeoutMs: DATABASE_TIMEOUT_MS }));
   return {
-    settings, clock, ids, random, stores, read, ...thinking,
+    settings, clock, ids, random, stores,
+    read: ownReaders,
+    wingClasses: ownData.wingClasses,
+    thresholds: ownData.thresholds,
     wake: waker(world.queues),
+    sourcesFor: sourcesOf(world, stores),
+    judge: judgeDay,
     channels: {
       webhook: webhookChannel({ fetch: world.fetch, linkKey: settings.linkKey, local: settings.local, publicUrl: settings.publicUrl }),
       ...(settings.local ? { terminal: terminalChannel(stores.terminal) } : {}),
     },
+    ...instead,
   };
+}
+
+/** Invented weather for the places of the demo, and for nobody else. */
+function sourcesOf({ settings, fetch, clock }: World, stores: Stores): Services['sourcesFor'] {
+  const live = liveSources(ownData.sources(), settings, {
+    fetch, now: clock.nowMs, local: settings.local, cache: stores.sourceCache, breakers: stores.breaker,
+    report: ({ source, notice }) => console.warn(`${source}: ${notice}`),
+  });
+  const demo = demoSources(ownData.demo(), clock.nowMs);
+  return (place) => (place.demo ? demo : live(place.site));
 }
 
 function storesOn(db: Database): Stores {

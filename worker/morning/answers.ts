@@ -4,8 +4,8 @@ import { failure, success } from '../../lib/result.ts';
 import type { Place, Services } from '../service-set.ts';
 import type { FetchOutcome, StoredAnswer } from '../store/forecast.ts';
 
-/** What the sources of a site said about a day, in the order of config: part of what a day is judged from. */
-export interface DayAnswers extends Pick<DayInput, 'answers' | 'storedGroundM'> {
+/** What the sources of a site said about a day, in the order of config, and from where on it is a caution. */
+export interface DayAnswers extends Pick<DayInput, 'answers' | 'storedGroundM' | 'demo' | 'thresholds'> {
   /** Tells whether anything has changed since a brief was computed. */
   readonly fingerprint: readonly string[];
 }
@@ -16,7 +16,7 @@ export async function answersFor(services: Services, place: Place, localDate: st
   const storedGroundM = await stores.sourceGround.ofSite(place.site.id);
   const answers = services.sourcesFor(place).map(({ id, kind }) => ({ source: id, kind, outcome: read(stored.get(id)) }));
   const fingerprint = [...stored.values()].map(({ source, outcome, finishedAtMs }) => `${source} ${finishedAtMs} ${outcome}`).sort();
-  return { answers, storedGroundM, fingerprint };
+  return { answers, storedGroundM, fingerprint, demo: place.demo, thresholds: services.thresholds() };
 }
 
 /** Rows are our own, but may be of an older version or cut short: what cannot be read has not been fetched. */

@@ -55,7 +55,7 @@ async function assessSiteDay(services: Services, { runs, place, localDate }: Sit
       await putOff(services, [run], 'the wing or the sheet is gone or cannot be read');
       continue;
     }
-    const inputHash = await sha256Hex(JSON.stringify([place, sheetRow, wingRow, answers.fingerprint]));
+    const inputHash = await sha256Hex(JSON.stringify([place, sheetRow, wingRow, answers.thresholds, answers.fingerprint]));
     const last = held.get(`${run.wingKey}|${run.sheetId}`);
     done.push(run.key);
     if (last?.inputHash === inputHash && last.issuedAtMs > nowMs - REFETCH_AFTER_MS) continue;
@@ -92,6 +92,8 @@ export function dayInput({ place, localDate, run, wing, wingName, sheet, answers
     issuedAt: isoUtc(nowMs),
     validUntil: isoUtc(localDay(localDate, place.site.timeZone).toMs),
     answers: answers.answers,
+    demo: answers.demo,
+    thresholds: answers.thresholds,
     storedGroundM: answers.storedGroundM,
   };
 }

@@ -15,14 +15,18 @@ import { instantsAround, LEASE_MS } from './times.ts';
  */
 export async function fetchStep(services: Services): Promise<boolean> {
   const { stores, clock } = services;
-  const runs = await stores.runWork.claimFetches({ nowMs: clock.nowMs(), leaseMs: LEASE_MS, by: services.ids.next(), limit: FETCH_CHUNK });
-  const [first] = runs;
-  if (first === undefined) return false;
-  const places = await placesOf(services, runs.map((run) => run.siteId));
-  const answers = await answersOf(services, runs, places);
+  const claimed = await stores.runWork.claimFetches({ nowMs: clock.nowMs(), leaseMs: LEASE_MS, by: services.ids.next(), limit: FETCH_CHUNK });
+  if (claimed.length === 0) return false;
+  const places = await placesOf(services, claimed.map((run) => run.siteId));
+  const asked = claimed.flatMap((run) => askedAbout(services, run, places));
+  const maxSites = Math.min(FETCH_CHUNK, ...asked.map(({ source }) => source.maxSites ?? FETCH_CHUNK));
+  const runs = claimed.slice(0, maxSites);
+  const surplus = stores.runWork.release(claimed.slice(maxSites).map((run) => run.key));
+  const answers = await answersOf(services, asked.filter(({ run }) => runs.includes(run)));
   const nowMs = clock.nowMs();
   const given = [...answers].flatMap(([siteId, answer]) => (answer.ok ? [{ siteId, forecast: answer.value }] : []));
   await stores.db.together([
+    surplus,
     stores.forecast.put(given, nowMs),
     stores.sourceGround.keepFirst(given.flatMap(({ siteId, forecast }) => groundOf(forecast.members).map((groundM) => ({ siteId, source: forecast.source, groundM }))), nowMs),
     stores.runWork.finishFetches(runs.map((run) => ({ key: run.key, outcome: outcomeOf(answers.get(run.siteId)) })), nowMs),
@@ -30,19 +34,27 @@ export async function fetchStep(services: Services): Promise<boolean> {
   ]);
   const ready = await stores.run.ready(nowMs, ASSESS_CHUNK, runs.map((run) => run.siteId));
   await services.wake('assess', ready.assessJobs);
-  if (ready.fetch > 0) await services.wake('fetch', 1);
+  if (ready.fetch > 0 || claimed.length > runs.length) await services.wake('fetch', 1);
   return true;
 }
 
-async function answersOf(services: Services, runs: readonly FetchRun[], places: ReadonlyMap<string, Place>): Promise<ReadonlyMap<string, SourceAnswer>> {
-  const asked = runs.flatMap((run) => {
-    const place = places.get(run.siteId);
-    const source = place === undefined ? undefined : services.sourcesFor(place).find((candidate) => candidate.id === run.source);
-    return place === undefined || source === undefined ? [] : [{ place, source, date: run.localDate }];
-  });
+interface Asked {
+  readonly run: FetchRun;
+  readonly place: Place;
+  readonly source: Source;
+}
+
+/** Nothing where the site or the source is gone since the fetch was wanted. */
+function askedAbout(services: Services, run: FetchRun, places: ReadonlyMap<string, Place>): Asked[] {
+  const place = places.get(run.siteId);
+  const source = place === undefined ? undefined : services.sourcesFor(place).find((candidate) => candidate.id === run.source);
+  return place === undefined || source === undefined ? [] : [{ run, place, source }];
+}
+
+async function answersOf(services: Services, asked: readonly Asked[]): Promise<ReadonlyMap<string, SourceAnswer>> {
   const [first] = asked;
   if (first === undefined) return new Map();
-  const instants = asked.map(({ place, date }) => instantsAround(place.site, date));
+  const instants = asked.map(({ place, run }) => instantsAround(place.site, run.localDate));
   try {
     return await askedOf(first.source, asked.map(({ place }) => place), {
       fromMs: Math.min(...instants.map(({ fromMs }) => fromMs)),

@@ -57,6 +57,14 @@ export function runWorkStore(db: Database) {
         nowMs, leaseMs, by, limit,
       );
     },
+    /** Gives leased work back as if it had not been taken. */
+    release(keys: readonly string[]): Statement {
+      return {
+        sql: `UPDATE run SET lease_until = NULL, lease_by = NULL, attempts = attempts - 1
+          WHERE key IN (SELECT value FROM json_each(?)) AND state = 'wanted' AND lease_until IS NOT NULL`,
+        values: [JSON.stringify(keys)],
+      };
+    },
     finishFetches(ended: readonly { readonly key: string; readonly outcome: FetchOutcome }[], nowMs: number): Statement {
       const list = ended.map(({ key, outcome }) => ({ key, outcome: JSON.stringify(outcome) }));
       return {

@@ -1,0 +1,36 @@
+import { Hono } from 'hono';
+import type { Services } from '../service-set.ts';
+import { pageServices } from '../web/page-data.ts';
+import { api } from './api.ts';
+import { health } from './health.ts';
+import { local } from './local.ts';
+import { pages } from './pages.ts';
+import { problem } from './problem.ts';
+
+/** The methods that the paths answer; any other is told so. */
+const METHODS: Readonly<Record<string, string>> = {
+  '/': 'GET, HEAD',
+  '/sites/:id': 'GET, HEAD',
+  '/healthz': 'GET, HEAD',
+  '/api/v1/assess': 'POST',
+  '/api/v1/sites': 'GET, HEAD',
+  '/api/v1/sites/:id/days/:date': 'GET, HEAD',
+};
+
+/** Everything that is answered over HTTP. */
+export function app(services: Services): Hono {
+  const hono = new Hono();
+  hono.get('/healthz', () => health(services));
+  hono.route('/api/v1', api(services));
+  if (services.settings.local) hono.route('/local', local(services));
+  hono.route('/', pages(pageServices(services)));
+  for (const [path, allow] of Object.entries(METHODS)) {
+    hono.all(path, () => problem('wrong-method', { detail: `answered are ${allow}`, headers: { allow } }));
+  }
+  hono.notFound(() => problem('not-found'));
+  hono.onError((error) => {
+    console.error(`a request failed: ${error.name}`);
+    return problem('fault', { detail: 'the fault has been noted' });
+  });
+  return hono;
+}

@@ -1,0 +1,53 @@
+import { HOUR_MS } from '../../lib/time.ts';
+import type { Services } from '../service-set.ts';
+import { SCHEMA_VERSION, type MetaKey } from '../store/meta.ts';
+import { json, problem } from './problem.ts';
+
+/** A cron that has not come for so long is worth a look. */
+const QUIET_MS = 5 * 60_000;
+
+const STEPS = ['tick', 'fetch', 'assess', 'deliver', 'sweep'] as const;
+
+/** How this service is: 200 with the state of every step, 503 only when the database or its schema cannot be used. */
+export async function health(services: Services): Promise<Response> {
+  const { stores } = services;
+  const nowMs = services.clock.nowMs();
+  let meta: ReadonlyMap<string, string>;
+  try {
+    meta = await stores.meta.all();
+  } catch {
+    return problem('unusable', { detail: 'the database does not answer, or has no tables' });
+  }
+  if (Number(meta.get('schema')) !== SCHEMA_VERSION) {
+    return problem('unusable', { detail: `the database has schema ${meta.get('schema') ?? 'none'}, this code needs ${SCHEMA_VERSION}: apply the migrations` });
+  }
+  const [outbox, work, ages, errors] = await Promise.all([stores.outboxUpkeep.counts(), stores.run.openCounts(), stores.forecast.ages(), stores.log.newest(10)]);
+  const lastAt = (step: (typeof STEPS)[number]): number | null => {
+    const key: MetaKey = `last-${step}`;
+    return meta.has(key) ? Number(meta.get(key)) : null;
+  };
+  const tickMs = lastAt('tick');
+  const warnings = [
+    ...(tickMs === null || nowMs - tickMs > QUIET_MS ? ['no tick for more than five minutes: briefs are not being made'] : []),
+    ...(services.settings.linkKey === null ? ['LINK_KEY is not set: no webhook can be signed'] : []),
+    ...(work.failed > 0 ? [`${work.failed} pieces of work were given up`] : []),
+    ...(outbox.dead > 0 ? [`${outbox.dead} messages could not be delivered`] : []),
+  ];
+  return json({
+    status: warnings.length === 0 ? 'working' : 'needs a look',
+    at: iso(nowMs),
+    warnings,
+    steps: Object.fromEntries(STEPS.map((step) => [step, { lastAt: iso(lastAt(step)) }])),
+    work: { toFetch: work.fetch, toAssess: work.assess, givenUp: work.failed },
+    outbox: { created: Object.values(outbox).reduce((sum, count) => sum + count, 0), ...outbox },
+    sources: ages.map(({ source, fetchedAtMs, runAtMs, sites }) => ({
+      source, sites, fetchedAt: iso(fetchedAtMs), runAt: runAtMs < 0 ? null : iso(runAtMs),
+      runAgeHours: runAtMs < 0 ? null : Math.round(((nowMs - runAtMs) / HOUR_MS) * 10) / 10,
+    })),
+    log: errors.map(({ at, level, step, event, detail }) => ({ at: iso(at), level, step, event, detail: detail === null ? null : (JSON.parse(detail) as unknown) })),
+  });
+}
+
+function iso(epochMs: number | null): string | null {
+  return epochMs === null ? null : new Date(epochMs).toISOString();
+}
