@@ -19,11 +19,11 @@ export const SI_UNITS: DisplayUnits = { speed: 'm/s', height: 'm' };
 
 export type Rounding = 'nearest' | 'down' | 'up';
 
-/** A number in a unit; `distance` keeps metres that are no height out of the reader's height unit. */
+/** A number in a unit; `asIs` keeps distances out of the reader's height unit and climbs out of the unit of wind. */
 export interface Quantity {
   readonly value: number;
   readonly unit: string;
-  readonly distance?: boolean;
+  readonly asIs?: boolean;
 }
 
 /** Keeps 0.3 from becoming 0.2 because a sum left it at 0.29999999999999998. */
@@ -46,8 +46,9 @@ function perUnit(unit: SpeedUnit | HeightUnit): number {
 /** The same quantity in the reader's units; a share becomes a percentage. */
 export function inUnits(quantity: Quantity, units: DisplayUnits): Quantity {
   const { value, unit } = quantity;
+  if (quantity.asIs === true) return quantity;
   if (unit === 'm/s') return { value: value / perUnit(units.speed), unit: units.speed };
-  if (unit === 'm' && quantity.distance !== true) return { value: value / perUnit(units.height), unit: units.height };
+  if (unit === 'm') return { value: value / perUnit(units.height), unit: units.height };
   if (unit === 'share') return { value: value * 100, unit: '%' };
   return quantity;
 }

@@ -50,7 +50,7 @@ export function detailFor(kind: JudgedDay['kind']): HourDetail {
     }],
     sun: kind === 'strip' ? null : { first: '2027-05-14T05:10:00Z', last: '2027-05-14T15:40:00Z', incidenceDeg: 41 },
     glide: kind === 'strip' ? null : {
-      launchM: 1240, landingM: 620, distanceM: 2600, arrivalM: 184, minArrivalM: 60,
+      launchM: 1240, landingM: 620, distanceM: 2600, arrivalM: 184, askedM: 60,
       stillAir: [{ alongM: 0, altitudeM: 1240 }, { alongM: 2600, altitudeM: 950 }],
       inWind: [{ alongM: 0, altitudeM: 1240 }, { alongM: 800, altitudeM: 1110 }, { alongM: 1700, altitudeM: 930 }, { alongM: 2600, altitudeM: 804 }],
     },

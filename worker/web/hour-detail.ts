@@ -81,7 +81,7 @@ function pictures(site: Site, { hour, viewOf, sourceOf }: At): Pick<HourDetail, 
 function glideOf(view: HourView, site: LaunchSite, arrival: CombinedMargin): GlidePicture {
   return {
     launchM: site.elevationM, landingM: site.landing.elevationM, distanceM: site.distanceM,
-    stillAir: glidePath(view, 'still'), inWind: glidePath(view, 'forecast'), arrivalM: arrival.demand, minArrivalM: arrival.limit,
+    stillAir: glidePath(view, 'still'), inWind: glidePath(view, 'forecast'), arrivalM: arrival.demand, askedM: arrival.limit,
   };
 }
 

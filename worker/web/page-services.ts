@@ -42,7 +42,8 @@ export interface GlidePicture {
   readonly stillAir: readonly PathPoint[];
   readonly inWind: readonly PathPoint[];
   readonly arrivalM: number | null;
-  readonly minArrivalM: number | null;
+  /** Height over the landing that the sheet asks for. */
+  readonly askedM: number | null;
 }
 
 export interface LadderRung {

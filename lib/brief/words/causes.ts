@@ -7,7 +7,7 @@ import type { MarginId } from '../../margin/ids.ts';
 import { pairTexts, quantityText, type Quantity } from '../units-out.ts';
 import { hourName } from './clock.ts';
 import { missingPhrase } from './fields.ts';
-import { limitOwner, limitSense, marginName } from './margins.ts';
+import { keepsUnit, limitOwner, limitSense, marginName } from './margins.ts';
 import { sentence } from './plain.ts';
 import type { Reader } from './reader.ts';
 
@@ -88,7 +88,7 @@ function limitPhrase(id: MarginId, limit: string): string {
 }
 
 function quantity(margin: Said, value: number): Quantity {
-  return { value, unit: margin.unit, distance: margin.id === 'visibility' };
+  return { value, unit: margin.unit, asIs: keepsUnit(margin.id) };
 }
 
 /** A sheet without a limit on CAPE is still held to the thunderstorm signal, which has no number. */

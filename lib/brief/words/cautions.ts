@@ -37,7 +37,7 @@ function demoWords(): string {
 
 function words(caution: Caution, day: Day, reader: Reader): string {
   const { value, unit } = caution;
-  const number = value === null || unit === null ? null : quantityText({ value, unit }, reader.units);
+  const number = value === null || unit === null ? null : quantityText({ value, unit, asIs: caution.id === 'strongThermals' || caution.id === 'lineDrift' || caution.subject === 'visibility' }, reader.units);
   /** The number with its joint, or what to say without one. */
   const by = (joint: string, without = '') => (number === null ? without : `${joint}${number}`);
   const when = hours(caution, day);

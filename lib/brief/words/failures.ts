@@ -12,7 +12,7 @@ function unitName(unit: string | null): string {
 }
 
 function ownWord(text: string): string {
-  return /^[\w.$[\]°/%-]{1,60}$/u.test(text) ? text : 'a field';
+  return /^[\w$°%][\w.$[\]°/%-]{0,59}$/u.test(text) ? text : 'a field';
 }
 
 export function failureSentence(failure: SourceFailure): string {

@@ -3,7 +3,7 @@ import type { CombinedMargin } from '../day.ts';
 import { quantityText, type Rounding } from '../units-out.ts';
 import { causeClause, isSignalOnly } from './causes.ts';
 import { missingPhrase } from './fields.ts';
-import { limitSense, marginName } from './margins.ts';
+import { keepsUnit, limitSense, marginName } from './margins.ts';
 import { sentence } from './plain.ts';
 import type { Reader } from './reader.ts';
 
@@ -26,7 +26,7 @@ export function spareText(margin: CombinedMargin, reader: Reader): string {
   }
   if (margin.spare === null) return 'none: no solution';
   if (isSignalOnly(margin)) return 'no thunderstorm signalled';
-  const size = { value: Math.abs(margin.spare), unit: margin.unit, distance: margin.id === 'visibility' };
+  const size = { value: Math.abs(margin.spare), unit: margin.unit, asIs: keepsUnit(margin.id) };
   return margin.spare < 0
     ? `${quantityText(size, reader.units, 'up')} short`
     : `${quantityText(size, reader.units, 'down')} to spare`;
@@ -34,7 +34,7 @@ export function spareText(margin: CombinedMargin, reader: Reader): string {
 
 function numberText(margin: CombinedMargin, value: number | null, reader: Reader, rounding: Rounding): string {
   if (value === null) return '–';
-  return quantityText({ value, unit: margin.unit, distance: margin.id === 'visibility' }, reader.units, rounding);
+  return quantityText({ value, unit: margin.unit, asIs: keepsUnit(margin.id) }, reader.units, rounding);
 }
 
 export function marginRow(margin: CombinedMargin, reader: Reader): MarginRow {

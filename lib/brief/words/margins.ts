@@ -39,6 +39,11 @@ export function marginName(id: MarginId): string {
   }
 }
 
+/** Distances and climbs keep their unit: visibility is no height, a thermal is no wind. */
+export function keepsUnit(id: MarginId): boolean {
+  return id === 'visibility' || id === 'thermal' || id === 'ridgeLift';
+}
+
 /** Whose limit it is that the margin is held against. */
 export type LimitOwner = 'sheet' | 'site' | 'law';
 

@@ -14,6 +14,7 @@ interface Service {
 
 const SERVICES: readonly Service[] = [
   { prefix: 'demo', name: 'Demo weather', credit: null },
+  { prefix: 'invented', name: 'Invented weather', credit: null },
   { prefix: 'open-meteo', name: 'Open-Meteo', credit: { text: 'Weather data by Open-Meteo.com', href: 'https://open-meteo.com/' } },
   { prefix: 'met-norway', name: 'MET Norway', credit: { text: 'Data from MET Norway', href: 'https://www.met.no/' } },
   { prefix: 'nws', name: 'US National Weather Service', credit: { text: 'Data from the US National Weather Service', href: 'https://www.weather.gov/' } },
@@ -23,15 +24,22 @@ function serviceOf(id: string): Service | undefined {
   return SERVICES.find(({ prefix }) => id === prefix || id.startsWith(`${prefix}:`) || id.startsWith(`${prefix}-`));
 }
 
-/** `open-meteo:icon_d2` is "Open-Meteo ICON D2". */
+/** Models by the name their makers give them; a service with one product needs no second name. */
+const MODELS: Readonly<Record<string, string>> = {
+  icon_d2: 'ICON-D2', icon_eu: 'ICON-EU', icon_d2_eps: 'ICON-D2-EPS', icon_eu_eps: 'ICON-EU-EPS', meteofrance_arome_france: 'AROME France', gfs_global: 'GFS',
+  ecmwf_ifs025: 'ECMWF IFS', ecmwf_ifs025_ensemble: 'ECMWF ensemble', ncep_gefs025: 'GEFS', locationforecast: '', gridpoints: '',
+};
+
+/** `open-meteo:icon_d2` is "Open-Meteo ICON-D2". */
 export function sourceName(id: string): string {
   const service = serviceOf(id);
-  const model = id.includes(':') ? plainText(id.slice(id.indexOf(':') + 1)).replaceAll('_', ' ').toUpperCase() : '';
   if (service === undefined) return plainText(id) || 'a source without a name';
-  return model === '' ? service.name : `${service.name} ${service.prefix === 'demo' ? model.toLowerCase() : model}`;
+  const model = id.includes(':') ? plainText(id.slice(id.indexOf(':') + 1)) : '';
+  const name = Object.hasOwn(MODELS, model) ? MODELS[model] ?? '' : model.replaceAll('_', ' ');
+  return name === '' ? service.name : `${service.name} ${name}`;
 }
 
-/** "Open-Meteo ICON D2 (no answer within 10 s)". */
+/** "Open-Meteo ICON-D2 (no answer within 10 s)". */
 export function votePhrase(vote: SourceVote): string {
   const name = sourceName(vote.source);
   if (vote.state === 'voted') return vote.runAgeHours === null ? `${name} (run time not given)` : `${name} (run ${Math.floor(vote.runAgeHours)} h old)`;

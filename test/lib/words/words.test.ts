@@ -105,7 +105,7 @@ test('a brief says ages, sources, cautions, what is not judged, and the notice',
   Friday 14 May 2027, EN B, sheet Descent, new pilot.
   Within limits, last launch 8:48, window 8 to 9 h.
   Caution: Thin air: longer run, faster landing; density altitude 2600 m.
-  Without a vote: Open-Meteo ICON D2 (no answer within 10 s); from Demo weather (run 3 h old); computed 5:12.
+  Without a vote: Open-Meteo ICON-D2 (no answer within 10 s); from Demo weather (run 3 h old); computed 5:12.
   Not judged: Wind across the launch: the sheet has no limit for it.
   Local rules: Ask at the hut first.
 

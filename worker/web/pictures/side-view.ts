@@ -27,7 +27,7 @@ export function arrivalWords(glide: GlidePicture, reader: Reader): string {
 function description(glide: GlidePicture, reader: Reader): string {
   const still = glide.stillAir.at(-1);
   const inStill = still === undefined ? '' : ` In still air the glide would be ${metres(still.altitudeM - glide.landingM, reader)} above the landing at its end.`;
-  const asked = glide.minArrivalM === null ? '' : ` The sheet asks ${metres(glide.minArrivalM, reader)}.`;
+  const asked = glide.askedM === null ? '' : ` The sheet asks ${metres(glide.askedM, reader)}.`;
   return `From the launch at ${metres(glide.launchM, reader)} to the landing at ${metres(glide.landingM, reader)}, ${Math.round(glide.distanceM)} m away, the glide ${arrivalWords(glide, reader)}.${asked}${inStill} The ground between is not known.`;
 }
 
@@ -36,8 +36,8 @@ export function sideView(glide: GlidePicture, reader: Reader): Html {
   const x = scaleOf([0, glide.distanceM], [26, WIDTH - 74]);
   const y = scaleOf([low, high], [HEIGHT - 50, 30]);
   const [landX, landY] = [x(glide.distanceM), y(glide.landingM)];
-  const asked = glide.minArrivalM === null || glide.minArrivalM <= 0 ? null
-    : html`<rect class="edge-ochre" fill="url(#h-reserve)" x="${px(landX - 9)}" width="18" y="${px(y(glide.landingM + glide.minArrivalM))}" height="${px(landY - y(glide.landingM + glide.minArrivalM))}"/>`;
+  const asked = glide.askedM === null || glide.askedM <= 0 ? null
+    : html`<rect class="edge-ochre" fill="url(#h-reserve)" x="${px(landX - 9)}" width="18" y="${px(y(glide.landingM + glide.askedM))}" height="${px(landY - y(glide.landingM + glide.askedM))}"/>`;
   const arrives = glide.arrivalM === null ? null
     : html`<path class="line" d="M${px(landX)} ${px(landY)}V${px(y(glide.landingM + glide.arrivalM))}"/><circle class="mark" cx="${px(landX)}" cy="${px(y(glide.landingM + glide.arrivalM))}" r="3.5"/>`;
   const labelY = glide.arrivalM === null ? landY : Math.min(Math.max(y(glide.landingM + glide.arrivalM) + 4, 16), HEIGHT - 56);
