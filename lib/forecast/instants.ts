@@ -25,6 +25,6 @@ export function timesFault(stampsMs: readonly number[]): TimesFault | null {
 /** A hole costs its hours; a series whose usual step is longer than an hour is another kind of series. */
 function isHourly(gaps: readonly number[]): boolean {
   const inOrder = [...gaps].sort((a, b) => a - b);
-  const median = inOrder[Math.floor(inOrder.length / 2)] ?? HOUR_MS;
+  const median = inOrder[Math.floor((inOrder.length - 1) / 2)] ?? HOUR_MS;
   return median <= HOUR_MS;
 }
