@@ -94,6 +94,8 @@ export function localDay(date: string, timeZone: string): { readonly fromMs: num
 }
 
 function firstInstantOf(date: string, timeZone: string): number {
+  const midnight = instantOfLocal(date, { hour: 0, minute: 0 }, timeZone);
+  if (localDate(midnight, timeZone) === date && localDate(midnight - 1000, timeZone) < date) return midnight;
   const guess = Date.parse(`${date}T00:00:00Z`);
   let low = guess - 26 * HOUR_MS;
   let high = guess + 26 * HOUR_MS;

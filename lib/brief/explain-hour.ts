@@ -8,7 +8,6 @@ import { setUp } from '../margin/setup.ts';
 import { combine } from '../margin/sources.ts';
 import { readAtM, windOverStrip } from '../margin/strip-profile.ts';
 import { flyTowOn } from '../margin/tow-heading.ts';
-import { legalDay } from '../sky/sun.ts';
 import { epochOf, hourlyInstants } from '../time.ts';
 import type { GlidePoint } from '../wing/glide.ts';
 import type { TowPoint } from '../wing/tow.ts';
@@ -38,7 +37,7 @@ export interface HourExplained {
 /** Explains one hour of a day, from the same input as judgeDay and by the same code. */
 export function explainHour(input: DayInput, validAt: string): HourExplained {
   const setup = setUp(input);
-  const day = legalDay(input.site, input.localDate);
+  const day = setup.legalDayOf(input.localDate);
   const poll = pollSources(input, setup, 'none' in day ? [] : hourlyInstants(day.fromMs, day.toMs));
   const atMs = epochOf(validAt);
   const voters = poll.deterministic.flatMap((voter) => {

@@ -9,7 +9,6 @@ import { combine, tightness, type Vote } from '../margin/sources.ts';
 import { lineDriftM } from '../margin/strip-rules.ts';
 import { causesOf, moreSevere, worstVerdict } from '../margin/verdict.ts';
 import { windowsOf, type WindowHour } from '../margin/window.ts';
-import { legalDay } from '../sky/sun.ts';
 import { hourlyInstants, isoUtc } from '../time.ts';
 import { airspeedColumn } from './airspeed.ts';
 import { cautionsOf } from './caution-rules.ts';
@@ -23,7 +22,7 @@ import { pollSources, speaks, type Poll } from './voters.ts';
  */
 export function judgeDay(input: DayInput): JudgedDay {
   const setup = setUp(input);
-  const day = legalDay(input.site, input.localDate);
+  const day = setup.legalDayOf(input.localDate);
   const judgedMs = 'none' in day ? [] : hourlyInstants(day.fromMs, day.toMs);
   const poll = pollSources(input, setup, judgedMs);
   const { rules, notJudged } = judgedRules(setup);

@@ -6,7 +6,7 @@ import { checkHour, type CheckedHour } from '../forecast/ranges.ts';
 import { viewsOf, type BorrowMixedLayer } from '../margin/judge-member.ts';
 import type { HourView } from '../margin/hour-view.ts';
 import type { Setup } from '../margin/setup.ts';
-import { epochOf, isoUtc } from '../time.ts';
+import { epochOf, HOUR_MS, isoUtc } from '../time.ts';
 import type { DayInput } from './day-input.ts';
 import type { SourceVote } from './day.ts';
 import { failureSentence } from './words/failures.ts';
@@ -57,8 +57,16 @@ export function pollSources(input: DayInput, setup: Setup, judgedMs: readonly nu
     deterministic.push(voterOf(forecast, setup, { borrow, leader: deterministic.find(speaks) ?? null }));
   }
   const leader = deterministic.find(speaks) ?? null;
-  const ensembles = trusted.filter(({ kind }) => kind === 'ensemble').map((forecast) => voterOf(forecast, setup, { borrow, leader }));
+  const ensembles = trusted.filter(({ kind }) => kind === 'ensemble').map((forecast) => voterOf(around(forecast, judgedMs), setup, { borrow, leader }));
   return { deterministic, ensembles, votes, failures, demo: input.demo || input.answers.some(({ outcome }) => outcome.ok && outcome.value.demo) };
+}
+
+/** An ensemble cut to the judged hours and the two after them: nobody looks at its others. */
+function around(forecast: Forecast, judgedMs: readonly number[]): Forecast {
+  const fromMs = judgedMs[0] ?? Infinity;
+  const toMs = (judgedMs.at(-1) ?? -Infinity) + 2 * HOUR_MS;
+  const kept = (forecast.members[0] ?? []).map(({ validAt }) => epochOf(validAt)).map((atMs) => atMs >= fromMs && atMs <= toMs);
+  return { ...forecast, members: forecast.members.map((hours) => hours.filter((_, i) => kept[i])) };
 }
 
 /** The first source in order sets the heading of the tow; the others judge that heading. */

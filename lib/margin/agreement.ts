@@ -32,8 +32,11 @@ export interface EnsembleHour {
 export function ensembleHour(rules: readonly Rule[], members: readonly HourView[], minAgreement: number | undefined): EnsembleHour {
   const statuses: Verdict[] = [];
   const spares = new Map<MarginId, { unit: MarginUnit; values: number[] }>();
+  // What the first member's fields cannot feed the others' cannot either; what needs no field is no matter of agreement.
+  const [first] = members;
+  const fed = first === undefined ? [] : rules.filter((rule) => rule.needs(first).length > 0 && measure(rule, first)?.noVote === false);
   for (const view of members) {
-    const margins = rules.flatMap((rule) => measure(rule, view) ?? []).filter(({ noVote }) => !noVote);
+    const margins = fed.flatMap((rule) => measure(rule, view) ?? []).filter(({ noVote }) => !noVote);
     statuses.push(worstVerdict(margins.map(({ status }) => status)));
     for (const { id, unit, spare } of margins) {
       const entry = spares.get(id) ?? { unit, values: [] };

@@ -36,18 +36,18 @@ export class HourView {
   readonly setup: Setup;
   readonly hour: CheckedHour;
   readonly context: HourContext;
-  readonly #kept = new Map<string, unknown>();
-  readonly #factors = new Map<number, number>();
+  #profile: Profile | undefined;
+  #column: Column | undefined;
+  #winds: readonly Estimate[] | undefined;
+  #mixedLayer: { readonly depthM: number; readonly origin: string } | undefined;
+  #thermalMps: number | undefined;
+  #tow: ChosenTow | undefined;
+  #factors: Map<number, number> | undefined;
 
   constructor(setup: Setup, hour: CheckedHour, context: HourContext) {
     this.setup = setup;
     this.hour = hour;
     this.context = context;
-  }
-
-  #once<T>(name: string, make: () => T): T {
-    if (!this.#kept.has(name)) this.#kept.set(name, make());
-    return this.#kept.get(name) as T;
   }
 
   declares(field: ConditionField): boolean {
@@ -56,11 +56,13 @@ export class HourView {
 
   /** The wind profile over the site, heights above mean sea level. */
   get profile(): Profile {
-    return this.#once('profile', () => profileOf(this.hour, this.context.declares));
+    this.#profile ??= profileOf(this.hour, this.context.declares);
+    return this.#profile;
   }
 
   get column(): Column {
-    return this.#once('column', () => columnOf(this.hour, this.context.declares));
+    this.#column ??= columnOf(this.hour, this.context.declares);
+    return this.#column;
   }
 
   /** Whether the winds this source declares reach a height. */
@@ -74,6 +76,7 @@ export class HourView {
 
   /** What every speed and sink of the wing is multiplied by at a height. */
   factorAt(altitudeM: number): number {
+    this.#factors ??= new Map();
     let factor = this.#factors.get(altitudeM);
     if (factor === undefined) {
       factor = speedFactor({ densityKgm3: densityAt(this.column, altitudeM), allUpMassKg: this.setup.wing.allUpMassKg, referenceMassKg: this.setup.wing.referenceMassKg });
@@ -92,10 +95,9 @@ export class HourView {
 
   /** Kept estimates of the wind where the wing is launched; empty when none can be made. */
   get winds(): readonly Estimate[] {
-    return this.#once('winds', () => {
-      const { site } = this.setup;
-      return site.kind === 'launch' ? launchWinds(this, site) : [stripWind(this)];
-    });
+    const { site } = this.setup;
+    this.#winds ??= site.kind === 'launch' ? launchWinds(this, site) : [stripWind(this)];
+    return this.#winds;
   }
 
   /** Speed of the gust above the mean, never negative; NaN when either is unknown. */
@@ -111,24 +113,28 @@ export class HourView {
 
   /** Mixed-layer depth above the model's ground and where it is from. */
   get mixedLayer(): { readonly depthM: number; readonly origin: string } {
-    return this.#once('mixedLayer', () => {
-      if (this.declares('mixedLayerM')) return { depthM: this.hour.mixedLayerM, origin: 'mixed-layer depth of the forecast' };
-      const borrowed = this.context.borrowedMixedLayer;
-      if (borrowed !== null) return { depthM: borrowed.depthM, origin: `mixed-layer depth of ${borrowed.source}` };
-      return { depthM: richardsonDepthM(this.column, this.profile), origin: 'mixed-layer depth by the bulk Richardson number of the column' };
-    });
+    this.#mixedLayer ??= this.#findMixedLayer();
+    return this.#mixedLayer;
+  }
+
+  #findMixedLayer(): { readonly depthM: number; readonly origin: string } {
+    if (this.declares('mixedLayerM')) return { depthM: this.hour.mixedLayerM, origin: 'mixed-layer depth of the forecast' };
+    const borrowed = this.context.borrowedMixedLayer;
+    if (borrowed !== null) return { depthM: borrowed.depthM, origin: `mixed-layer depth of ${borrowed.source}` };
+    return { depthM: richardsonDepthM(this.column, this.profile), origin: 'mixed-layer depth by the bulk Richardson number of the column' };
   }
 
   /** Thermal strength w*, m/s. */
   get thermalMps(): number {
-    return this.#once('thermal', () => {
-      const heatFluxWm2 = this.heatFluxWm2;
-      if (heatFluxWm2 <= 0) return 0;
-      const groundM = this.hour.gridElevationM;
-      return convectiveVelocityMps({
-        temperatureC: this.hour.temperature2mC, densityKgm3: densityAt(this.column, groundM), mixedLayerM: this.mixedLayer.depthM, heatFluxWm2,
-      });
-    });
+    this.#thermalMps ??= this.#findThermal();
+    return this.#thermalMps;
+  }
+
+  #findThermal(): number {
+    const heatFluxWm2 = this.heatFluxWm2;
+    if (heatFluxWm2 <= 0) return 0;
+    const densityKgm3 = densityAt(this.column, this.hour.gridElevationM);
+    return convectiveVelocityMps({ temperatureC: this.hour.temperature2mC, densityKgm3, mixedLayerM: this.mixedLayer.depthM, heatFluxWm2 });
   }
 
   /** Strips: direction the wing is towed toward. */
@@ -138,7 +144,8 @@ export class HourView {
 
   /** Strips: the heading chosen and its climb. Throws for a launch, which has no tow. */
   get tow(): ChosenTow {
-    return this.#once('tow', () => (this.context.setHeading === null ? towOf(this) : towOnSetHeading(this, this.context.setHeading)));
+    this.#tow ??= this.context.setHeading === null ? towOf(this) : towOnSetHeading(this, this.context.setHeading);
+    return this.#tow;
   }
 }
 

@@ -58,9 +58,9 @@ function limitOf(rule: Rule, view: HourView): number | null {
 export function measure(rule: Rule, view: HourView): Margin | null {
   const { id, unit, sense } = rule;
   const needs = rule.needs(view);
-  const undeclared = needs.filter((need) => !view.declares(need));
-  if (undeclared.length > 0) {
-    return { id, spare: null, limit: finiteOrNull(limitOf(rule, view)), demand: null, unit, status: 'unknown', missing: [...new Set(undeclared)], noVote: true };
+  if (!needs.every((need) => view.context.declares.has(need))) {
+    const undeclared = new Set(needs.filter((need) => !view.declares(need)));
+    return { id, spare: null, limit: finiteOrNull(limitOf(rule, view)), demand: null, unit, status: 'unknown', missing: [...undeclared], noVote: true };
   }
   const held = limitOf(rule, view);
   if (held === null) return null;

@@ -11,6 +11,8 @@ export interface Setup {
   readonly wing: Wing;
   readonly polar: Polar;
   readonly sheet: LimitSheet;
+  /** The legal day of a local date, computed once. */
+  legalDayOf(date: string): LegalDay;
   /** The legal day of the local date an instant lies in. */
   legalDayAt(epochMs: number): LegalDay;
 }
@@ -21,15 +23,20 @@ export function setUp(given: { readonly site: Site; readonly wing: Wing; readonl
   const polar = polarFrom(wing);
   if (!polar.ok) throw new Error(`a wing reached the judge that no polar fits: ${polar.error}`);
   const legalDays = new Map<string, LegalDay>();
+  /** By instant: asking a zone for its date costs more than most margins. */
+  const byInstant = new Map<number, LegalDay>();
+  const legalDayOf = (date: string): LegalDay => {
+    const day = legalDays.get(date) ?? legalDay(site, date);
+    legalDays.set(date, day);
+    return day;
+  };
   return {
-    site, wing, polar: polar.value, sheet,
+    site, wing, polar: polar.value, sheet, legalDayOf,
     legalDayAt(epochMs) {
-      const date = localDate(epochMs, site.timeZone);
-      let day = legalDays.get(date);
-      if (day === undefined) {
-        day = legalDay(site, date);
-        legalDays.set(date, day);
-      }
+      const known = byInstant.get(epochMs);
+      if (known !== undefined) return known;
+      const day = legalDayOf(localDate(epochMs, site.timeZone));
+      byInstant.set(epochMs, day);
       return day;
     },
   };

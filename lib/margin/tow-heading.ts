@@ -1,11 +1,10 @@
 import { normalDeg } from '../angles.ts';
-import { componentsOfVector } from '../air/wind.ts';
 import type { StripSite } from '../site.ts';
 import { flyTow, type TowEnd, type TowPoint } from '../wing/tow.ts';
 import type { HourView } from './hour-view.ts';
 import { gustCrossMps, gustTailMps, meanOn } from './launch-wind.ts';
 import { defaultBand, margin } from './margin.ts';
-import { readAtM, windOverStrip } from './strip-profile.ts';
+import { headwindOver, readAtM } from './strip-profile.ts';
 
 /** Why a heading was chosen over its opposite: data for one sentence. */
 export type HeadingReason =
@@ -30,10 +29,7 @@ export function flyTowOn(view: HourView, site: StripSite, headingDeg: number, vi
     tensionRatio: site.lineTensionRatio,
     lineLengthM: site.lineLengthM,
     releaseAngleDeg: site.releaseAngleDeg,
-    headwindMps(heightM) {
-      const { uMps, vMps } = windOverStrip(view, site, heightM);
-      return componentsOfVector(uMps, vMps, headingDeg).headMps;
-    },
+    headwindMps: headwindOver(view, site, headingDeg),
   }, visit);
 }
 

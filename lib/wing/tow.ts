@@ -48,10 +48,10 @@ function balance(tow: Pick<Tow, 'trimMps' | 'glideAtTrim' | 'tensionRatio'>, sin
 }
 
 /** Longest step as a share of the time the line takes at trim speed; fourth order, height good to 0.1 %. */
-const LONGEST_STEP = 1 / 100;
+const LONGEST_STEP = 1 / 30;
 /** Steps begin this much shorter and grow with time: near the ground the log law bends the wind most. */
-const FIRST_STEP = 1 / 40;
-const STEP_GROWTH = 0.12;
+const FIRST_STEP = 1 / 60;
+const STEP_GROWTH = 0.2;
 const MAX_STEPS = 4000;
 
 interface Rate {
