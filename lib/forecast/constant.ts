@@ -8,8 +8,8 @@ import type { SourceFailure } from './failure.ts';
 export type WatchedField = Extract<SourceFailure, { kind: 'constant' }>['field'];
 
 const DAY_HOURS = 24;
-/** The shortest local day there is; a frame of just that is judged as a whole. */
-const SHORT_DAY_HOURS = 23;
+/** A frame that holds less (a short spring day, a service that begins with the current hour) counts as a whole from here on. */
+const WHOLE_FRAME_HOURS = 18;
 
 const watched: Readonly<Record<WatchedField, (hour: Conditions) => unknown>> = {
   wind10m: (hour) => hour.wind10m?.speedMps,
@@ -39,5 +39,5 @@ function isStuck(values: readonly unknown[]): boolean {
     last = index;
     longest = Math.max(longest, last - first + 1);
   }
-  return longest >= DAY_HOURS || (changes === 1 && longest >= SHORT_DAY_HOURS);
+  return longest >= DAY_HOURS || (changes === 1 && longest >= WHOLE_FRAME_HOURS);
 }

@@ -170,9 +170,11 @@ describe('suspicious constants', () => {
     expect(faultOf({ members: [stuckFor(23)] })).toBeNull();
   });
 
-  test('a frame of just a short spring day is judged as a whole', () => {
+  test('a frame that is shorter than a day counts as a whole, from eighteen hours on', () => {
     expect(faultOf({ members: [stuckFor(23).slice(0, 23)] })).toEqual({ kind: 'constant', field: 'gustMps' });
-    expect(faultOf({ members: [stuckFor(22).slice(0, 22)] })).toBeNull();
+    expect(faultOf({ members: [stuckFor(18).slice(0, 18)] })).toEqual({ kind: 'constant', field: 'gustMps' });
+    expect(faultOf({ members: [stuckFor(17).slice(0, 17)] })).toBeNull();
+    expect(faultOf({ members: [stuckFor(18).slice(0, 19)] })).toBeNull();
   });
 
   test('holes do not hide a stuck feed', () => {
