@@ -59,10 +59,18 @@ interface Rate {
   readonly closing: number;
 }
 
+/** The same balance without a single arc: with q = t^2 + 2 t sin b + 1, sin and cos of the first angle are t cos b / sqrt q and (1 + t sin b) / sqrt q. */
 function rate(tow: Tow, toWinchM: number, heightM: number): Rate {
-  const distance = Math.hypot(toWinchM, heightM);
-  const { gammaRad, airspeedMps } = balance(tow, heightM / distance, toWinchM / distance);
-  return { up: airspeedMps * Math.sin(gammaRad), closing: airspeedMps * Math.cos(gammaRad) - tow.headwindMps(Math.max(0, heightM)) };
+  const distanceM = Math.sqrt(toWinchM * toWinchM + heightM * heightM);
+  const sine = heightM / distanceM;
+  const cosine = toWinchM / distanceM;
+  const t = tow.tensionRatio;
+  const rootQ = Math.sqrt(t * t + 2 * t * sine + 1);
+  const pull = (t * cosine) / rootQ;
+  const rest = (1 + t * sine) / rootQ;
+  const drag = 1 / tow.glideAtTrim;
+  const perLength = (tow.trimMps * Math.sqrt(rootQ)) / Math.sqrt(1 + drag * drag);
+  return { up: perLength * (pull - rest * drag), closing: perLength * (rest + pull * drag) - tow.headwindMps(heightM > 0 ? heightM : 0) };
 }
 
 function step(tow: Tow, x: number, z: number, dt: number): { readonly x: number; readonly z: number } {
