@@ -110,5 +110,5 @@ export function pairTexts(
   const text = (quantity: Quantity) => figure(quantity.value, { decimals });
   while (text(first) === text(second) && first.value !== second.value && decimals < 3) decimals += 1;
   const tidy = (quantity: Quantity) => text(quantity).replace(/\.0+$/, '');
-  return { first: withUnit(tidy(first), first.unit), second: tidy(second), unit: second.unit };
+  return { first: withUnit(text(first), first.unit), second: tidy(second), unit: second.unit };
 }

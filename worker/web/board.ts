@@ -1,8 +1,9 @@
 /** The board: a line of words a site, its columns of airspeed small beside it, windows, cautions, ages. */
 import type { JudgedDay } from '../../lib/brief/day.ts';
 import {
-  briefTitle, cautionSentence, credits, dateName, dayStatement, EXPIRED, inBriefOrder, placeName, plainText, provenance, windowSentence, type Reader,
+  briefTitle, cautionSentences, credits, dateName, dayStatement, EXPIRED, inBriefOrder, placeName, plainText, provenance, windowSentence, type Reader,
 } from '../../lib/brief/words/index.ts';
+import { isoUtc, localDate } from '../../lib/time.ts';
 import { html, type Html } from './html.ts';
 import { layout } from './layout.ts';
 import type { BoardSite } from './page-services.ts';
@@ -30,7 +31,7 @@ function entry(day: JudgedDay, options: { readonly reader: Reader; readonly now:
   if (isExpired(day, now)) {
     return html`<article class="entry"><div class="margin">${siteHead(day, reader)}</div><div class="body"><p class="day">${EXPIRED}</p></div></article>`;
   }
-  const cautions = day.cautions.filter((caution) => caution.id !== 'demo').map((caution) => html`<li>${cautionSentence(caution, day, reader)}</li>`);
+  const cautions = cautionSentences(day.cautions, day, reader).map((caution) => html`<li>${caution}</li>`);
   const picture = day.hours.length === 0 ? null : html`<div class="small">${columnsPicture(day, reader, { size: SMALL, id })}${hourScale(day)}</div>`;
   return html`<article class="entry" data-valid-until="${day.validUntil}"><div class="margin">${siteHead(day, reader)}</div><div class="body">
 <p class="day">${day.demo ? html`<span class="tag">Invented weather.</span> ` : null}${dayStatement(day, reader)}</p>
@@ -40,9 +41,20 @@ ${day.localRules === null ? null : html`<p class="rules">${plainText(day.localRu
 <p class="ages">${provenance(day)}</p></div>${picture}</article>`;
 }
 
-function notMade(site: BoardSite): Html {
-  return html`<article class="entry"><div class="margin"><h2>${placeName({ name: site.siteName, id: site.siteId })}</h2></div>
-<div class="body"><p class="day">Cannot say: no brief has been made for today yet.</p></div></article>`;
+/** A site without a brief is a day of which nothing can be said, in the title as on the page. */
+function silentDay(site: BoardSite, now: Date): JudgedDay {
+  return {
+    siteId: site.siteId, siteName: site.siteName, kind: site.kind, timeZone: site.timeZone, localDate: localDate(now.getTime(), site.timeZone),
+    wingKey: '', wingName: '', sheetId: '', sheetName: '', sheetVersion: 0, issuedAt: isoUtc(now.getTime()), validUntil: isoUtc(now.getTime()), demo: false,
+    legalDay: { none: 'no brief has been made for this morning yet' }, verdict: 'unknown', cause: null, windows: [], hours: [], sources: [], cautions: [],
+    notJudged: [], localRules: null,
+  };
+}
+
+function notMade(day: JudgedDay): Html {
+  const name = placeName({ name: day.siteName, id: day.siteId });
+  return html`<article class="entry"><div class="margin"><h2><a href="/sites/${encodeURIComponent(day.siteId)}">${name}</a></h2></div>
+<div class="body"><p class="day">Cannot say: no brief has been made for this morning yet.</p></div></article>`;
 }
 
 export function boardPage(sites: readonly BoardSite[], options: { readonly reader: Reader; readonly now: Date }): string {
@@ -50,13 +62,14 @@ export function boardPage(sites: readonly BoardSite[], options: { readonly reade
   const days = inBriefOrder(sites.flatMap((site) => site.days));
   const valid = days.filter((day) => !isExpired(day, now));
   const [first] = days;
-  const missing = sites.filter((site) => site.days.length === 0);
+  const missing = sites.filter((site) => site.days.length === 0).map((site) => silentDay(site, now));
+  const told = [...valid, ...missing, ...days.filter((day) => isExpired(day, now)).map((day): JudgedDay => ({ ...day, verdict: 'unknown', hours: [], windows: [] }))];
   const body = html`<div class="top"><h1>${first === undefined ? 'No site yet' : dateName(first.localDate)}</h1>
 <p class="lede">What is left of the airspeed this morning, once wind, gust and reserve are paid.</p></div>
 ${missing.map(notMade)}${days.map((day, index) => entry(day, { reader, now, id: `c${index}` }))}
 ${sites.length === 0 ? html`<p class="day">Cannot say: no site is set up.</p>` : null}`;
   return layout({
-    title: valid.length === 0 ? 'Cannot say: no valid brief - Dawnmargin' : `${briefTitle(valid)} - Dawnmargin`,
+    title: `${briefTitle(told)} - Dawnmargin`,
     description: 'Margins of the morning for every launch and strip: wind, gusts, glide, thermals, rain and daylight against the limits of a sheet.',
     body, demo: days.some((day) => day.demo), credits: creditsOf(days), keep: address('', unitsPart(reader.units)),
   });

@@ -1,9 +1,10 @@
 /** The day of one site: first the sentence that says it, then the columns, the cautions, and one hour in full. */
 import type { JudgedDay, JudgedHour } from '../../lib/brief/day.ts';
 import {
-  briefTitle, capital, causeClause, cautionSentence, dateName, dayStatement, EXPIRED, hourName, placeName, plainText, provenance, sentence, verdictPhrase, windowSentence,
+  briefTitle, capital, causeClause, cautionSentences, dateName, dayStatement, EXPIRED, hourName, placeName, plainText, provenance, sentence, verdictPhrase, windowSentence,
   type Reader,
 } from '../../lib/brief/words/index.ts';
+import { tightestFirst } from '../../lib/brief/tightest.ts';
 import { creditsOf, isExpired } from './board.ts';
 import { chooseForm } from './choose-form.ts';
 import { hoursTable } from './hours-table.ts';
@@ -15,8 +16,12 @@ import { columnsPicture, LARGE } from './pictures/columns.ts';
 import { columnsKey } from './pictures/key.ts';
 import { hourPictures } from './pictures/hour-pictures.ts';
 import { hourLinks, verdictRuns } from './pictures/runs.ts';
+import { stripHours } from './strip-hours.ts';
 import { sourcesSection } from './sources-section.ts';
 import { address, unitsPart } from './units-query.ts';
+
+/** Causes said in sentences over the pictures; every margin stands below them. */
+const MOST_CAUSES = 4;
 
 export interface DayPageOptions {
   readonly reader: Reader;
@@ -40,9 +45,9 @@ function hourHref(day: JudgedDay, hour: JudgedHour, reader: Reader): string {
 }
 
 function cautionsSection(day: JudgedDay, reader: Reader): Piece {
-  const list = day.cautions.filter(({ id }) => id !== 'demo');
+  const list = cautionSentences(day.cautions, day, reader);
   if (list.length === 0) return null;
-  return html`<section class="cautions" aria-labelledby="cautions-h"><h2 id="cautions-h">Cautions</h2><ul>${list.map((caution) => html`<li>${cautionSentence(caution, day, reader)}</li>`)}</ul></section>`;
+  return html`<section class="cautions" aria-labelledby="cautions-h"><h2 id="cautions-h">Cautions</h2><ul>${list.map((caution) => html`<li>${caution}</li>`)}</ul></section>`;
 }
 
 function columnsSection(day: JudgedDay, chosen: JudgedHour, reader: Reader): Html {
@@ -53,7 +58,10 @@ ${hourLinks(day, { chosen: chosen.validAt, href: (hour) => hourHref(day, hour, r
 
 function causesOf(hour: JudgedHour, reader: Reader): Piece {
   const causes = hour.causes.map((id) => hour.margins.find((margin) => margin.id === id)).filter((margin) => margin !== undefined);
-  return causes.length === 0 ? null : html`<ul class="causes">${causes.map((margin) => html`<li>${sentence(causeClause(margin, reader))}</li>`)}</ul>`;
+  const own = tightestFirst(causes.filter(({ status }) => status === hour.verdict));
+  if (own.length === 0) return null;
+  const more = own.length - MOST_CAUSES;
+  return html`<ul class="causes">${own.slice(0, MOST_CAUSES).map((margin) => html`<li>${sentence(causeClause(margin, reader))}</li>`)}${more > 0 ? html`<li>And ${more} more, below.</li>` : null}</ul>`;
 }
 
 function hourSection(day: JudgedDay, hour: JudgedHour, options: DayPageOptions): Html {
@@ -77,7 +85,7 @@ ${day.windows.length === 0 ? null : html`<ul class="windows">${day.windows.map((
 <p class="ages">${provenance(day)}</p>
 ${hour === null ? null : columnsSection(day, hour, reader)}${cautionsSection(day, reader)}
 ${day.localRules === null ? null : html`<p class="rules"><strong>Local rules:</strong> ${plainText(day.localRules, 300)}</p>`}
-${hour === null ? null : hourSection(day, hour, options)}${sourcesSection(day, hour)}</div>`;
+${stripHours(day, reader)}${hour === null ? null : hourSection(day, hour, options)}${sourcesSection(day, hour)}</div>`;
 }
 
 export function dayPage(day: JudgedDay, options: DayPageOptions): string {

@@ -1,7 +1,7 @@
 /** The brief as plain text and as a title: terminal, mail, messages. One block a site, the most restrictive first. */
 import type { JudgedDay } from '../day.ts';
 import { mostRestrictive, restrictiveness, verdictPhrase } from './verdicts.ts';
-import { cautionSentence } from './cautions.ts';
+import { cautionSentences } from './cautions.ts';
 import { dateName } from './clock.ts';
 import { CLOSING } from './closing.ts';
 import { INVENTED, siteSentence } from './day-sentence.ts';
@@ -32,7 +32,7 @@ export function siteBlock(day: JudgedDay, reader: Reader): string {
     siteSentence(day, reader),
     indented(`${dateName(day.localDate)}, ${plainText(day.wingName)}, sheet ${plainText(day.sheetName)}.`),
     ...day.windows.map((window) => indented(windowSentence(window, day))),
-    ...day.cautions.filter(({ id }) => id !== 'demo').map((caution) => indented(`Caution: ${cautionSentence(caution, day, reader)}`)),
+    ...cautionSentences(day.cautions, day, reader).map((caution) => indented(`Caution: ${caution}`)),
     indented(provenance(day)),
     ...notJudgedGroups(day).map((group) => indented(`Not judged: ${notJudgedSentence(group)}`)),
     ...(day.localRules === null ? [] : [indented(`Local rules: ${plainText(day.localRules, 300)}`)]),

@@ -3,7 +3,7 @@ import type { Caution } from '../cautions.ts';
 import type { JudgedDay } from '../day.ts';
 import { quantityText } from '../units-out.ts';
 import { clockTime, hourName, hourSpan } from './clock.ts';
-import { plainText, sentence } from './plain.ts';
+import { listed, plainText, sentence } from './plain.ts';
 import type { Reader } from './reader.ts';
 import { sourceName } from './sources.ts';
 
@@ -29,6 +29,13 @@ function about(caution: Caution): string {
 /** The caution as a sentence, most of it said before its hours. */
 export function cautionSentence(caution: Caution, day: Day, reader: Reader): string {
   return sentence(caution.id === 'demo' ? demoWords() : `${words(caution, day, reader)}`);
+}
+
+/** All cautions of a day as sentences; the sources without a vote share one. The mark of invented weather stands elsewhere. */
+export function cautionSentences(cautions: readonly Caution[], day: Day, reader: Reader): string[] {
+  const silent = [...new Set(cautions.filter(({ id }) => id === 'noVote').map(({ subject }) => (subject === null ? 'a source' : sourceName(subject))))];
+  const rest = cautions.filter(({ id }) => id !== 'noVote' && id !== 'demo').map((caution) => cautionSentence(caution, day, reader));
+  return silent.length === 0 ? rest : [sentence(`No vote: ${listed(silent)}`), ...rest];
 }
 
 function demoWords(): string {

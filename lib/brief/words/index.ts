@@ -2,7 +2,7 @@
 export { briefText, briefTitle, dayVerdict, inBriefOrder, siteBlock } from './brief.ts';
 export { speedToFlySentence } from './advice.ts';
 export { causeClause, causeSentence } from './causes.ts';
-export { cautionSentence } from './cautions.ts';
+export { cautionSentence, cautionSentences } from './cautions.ts';
 export { ageName, clockTime, dateName, hourName, hourSpan, momentName } from './clock.ts';
 export { CLOSING, EXPIRED } from './closing.ts';
 export { INVENTED, dayStatement, daySentence, siteSentence } from './day-sentence.ts';
@@ -17,4 +17,4 @@ export type { Language, Reader } from './reader.ts';
 export { credits, disagreement, provenance, sourceName, votePhrase, voteSentence } from './sources.ts';
 export { sunSentence } from './sun.ts';
 export { isOpen, mostRestrictive, restrictiveness, verdictPhrase } from './verdicts.ts';
-export { windowException, windowSentence } from './windows.ts';
+export { lastLaunchOfDay, lastLaunchWords, windowException, windowSentence } from './windows.ts';

@@ -14,7 +14,7 @@ interface Service {
 
 const SERVICES: readonly Service[] = [
   { prefix: 'demo', name: 'Demo weather', credit: null },
-  { prefix: 'invented', name: 'Invented weather', credit: null },
+  { prefix: 'invented', name: 'Invented', credit: null },
   { prefix: 'open-meteo', name: 'Open-Meteo', credit: { text: 'Weather data by Open-Meteo.com', href: 'https://open-meteo.com/' } },
   { prefix: 'met-norway', name: 'MET Norway', credit: { text: 'Data from MET Norway', href: 'https://www.met.no/' } },
   { prefix: 'nws', name: 'US National Weather Service', credit: { text: 'Data from the US National Weather Service', href: 'https://www.weather.gov/' } },
@@ -36,6 +36,7 @@ export function sourceName(id: string): string {
   if (service === undefined) return plainText(id) || 'a source without a name';
   const model = id.includes(':') ? plainText(id.slice(id.indexOf(':') + 1)) : '';
   const name = Object.hasOwn(MODELS, model) ? MODELS[model] ?? '' : model.replaceAll('_', ' ');
+  if (service.prefix === 'invented') return `Invented ${name || 'weather'} model`;
   return name === '' ? service.name : `${service.name} ${name}`;
 }
 

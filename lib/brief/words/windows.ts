@@ -30,3 +30,9 @@ export function exceptions(day: Pick<JudgedDay, 'timeZone' | 'windows'>): string
   if (day.windows.length === 0) return null;
   return listed(day.windows.map((window) => windowException(window, day)));
 }
+
+/** When to stop: after the last launch of the last window. */
+export function lastLaunchOfDay(day: Pick<JudgedDay, 'timeZone' | 'windows'>): string {
+  const last = day.windows.map((window) => lastLaunchWords(window, day)).filter((words) => words !== null).at(-1);
+  return last === undefined ? 'No launch: no window in which a flight is known to end.' : `Stop after the ${last}.`;
+}

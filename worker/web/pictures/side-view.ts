@@ -40,7 +40,7 @@ export function sideView(glide: GlidePicture, reader: Reader): Html {
     : html`<rect class="edge-ochre" fill="url(#h-reserve)" x="${px(landX - 9)}" width="18" y="${px(y(glide.landingM + glide.askedM))}" height="${px(landY - y(glide.landingM + glide.askedM))}"/>`;
   const arrives = glide.arrivalM === null ? null
     : html`<path class="line" d="M${px(landX)} ${px(landY)}V${px(y(glide.landingM + glide.arrivalM))}"/><circle class="mark" cx="${px(landX)}" cy="${px(y(glide.landingM + glide.arrivalM))}" r="3.5"/>`;
-  const labelY = glide.arrivalM === null ? landY : Math.min(Math.max(y(glide.landingM + glide.arrivalM) + 4, 16), HEIGHT - 56);
+  const labelY = glide.arrivalM === null ? HEIGHT / 2 - 20 : Math.min(Math.max(y(glide.landingM + glide.arrivalM) + 4, 16), HEIGHT - 56);
   const label = glide.arrivalM === null ? ['does not', 'arrive'] : [metres(Math.abs(glide.arrivalM), reader), glide.arrivalM < 0 ? 'below' : 'above'];
   return html`<svg class="view" role="img" aria-labelledby="side-t side-d" viewBox="0 0 ${WIDTH} ${HEIGHT}">
 <title id="side-t">The glide from the side</title><desc id="side-d">${description(glide, reader)}</desc>

@@ -29,6 +29,11 @@ function ladderDescription(ladder: LadderPicture, reader: Reader): string {
   return `Launch at ${height(ladder.launchM, reader)}, trim airspeed ${quantityText({ value: ladder.trimMps, unit: 'm/s' }, reader.units)}. ${ladder.rungs.map((rung) => rungWords(rung, reader)).join('; ')}.`;
 }
 
+/** The part across has no place on the axis; it is written beside the rung, so that a strong one is not overlooked. */
+function acrossLabel(rung: LadderRung, reader: Reader): Html | null {
+  return Math.abs(rung.crossMps) < 0.5 ? null : html`<tspan class="faint"> and ${speed(Math.abs(rung.crossMps), reader)} across</tspan>`;
+}
+
 /** Heights whose labels do not run into one another, from the bottom up. */
 function labelled(rungs: readonly LadderRung[], y: (altitudeM: number) => number): ReadonlySet<LadderRung> {
   const kept = new Set<LadderRung>();
@@ -53,7 +58,7 @@ export function windLadder(ladder: LadderPicture, reader: Reader): Html {
 <title id="ladder-t">Wind ladder</title><desc id="ladder-d">${ladderDescription(ladder, reader)}</desc>
 <path class="post" d="M${px(x(0))} ${TOP - 12}V${FOOT + 10}"/><path class="fence" d="M${px(fence - 2)} ${TOP - 12}V${FOOT + 10}M${px(fence + 2)} ${TOP - 12}V${FOOT + 10}"/>
 <path class="sight" d="M62 ${px(y(ladder.launchM))}H${WIDTH - 8}"/><text class="lbl faint end" x="${WIDTH - 8}" y="${px(y(ladder.launchM) - 4)}">launch</text>
-<path class="flown" d="${path}"/>${rungs.map((rung) => html`<path class="rung" d="M${px(x(0))} ${px(y(rung.altitudeM))}H${px(x(rung.headMps))}"/><circle class="mark" cx="${px(x(rung.headMps))}" cy="${px(y(rung.altitudeM))}" r="3"/>${names.has(rung) ? html`<text class="lbl end" x="58" y="${px(y(rung.altitudeM) + 4)}">${height(rung.altitudeM, reader)}</text><text class="lbl num-r${rung.headMps < 0 ? ' end' : ''}" x="${px(x(rung.headMps) + (rung.headMps < 0 ? -7 : 7))}" y="${px(y(rung.altitudeM) + 4)}">${speed(rung.headMps, reader)}</text>` : null}`)}
+<path class="flown" d="${path}"/>${rungs.map((rung) => html`<path class="rung" d="M${px(x(0))} ${px(y(rung.altitudeM))}H${px(x(rung.headMps))}"/><circle class="mark" cx="${px(x(rung.headMps))}" cy="${px(y(rung.altitudeM))}" r="3"/>${names.has(rung) ? html`<text class="lbl end" x="58" y="${px(y(rung.altitudeM) + 4)}">${height(rung.altitudeM, reader)}</text><text class="lbl${rung.headMps < 0 ? ' end' : ''}" x="${px(x(rung.headMps) + (rung.headMps < 0 ? -7 : 7))}" y="${px(y(rung.altitudeM) + 4)}">${speed(rung.headMps, reader)}${acrossLabel(rung, reader)}</text>` : null}`)}
 <text class="lbl mid" x="${px(x(0))}" y="${FOOT + 26}">0</text><text class="lbl mid" x="${px(fence)}" y="${FOOT + 26}">trim ${speed(ladder.trimMps, reader)}</text>
 <text class="lbl faint end" x="${px(x(0) - 8)}" y="${TOP - 18}">from behind</text><text class="lbl faint" x="${px(x(0) + 8)}" y="${TOP - 18}">from ahead, ${reader.units.speed}</text></svg>`;
 }
