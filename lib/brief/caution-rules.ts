@@ -53,13 +53,18 @@ function speakers(poll: Poll): Voter[] {
   return poll.deterministic.filter(speaks);
 }
 
-/** A caution over the hours whose reading passes, with the worst of their values. */
+/** A caution for each run of hours whose readings pass, with the worst of their values: never said of an hour between. */
 function over(id: CautionId, unit: string, found: readonly Reading[], worst: 'largest' | 'least' = 'largest'): Caution[] {
-  const first = found[0];
-  const last = found.at(-1);
-  if (first === undefined || last === undefined) return [];
-  const values = found.map(({ value }) => value);
-  return [{ id, value: worst === 'largest' ? Math.max(...values) : Math.min(...values), unit, from: isoUtc(first.atMs), to: isoUtc(last.atMs), subject: null }];
+  const runs: Reading[][] = [];
+  for (const reading of found) {
+    const run = runs.at(-1);
+    if (run !== undefined && reading.atMs - (run.at(-1)?.atMs ?? 0) <= HOUR_MS) run.push(reading);
+    else runs.push([reading]);
+  }
+  return runs.map((run) => {
+    const values = run.map(({ value }) => value);
+    return { id, value: worst === 'largest' ? Math.max(...values) : Math.min(...values), unit, from: isoUtc(run[0]?.atMs ?? NaN), to: isoUtc(run.at(-1)?.atMs ?? NaN), subject: null };
+  });
 }
 
 const THUNDER_FROM = 91;
