@@ -7,11 +7,11 @@ import type { ConditionField, Conditions } from '../forecast/conditions.ts';
 import type { LimitSheet } from '../margin/sheet.ts';
 import { failure, success, type Issue, type Result } from '../result.ts';
 import type { Site } from '../site.ts';
-import { epochOf } from '../time.ts';
 import type { Wing } from '../wing/wing.ts';
 import { capped, check, issue, issuesIn } from './check.ts';
 import { closestWord } from './closest-word.ts';
 import { fields, once } from './fields.ts';
+import { instantMs } from './instant.ts';
 import { declaredBy, parseDeclares, parseHours } from './hours.ts';
 import { valueAt, type Path } from './path.ts';
 import { parseSheet } from './sheet.ts';
@@ -40,16 +40,17 @@ export interface AssessContext {
 
 const INSTANT_FORM = 'an instant in UTC, ISO 8601: "2027-05-14T04:00:00Z"';
 
+/** The parts say for themselves when they are missing. */
 const requestSchema = once(() =>
   fields({
-    site: z.unknown(),
-    wing: z.unknown(),
-    sheet: z.unknown(),
-    hours: z.unknown(),
+    site: z.unknown().optional(),
+    wing: z.unknown().optional(),
+    sheet: z.unknown().optional(),
+    hours: z.unknown().optional(),
     declares: z.unknown().optional(),
     now: z
       .string({ error: () => INSTANT_FORM })
-      .refine((text) => Number.isFinite(epochOf(text)), { error: () => INSTANT_FORM, params: { problem: 'no instant in UTC' } })
+      .refine((text) => Number.isFinite(instantMs(text)), { error: () => INSTANT_FORM, params: { problem: 'no instant in UTC' } })
       .nullish(),
   }),
 );
@@ -78,7 +79,7 @@ export function parseAssessRequest(json: unknown, context: AssessContext): Resul
     sheet: sheet.value,
     hours: hours.value,
     declares: isDeclared ? declares.value : declaredBy(hours.value),
-    nowMs: typeof now === 'string' ? epochOf(now) : null,
+    nowMs: typeof now === 'string' ? instantMs(now) : null,
   });
 }
 

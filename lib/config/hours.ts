@@ -5,9 +5,10 @@
 import * as z from 'zod';
 import { CONDITION_FIELDS, type ConditionField, type Conditions } from '../forecast/conditions.ts';
 import { failure, success, type Issue, type Result } from '../result.ts';
-import { epochOf, HOUR_MS, isoUtc } from '../time.ts';
+import { HOUR_MS, isoUtc } from '../time.ts';
 import { check, issue, issuesIn } from './check.ts';
 import { anyNumber, fields, list, once, oneOf } from './fields.ts';
+import { instantMs } from './instant.ts';
 import { valueAt, type Path } from './path.ts';
 
 /** Sixteen days, as far as any service forecasts by the hour. */
@@ -29,7 +30,7 @@ function wind() {
 }
 
 function validAt() {
-  return z.string({ error: () => HOUR_FORM }).refine((text) => epochOf(text) % HOUR_MS === 0, {
+  return z.string({ error: () => HOUR_FORM }).refine((text) => instantMs(text) % HOUR_MS === 0, {
     error: () => HOUR_FORM,
     params: { problem: 'no instant on the hour in UTC' },
   });
@@ -78,7 +79,7 @@ export function parseHours(json: unknown, path: Path = []): Result<Conditions[],
 /** What is absent stays absent: `undefined` is no value of a Conditions. */
 function conditions(hour: z.output<ReturnType<typeof hourSchema>>): Conditions {
   const given = Object.fromEntries(Object.entries(hour).filter(([, value]) => value !== undefined));
-  return { ...(given as unknown as Conditions), validAt: isoUtc(epochOf(hour.validAt)) };
+  return { ...(given as unknown as Conditions), validAt: isoUtc(instantMs(hour.validAt)) };
 }
 
 function orderIssues(items: readonly unknown[], path: Path): Issue[] {
@@ -86,7 +87,7 @@ function orderIssues(items: readonly unknown[], path: Path): Issue[] {
   let lastMs = -Infinity;
   items.forEach((item, index) => {
     const text = valueAt(item, ['validAt']);
-    const atMs = typeof text === 'string' ? epochOf(text) : NaN;
+    const atMs = typeof text === 'string' ? instantMs(text) : NaN;
     if (!Number.isFinite(atMs)) return;
     if (atMs <= lastMs) {
       const problem = atMs === lastMs ? 'this instant is there already' : 'this instant is earlier than the one before';
