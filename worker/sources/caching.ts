@@ -61,7 +61,7 @@ export async function askCached<T>(host: Host, cache: SourceCache, question: Cac
   if (kept !== null && host.now() < kept.freshUntilMs) return success({ value: kept.value, fetchedMs: kept.fetchedMs, isDeprecated: false });
   const since = kept?.lastModifiedMs ?? null;
   const conditional: Record<string, string> = since === null ? {} : { 'if-modified-since': new Date(since).toUTCString() };
-  const answer = await host.ask(question.path, { ...question.headers, ...conditional });
+  const answer = await host.ask({ path: question.path, headers: { ...question.headers, ...conditional } });
   if (!answer.ok) return answer;
   const nowMs = host.now();
   const isUnchanged = answer.value.status === 304;

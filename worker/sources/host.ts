@@ -1,9 +1,10 @@
 /**
  * A forecast host as the adapters see it: a question in, an answer or a tagged failure out, one question at a time, with
- * the host's breaker in between. Made for one invocation; the breaker's state is read once and written when it changes.
+ * the host's breaker and quota in between. Made for one invocation; the breaker's state is read once and written when it changes.
  * A breaker that cannot be read or kept must not cost anyone their weather.
  */
 import { afterFailure, afterSuccess, CLOSED, parseBreaker, permit, type BreakerState } from './breaker.ts';
+import { afterUse, fullUntilMs, parseUsage, type Quota, type Usage } from './quota.ts';
 import { safeFetch, type Answer, type Outside } from './safe-fetch.ts';
 import type { SourceFailure } from '../../lib/forecast/failure.ts';
 import { failure, type Result } from '../../lib/result.ts';
@@ -15,14 +16,38 @@ export interface BreakerStore {
   put(host: string, body: string, nowMs: number): Promise<void>;
 }
 
+export interface HostQuestion {
+  readonly path: string;
+  readonly headers?: Readonly<Record<string, string>>;
+  /** What it costs of the host's quota; 0 where nothing is counted. */
+  readonly weight?: number;
+}
+
 export interface Host {
   readonly origin: string;
   readonly now: () => number;
-  ask(path: string, headers?: Readonly<Record<string, string>>): Promise<Result<Answer, SourceFailure>>;
+  ask(question: HostQuestion): Promise<Result<Answer, SourceFailure>>;
 }
 
-export function createHost(origin: string, outside: Outside & { readonly breakers: BreakerStore }): Host {
+/** A quota that several hosts may share, counted under one name. */
+export interface SharedQuota {
+  readonly name: string;
+  readonly quota: Quota;
+}
+
+export function createHost(origin: string, outside: Outside & { readonly breakers: BreakerStore }, shared: SharedQuota | null = null): Host {
   let state: BreakerState | null = null;
+
+  /** Refuses what would overflow a bucket, as the service would, without asking it; else counts it. */
+  const counted = async (weight: number): Promise<SourceFailure | null> => {
+    if (shared === null || weight === 0) return null;
+    const nowMs = outside.now();
+    const usage: Usage = parseUsage(await outside.breakers.get(shared.name).catch(() => null));
+    const untilMs = fullUntilMs(usage, shared.quota, { atMs: nowMs, weight });
+    if (untilMs !== null) return { kind: 'rate-limited', retryAfterS: Math.ceil((untilMs - nowMs) / 1000) };
+    await outside.breakers.put(shared.name, JSON.stringify(afterUse(usage, { atMs: nowMs, weight })), nowMs).catch(() => undefined);
+    return null;
+  };
 
   const keep = async (next: BreakerState): Promise<void> => {
     if (JSON.stringify(next) === JSON.stringify(state)) return;
@@ -33,10 +58,12 @@ export function createHost(origin: string, outside: Outside & { readonly breaker
   return {
     origin,
     now: outside.now,
-    async ask(path, headers = {}) {
+    async ask({ path, headers = {}, weight = 0 }) {
       state ??= parseBreaker(await outside.breakers.get(origin).catch(() => null));
       const permission = permit(state, outside.now());
       if (!permission.allowed) return failure({ kind: 'breaker-open', until: isoUtc(permission.untilMs) });
+      const refusal = await counted(weight);
+      if (refusal !== null) return failure(refusal);
       await keep(permission.state);
       const result = await safeFetch({ url: origin + path, origins: [origin], headers }, outside);
       await keep(result.ok ? afterSuccess() : afterFailure(state ?? CLOSED, result.error, outside.now()));

@@ -4,11 +4,12 @@
  * else; so a working can say whose depth it used.
  */
 import { memoryCache, type SourceCache } from './caching.ts';
-import { createHost, type BreakerStore, type Host } from './host.ts';
+import { createHost, type BreakerStore, type Host, type SharedQuota } from './host.ts';
 import { createMetNorway } from './met-norway/met-norway.ts';
 import { createNws } from './nws/nws.ts';
 import { originWithKey } from './open-meteo/address.ts';
 import { createOpenMeteo } from './open-meteo/open-meteo.ts';
+import { FREE_QUOTA } from './quota.ts';
 import type { Outside } from './safe-fetch.ts';
 import type { Report, Source } from './source.ts';
 import { sourcesFor, type OpenMeteoSource, type SourceEntry, type SourceOrder } from '../../lib/config/source-order.ts';
@@ -34,7 +35,7 @@ export type SourcesFor = (place: { readonly latDeg: number; readonly lonDeg: num
 export function liveSources(order: SourceOrder, settings: SourceSettings, world: SourceWorld): SourcesFor {
   const hosts = new Map<string, Host>();
   const hostAt = (origin: string): Host => {
-    const host = hosts.get(origin) ?? createHost(origin, world);
+    const host = hosts.get(origin) ?? createHost(origin, world, quotaOf(origin));
     hosts.set(origin, host);
     return host;
   };
@@ -59,6 +60,11 @@ export function liveSources(order: SourceOrder, settings: SourceSettings, world:
     }
   };
   return (place) => withCompanions(sourcesFor(order, place)).map(sourceOf);
+}
+
+/** The free addresses of the Open-Meteo interface count what they are asked; an own server or one for customers does not. */
+function quotaOf(origin: string): SharedQuota | null {
+  return /^https:\/\/(?:ensemble-)?api\.open-meteo\.com$/.test(origin) ? { name: 'quota:open-meteo', quota: FREE_QUOTA } : null;
 }
 
 /** The entries to ask, the companions behind the last deterministic one that needs them. */

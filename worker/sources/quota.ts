@@ -13,17 +13,50 @@ export function requestWeight(request: { readonly variables: number; readonly me
   return Math.max(1, tenths, tenths * (request.days / 14));
 }
 
-export interface Planned<T> {
-  readonly request: T;
-  /** When it is sent, epoch ms. */
-  readonly atMs: number;
-}
-
 const BUCKETS = [
   { lengthMs: 60_000, of: 'perMinute' },
   { lengthMs: 3_600_000, of: 'perHour' },
   { lengthMs: 86_400_000, of: 'perDay' },
 ] as const satisfies readonly { lengthMs: number; of: keyof Quota }[];
+
+/** What has been used of the buckets that a moment lies in, by bucket. */
+export type Usage = Readonly<Record<string, number>>;
+
+function bucketKey(atMs: number, lengthMs: number): string {
+  return `${lengthMs}:${Math.floor(atMs / lengthMs)}`;
+}
+
+/** When the longest bucket that a request would overflow is emptied, epoch ms; null when it fits everywhere. */
+export function fullUntilMs(usage: Usage, quota: Quota, request: { readonly atMs: number; readonly weight: number }): number | null {
+  for (const { lengthMs, of } of BUCKETS.toReversed()) {
+    const already = usage[bucketKey(request.atMs, lengthMs)] ?? 0;
+    if (already > 0 && already + request.weight > quota[of]) return (Math.floor(request.atMs / lengthMs) + 1) * lengthMs;
+  }
+  return null;
+}
+
+/** The usage after one more request; buckets of the past are forgotten. */
+export function afterUse(usage: Usage, request: { readonly atMs: number; readonly weight: number }): Usage {
+  const keys = BUCKETS.map(({ lengthMs }) => bucketKey(request.atMs, lengthMs));
+  return Object.fromEntries(keys.map((key) => [key, (usage[key] ?? 0) + request.weight]));
+}
+
+/** The usage as it is kept; anything that is not one is as good as none. */
+export function parseUsage(body: string | null): Usage {
+  try {
+    const found: unknown = JSON.parse(body ?? '{}');
+    const isUsage = typeof found === 'object' && found !== null && Object.values(found).every((value) => typeof value === 'number' && value >= 0);
+    return isUsage ? (found as Usage) : {};
+  } catch {
+    return {};
+  }
+}
+
+export interface Planned<T> {
+  readonly request: T;
+  /** When it is sent, epoch ms. */
+  readonly atMs: number;
+}
 
 /**
  * The earliest times at which requests may be sent in their order, one after the other, without overflowing a bucket.
@@ -33,34 +66,14 @@ export function schedule<T extends { readonly weight: number }>(
   requests: readonly T[],
   options: { readonly fromMs: number; readonly quota: Quota; readonly gapMs: number },
 ): Planned<T>[] {
-  const used = new Map<string, number>();
-  const planned: Planned<T>[] = [];
+  let usage: Usage = {};
   let atMs = options.fromMs;
-  for (const request of requests) {
-    let full = fullBucket(used, options.quota, { atMs, weight: request.weight });
-    while (full !== null) {
-      atMs = full.untilMs;
-      full = fullBucket(used, options.quota, { atMs, weight: request.weight });
-    }
-    planned.push({ request, atMs });
-    for (const { lengthMs } of BUCKETS) {
-      const key = bucketKey(atMs, lengthMs);
-      used.set(key, (used.get(key) ?? 0) + request.weight);
-    }
+  return requests.map((request) => {
+    const { weight } = request;
+    for (let full = fullUntilMs(usage, options.quota, { atMs, weight }); full !== null; full = fullUntilMs(usage, options.quota, { atMs, weight })) atMs = full;
+    usage = afterUse(usage, { atMs, weight });
+    const planned = { request, atMs };
     atMs += options.gapMs;
-  }
-  return planned;
-}
-
-function bucketKey(atMs: number, lengthMs: number): string {
-  return `${lengthMs}:${Math.floor(atMs / lengthMs)}`;
-}
-
-/** The longest bucket that a request would overflow, and when it is emptied; null when it fits everywhere. */
-function fullBucket(used: ReadonlyMap<string, number>, quota: Quota, request: { readonly atMs: number; readonly weight: number }): { readonly untilMs: number } | null {
-  for (const { lengthMs, of } of BUCKETS.toReversed()) {
-    const already = used.get(bucketKey(request.atMs, lengthMs)) ?? 0;
-    if (already > 0 && already + request.weight > quota[of]) return { untilMs: (Math.floor(request.atMs / lengthMs) + 1) * lengthMs };
-  }
-  return null;
+    return planned;
+  });
 }

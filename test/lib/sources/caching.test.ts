@@ -23,7 +23,7 @@ beforeEach(() => {
 const host: Host = {
   origin: 'https://a.example',
   now: () => nowMs,
-  ask: (_, headers = {}) => {
+  ask: ({ headers = {} }) => {
     asked.push(headers['if-modified-since']);
     return Promise.resolve(success(next));
   },

@@ -1,6 +1,10 @@
 // Weights as the service's own tests have them, and a plan that keeps inside its buckets.
 import { describe, expect, test } from 'vitest';
-import { FREE_QUOTA, requestWeight, schedule } from '../../../worker/sources/quota.ts';
+import { createHost } from '../../../worker/sources/host.ts';
+import { forgetful } from '../../../worker/sources/order.ts';
+import { FREE_QUOTA, parseUsage, requestWeight, schedule } from '../../../worker/sources/quota.ts';
+import { planRequests } from '../../../worker/sources/request-plan.ts';
+import { order } from './pipeline.ts';
 
 describe('the weight of one location', () => {
   // Worked figures of reference/forecast-sources.md 1.9, from the service's source.
@@ -46,5 +50,57 @@ describe('the plan', () => {
     const many = plan(Array.from({ length: 60 }, () => 200));
     expect(clock(many[25]!.atMs)).toBe('03:00:00');
     expect(new Date(many[50]!.atMs).toISOString()).toBe('2027-05-15T00:00:00.000Z');
+  });
+});
+
+describe('a host with a quota', () => {
+  const t0 = Date.parse('2027-05-14T02:40:30Z');
+  const quota = { perMinute: 10, perHour: 15, perDay: 100 };
+  const make = () => {
+    const kept = forgetful();
+    const world = { nowMs: t0, calls: 0 };
+    const outside = { fetch: () => (world.calls++, Promise.resolve(Response.json({}))), now: () => world.nowMs, local: false, ...kept };
+    const host = () => createHost('https://a.example', outside, { name: 'quota:a', quota });
+    const ask = async (weight: number) => {
+      const answer = await host().ask({ path: '/', weight });
+      return answer.ok || answer.error;
+    };
+    return { world, ask };
+  };
+
+  test('counts over invocations, refuses what would overflow without asking, and says when to come back', async () => {
+    const { world, ask } = make();
+    expect(await ask(6)).toBe(true);
+    expect(await ask(4)).toBe(true);
+    expect(await ask(1)).toEqual({ kind: 'rate-limited', retryAfterS: 30 });
+    expect(world.calls).toBe(2);
+    world.nowMs += 30_000;
+    expect(await ask(5)).toBe(true);
+    expect(await ask(1)).toEqual({ kind: 'rate-limited', retryAfterS: 19 * 60 });
+    world.nowMs = Date.parse('2027-05-14T03:00:00Z');
+    expect(await ask(1)).toBe(true);
+  });
+
+  test('what weighs nothing always passes, and its own refusals do not open the breaker', async () => {
+    const { ask } = make();
+    expect(await ask(12)).toBe(true);
+    for (let i = 0; i < 9; i += 1) expect(await ask(1)).toMatchObject({ kind: 'rate-limited' });
+    expect(await ask(0)).toBe(true);
+  });
+
+  test.each([null, 'x', '[1,"2"]', '{"a":"b"}'])('a usage of %j is none', (body) => {
+    expect(Object.values(parseUsage(body)).filter((value) => typeof value !== 'number')).toEqual([]);
+  });
+});
+
+describe('npm run quota', () => {
+  test('two hundred sites fit into a morning that begins two hours before the first brief', () => {
+    const fromMs = Date.parse('2027-05-14T03:00:00Z');
+    for (const place of [{ latDeg: 47.26, lonDeg: 11.44 }, { latDeg: 60.1, lonDeg: 9.1 }, { latDeg: 40.2, lonDeg: -111.7 }, { latDeg: -33.4, lonDeg: -70.6 }]) {
+      const plan = planRequests(order, { sites: 200, place, sitesPerRequest: 8, sitesWithStep: 200, fromMs, quota: FREE_QUOTA, gapMs: 2000 });
+      expect(plan.totalWeight).toBeLessThan(10_000);
+      expect(plan.requests.at(-1)!.atMs).toBeLessThan(fromMs + 2 * 3_600_000);
+      expect(plan.requests.reduce((sum, { request }) => sum + request.weight, 0)).toBeCloseTo(plan.totalWeight, 6);
+    }
   });
 });

@@ -23,11 +23,12 @@ import { epochOf, HOUR_MS, isoUtc } from '../../../lib/time.ts';
 export function createOpenMeteo(entry: OpenMeteoSource, host: Host, key: string | null = null): Source {
   const headers: Readonly<Record<string, string>> = key === null ? {} : { 'x-api-key': key };
   const covers: Source['covers'] = (place) => coversPlace(entry, place);
+  const weightPerSite = requestWeight({ variables: columnsFor(entry).size, members: entry.members, days: 2 });
 
   async function runAt(): Promise<Result<string | null, SourceFailure>> {
     const runs: (string | null)[] = [];
     for (const name of entry.runTimeNames) {
-      const meta = await host.ask(metaUrl('', name), headers);
+      const meta = await host.ask({ path: metaUrl('', name), headers });
       if (!meta.ok && isOfTheHost(meta.error)) return meta;
       runs.push(meta.ok ? runAtOf(meta.value.json, host.now()) : null);
     }
@@ -36,11 +37,11 @@ export function createOpenMeteo(entry: OpenMeteoSource, host: Host, key: string 
 
   async function locationsOf(sites: readonly Site[], ask: Ask): Promise<ReadonlyMap<string, Result<AnswerLocation, SourceFailure>>> {
     // An hour more on each side: gusts and rain of the last instant are stamped with the hour after it.
-    const url = forecastUrl({
+    const path = forecastUrl({
       origin: '', path: pathOf(entry), model: entry.model, points: sites, variables: columnsFor(ask).keys(),
       fromMs: ask.fromMs - HOUR_MS, toMs: ask.toMs + HOUR_MS,
     });
-    const answer = await host.ask(url, headers);
+    const answer = await host.ask({ path, headers, weight: weightPerSite * sites.length });
     const read = answer.ok ? readAnswer(answer.value.json, sites.length) : answer;
     if (!read.ok && read.error.kind === 'refused' && read.error.status === 400 && sites.length > 1) return onePerRequest(sites, ask);
     return new Map(sites.map((site, i) => [site.id, read.ok ? present(read.value[i]) : read]));
@@ -63,7 +64,7 @@ export function createOpenMeteo(entry: OpenMeteoSource, host: Host, key: string 
     id: entry.id,
     kind: entry.kind,
     covers,
-    weightPerSite: requestWeight({ variables: columnsFor(entry).size, members: entry.members, days: 2 }),
+    weightPerSite,
     async fetch(request: SourceRequest) {
       const answers = new Map<string, SourceAnswer>();
       for (const site of request.sites) answers.set(site.id, failure({ kind: 'not-covered' }));

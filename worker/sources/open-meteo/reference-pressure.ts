@@ -6,6 +6,7 @@ import { forecastUrl, type Point } from './address.ts';
 import { readAnswer, type AnswerLocation } from './read-answer.ts';
 import { toMembers, type Ask } from './to-hours.ts';
 import type { Host } from '../host.ts';
+import { requestWeight } from '../quota.ts';
 import type { Conditions } from '../../../lib/forecast/conditions.ts';
 import { gridDistanceM, MAX_GRID_DISTANCE_M } from '../../../lib/forecast/place.ts';
 import type { Site } from '../../../lib/site.ts';
@@ -39,7 +40,7 @@ export async function fetchReferencePressures(
 async function seriesOf(host: Host, points: readonly Point[], ask: Parameters<typeof fetchReferencePressures>[2]): Promise<ReadonlyMap<string, Series>> {
   const pressureOnly: Ask = { ...ask, declares: ['seaLevelPressureHpa'], nearGroundM: [], levelsHpa: [], members: 1 };
   const url = forecastUrl({ ...ask, origin: '', points, variables: ['pressure_msl'] });
-  const answer = await host.ask(url, ask.headers);
+  const answer = await host.ask({ path: url, headers: ask.headers, weight: points.length * requestWeight({ variables: 1, members: 1, days: 2 }) });
   const read = answer.ok ? readAnswer(answer.value.json, points.length) : answer;
   if (!read.ok) return new Map();
   return new Map(points.map((point, i) => [keyOf(point), pointSeries(read.value[i], point, pressureOnly)]));
