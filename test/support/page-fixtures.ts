@@ -1,5 +1,7 @@
 // Services of the pages made of plain data: every state a page can be in, none of it from a database.
-import type { JudgedDay } from '../../lib/brief/day.ts';
+import type { JudgedDay, JudgedHour } from '../../lib/brief/day.ts';
+import type { AssessedHour } from '../../lib/brief/judge-hours.ts';
+import { chosenHour } from '../../worker/web/chosen-hour.ts';
 import type { HourDetail, PageServices } from '../../worker/web/page-services.ts';
 import { columnOf, dayOf, fullHour, voteOf } from './days.ts';
 
@@ -48,6 +50,7 @@ export function detailFor(kind: JudgedDay['kind']): HourDetail {
         { term: 'limit of the sheet', value: -2.5, unit: 'm/s', origin: 'minForwardMps of descent-new' },
       ],
     }],
+    given: { wind: 4.2, from: 251, gust: 6.4, rain: 0, cape: 40, trim: 10.56, glide: 9, sink: 1.1 },
     sun: kind === 'strip' ? null : { first: '2027-05-14T05:10:00Z', last: '2027-05-14T15:40:00Z', incidenceDeg: 41 },
     glide: kind === 'strip' ? null : {
       launchM: 1240, landingM: 620, distanceM: 2600, arrivalM: 184, askedM: 60,
@@ -65,10 +68,21 @@ export function detailFor(kind: JudgedDay['kind']): HourDetail {
   };
 }
 
+function assessed(hour: JudgedHour): AssessedHour {
+  return { validAt: hour.validAt, verdict: hour.verdict, causes: hour.causes, margins: hour.margins.map((margin) => ({ ...margin, working: [] })), advice: { speedToFlyMps: hour.speedToFlyMps } };
+}
+
 export function fixtureServices(days: Readonly<Record<string, JudgedDay>> = DAYS, now: Date = MORNING): PageServices {
   return {
     now: () => now,
     board: () => Promise.resolve(Object.values(days).map((day) => ({ siteId: day.siteId, siteName: day.siteName, kind: day.kind, timeZone: day.timeZone, days: [day] }))),
+    whatIf({ siteId, hour, problems }) {
+      const day = days[siteId];
+      const chosen = day === undefined ? null : chosenHour(day, hour);
+      if (day === undefined || chosen === null) return Promise.resolve({ kind: 'no-site' });
+      const answer = problems.length > 0 ? { kind: 'problems' as const, problems } : { kind: 'judged' as const, hour: assessed(chosen), source: 'demo' };
+      return Promise.resolve({ kind: 'answer', day, hour: chosen.validAt, given: detailFor(day.kind).given ?? {}, answer });
+    },
     day({ siteId }) {
       const day = days[siteId];
       if (day === undefined) return Promise.resolve({ kind: 'no-site' });

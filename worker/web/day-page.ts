@@ -6,6 +6,7 @@ import {
 } from '../../lib/brief/words/index.ts';
 import { tightestFirst } from '../../lib/brief/tightest.ts';
 import { creditsOf, isExpired } from './board.ts';
+import { chosenHour } from './chosen-hour.ts';
 import { chooseForm } from './choose-form.ts';
 import { hoursTable } from './hours-table.ts';
 import { html, type Html, type Piece } from './html.ts';
@@ -18,6 +19,7 @@ import { hourPictures } from './pictures/hour-pictures.ts';
 import { hourLinks, verdictRuns } from './pictures/runs.ts';
 import { stripHours } from './strip-hours.ts';
 import { sourcesSection } from './sources-section.ts';
+import { whatIfForm } from './what-if-form.ts';
 import { address, unitsPart } from './units-query.ts';
 
 /** Causes said in sentences over the pictures; every margin stands below them. */
@@ -30,12 +32,6 @@ export interface DayPageOptions {
   readonly hour: string | null;
   readonly detail: (hour: JudgedHour) => HourDetail;
   readonly choices: Choices;
-}
-
-/** The hour asked for, else the one that limits the day, else the first. */
-export function chosenHour(day: JudgedDay, asked: string | null): JudgedHour | null {
-  const at = (validAt: string | undefined) => day.hours.find((hour) => hour.validAt === validAt);
-  return at(asked ?? undefined) ?? at(day.cause?.validAt) ?? day.hours[0] ?? null;
 }
 
 function hourHref(day: JudgedDay, hour: JudgedHour, reader: Reader): string {
@@ -69,7 +65,8 @@ function hourSection(day: JudgedDay, hour: JudgedHour, options: DayPageOptions):
   const detail = options.detail(hour);
   return html`<section id="hour" class="hour" aria-labelledby="hour-h"><h2 id="hour-h">${capital(verdictPhrase(hour.verdict))} at ${hourName(hour.validAt, day.timeZone)}</h2>
 ${causesOf(hour, reader)}${hourPictures(day, hour, detail, reader)}
-<h3>Margins, tightest first</h3><p class="hint">Open a margin for its working.</p>${marginsList(hour, detail, reader)}</section>`;
+<h3>Margins, tightest first</h3><p class="hint">Open a margin for its working.</p>${marginsList(hour, detail, reader)}
+<h3 class="if">What if</h3><p class="hint">Your numbers for this hour; what you leave empty is the forecast’s.</p>${whatIfForm(day, { reader, hour: hour.validAt, given: detail.given ?? {}, typed: {} })}</section>`;
 }
 
 function marginalia(day: JudgedDay): Html {

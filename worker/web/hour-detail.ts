@@ -14,6 +14,7 @@ import { flyTowOn } from '../../lib/margin/tow-heading.ts';
 import { directSun, incidenceDeg, legalDay, sunAt } from '../../lib/sky/sun.ts';
 import type { LaunchSite, Site, StripSite } from '../../lib/site.ts';
 import { epochOf, hourlyInstants, isoUtc } from '../../lib/time.ts';
+import type { OwnNumbers } from './own-numbers.ts';
 import type { GlidePicture, HourDetail, LadderPicture, MarginWorking, SunPicture, TowPicture } from './page-services.ts';
 
 /** How far above launch the wind ladder reaches, and how many points of a climb are drawn. */
@@ -37,7 +38,7 @@ export function hourDetail(input: DayInput): (hour: JudgedHour) => HourDetail {
       return addsUp(margin, terms) ? [{ id: margin.id, terms }] : [];
     });
     const sourceOf = (id: CombinedMargin['id']) => hour.margins.find((margin) => margin.id === id)?.source ?? null;
-    return { workings, sun: sunOn(input, hour), ...pictures(input.site, { hour, viewOf, sourceOf }) };
+    return { workings, sun: sunOn(input, hour), given: givenIn(viewOf(null)), ...pictures(input.site, { hour, viewOf, sourceOf }) };
   };
 }
 
@@ -111,6 +112,15 @@ function towOf(view: HourView, site: StripSite, heading: NonNullable<JudgedHour[
     driftM: heading.lineDriftM === null ? null : heading.lineDriftM * (toLeft ? 1 : -1),
     headMps: mean.headMps, crossMps: mean.crossMps, gustMps: Number.isFinite(gust.headMps) ? wind.gustMps : null,
   };
+}
+
+/** What the forecast says of the hour; a number that is not there stays away. */
+function givenIn(view: HourView | null): OwnNumbers | null {
+  if (view === null) return null;
+  const { wind10m, gustMps, precipitationMm, capeJkg } = view.hour;
+  const { trimMps, glideAtTrim, minSinkMps } = view.setup.wing;
+  const all = { wind: wind10m.speedMps, from: wind10m.fromDeg, gust: gustMps, rain: precipitationMm, cape: capeJkg, trim: trimMps, glide: glideAtTrim, sink: minSinkMps };
+  return Object.fromEntries(Object.entries(all).filter(([, value]) => Number.isFinite(value)));
 }
 
 function sunOn(input: DayInput, hour: JudgedHour): SunPicture | null {

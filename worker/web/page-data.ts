@@ -9,7 +9,9 @@ import { judgedDate } from '../morning/times.ts';
 import type { Place, Services } from '../service-set.ts';
 import type { Pair } from '../store/published.ts';
 import { hourDetail } from './hour-detail.ts';
-import type { BoardSite, Choices, DayAnswer, DayQuery, PageServices } from './page-services.ts';
+import { chosenHour } from './chosen-hour.ts';
+import type { BoardSite, Choices, DayAnswer, DayQuery, PageServices, WhatIfAnswer, WhatIfQuery } from './page-services.ts';
+import { judgeWhatIf } from './what-if-data.ts';
 
 const FALLBACK_WING = 'EN B';
 const FALLBACK_SHEET = { launch: 'descent-new', strip: 'solo-tow' } as const;
@@ -17,6 +19,14 @@ const FALLBACK_SHEET = { launch: 'descent-new', strip: 'solo-tow' } as const;
 function parsed(body: string): JudgedDay | null {
   try {
     return JSON.parse(body) as JudgedDay;
+  } catch {
+    return null;
+  }
+}
+
+function wingJson(body: string): unknown {
+  try {
+    return JSON.parse(body) as unknown;
   } catch {
     return null;
   }
@@ -41,6 +51,8 @@ interface Chosen {
   readonly pair: Pair;
   readonly choices: Choices;
   readonly problems: readonly string[];
+  /** The wing as a request would give it. */
+  readonly wing: unknown;
   readonly input: (parts: { readonly place: Place; readonly localDate: string }) => Promise<DayInput | null>;
 }
 
@@ -64,6 +76,7 @@ async function chosenPair(services: Services, place: Place, query: DayQuery): Pr
       ...(wingRow === undefined ? [`The wing is not known here; known are ${wings.map(({ key }) => key).join(', ')}.`] : []),
       ...(sheet === undefined ? [`The limit sheet is not known for a ${site.kind}; known are ${fitting.map(({ id }) => id).join(', ')}.`] : []),
     ],
+    wing: wingRow === undefined ? null : wingJson(wingRow.body),
     async input(parts) {
       const wing = wingRow === undefined ? null : services.read.wing(wingRow);
       if (wingRow === undefined || sheet === undefined || wing === null || !wing.ok) return null;
@@ -73,7 +86,16 @@ async function chosenPair(services: Services, place: Place, query: DayQuery): Pr
   };
 }
 
-async function siteDay(services: Services, query: DayQuery): Promise<DayAnswer> {
+interface FoundDay {
+  readonly kind: 'found';
+  readonly day: JudgedDay;
+  readonly input: DayInput;
+  readonly chosen: Chosen;
+}
+
+type NotFound = Extract<DayAnswer, { kind: 'no-site' | 'bad-query' }>;
+
+async function findDay(services: Services, query: DayQuery): Promise<FoundDay | NotFound> {
   const place = (await placesOf(services, [query.siteId])).get(query.siteId);
   if (place === undefined) return { kind: 'no-site' };
   const chosen = await chosenPair(services, place, query);
@@ -83,7 +105,22 @@ async function siteDay(services: Services, query: DayQuery): Promise<DayAnswer> 
   const [stored, input] = await Promise.all([services.stores.brief.newest({ ...chosen.pair, localDate }), chosen.input({ place, localDate })]);
   if (input === null) return { kind: 'bad-query', problems: ['The wing or the limit sheet cannot be read.'] };
   const day = (stored === null ? null : parsed(stored.body)) ?? services.judge(input);
-  return { kind: 'day', day, detail: hourDetail(input), choices: chosen.choices };
+  return { kind: 'found', day, input, chosen };
+}
+
+async function siteDay(services: Services, query: DayQuery): Promise<DayAnswer> {
+  const found = await findDay(services, query);
+  return found.kind === 'found' ? { kind: 'day', day: found.day, detail: hourDetail(found.input), choices: found.chosen.choices } : found;
+}
+
+async function whatIf(services: Services, query: WhatIfQuery): Promise<WhatIfAnswer> {
+  const found = await findDay(services, query);
+  if (found.kind !== 'found') return found;
+  const { day, input, chosen } = found;
+  const hour = chosenHour(day, query.hour);
+  if (hour === null) return { kind: 'bad-query', problems: ['There is no judged hour on this day.'] };
+  const answer = query.problems.length > 0 ? { kind: 'problems' as const, problems: query.problems } : judgeWhatIf(services, input, { validAt: hour.validAt, numbers: query.numbers, wing: chosen.wing });
+  return { kind: 'answer', day, hour: hour.validAt, given: hourDetail(input)(hour).given ?? {}, answer };
 }
 
 export function pageServices(services: Services): PageServices {
@@ -91,5 +128,6 @@ export function pageServices(services: Services): PageServices {
     now: () => new Date(services.clock.nowMs()),
     board: () => boardSites(services),
     day: (query) => siteDay(services, query),
+    whatIf: (query) => whatIf(services, query),
   };
 }

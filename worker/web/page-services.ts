@@ -1,5 +1,7 @@
 /** What the pages ask of the rest: stored briefs, one judged day, and the working behind its numbers. No page computes. */
 import type { JudgedDay, JudgedHour } from '../../lib/brief/day.ts';
+import type { OwnNumbers } from './own-numbers.ts';
+import type { WhatIf } from './what-if-data.ts';
 import type { MarginId, Term } from '../../lib/margin/ids.ts';
 
 export interface BoardSite {
@@ -87,6 +89,8 @@ export interface HourDetail {
   /** Only of margins whose numbers can still be worked out: a forecast may have been renewed since the brief. */
   readonly workings: readonly MarginWorking[];
   readonly sun: SunPicture | null;
+  /** The forecast's own numbers of the hour, from which a "what if" starts. */
+  readonly given: OwnNumbers | null;
   readonly glide: GlidePicture | null;
   readonly ladder: LadderPicture | null;
   readonly tow: TowPicture | null;
@@ -109,8 +113,22 @@ export interface Choices {
   readonly sheets: readonly Choice[];
 }
 
+/** A question of "what if": a day, an hour of it, and numbers as they were typed. */
+export interface WhatIfQuery extends DayQuery {
+  readonly hour: string | null;
+  readonly numbers: OwnNumbers;
+  /** What was wrong with the typed numbers: nothing is judged then. */
+  readonly problems: readonly string[];
+}
+
+export type WhatIfAnswer =
+  | { readonly kind: 'answer'; readonly day: JudgedDay; readonly hour: string; readonly given: OwnNumbers; readonly answer: WhatIf }
+  | { readonly kind: 'no-site' }
+  | { readonly kind: 'bad-query'; readonly problems: readonly string[] };
+
 export interface PageServices {
   now(): Date;
   board(): Promise<readonly BoardSite[]>;
   day(query: DayQuery): Promise<DayAnswer>;
+  whatIf(query: WhatIfQuery): Promise<WhatIfAnswer>;
 }
