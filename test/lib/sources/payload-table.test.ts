@@ -9,7 +9,7 @@ const entry = entryOf('open-meteo:icon_d2');
 const sheetId = 'descent-experienced';
 
 function dayOf(text: string, run: string | null = runAt) {
-  return judge([answer(entry, read(text, entry, run))], { sheetId });
+  return judge([answer(entry, read(text, entry, { run }))], { sheetId });
 }
 
 function spoilt(fault: string) {

@@ -36,7 +36,7 @@ function config(name: string): unknown {
 }
 
 export const order = valueOf(parseSourceOrder(config('sources.json')));
-const sheets = valueOf(parseSheets(config('sheets.json'), { basis: 'required' }));
+export const sheets = valueOf(parseSheets(config('sheets.json'), { basis: 'required' }));
 const thresholds = config('thresholds.json') as CautionThresholds;
 const classes = valueOf(parseWingClasses(config('wing-classes.json')));
 
@@ -88,13 +88,20 @@ export function cleanLocation(entry: OpenMeteoSource, place: { readonly latDeg: 
   return structuredClone(reply.body) as Location;
 }
 
+export interface ReadOptions {
+  readonly run?: string | null;
+  readonly site?: Site;
+  readonly pressures?: { readonly a: number | null; readonly b: number | null };
+}
+
 /** The adapter's way from text to forecast. */
-export function read(text: string, entry: OpenMeteoSource, run: string | null = runAt): Result<Forecast, SourceFailure> {
+export function read(text: string, entry: OpenMeteoSource, options: ReadOptions = {}): Result<Forecast, SourceFailure> {
+  const { run = runAt, pressures = { a: null, b: null } } = options;
   const json = readJson(text);
   if (json === undefined) return failure({ kind: 'not-json' });
   const locations = readAnswer(json, 1);
   if (!locations.ok) return locations;
-  return forecastOf(entry, site, { location: locations.value[0]!, ask: askOf(entry), pressures: () => ({ a: null, b: null }), runAt: run, fetchedAt: issuedAt });
+  return forecastOf(entry, options.site ?? site, { location: locations.value[0]!, ask: askOf(entry), pressures: () => pressures, runAt: run, fetchedAt: issuedAt });
 }
 
 /** JSON has no word for Infinity; the text 1e999 says it. */
