@@ -68,7 +68,7 @@ function problemOf(found: z.core.$ZodIssue, value: unknown): string {
       return `not one of the words allowed here${suggestion(typeof value === 'string' ? closestWord(value, found.values.map(String)) : undefined)}`;
     case 'custom':
       return typeof found.params?.['problem'] === 'string' ? found.params['problem'] : 'not allowed here';
-    default:
+    case 'invalid_format': case 'invalid_union': case 'invalid_key': case 'invalid_element': case 'not_multiple_of': case 'unrecognized_keys':
       return 'not in the form that is needed';
   }
 }

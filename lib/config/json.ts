@@ -4,6 +4,7 @@
  * path; broken JSON with line and column. A byte order mark is accepted. Nothing read here can reach a prototype.
  */
 import { failure, success, type Issue, type Result } from '../result.ts';
+import { capped } from './check.ts';
 import { formatPath, shortened, type Path } from './path.ts';
 
 export interface JsonBounds {
@@ -24,10 +25,10 @@ export function parseJsonStrict(text: string, bounds: JsonBounds = DEFAULT_BOUND
   const reader = new Reader(text, bounds.maxDepth);
   try {
     const value = reader.document();
-    return reader.issues.length === 0 ? success(value) : failure(reader.issues);
+    return reader.issues.length === 0 ? success(value) : failure(capped(reader.issues));
   } catch (error) {
     if (!(error instanceof Unreadable)) throw error;
-    return failure([...reader.issues, error.issue]);
+    return failure(capped([...reader.issues, error.issue]));
   }
 }
 
@@ -53,8 +54,9 @@ class Unreadable extends Error {
 }
 
 const numberForm = /-?(?:0|[1-9]\d*)(?:\.\d+)?(?:[eE][+-]?\d+)?/y;
-const plainString = /"[^"\\\u0000-\u001f]*"/y;
-const anyString = /"(?:[^"\\\u0000-\u001f]|\\(?:["\\/bfnrt]|u[0-9a-fA-F]{4}))*"/y;
+/** Everything but control characters (below U+0020), the quote and the backslash. */
+const plainString = /"[\u0020\u0021\u0023-\u005b\u005d-\u{10ffff}]*"/uy;
+const anyString = /"(?:[\u0020\u0021\u0023-\u005b\u005d-\u{10ffff}]|\\(?:["\\/bfnrt]|u[0-9a-fA-F]{4}))*"/uy;
 const whiteSpace = /[ \t\n\r]*/y;
 
 class Reader {
@@ -79,7 +81,7 @@ class Reader {
   }
 
   #value(): unknown {
-    switch (this.#text[this.#at]) {
+    switch (this.#text.charAt(this.#at)) {
       case '{': return this.#nested(() => this.#object());
       case '[': return this.#nested(() => this.#list());
       case '"': return this.#string('a value');

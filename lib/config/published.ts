@@ -1,5 +1,4 @@
 /** For which wing and which sheet a site is judged where nobody has chosen (config/published.json): by the kind of site, or for one site. */
-import * as z from 'zod';
 import type { LimitSheet } from '../margin/sheet.ts';
 import { failure, success, type Issue, type Result } from '../result.ts';
 import type { Site } from '../site.ts';

@@ -1,5 +1,5 @@
 /** The shape of a site as a GeoJSON Feature (RFC 7946), strict: what is not named here is an error. */
-import * as z from 'zod';
+import type * as z from 'zod';
 import { fields, list, number, once, oneOf, trueOrFalse, wholeNumber } from './fields.ts';
 import { elevationRange, position, positionMaybeHigh } from './place.ts';
 import { kebabId, line } from './text.ts';

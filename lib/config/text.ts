@@ -15,7 +15,7 @@ export function line(most: number): z.ZodString {
   return z
     .string({ error })
     .refine((text) => text.trim() !== '', { error, params: { problem: 'this text is empty' } })
-    .refine((text) => [...text].length <= most, { error, params: { problem: 'this text is too long' } })
+    .refine((text) => Array.from(text).length <= most, { error, params: { problem: 'this text is too long' } })
     .refine((text) => !unprintable.test(text), {
       error: () => `${allowed}, all of them printable`,
       params: { problem: 'this text holds a line break, a control, a zero-width or a direction-turning character' },

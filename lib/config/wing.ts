@@ -2,7 +2,6 @@
  * A wing from a class, from a pilot's own three figures, or from a class with masses. Figures that no polar fits are
  * refused with the reason (flight model, section 4): the speed of least sink must lie between stall and trim.
  */
-import * as z from 'zod';
 import { failure, success, type Issue, type Result } from '../result.ts';
 import type { Wing, WingClass } from '../wing/wing.ts';
 import { check, issue, issuesIn } from './check.ts';

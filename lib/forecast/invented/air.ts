@@ -24,7 +24,7 @@ const INVERSION_K = 3;
 /** Heat that wears the night's inversion away, K m. */
 const INVERSION_HEAT_KM = 250;
 /** Cooling behind the front, K. */
-const COLD_AIR_K = 4;
+const COLD_AIR_K = 2;
 
 /** Free air reduced to sea level, °C: a cosine over the year, warmest on 24 July in the north, 22 January in the south. */
 function seaLevelC({ region, heat, latDeg }: AirParts, atMs: number): number {

@@ -94,7 +94,7 @@ describe('hours', () => {
 
   test('are at least one and at most 400', () => {
     expect(paths()).toEqual(['$']);
-    expect(pathsOf(parseHours(new Array(401).fill(hour())))).toEqual(['$']);
+    expect(pathsOf(parseHours(Array.from({ length: 401 }, () => hour())))).toEqual(['$']);
   });
 
   test.each([[null], [{}], ['x'], [undefined]])('%j are no hours', (json) => {

@@ -78,6 +78,12 @@ describe('what JSON.parse lets pass in silence is refused', () => {
   });
 });
 
+test('thirty thousand faults are counted, not listed', () => {
+  const issues = issuesOf(parseJsonStrict(`{${Array.from({ length: 30_000 }, () => '"a":1').join(',')}}`));
+  expect(issues).toHaveLength(500);
+  expect(issues.at(-1)?.value).toBe('29500 more');
+});
+
 describe('bounds', () => {
   test('twelve levels pass, the thirteenth is refused', () => {
     expect(parseJsonStrict('['.repeat(12) + ']'.repeat(12)).ok).toBe(true);

@@ -269,7 +269,7 @@ describe('a collection', () => {
   });
 
   test('B36 10,001 sites are too many, none too few', () => {
-    expect(pathsOf(parseSites({ type: 'FeatureCollection', features: new Array(10_001).fill(0) }, context))).toEqual(['$.features']);
+    expect(pathsOf(parseSites({ type: 'FeatureCollection', features: Array.from({ length: 10_001 }, () => 0) }, context))).toEqual(['$.features']);
     expect(pathsOf(parseSites(collection(), context))).toEqual(['$.features']);
   });
 
