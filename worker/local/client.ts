@@ -11,6 +11,7 @@ export interface Progress {
 
 export interface Client {
   isUp(): Promise<boolean>;
+  begin(): Promise<void>;
   seed(seed: Seed): Promise<readonly Issue[]>;
   morning(): Promise<void>;
   sweep(): Promise<void>;
@@ -41,6 +42,7 @@ export function clientOf(origin: string, token: string): Client {
         return false;
       }
     },
+    begin: async () => { await answer('/local/begin', { method: 'POST' }); },
     async seed(seed) {
       const response = await ask('/local/seed', { method: 'POST', body: JSON.stringify(seed) });
       const body = (await response.json()) as { readonly problems?: readonly Issue[]; readonly title?: string };

@@ -51,12 +51,15 @@ async function main(): Promise<number> {
     worker = dev({ folder: state.folder, port, variables: { PUBLIC_URL: origin, ...given, ...state.secrets, LOCAL: '1', LOCAL_TOKEN: localToken } });
     const client = clientOf(origin, localToken);
     await ready(client, worker);
+    await client.begin();
     const issues = await client.seed(plan.value.seed);
     if (issues.length > 0) throw new Refusal(issueLines(issues));
     const lines = { seen: Math.max(0, ...(await client.terminalAfter(0)).map(({ line }) => line)) };
+    const begunMs = Date.now();
     const days = await Promise.race([runMorning(client, plan.value), ending.then(() => null)]);
     if (days === null) return 0;
     console.log(morningText(days));
+    console.log(`This morning took ${((Date.now() - begunMs) / 1000).toFixed(1)} s.`);
     for (const message of await client.terminalAfter(lines.seen)) {
       lines.seen = message.line;
       console.log(`Delivered to this terminal: message ${message.messageId}.`);

@@ -81,7 +81,8 @@ export function dev({ folder, port, variables }: DevOptions): Running {
 export async function stop(run: Running): Promise<void> {
   const { pid } = run.process;
   if (pid === undefined || run.process.exitCode !== null) return;
-  signalGroup(pid, 'SIGTERM');
+  // Asked alone, wrangler ends its children itself and leaves nothing behind, not even an entry in the process table.
+  run.process.kill('SIGTERM');
   const timer = setTimeout(() => signalGroup(pid, 'SIGKILL'), 3000);
   await run.ended;
   clearTimeout(timer);

@@ -5,7 +5,7 @@ import type { Pair } from '../store/published.ts';
 import { fetchKey, type WantedAssess, type WantedFetch } from '../store/run.ts';
 import type { DueGroup } from '../store/subscription.ts';
 import { placesOf } from './places.ts';
-import { ASSESS_BY_MS, DELIVER_WITHIN_MS, followingDueMs, judgedDate, READY_BY_MS, REFETCH_AFTER_MS, RETRY_FAILED_FETCH_AFTER_MS } from './times.ts';
+import { DELIVER_WITHIN_MS, followingDueMs, judgedDate, REFETCH_AFTER_MS, RETRY_FAILED_FETCH_AFTER_MS, USUAL_PATIENCE, type Patience } from './times.ts';
 
 /**
  * First step of a morning: everyone whose minute has come gets a row in the outbox, what their briefs need becomes rows
@@ -17,27 +17,27 @@ export interface Planned {
   readonly assessments: number;
 }
 
-export async function planDue(services: Services, nowMs: number): Promise<Planned> {
+export async function planDue(services: Services, nowMs: number, patience: Patience = USUAL_PATIENCE): Promise<Planned> {
   const { stores } = services;
   const groups = await stores.subscription.dueGroups(nowMs);
   if (groups.length === 0) return { groups: 0, fetches: 0, assessments: 0 };
   const pairs = await stores.subscription.duePairs(nowMs);
   const places = await placesOf(services, [...new Set(pairs.map((pair) => pair.siteId))]);
   const published = (await stores.published.all()).filter((pair) => places.has(pair.siteId));
-  const assessments = wantedAssessments(places, pairs, published);
+  const assessments = wantedAssessments({ places, pairs, published, patience });
   const fetches = await wantedFetches(services, { places, assessments, nowMs });
   const following = groups.map((group) => ({ ...group, followingAtMs: followingDueMs(group, nowMs) }));
   await stores.db.together([
     stores.run.wantFetches(fetches),
     stores.run.wantAssessments(assessments),
-    stores.outbox.plan(groups.map((group) => plannedGroup(group, nowMs)), nowMs),
+    stores.outbox.plan(groups.map((group) => plannedGroup(group, nowMs, patience)), nowMs),
     stores.subscription.advance(following),
   ]);
   return { groups: groups.length, fetches: fetches.length, assessments: assessments.length };
 }
 
 /** A morning that is found too late to be of use is owned up to instead. */
-function plannedGroup(group: DueGroup, nowMs: number): PlannedGroup {
+function plannedGroup(group: DueGroup, nowMs: number, patience: Patience): PlannedGroup {
   const isMissed = nowMs >= group.nextDueAtMs + DELIVER_WITHIN_MS;
   const dueAtMs = group.nextDueAtMs;
   return {
@@ -45,23 +45,24 @@ function plannedGroup(group: DueGroup, nowMs: number): PlannedGroup {
     kind: isMissed ? 'missed' : 'brief',
     dueLocalDate: localDate(dueAtMs, group.timeZone),
     dueAtMs,
-    readyByMs: Math.max(dueAtMs, nowMs) + READY_BY_MS,
+    readyByMs: Math.max(dueAtMs, nowMs) + patience.readyWithinMs,
     validUntilMs: (isMissed ? nowMs : dueAtMs) + DELIVER_WITHIN_MS,
   };
 }
 
 /** What subscribers want, and with it what the board shows of the same sites on the same dates. */
-function wantedAssessments(
-  places: ReadonlyMap<string, Place>,
-  pairs: readonly (Pair & { readonly dueAtMs: number })[],
-  published: readonly Pair[],
-): WantedAssess[] {
+function wantedAssessments({ places, pairs, published, patience }: {
+  readonly places: ReadonlyMap<string, Place>;
+  readonly pairs: readonly (Pair & { readonly dueAtMs: number })[];
+  readonly published: readonly Pair[];
+  readonly patience: Patience;
+}): WantedAssess[] {
   const wanted = new Map<string, WantedAssess>();
   const want = (pair: Pair, localDate: string, dueAtMs: number): void => {
     const key = JSON.stringify([pair.siteId, localDate, pair.wingKey, pair.sheetId]);
     const earlier = wanted.get(key);
     const earliestMs = Math.min(earlier?.dueAtMs ?? dueAtMs, dueAtMs);
-    wanted.set(key, { siteId: pair.siteId, wingKey: pair.wingKey, sheetId: pair.sheetId, localDate, dueAtMs: earliestMs, startByMs: earliestMs + ASSESS_BY_MS });
+    wanted.set(key, { siteId: pair.siteId, wingKey: pair.wingKey, sheetId: pair.sheetId, localDate, dueAtMs: earliestMs, startByMs: earliestMs + patience.assessWithinMs });
   };
   for (const pair of pairs) {
     const place = places.get(pair.siteId);
@@ -86,9 +87,9 @@ async function wantedFetches(
   for (const { siteId, localDate, dueAtMs } of siteDays.values()) {
     const place = places.get(siteId);
     if (place === undefined) continue;
-    for (const source of services.sourcesFor(place)) {
+    for (const [position, source] of services.sourcesFor(place).entries()) {
       const fetch = { siteId, localDate, source: source.id };
-      if (!fresh.has(fetchKey(fetch))) wanted.push({ ...fetch, dueAtMs });
+      if (!fresh.has(fetchKey(fetch))) wanted.push({ ...fetch, dueAtMs, position });
     }
   }
   return wanted;

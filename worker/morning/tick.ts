@@ -3,6 +3,7 @@ import type { Services } from '../service-set.ts';
 import { SCHEMA_VERSION } from '../store/meta.ts';
 import { planDue } from './due.ts';
 import { sweep, tidy } from './sweep.ts';
+import { USUAL_PATIENCE, type Patience } from './times.ts';
 
 /** Ticks further apart than this mean that the platform did not call us. */
 const GAP_MS = 5 * MINUTE_MS;
@@ -11,7 +12,7 @@ const GAP_MS = 5 * MINUTE_MS;
  * Once a minute. The run's key comes from the scheduled time, so that a tick that is called twice works once; a tick that
  * never came is made up for by the next, because what is due is found by its time and not by the tick.
  */
-export async function tick(services: Services, scheduledAtMs: number): Promise<void> {
+export async function tick(services: Services, scheduledAtMs: number, patience: Patience = USUAL_PATIENCE): Promise<void> {
   const { stores, clock } = services;
   const meta = await stores.meta.all();
   if (Number(meta.get('schema')) !== SCHEMA_VERSION) {
@@ -23,7 +24,7 @@ export async function tick(services: Services, scheduledAtMs: number): Promise<v
   if (nowMs - lastTickMs > GAP_MS) {
     await stores.log.write([{ level: 'warning', step: 'tick', event: 'ticks-absent', detail: { minutes: Math.round((nowMs - lastTickMs) / MINUTE_MS) } }], nowMs);
   }
-  await planDue(services, nowMs);
+  await planDue(services, nowMs, patience);
   await sweep(services, nowMs);
   await tidy(services, nowMs, Number(meta.get('last-tidy') ?? 0));
   const done = stores.meta.setting('last-tick', String(nowMs));

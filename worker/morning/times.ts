@@ -2,15 +2,20 @@ import { legalDay } from '../../lib/sky/sun.ts';
 import type { Site } from '../../lib/site.ts';
 import { instantOfLocal, localDate, localDay, MINUTE_MS, HOUR_MS, shiftDate } from '../../lib/time.ts';
 
-/**
- * The times of a morning, in one place. A fetch older than three hours is made again before a brief; one that failed is
- * tried again sooner. Whatever the forecasts do, the message leaves: it waits for its briefs for ten minutes, and the
- * briefs for their forecasts for four.
- */
+/** A fetch older than three hours is made again before a brief; one that failed is tried again sooner. */
 export const REFETCH_AFTER_MS = 3 * HOUR_MS;
 export const RETRY_FAILED_FETCH_AFTER_MS = 10 * MINUTE_MS;
-export const ASSESS_BY_MS = 4 * MINUTE_MS;
-export const READY_BY_MS = 10 * MINUTE_MS;
+
+/** Whatever the forecasts do, the message leaves: how long it waits for its briefs, and the briefs for their forecasts. */
+export interface Patience {
+  readonly assessWithinMs: number;
+  readonly readyWithinMs: number;
+}
+
+export const USUAL_PATIENCE: Patience = { assessWithinMs: 4 * MINUTE_MS, readyWithinMs: 10 * MINUTE_MS };
+/** Somebody sits and watches. */
+export const SHORT_PATIENCE: Patience = { assessWithinMs: 20_000, readyWithinMs: 25_000 };
+
 /** A brief that could not be handed over within six hours is of no use for the morning it was made for. */
 export const DELIVER_WITHIN_MS = 6 * HOUR_MS;
 

@@ -2,7 +2,7 @@ import { Hono } from 'hono';
 import type { Issue } from '../../lib/result.ts';
 import { sweep } from '../morning/sweep.ts';
 import { tick } from '../morning/tick.ts';
-import { followingDueMs } from '../morning/times.ts';
+import { followingDueMs, SHORT_PATIENCE } from '../morning/times.ts';
 import { sameText } from '../secrets.ts';
 import type { Services } from '../service-set.ts';
 import { jsonBody } from './body.ts';
@@ -45,12 +45,18 @@ export function local(services: Services): Hono {
     return json({ sites: seed.sites.length, subscriptions: seed.subscriptions.length });
   });
 
+  /** A new start on a folder that only one start can hold: leases of the one before would only make everybody wait. */
+  app.post('/begin', async () => {
+    await stores.db.together(stores.outboxUpkeep.dropLeases());
+    return json({ at: clock.nowMs() });
+  });
+
   /** This morning, now. */
   app.post('/morning', async () => {
     const nowMs = clock.nowMs();
     const due = stores.subscription.makeAllDue(nowMs);
     await stores.db.write(due.sql, ...due.values);
-    await tick(services, nowMs);
+    await tick(services, nowMs, SHORT_PATIENCE);
     return json({ at: nowMs });
   });
 

@@ -27,6 +27,10 @@ export function outboxUpkeepStore(db: Database) {
         },
       ];
     },
+    /** For a machine of its own on which whoever held a lease is known to be gone. */
+    dropLeases(): Statement[] {
+      return ['outbox', 'run'].map((table) => ({ sql: `UPDATE ${table} SET lease_until = NULL, lease_by = NULL WHERE lease_until IS NOT NULL`, values: [] }));
+    },
     /** How many rows there are in each state; their sum is how many were ever created and are still kept. */
     async counts(): Promise<Readonly<Record<OutboxState, number>>> {
       const rows = await db.read<{ state: OutboxState; n: number }>('SELECT state, COUNT(*) AS n FROM outbox GROUP BY state');

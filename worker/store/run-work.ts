@@ -38,7 +38,7 @@ export function runWorkStore(db: Database) {
     claimFetches({ nowMs, leaseMs, by, limit }: Claim): Promise<FetchRun[]> {
       return db.take<FetchRun>(
         `UPDATE run SET lease_until = ?1 + ?2, lease_by = ?3, attempts = attempts + 1 WHERE key IN (
-          SELECT r.key FROM run AS r JOIN (SELECT source, local_date FROM run AS f WHERE step = 'fetch' AND ${free('f')} ORDER BY due_at, key LIMIT 1) AS first
+          SELECT r.key FROM run AS r JOIN (SELECT source, local_date FROM run AS f WHERE step = 'fetch' AND ${free('f')} ORDER BY start_by, key LIMIT 1) AS first
             ON r.source = first.source AND r.local_date = first.local_date
           WHERE r.step = 'fetch' AND ${free('r')} ORDER BY r.due_at, r.key LIMIT ?4)
           RETURNING key, site_id AS siteId, local_date AS localDate, source, attempts`,

@@ -7,6 +7,8 @@ export interface WantedFetch {
   readonly localDate: string;
   readonly source: string;
   readonly dueAtMs: number;
+  /** Place of the source in the order in which they are asked. */
+  readonly position: number;
 }
 
 export interface WantedAssess extends PairDay {
@@ -53,7 +55,7 @@ export function runStore(db: Database) {
       return new Set(rows.map((row) => row.key));
     },
     wantFetches(wanted: readonly WantedFetch[]): Statement {
-      const list = wanted.map((item) => ({ ...item, startByMs: item.dueAtMs, key: fetchKey(item) }));
+      const list = wanted.map((item) => ({ ...item, startByMs: item.dueAtMs + item.position, key: fetchKey(item) }));
       return { sql: WANT('source', `value ->> 'source'`, 'fetch'), values: [JSON.stringify(list)] };
     },
     wantAssessments(wanted: readonly WantedAssess[]): Statement {

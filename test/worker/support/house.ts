@@ -147,7 +147,7 @@ export class House {
   async #post(url: string, init: RequestInit): Promise<Response> {
     this.calls.fetch += 1;
     const headers = new Headers(init.headers);
-    const post = { url, id: headers.get('webhook-id') ?? '', headers, body: String(init.body), atMs: this.nowMs };
+    const post = { url, id: headers.get('webhook-id') ?? '', headers, body: typeof init.body === 'string' ? init.body : '', atMs: this.nowMs };
     const response = await (this.options.answer?.(post) ?? new Response(null, { status: 204 }));
     this.posts.push(post);
     return response;

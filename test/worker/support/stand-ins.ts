@@ -46,5 +46,5 @@ export function judgedAs(input: DayInput, verdict: Verdict): JudgedDay {
 
 function hourAs(validAt: string, verdict: Verdict): JudgedHour {
   const margin = { id: 'meanWind', spare: 1, limit: 6, demand: 5, unit: 'm/s', status: verdict, missing: [], source: 'stand-in:one' } as const;
-  return { validAt, verdict, causes: ['meanWind'], margins: [margin], bySource: [], airspeed: null, speedToFlyMps: null, heading: null };
+  return { validAt, verdict, causes: ['meanWind'], margins: [margin], bySource: [], wind: null, ensemble: null, airspeed: null, speedToFlyMps: null, heading: null };
 }
