@@ -118,11 +118,11 @@ describe('hostile names are inert', () => {
     };
     for (const path of ['/', '/sites/kestrel-edge', `/sites/kestrel-edge/what-if?wind=${encodeURIComponent(name.replace('\uD800', ''))}`]) {
       const { markup } = await get(path, one(day));
-      const tags = markup.match(/<[^>]*>/g) ?? [];
+      const tags = (markup.match(/<[^>]*>/g) ?? []).map((tag) => tag.replace(/"[^"]*"/g, '""'));
       // Tags that are ours, attributes that are ours; no control, bidi or invisible character; nothing so long that it pushes the verdict away.
       expect(tags.filter((tag) => /^<script/i.test(tag))).toHaveLength(1);
       expect(tags.filter((tag) => /^<(img|b)\b|\son[a-z]+\s*=/i.test(tag))).toEqual([]);
-      expect(/[\p{Cf}\p{Cs}\u0000-\u0008\u000b-\u001f]/u.test(markup)).toBe(false);
+      expect(/[\p{Cf}\p{Cs}]|[^\P{Cc}\n\t]/u.test(markup)).toBe(false);
       expect(text(markup).includes('x'.repeat(301))).toBe(false);
     }
   });
