@@ -33,6 +33,8 @@ export interface HouseOptions {
   readonly answer?: (post: Post) => Response | Promise<Response>;
   readonly source?: (request: SourceRequest) => Promise<ReadonlyMap<string, SourceAnswer>>;
   readonly judge?: (input: DayInput) => JudgedDay;
+  /** The real judge and the demo's invented weather instead of stand-ins. */
+  readonly real?: boolean;
   /** Between the worker and the database. */
   readonly around?: (d1: D1) => D1;
 }
@@ -74,7 +76,7 @@ export class House {
         ids: { next: () => `by-${(this.#ids += 1)}` },
         random: () => 0.5,
       },
-      { sourcesFor: () => [this.#source()], judge: this.options.judge ?? ((input) => judgedAs(input, 'within')) },
+      this.options.real === true ? {} : { sourcesFor: () => [this.#source()], judge: this.options.judge ?? ((input) => judgedAs(input, 'within')) },
     );
   }
 
