@@ -222,6 +222,11 @@ describe('accepted', () => {
     expect(launch(withProperty(launchFeature(), 'sectors', [{ fromDeg: 350, toDeg: 10, maxMps: 0, why: 'wall' }])).sectors).toHaveLength(1);
   });
 
+  test('B15 sectors that overlap: the margin takes the least of those that hold the wind', () => {
+    const sectors = [{ fromDeg: 300, toDeg: 20, maxMps: 2, why: 'trees' }, { fromDeg: 350, toDeg: 60, maxMps: 4, why: 'barn' }];
+    expect(launch(withProperty(launchFeature(), 'sectors', sectors)).sectors).toEqual(sectors);
+  });
+
   test.each(['Europe/Vienna', 'America/Argentina/Buenos_Aires', 'Europe/Kyiv', 'Europe/Kiev', 'America/Port-au-Prince'])('the zone %s', (zone) => {
     expect(issuesOf(parseSiteFeature(withProperty(launchFeature(), 'timeZone', zone), context)).every(({ problem }) => !problem.includes('Area/City'))).toBe(true);
   });
