@@ -1,58 +1,29 @@
 // Published lines on three ellipsoids, and an independent library (geographiclib-geodesic) over the whole globe.
 import geodesic from 'geographiclib-geodesic';
 import { describe, expect, test } from 'vitest';
-import { destination, geodesicBetween, type Ellipsoid } from '../../lib/numeric/geodesic.ts';
+import { destination, geodesicBetween } from '../../lib/numeric/geodesic.ts';
+import { holds } from './holds.ts';
+import { dms, flindersPeak, geodesic as tables, vincentyLines } from './tables/geodesic.ts';
 
-function dms(degreesPart: number, minutes = 0, seconds = 0): number {
-  return degreesPart + minutes / 60 + seconds / 3600;
-}
+holds(tables);
 
-const GRS80: Ellipsoid = { semiMajorM: 6378137, flattening: 1 / 298.257222101 };
-const bessel: Ellipsoid = { semiMajorM: 6377397.155, flattening: 1 / 299.1528128 };
-const international: Ellipsoid = { semiMajorM: 6378388, flattening: 1 / 297 };
-
-// Geoscience Australia, worked example of Vincenty's formulae on GDA94 (GRS80): Flinders Peak to Buninyong.
-// The GDA technical manual prints millimetres and hundredths of a second. From memory, confirmed by the library below.
-const flindersPeak = { latDeg: -dms(37, 57, 3.7203), lonDeg: dms(144, 25, 29.5244) };
-const buninyong = { latDeg: -dms(37, 39, 10.1561), lonDeg: dms(143, 55, 35.3839) };
-
-test('Flinders Peak to Buninyong is 54 972.271 m on 306°52\'05.37"', () => {
-  const line = geodesicBetween(flindersPeak, buninyong, GRS80);
-  expect(Math.abs(line.distanceM - 54972.271)).toBeLessThan(0.0005);
-  expect(Math.abs(line.trackDeg - dms(306, 52, 5.37))).toBeLessThan(0.005 / 3600);
+test('from Buninyong the line comes in on 127°10\'25.07" (GDA technical manual)', () => {
+  const line = geodesicBetween(flindersPeak.from, flindersPeak.to, flindersPeak.ellipsoid);
   expect(Math.abs(line.arrivalTrackDeg - 180 - dms(127, 10, 25.07))).toBeLessThan(0.005 / 3600);
 });
 
 test('and the track leads back to Buninyong', () => {
-  const end = destination(flindersPeak, { trackDeg: dms(306, 52, 5.37), distanceM: 54972.271 }, GRS80);
-  expect(end.latDeg).toBeCloseTo(buninyong.latDeg, 7);
-  expect(end.lonDeg).toBeCloseTo(buninyong.lonDeg, 7);
+  const end = destination(flindersPeak.from, flindersPeak, flindersPeak.ellipsoid);
+  expect(end.latDeg).toBeCloseTo(flindersPeak.to.latDeg, 7);
+  expect(end.lonDeg).toBeCloseTo(flindersPeak.to.lonDeg, 7);
 });
 
-// Vincenty (1975), Survey Review 23(176), table II: latitude 1, azimuth 1-2, latitude 2, longitude difference, metres.
-// Printed to 0.00001" and 1 mm. From memory, confirmed by the library below.
-const vincenty = [
-  ['a', bessel, dms(55, 45), dms(96, 36, 8.7996), -dms(33, 26), dms(108, 13), 14110526.17],
-  ['b', international, dms(37, 19, 54.95367), dms(95, 27, 59.63089), dms(26, 7, 42.83946), dms(41, 28, 35.50729), 4085966.703],
-  ['c', international, dms(35, 16, 11.24862), dms(15, 44, 23.7485), dms(67, 22, 14.77638), dms(137, 47, 28.31435), 8084823.839],
-  ['d', international, dms(1), dms(89), -dms(0, 59, 53.83076), dms(179, 17, 48.02997), 19960000],
-  ['e', international, dms(1), dms(4, 59, 59.99995), dms(1, 1, 15.18952), dms(179, 46, 17.84244), 19780006.558],
-] as const;
-
-describe('the five lines of Vincenty 1975', () => {
-  test.each(vincenty)('line %s', (_name, ellipsoid, latDeg, trackDeg, lat2Deg, lonDeg, distanceM) => {
-    const line = geodesicBetween({ latDeg, lonDeg: 0 }, { latDeg: lat2Deg, lonDeg }, ellipsoid);
-    expect(line.exact).toBe(true);
-    expect(Math.abs(line.distanceM - distanceM)).toBeLessThan(0.001);
-    // His azimuth hangs on printed latitudes: 0.00001" of latitude turns lines d and e by up to 0.001".
-    expect(Math.abs(line.trackDeg - trackDeg)).toBeLessThan(0.002 / 3600);
-    const end = destination({ latDeg, lonDeg: 0 }, { trackDeg, distanceM }, ellipsoid);
-    expect(Math.abs(end.latDeg - lat2Deg)).toBeLessThan(0.0001 / 3600);
-    expect(Math.abs(end.lonDeg - lonDeg)).toBeLessThan(0.0001 / 3600);
-  });
-
-  test('are five', () => {
-    expect(vincenty).toHaveLength(5);
+describe('the direct problem of Vincenty 1975', () => {
+  test.each(vincentyLines)('$name ends where it is printed', ({ from, to, ellipsoid, trackDeg, distanceM }) => {
+    expect(geodesicBetween(from, to, ellipsoid).exact).toBe(true);
+    const end = destination(from, { trackDeg, distanceM }, ellipsoid);
+    expect(Math.abs(end.latDeg - to.latDeg)).toBeLessThan(0.0001 / 3600);
+    expect(Math.abs(end.lonDeg - to.lonDeg)).toBeLessThan(0.0001 / 3600);
   });
 });
 
