@@ -72,13 +72,15 @@ export const issuedAt = '2027-05-14T03:00:00Z';
 export const request = { fromUtc: '2027-05-13T21:00:00Z', toUtc: '2027-05-14T23:00:00Z' };
 export const runAt = '2027-05-14T00:00:00Z';
 
-export function askOf(entry: OpenMeteoSource): Ask {
-  return { ...entry, fromMs: epochOf(request.fromUtc), toMs: epochOf(request.toUtc) };
+export type Window = typeof request;
+
+export function askOf(entry: OpenMeteoSource, window: Window = request): Ask {
+  return { ...entry, fromMs: epochOf(window.fromUtc), toMs: epochOf(window.toUtc) };
 }
 
 /** What the documented service answers for a place, ours to spoil. */
-export function cleanLocation(entry: OpenMeteoSource, place: { readonly latDeg: number; readonly lonDeg: number } = site): Location {
-  const ask = askOf(entry);
+export function cleanLocation(entry: OpenMeteoSource, place: { readonly latDeg: number; readonly lonDeg: number } = site, window: Window = request): Location {
+  const ask = askOf(entry, window);
   const url = forecastUrl({
     origin: 'https://a.example', path: entry.kind === 'ensemble' ? '/v1/ensemble' : '/v1/forecast', model: entry.model, points: [place],
     variables: columnsFor(ask).keys(), fromMs: ask.fromMs - HOUR_MS, toMs: ask.toMs + HOUR_MS,
@@ -89,19 +91,24 @@ export function cleanLocation(entry: OpenMeteoSource, place: { readonly latDeg: 
 }
 
 export interface ReadOptions {
+  readonly window?: Window;
   readonly run?: string | null;
   readonly site?: Site;
   readonly pressures?: { readonly a: number | null; readonly b: number | null };
 }
 
 /** The adapter's way from text to forecast. */
-export function read(text: string, entry: OpenMeteoSource, options: ReadOptions = {}): Result<Forecast, SourceFailure> {
+export function readFor(text: string, entry: OpenMeteoSource, options: ReadOptions): Result<Forecast, SourceFailure> {
   const { run = runAt, pressures = { a: null, b: null } } = options;
   const json = readJson(text);
   if (json === undefined) return failure({ kind: 'not-json' });
   const locations = readAnswer(json, 1);
   if (!locations.ok) return locations;
-  return forecastOf(entry, options.site ?? site, { location: locations.value[0]!, ask: askOf(entry), pressures: () => pressures, runAt: run, fetchedAt: issuedAt });
+  return forecastOf(entry, options.site ?? site, { location: locations.value[0]!, ask: askOf(entry, options.window), pressures: () => pressures, runAt: run, fetchedAt: issuedAt });
+}
+
+export function read(text: string, entry: OpenMeteoSource, options: ReadOptions = {}): Result<Forecast, SourceFailure> {
+  return readFor(text, entry, options);
 }
 
 /** JSON has no word for Infinity; the text 1e999 says it. */
@@ -110,10 +117,12 @@ export function textOf(value: unknown): string {
   return text.includes('1e999!') ? text.replaceAll(/"(-?1e999)!"/g, '$1') : text;
 }
 
+export const enB = valueOf(parseWing({ class: 'EN B' }, classes));
+
 export function judge(answers: DayInput['answers'], changes: Partial<DayInput> & { readonly sheetId?: string } = {}): JudgedDay {
   const { sheetId = 'descent-new', ...rest } = changes;
   return judgeDay({
-    site, wing: valueOf(parseWing({ class: 'EN B' }, classes)), wingKey: 'EN B', wingName: 'EN B', sheet: sheets.find(({ id }) => id === sheetId)!,
+    site, wing: enB, wingKey: 'EN B', wingName: 'EN B', sheet: sheets.find(({ id }) => id === sheetId)!,
     localDate, issuedAt, validUntil: '2027-05-14T22:00:00Z', answers, demo: false, thresholds, storedGroundM: {}, ...rest,
   });
 }

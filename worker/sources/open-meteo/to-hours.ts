@@ -28,7 +28,7 @@ export function toMembers(location: AnswerLocation, ask: Ask): Result<readonly (
   const { groundM } = location;
   if (groundM === null) return failure({ kind: 'ground', why: 'missing', byM: null });
   const wanted = stamps.value.filter((at) => at >= ask.fromMs && at <= ask.toMs);
-  if (wanted.length === 0) return failure({ kind: 'times', why: 'wrong-day' });
+  if (wanted.length === 0 || isShifted(stamps.value, ask)) return failure({ kind: 'times', why: 'wrong-day' });
   const rows = new Map(stamps.value.map((at, row) => [at, row]));
   const members = Array.from({ length: ask.members }, (_, member) => {
     const read = reader(location, ask.model, { rows, member });
@@ -46,6 +46,16 @@ function stampsOf(location: AnswerLocation): Result<readonly number[], SourceFai
   const stamps = time.values.map((value) => (typeof value === 'number' ? value * 1000 : NaN));
   const why = timesFault(stamps);
   return why === null ? success(stamps) : failure({ kind: 'times', why });
+}
+
+/**
+ * A span as long as what was asked for, an hour more on each side included, but not that span: an answer moved by a zone
+ * or a clock change, in which every value would stand at a wrong time. Shorter or longer spans are looked up by stamp.
+ */
+function isShifted(stamps: readonly number[], ask: Ask): boolean {
+  const atStart = (stamps[0] ?? NaN) - (ask.fromMs - HOUR_MS);
+  const atEnd = (stamps.at(-1) ?? NaN) - (ask.toMs + HOUR_MS);
+  return atStart !== 0 && atStart === atEnd;
 }
 
 /** The first column that has a unit other than the one asked for. "undefined" means that the model lacks the variable. */
