@@ -57,7 +57,7 @@ describe('every table', () => {
 
 describe('the README', () => {
   const readme = readFileSync(path.join(root, 'README.md'), 'utf8');
-  const shown = /<!-- accuracy: begin -->\n([\s\S]*)<!-- accuracy: end -->/.exec(readme)?.[1];
+  const shown = /<!-- accuracy:begin -->\n([\s\S]*)<!-- accuracy:end -->/.exec(readme)?.[1];
 
   test('shows what npm run accuracy prints', () => {
     const { scripts } = JSON.parse(readFileSync(path.join(root, 'package.json'), 'utf8')) as { scripts: Record<string, string> };
