@@ -25,7 +25,10 @@ export function angleBetweenDeg(aDeg: number, bDeg: number): number {
   return Math.abs(turnDeg(aDeg, bDeg));
 }
 
+/** A direction that was carried through a vector comes back this near, so that one on an edge may lie a hair outside it. */
+const EDGE_DEG = 1e-9;
+
 /** Whether a direction lies in the sector that runs clockwise from `fromDeg` to `toDeg`, both edges included. */
 export function inSector(deg: number, sector: { readonly fromDeg: number; readonly toDeg: number }): boolean {
-  return normalDeg(deg - sector.fromDeg) <= normalDeg(sector.toDeg - sector.fromDeg);
+  return normalDeg(deg - sector.fromDeg + EDGE_DEG) <= normalDeg(sector.toDeg - sector.fromDeg) + 2 * EDGE_DEG;
 }
