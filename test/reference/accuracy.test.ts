@@ -1,6 +1,6 @@
 /**
- * The gate over every published table, and the README that shows it. Topics of the reference collection that have no
- * table here, because the model does not compute them:
+ * The gate over every published table, and the README that shows it. Topics with published numbers that have
+ * no table here, because the model does not compute them:
  *
  * | topic | why not |
  * |---|---|
@@ -11,7 +11,7 @@
  * | EN 1991-1-4, ASCE 7 and AS/NZS 1170.2 hills, inner layer, lee separation | one guideline is used; of ASCE 7 the cap of the slope |
  * | wind at the foot of Askervein, turbulence on its crest | no slow-down is modelled; that turbulence does not speed up is a choice, not a number |
  * | gust factors over other times, turbulence intensity, gust formulas of services | gusts come from the forecast; a typical factor is only shown |
- * | cross-country speed, parabolic drag, lift coefficient, half the headwind, EN report lines, line strength | not computed |
+ * | cross-country speed, parabolic drag, lift coefficient, half the headwind, EN report lines, line strength, glide of other aircraft | not computed |
  * | speed of the run | a margin: tested with the margins |
  * | Allen's thermal, buoyancy velocity, K and lifted index, CAPE words, stability, moist adiabat, radiation | strength is the scale velocity; CAPE is compared with the sheet as it comes |
  * | condensation over ice, or of air at 200 K | outside the formula's range and anybody's launch |

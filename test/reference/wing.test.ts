@@ -22,7 +22,7 @@ function polarOf({ trimKmh, glideAtTrim, minSinkMps }: { trimKmh: number; glideA
   return made.value;
 }
 
-// Common practice, no source: what the reference collection says of paragliders in general.
+// Common practice, no source: what is said of paragliders in general.
 describe.each(Object.entries(classes))('a wing of class %s', (_name, figures) => {
   const wing = polarOf(figures);
 

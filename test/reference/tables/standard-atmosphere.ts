@@ -37,8 +37,8 @@ const rememberedRows: readonly Row[] = [
   [4000, 262.166, 61660, 0.81935],
 ];
 
-// Geopotential height. The standard's defining equations with its constants, worked out for the reference file of this
-// project: they show that the equations are typed right.
+// Geopotential height. The standard's defining equations with its constants, worked out once apart from
+// this code: they show that the equations are typed right.
 const defined = { source: 'ISO 2533:1975, defining equations', standing: 'memory', evidence: 'formula' } as const;
 const definedRows: readonly Row[] = [
   [0, 288.15, 101325, 1.225],

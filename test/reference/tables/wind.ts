@@ -53,7 +53,7 @@ const calm = table(
   { says: () => 'below the lower bound of force 1', expected: ([mps]) => mps, ours: () => CALM_BELOW_MPS },
 );
 
-// Definitions: 1 mile 1609.344 m, 1 nautical mile 1852 m, 1 ft 0.3048 m. The project's reference file prints six figures.
+// Definitions: 1 mile 1609.344 m, 1 nautical mile 1852 m, 1 ft 0.3048 m; to six figures.
 const units = table(
   { topic: 'Units of speed and length', unit: 'm/s or m', source: 'definitions of mile, nautical mile and foot', standing: 'memory', evidence: 'formula', rounding: 'to six figures', tolerance: 0.0000005, count: 4 },
   [['a knot', 0.514444, MPS_PER_KT], ['a mile an hour', 0.44704, MPS_PER_MPH], ['a kilometre an hour', 0.277778, MPS_PER_KMH], ['a foot', 0.3048, M_PER_FT]] as const,
