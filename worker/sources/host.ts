@@ -5,7 +5,7 @@
  */
 import { afterFailure, afterSuccess, CLOSED, parseBreaker, permit, type BreakerState } from './breaker.ts';
 import { afterUse, fullUntilMs, parseUsage, type Quota, type Usage } from './quota.ts';
-import { safeFetch, type Answer, type Outside } from './safe-fetch.ts';
+import { isWorthAnotherTry, safeFetch, type Answer, type Outside } from './safe-fetch.ts';
 import type { SourceFailure } from '../../lib/forecast/failure.ts';
 import { failure, type Result } from '../../lib/result.ts';
 import { isoUtc } from '../../lib/time.ts';
@@ -33,6 +33,13 @@ export interface Host {
 export interface SharedQuota {
   readonly name: string;
   readonly quota: Quota;
+}
+
+/** Two tries that failed are two failures. */
+function afterTries(state: BreakerState, failed: SourceFailure, nowMs: number): BreakerState {
+  const once = afterFailure(state, failed, nowMs);
+  const isOpened = once.openUntilMs !== null && once.openUntilMs > nowMs;
+  return isWorthAnotherTry(failed) && !isOpened ? afterFailure(once, failed, nowMs) : once;
 }
 
 export function createHost(origin: string, outside: Outside & { readonly breakers: BreakerStore }, shared: SharedQuota | null = null): Host {
@@ -66,7 +73,7 @@ export function createHost(origin: string, outside: Outside & { readonly breaker
       if (refusal !== null) return failure(refusal);
       await keep(permission.state);
       const result = await safeFetch({ url: origin + path, origins: [origin], headers }, outside);
-      await keep(result.ok ? afterSuccess() : afterFailure(state ?? CLOSED, result.error, outside.now()));
+      await keep(result.ok ? afterSuccess() : afterTries(state ?? CLOSED, result.error, outside.now()));
       return result;
     },
   };

@@ -58,8 +58,8 @@ export async function safeFetch(question: Question, outside: Outside): Promise<R
   }
 }
 
-/** A fault that may be gone in a moment. What they refused, and what was sent whole and wrong, stays so. */
-function isWorthAnotherTry(why: SourceFailure): boolean {
+/** A fault that may be gone in a moment, so that it comes from two tries. What they refused, and what was sent whole and wrong, stays so. */
+export function isWorthAnotherTry(why: SourceFailure): boolean {
   return why.kind === 'unreachable' || why.kind === 'timeout' || why.kind === 'server-error' || why.kind === 'not-json';
 }
 
