@@ -1,7 +1,7 @@
 /** What the pages ask of the rest: stored briefs, one judged day, and the working behind its numbers. No page computes. */
 import type { JudgedDay, JudgedHour } from '../../lib/brief/day.ts';
 import type { OwnNumbers } from './own-numbers.ts';
-import type { WhatIf } from './what-if-data.ts';
+import type { AssessedHour } from '../../lib/brief/judge-hours.ts';
 import type { MarginId, Term } from '../../lib/margin/ids.ts';
 
 export interface BoardSite {
@@ -120,6 +120,11 @@ export interface WhatIfQuery extends DayQuery {
   /** What was wrong with the typed numbers: nothing is judged then. */
   readonly problems: readonly string[];
 }
+
+/** One hour judged with own numbers, from the forecast of one source; or what stood in the way. */
+export type WhatIf =
+  | { readonly kind: 'judged'; readonly hour: AssessedHour; readonly source: string }
+  | { readonly kind: 'problems'; readonly problems: readonly string[] };
 
 export type WhatIfAnswer =
   | { readonly kind: 'answer'; readonly day: JudgedDay; readonly hour: string; readonly given: OwnNumbers; readonly answer: WhatIf }

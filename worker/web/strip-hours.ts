@@ -17,5 +17,5 @@ export function stripHours(day: JudgedDay, reader: Reader): Piece {
   if (day.kind !== 'strip' || day.hours.length === 0) return null;
   const heads = ['Hour', 'Verdict', 'Tow along', 'Release', 'Line falls aside', 'Tightest'];
   return html`<section aria-labelledby="tow-h"><h2 id="tow-h">The tow, hour by hour</h2><p class="stop">${lastLaunchOfDay(day)}</p>
-<div class="scroll" tabindex="0" role="region" aria-label="The tow, hour by hour"><table><thead><tr>${heads.map((head) => html`<th scope="col">${head}</th>`)}</tr></thead><tbody>${day.hours.map((hour) => row(hour, day, reader))}</tbody></table></div></section>`;
+<div class="scroll" tabindex="0" role="region" aria-label="Table of the tow"><table><thead><tr>${heads.map((head) => html`<th scope="col">${head}</th>`)}</tr></thead><tbody>${day.hours.map((hour) => row(hour, day, reader))}</tbody></table></div></section>`;
 }

@@ -1,5 +1,5 @@
 /** "What if": the hour of a forecast with a visitor's numbers in it, sent through the same request that programs send. */
-import { judgeHours, type AssessedHour } from '../../lib/brief/judge-hours.ts';
+import { judgeHours } from '../../lib/brief/judge-hours.ts';
 import { pollSources, speaks } from '../../lib/brief/voters.ts';
 import type { DayInput } from '../../lib/brief/day-input.ts';
 import { parseAssessRequest } from '../../lib/config/assess-request.ts';
@@ -7,10 +7,7 @@ import { setUp } from '../../lib/margin/setup.ts';
 import { HOUR_MS, epochOf } from '../../lib/time.ts';
 import type { Services } from '../service-set.ts';
 import { withOwnNumbers, type OwnNumbers } from './own-numbers.ts';
-
-export type WhatIf =
-  | { readonly kind: 'judged'; readonly hour: AssessedHour; readonly source: string }
-  | { readonly kind: 'problems'; readonly problems: readonly string[] };
+import type { WhatIf } from './page-services.ts';
 
 /** The request that programs would send to /api/v1/assess for the same question; null without a forecast to start from. */
 export function whatIfRequest(input: DayInput, question: { readonly validAt: string; readonly numbers: OwnNumbers; readonly wing: unknown }): { readonly source: string; readonly body: Record<string, unknown> } | null {

@@ -6,7 +6,7 @@ import { creditsOf } from './board.ts';
 import { html, type Html } from './html.ts';
 import { layout } from './layout.ts';
 import { marginsList } from './margins-list.ts';
-import type { WhatIf } from './what-if-data.ts';
+import type { WhatIf } from './page-services.ts';
 import { whatIfForm, type WhatIfFormOptions } from './what-if-form.ts';
 import { address, unitsPart } from './units-query.ts';
 
