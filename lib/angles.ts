@@ -12,7 +12,9 @@ export function degrees(rad: number): number {
 /** The same direction in [0, 360). */
 export function normalDeg(deg: number): number {
   const turned = deg % 360;
-  return turned < 0 ? turned + 360 : turned === 0 ? 0 : turned;
+  // A hair below zero rounds up to 360 itself, and -0 is north too.
+  const positive = turned < 0 ? turned + 360 : turned;
+  return positive === 360 || positive === 0 ? 0 : positive;
 }
 
 /** From `fromDeg` to `toDeg` the short way round, in [-180, 180); positive clockwise. */
