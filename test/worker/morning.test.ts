@@ -103,6 +103,44 @@ describe('a morning', () => {
   });
 });
 
+describe('the board', () => {
+  const pair = { siteId: 'north', wingKey: 'EN B', sheetId: 'hill' };
+  const revisions = async (): Promise<number[]> => (await env.DB.prepare('SELECT revision FROM brief ORDER BY revision').all<{ revision: number }>()).results.map((row) => row.revision);
+
+  test('has briefs without any subscriber, made anew every three hours', async () => {
+    const house = await newHouse({ nowIso: '2027-05-14T02:07:00Z' });
+    await house.seed([], ['north']);
+    await house.services().stores.db.together(house.services().stores.published.replaceAll([pair]));
+    for (let hour = 0; hour < 7; hour += 1) {
+      await house.minute();
+      house.nowMs += 3_600_000;
+    }
+    // 4:07 local, then every third hour.
+    expect(await revisions()).toEqual([1, 2, 3]);
+    expect(house.asked).toHaveLength(3);
+  });
+
+  test('rests at night, and is not asked for between its minutes', async () => {
+    const house = await newHouse({ nowIso: '2027-05-13T23:07:00Z' });
+    await house.seed([], ['north']);
+    await house.services().stores.db.together(house.services().stores.published.replaceAll([pair]));
+    await house.minute();
+    house.nowMs = Date.parse('2027-05-14T05:30:00Z');
+    await house.minutes(10);
+    expect(await revisions()).toEqual([]);
+  });
+});
+
+test('an outage that ends in the evening owes one subscriber today and the other tomorrow', async () => {
+  const house = await newHouse({ nowIso: '2027-05-14T20:00:00Z' });
+  await house.seed([
+    { ...ana, sites: ['north'], deliverMinute: 17 * 60, dueIso: '2027-05-14T15:00:00Z' },
+    { ...ana, id: 'ben', sites: ['north'], urls: [hook('ben')], deliverMinute: 22 * 60, dueIso: '2027-05-14T20:00:00Z' },
+  ]);
+  await house.minute();
+  expect(house.posts.map((post) => JSON.parse(post.body).data.days[0].localDate).sort()).toEqual(['2027-05-14', '2027-05-15']);
+});
+
 describe('when something fails', () => {
   test('a source without an answer gives "cannot say" with the cause, on time', async () => {
     const house = await newHouse({ nowIso: six, source: async (request) => failing(request, { kind: 'server-error', status: 503 }) });

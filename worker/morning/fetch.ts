@@ -27,7 +27,7 @@ export async function fetchStep(services: Services): Promise<boolean> {
   const given = [...answers].flatMap(([siteId, answer]) => (answer.ok ? [{ siteId, forecast: answer.value }] : []));
   await stores.db.together([
     surplus,
-    stores.forecast.put(given, nowMs),
+    ...stores.forecast.put(given, nowMs),
     stores.sourceGround.keepFirst(given.flatMap(({ siteId, forecast }) => groundOf(forecast.members).map((groundM) => ({ siteId, source: forecast.source, groundM }))), nowMs),
     stores.runWork.finishFetches(runs.map((run) => ({ key: run.key, outcome: outcomeOf(answers.get(run.siteId)) })), nowMs),
     stores.meta.setting('last-fetch', String(nowMs)),

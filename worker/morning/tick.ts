@@ -1,6 +1,7 @@
 import { MINUTE_MS } from '../../lib/time.ts';
 import type { Services } from '../service-set.ts';
 import { SCHEMA_VERSION } from '../store/meta.ts';
+import { BOARD_MINUTE, planBoard } from './board.ts';
 import { planDue } from './due.ts';
 import { sweep, tidy } from './sweep.ts';
 import { USUAL_PATIENCE, type Patience } from './times.ts';
@@ -25,6 +26,7 @@ export async function tick(services: Services, scheduledAtMs: number, patience: 
     await stores.log.write([{ level: 'warning', step: 'tick', event: 'ticks-absent', detail: { minutes: Math.round((nowMs - lastTickMs) / MINUTE_MS) } }], nowMs);
   }
   await planDue(services, nowMs, patience);
+  if (new Date(scheduledAtMs).getUTCMinutes() === BOARD_MINUTE) await planBoard(services, nowMs);
   await sweep(services, nowMs);
   await tidy(services, nowMs, Number(meta.get('last-tidy') ?? 0));
   const done = stores.meta.setting('last-tick', String(nowMs));

@@ -28,16 +28,13 @@ export function runKeyOf(forecast: Forecast): number {
 
 export function forecastStore(db: Database) {
   return {
-    put(forecasts: readonly { readonly siteId: string; readonly forecast: Forecast }[], nowMs: number): Statement {
-      const list = forecasts.map(({ siteId, forecast }) => ({
-        siteId, source: forecast.source, runAt: runKeyOf(forecast), body: JSON.stringify(forecast),
-      }));
-      return {
-        sql: `INSERT INTO forecast (source, site_id, run_at, fetched_at, body)
-          SELECT value ->> 'source', value ->> 'siteId', value ->> 'runAt', ?2, value ->> 'body' FROM json_each(?1) WHERE true
+    /** A statement each: an ensemble may be half a megabyte, and a parameter may hold two. */
+    put(forecasts: readonly { readonly siteId: string; readonly forecast: Forecast }[], nowMs: number): Statement[] {
+      return forecasts.map(({ siteId, forecast }) => ({
+        sql: `INSERT INTO forecast (source, site_id, run_at, fetched_at, body) VALUES (?, ?, ?, ?, ?)
           ON CONFLICT (source, site_id, run_at) DO UPDATE SET fetched_at = excluded.fetched_at, body = excluded.body`,
-        values: [JSON.stringify(list), nowMs],
-      };
+        values: [forecast.source, siteId, runKeyOf(forecast), nowMs, JSON.stringify(forecast)],
+      }));
     },
     /** The newest answer of every source that was asked about a site-day. */
     answers(siteId: string, localDate: string): Promise<StoredAnswer[]> {

@@ -26,12 +26,12 @@ export function subscriptionStore(db: Database) {
         nowMs,
       );
     },
-    /** What the subscribers who are due by then want a brief for, each with the earliest time that somebody is due. */
+    /** What the subscribers who are due by then want a brief for, and when they are due. */
     duePairs(nowMs: number): Promise<(Pair & { readonly dueAtMs: number })[]> {
       return db.read(
-        `SELECT p.site_id AS siteId, p.wing_key AS wingKey, p.sheet_id AS sheetId, MIN(s.next_due_at) AS dueAtMs
+        `SELECT DISTINCT p.site_id AS siteId, p.wing_key AS wingKey, p.sheet_id AS sheetId, s.next_due_at AS dueAtMs
           FROM subscription AS s JOIN subscription_site AS p ON p.subscription_id = s.id
-          WHERE s.state = 'active' AND s.next_due_at <= ? GROUP BY 1, 2, 3 ORDER BY 1, 2, 3`,
+          WHERE s.state = 'active' AND s.next_due_at <= ? ORDER BY 1, 2, 3, 4`,
         nowMs,
       );
     },
