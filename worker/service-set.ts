@@ -45,6 +45,8 @@ export interface Services {
   readonly channels: Readonly<Record<string, Channel>>;
   readonly read: Readers;
   readonly wingClasses: () => WingClasses;
+  /** The limit sheets that ship: known by their id also before, or without, a row of theirs. */
+  readonly shippedSheets: () => readonly LimitSheet[];
   readonly thresholds: () => CautionThresholds;
   readonly judge: (input: DayInput) => JudgedDay;
 }

@@ -66,6 +66,7 @@ export function assemble(world: World, instead: Partial<Pick<Services, 'sourcesF
     settings, clock, ids, random, stores,
     read: ownReaders,
     wingClasses: ownData.wingClasses,
+    shippedSheets: ownData.sheets,
     thresholds: ownData.thresholds,
     wake: waker(world.queues),
     sourcesFor: sourcesOf(world, stores),

@@ -64,8 +64,11 @@ async function namedIn(services: Services, body: unknown): Promise<{ sites: Site
   };
   const sites = 'geometry' in part('site') ? [] : await services.stores.site.all();
   const sheets = 'limits' in part('sheet') ? [] : await services.stores.sheet.newest();
+  const stored = sheets.flatMap((row) => { const sheet = services.read.sheet(row); return sheet.ok ? [sheet.value] : []; });
+  const rows = new Set(sheets.map(({ id }) => id));
   return {
     sites: sites.flatMap((row) => { const place = services.read.site(row); return place.ok ? [place.value.site] : []; }),
-    sheets: sheets.flatMap((row) => { const sheet = services.read.sheet(row); return sheet.ok ? [sheet.value] : []; }),
+    // A sheet of the operator's, readable or not, is never stood in for by the shipped one of its id.
+    sheets: [...stored, ...services.shippedSheets().filter(({ id }) => !rows.has(id))],
   };
 }
