@@ -37,7 +37,7 @@ export function checkFrame(forecast: Forecast, context: FrameContext): Result<Fo
     placeFault(forecast, context) ??
     groundFault(forecast, context);
   if (fault !== null) return failure(fault);
-  const completed = members.map((hours) => complete(hours, stamps, judged));
+  const completed = members.map((hours) => complete(hours, stamps, { judged, nowMs: epochOf(context.now) }));
   const stuck = stuckFault(completed);
   return stuck === null ? success({ ...forecast, members: completed }) : failure(stuck);
 }
@@ -93,15 +93,18 @@ const AHEAD_MS = 2 * HOUR_MS;
 
 /**
  * Every hour from the first to the last that is judged, or looked at for one that is, or, within reach of those,
- * delivered; what was not delivered has no fields. Nothing is judged where there is no legal day: then the hours stay as they are.
+ * delivered; what was not delivered has no fields. An hour that had passed, and that the source begins after (services
+ * that begin with the current hour, asked again at noon), is not put in: the source has no vote on it. Nothing is judged
+ * where there is no legal day: then the hours stay as they are.
  */
-function complete(hours: readonly Conditions[], stamps: readonly number[], judged: readonly number[]): readonly Conditions[] {
-  const [firstMs, lastMs] = [Math.min(...judged), Math.max(...judged)];
+function complete(hours: readonly Conditions[], stamps: readonly number[], day: { readonly judged: readonly number[]; readonly nowMs: number }): readonly Conditions[] {
+  const [firstMs, lastMs] = [Math.min(...day.judged), Math.max(...day.judged)];
   if (!Number.isFinite(firstMs)) return hours;
   const near = stamps.filter((at) => at >= firstMs - AROUND_MS && at <= lastMs + AROUND_MS);
+  const begunMs = Math.min(...near);
   const gridElevationM = hours[0]?.gridElevationM ?? NaN;
   const byStamp = new Map(hours.map((hour, i) => [stamps[i], hour]));
-  return hourlyInstants(Math.min(firstMs, ...near), Math.max(lastMs + AHEAD_MS, ...near)).map(
-    (at) => byStamp.get(at) ?? { validAt: isoUtc(at), gridElevationM },
-  );
+  return hourlyInstants(Math.min(firstMs, begunMs), Math.max(lastMs + AHEAD_MS, ...near))
+    .filter((at) => at >= begunMs || at >= day.nowMs - HOUR_MS)
+    .map((at) => byStamp.get(at) ?? { validAt: isoUtc(at), gridElevationM });
 }

@@ -87,6 +87,16 @@ describe('the times', () => {
     expect(members.slice(12).every((one) => one.wind10m === undefined)).toBe(true);
   });
 
+  test('hours that have passed and that the source begins after are not its to vote on; hours to come are', () => {
+    const first = (now: string, from: number) => {
+      const result = check(edited((all) => all.slice(from)), { now });
+      return result.ok ? result.value.members[0]![0] : result.error;
+    };
+    expect(first('2027-05-14T10:20:00Z', 11)).toMatchObject({ validAt: '2027-05-14T10:00:00Z', gustMps: expect.any(Number) });
+    expect(first('2027-05-14T10:20:00Z', 13)).toEqual({ validAt: '2027-05-14T10:00:00Z', gridElevationM: 1180 });
+    expect(first('2027-05-14T03:00:00Z', 13)).toEqual({ validAt: '2027-05-14T04:00:00Z', gridElevationM: 1180 });
+  });
+
   test('one stamp in a far century does not make an endless frame', () => {
     const result = check(edited((all) => [...all, hour(dayStartMs + 1e7 * HOUR_MS)]));
     expect(result.ok && result.value.members[0]).toHaveLength(26);
