@@ -56,8 +56,8 @@ export function inUnits(quantity: Quantity, units: DisplayUnits): Quantity {
 /** Decimals that a person can use, by unit and size. */
 function decimalsFor({ value, unit }: Quantity): number {
   if (unit === 'm/s' || unit === 'mm' || unit === 'hPa') return 1;
-  const isSpeed = unit === 'km/h' || unit === 'kt' || unit === 'mph';
-  return isSpeed && Math.abs(value) < 10 ? 1 : 0;
+  const isFine = unit === 'km/h' || unit === 'kt' || unit === 'mph' || unit === '°';
+  return isFine && Math.abs(value) < 10 ? 1 : 0;
 }
 
 export function rounded(value: number, decimals: number, rounding: Rounding): number {

@@ -82,7 +82,7 @@ ${day.windows.length === 0 ? null : html`<ul class="windows">${day.windows.map((
 <p class="ages">${provenance(day)}</p>
 ${hour === null ? null : columnsSection(day, hour, reader)}${cautionsSection(day, reader)}
 ${day.localRules === null ? null : html`<p class="rules"><strong>Local rules:</strong> ${plainText(day.localRules, 300)}</p>`}
-${stripHours(day, reader)}${hour === null ? null : hourSection(day, hour, options)}${sourcesSection(day, hour)}</div>`;
+${stripHours(day, reader)}${hour === null ? null : hourSection(day, hour, options)}${sourcesSection(day, hour, reader)}</div>`;
 }
 
 export function dayPage(day: JudgedDay, options: DayPageOptions): string {

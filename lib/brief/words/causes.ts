@@ -74,6 +74,13 @@ function noSolution(id: MarginId): string {
   return NO_SOLUTION[id] ?? `${lower(marginName(id))} has no solution`;
 }
 
+/** Nothing found reads better than 0.0 of it. */
+const NOTHING: Readonly<Partial<Record<MarginId, string>>> = {
+  crosswind: 'no gust blows across the launch', tailwind: 'no gust blows from behind the launch', stripCross: 'no gust blows across the strip',
+  stripTail: 'no gust blows from behind on the strip', overTheBack: 'above launch no wind comes over the back', rain: 'no rain', thermal: 'no thermals', storm: 'no CAPE',
+  offAxis: 'no wind strong enough to stand off the launch axis',
+};
+
 function lower(name: string): string {
   return name.slice(0, 1).toLowerCase() + name.slice(1);
 }
@@ -105,6 +112,8 @@ export function causeClause(margin: Said, reader: Reader): string {
   }
   if (margin.spare === null || demand === null) return noSolution(id);
   if (isSignalOnly(margin)) return 'no thunderstorm is signalled in this hour or the next two';
+  const nothing = demand === 0 && limit !== null ? NOTHING[id] : undefined;
+  if (nothing !== undefined && limit !== null) return `${nothing}; ${limitPhrase(id, pairTexts({ first: quantity(margin, 0), second: quantity(margin, limit) }, reader.units).second)}`;
   if (id === 'cloudBase' && demand === 0) return noSolution(id);
   if (limit === null) return foundPhrase(id, quantityText(quantity(margin, demand), reader.units));
   const size = quantity(margin, Math.abs(demand));

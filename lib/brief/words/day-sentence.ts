@@ -10,7 +10,7 @@ import { causeClause, causeSentence } from './causes.ts';
 import { hourName, hourSpan } from './clock.ts';
 import { capital, listed, placeName, plainText, sentence } from './plain.ts';
 import type { Reader } from './reader.ts';
-import { votePhrase } from './sources.ts';
+import { votesPhrase } from './sources.ts';
 import { isOpen, verdictPhrase } from './verdicts.ts';
 import { exceptions, lastLaunchWords } from './windows.ts';
 
@@ -53,7 +53,7 @@ function nobodyVoted(day: JudgedDay): string | null {
   const deterministic = day.sources.filter((source) => source.kind === 'deterministic');
   if (deterministic.some((source) => source.state === 'voted')) return null;
   if (deterministic.length === 0) return 'No source was asked.';
-  return sentence(`No source has a vote: ${listed(deterministic.map(votePhrase))}`);
+  return sentence(`No source has a vote: ${votesPhrase(deterministic)}`);
 }
 
 /** Hours without an answer are named by what is missing in the first of them, after a proven cause. */

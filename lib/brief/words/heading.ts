@@ -20,7 +20,7 @@ export function headingReason(reason: HeadingReason, reader: Reader): string {
   switch (reason.kind) {
     case 'only one': return 'The strip is used one way only.';
     case 'set': return sentence(`As ${sourceName(reason.by)} has it, so that all sources judge one tow`);
-    case 'larger spare': return sentence(`Along ${headingName(reason.otherHeadingDeg)} less would be left of the ${lower(marginName(reason.of))}`);
+    case 'larger spare': return sentence(`Along ${headingName(reason.otherHeadingDeg)} less would be left on the margin of ${lower(marginName(reason.of))}`);
     case 'more head': return sentence(`Both ways leave as much; along ${headingName(reason.otherHeadingDeg)} there is less head wind than ${quantityText({ value: reason.headMps, unit: 'm/s' }, reader.units)}`);
     case 'as laid out': return sentence(`Both ways leave as much and neither has more head wind; it is the way the strip is laid out, not ${headingName(reason.otherHeadingDeg)}`);
   }

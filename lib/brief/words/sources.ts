@@ -40,11 +40,22 @@ export function sourceName(id: string): string {
   return name === '' ? service.name : `${service.name} ${name}`;
 }
 
+/** What stands in brackets behind a source: why it has no vote, or how old its run is. */
+function remark(vote: SourceVote): string {
+  if (vote.state === 'no vote') return plainText(vote.why ?? 'no reason given', 200);
+  return vote.runAgeHours === null ? 'run time not given' : `run ${Math.floor(vote.runAgeHours)} h old`;
+}
+
 /** "Open-Meteo ICON-D2 (no answer within 10 s)". */
 export function votePhrase(vote: SourceVote): string {
-  const name = sourceName(vote.source);
-  if (vote.state === 'voted') return vote.runAgeHours === null ? `${name} (run time not given)` : `${name} (run ${Math.floor(vote.runAgeHours)} h old)`;
-  return `${name} (${plainText(vote.why ?? 'no reason given', 200)})`;
+  return `${sourceName(vote.source)} (${remark(vote)})`;
+}
+
+/** Sources that share a remark share its brackets: "ICON-D2 and AROME (each run 3 h old)". */
+export function votesPhrase(votes: readonly SourceVote[]): string {
+  const groups = new Map<string, string[]>();
+  for (const vote of votes) groups.set(remark(vote), [...(groups.get(remark(vote)) ?? []), sourceName(vote.source)]);
+  return [...groups].map(([said, names]) => `${listed(names)} (${names.length > 1 ? (said.startsWith('run ') ? 'each ' : 'each: ') : ''}${said})`).join('; ');
 }
 
 /** A source in full: its vote, the time of its run and of the fetch, its ground. */
@@ -65,8 +76,8 @@ export function provenance(day: Pick<JudgedDay, 'sources' | 'issuedAt' | 'timeZo
   const voted = day.sources.filter((source) => source.state === 'voted');
   const silent = day.sources.filter((source) => source.state === 'no vote');
   const parts = [
-    ...(silent.length === 0 ? [] : [`without a vote: ${listed(silent.map(votePhrase))}`]),
-    voted.length === 0 ? 'no source voted' : `from ${listed(voted.map(votePhrase))}`,
+    ...(silent.length === 0 ? [] : [`without a vote: ${votesPhrase(silent)}`]),
+    voted.length === 0 ? 'no source voted' : `from ${votesPhrase(voted)}`,
     `computed ${momentName(day.issuedAt, day)}`,
   ];
   return sentence(parts.join('; '));

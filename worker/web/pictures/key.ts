@@ -16,6 +16,7 @@ function trimText(day: JudgedDay, reader: Reader): string {
 }
 
 export function columnsKey(day: JudgedDay, reader: Reader): Html {
+  if (day.hours.every(({ airspeed }) => airspeed === null)) return html`<p>Each column would be trim airspeed and how it is spent; nothing of it is known.</p>`;
   return html`<p>Each column is ${trimText(day, reader)}${day.kind === 'strip' ? ' at release height' : ''}, spent from the top; numbers are what is left in ${reader.units.speed}, below the line what is short.</p>
 <ul class="key"><li>${swatch('slate-fill', null)} head wind</li><li>${swatch('edge-slate', 'url(#h-crab)')} lost to crabbing</li>${day.kind === 'strip' ? null : html`<li>${swatch('plum-fill', null)} gust</li>`}<li>${swatch('edge-ochre', 'url(#h-reserve)')} reserve of the sheet</li><li>${swatch('spare', null)} spare</li></ul>`;
 }
