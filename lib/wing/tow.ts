@@ -54,6 +54,8 @@ const FIRST_STEP = 1 / 60;
 const STEP_GROWTH = 0.2;
 const MAX_STEPS = 4000;
 
+const UNKNOWN_END: TowEnd = { releaseM: NaN, durationS: NaN, why: 'release angle' };
+
 interface Rate {
   readonly up: number;
   readonly closing: number;
@@ -88,8 +90,12 @@ function step(tow: Tow, x: number, z: number, dt: number): { readonly x: number;
 export function flyTow(tow: Tow, visit?: (point: TowPoint) => void): TowEnd {
   const longestS = (tow.lineLengthM / tow.trimMps) * LONGEST_STEP;
   const tangent = Math.tan(radians(tow.releaseAngleDeg));
-  const pastAngle = (x: number, z: number): boolean => z >= x * tangent;
-  const pastLine = (x: number, z: number): boolean => Math.hypot(x, z) > tow.lineLengthM + 1e-9;
+  const endOf = (at: { readonly x: number; readonly z: number }): TowEnd['why'] | 'unknown' | null => {
+    if (Number.isNaN(at.x) || Number.isNaN(at.z)) return 'unknown';
+    if (at.z <= 0) return 'no climb';
+    if (Math.hypot(at.x, at.z) > tow.lineLengthM + 1e-9) return 'line length';
+    return at.z >= at.x * tangent ? 'release angle' : null;
+  };
   let x = tow.lineLengthM;
   let z = 0;
   let timeS = 0;
@@ -97,38 +103,37 @@ export function flyTow(tow: Tow, visit?: (point: TowPoint) => void): TowEnd {
   for (let n = 0; n < MAX_STEPS; n += 1) {
     const dt = Math.min(longestS, Math.max(longestS * FIRST_STEP, STEP_GROWTH * timeS));
     const next = step(tow, x, z, dt);
-    if (Number.isNaN(next.x) || Number.isNaN(next.z)) return { releaseM: NaN, durationS: NaN, why: 'release angle' };
-    if (next.z <= 0) return { releaseM: 0, durationS: timeS, why: 'no climb' };
-    const why = pastLine(next.x, next.z) ? 'line length' : pastAngle(next.x, next.z) ? 'release angle' : null;
+    const why = endOf(next);
+    if (why === 'no climb') return { releaseM: 0, durationS: timeS, why };
     if (why !== null) {
-      const endS = lastBefore(dt, (partS) => {
-        const end = step(tow, x, z, partS);
-        return pastLine(end.x, end.z) || pastAngle(end.x, end.z);
-      });
-      const end = step(tow, x, z, endS);
-      visit?.(pointAt(timeS + endS, end.x, end.z));
-      return { releaseM: Math.max(0, end.z), durationS: timeS + endS, why };
+      // A step may look higher than it gets: winds that end above the release do not make it unknown.
+      const { lastS, afterS } = aroundEnd(dt, (partS) => endOf(step(tow, x, z, partS)) !== null);
+      const ended = endOf(step(tow, x, z, afterS));
+      if (ended === 'unknown' || ended === null) return UNKNOWN_END;
+      const end = step(tow, x, z, lastS);
+      visit?.(pointAt(timeS + lastS, end.x, end.z));
+      return { releaseM: Math.max(0, end.z), durationS: timeS + lastS, why: ended };
     }
     x = next.x;
     z = next.z;
     timeS += dt;
     visit?.(pointAt(timeS, x, z));
   }
-  return { releaseM: NaN, durationS: NaN, why: 'release angle' };
+  return UNKNOWN_END;
 }
 
 function pointAt(timeS: number, toWinchM: number, heightM: number): TowPoint {
   return { timeS, toWinchM, heightM, lineAngleDeg: degrees(Math.atan2(heightM, toWinchM)) };
 }
 
-/** The longest part of a step after which the tow has not ended, by bisection. */
-function lastBefore(dt: number, ended: (partS: number) => boolean): number {
-  let low = 0;
-  let high = dt;
+/** The longest part of a step after which the tow has not ended, and a part a hair longer after which it has, by bisection. */
+function aroundEnd(dt: number, ended: (partS: number) => boolean): { readonly lastS: number; readonly afterS: number } {
+  let lastS = 0;
+  let afterS = dt;
   for (let i = 0; i < 30; i += 1) {
-    const middle = (low + high) / 2;
-    if (ended(middle)) high = middle;
-    else low = middle;
+    const middle = (lastS + afterS) / 2;
+    if (ended(middle)) afterS = middle;
+    else lastS = middle;
   }
-  return low;
+  return { lastS, afterS };
 }
