@@ -154,10 +154,11 @@ export function nodeVector(wind: CheckedWind): { readonly uMps: number; readonly
   return isCalm(wind.speedMps) ? { uMps: 0, vMps: 0 } : vectorOf(wind.speedMps, wind.fromDeg);
 }
 
-/** The highest altitude at which any of these hours delivers a wind; out of sight when levels are declared and none ever came. */
+/** The highest altitude at which any of these hours delivers a wind; out of sight when winds aloft are declared and none ever came. */
 export function reachOf(hours: readonly CheckedHour[], declares: ReadonlySet<ConditionField>): number {
-  const delivering = declares.has('levels') ? hours.filter(({ levels }) => levels.length > 0) : hours;
-  if (delivering.length === 0) return declares.has('levels') ? OUT_OF_SIGHT_M : -Infinity;
+  const aloft = (['levels', 'nearGround'] as const).find((field) => declares.has(field));
+  const delivering = aloft === undefined ? hours : hours.filter((hour) => hour[aloft].length > 0);
+  if (delivering.length === 0) return aloft === undefined ? -Infinity : OUT_OF_SIGHT_M;
   return delivering.reduce((highest, hour) => Math.max(highest, topM(profileOf(hour, declares))), -Infinity);
 }
 
