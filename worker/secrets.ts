@@ -59,3 +59,9 @@ export function base64(bytes: Uint8Array): string {
 export function base64Url(bytes: Uint8Array): string {
   return base64(bytes).replaceAll('+', '-').replaceAll('/', '_').replaceAll('=', '');
 }
+
+/** Padding is allowed, and not needed. Throws for what is not base64url. */
+export function base64UrlBytes(text: string): Uint8Array {
+  const binary = atob(text.replaceAll('-', '+').replaceAll('_', '/').replace(/=+$/, ''));
+  return Uint8Array.from(binary, (character) => character.charCodeAt(0));
+}

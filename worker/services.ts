@@ -1,5 +1,8 @@
 import { judgeDay } from '../lib/brief/judge-day.ts';
 import { success, type Issue, type Result } from '../lib/result.ts';
+import { pushChannel } from './channels/push/push.ts';
+import { storedQuarrels } from './channels/push/quarrels.ts';
+import { vapid, type Authorize } from './channels/push/vapid.ts';
 import { terminalChannel } from './channels/terminal.ts';
 import { webhookChannel } from './channels/webhook.ts';
 import type { Job, Step } from './morning/job.ts';
@@ -73,10 +76,23 @@ export function assemble(world: World, instead: Partial<Pick<Services, 'sourcesF
     judge: judgeDay,
     channels: {
       webhook: webhookChannel({ fetch: world.fetch, linkKey: settings.linkKey, local: settings.local, publicUrl: settings.publicUrl }),
+      push: pushChannel({ fetch: world.fetch, authorize: authorizer(settings), local: settings.local, publicUrl: settings.publicUrl, quarrels: storedQuarrels(stores) }),
       ...(settings.local ? { terminal: terminalChannel(stores.terminal) } : {}),
     },
     ...instead,
   };
+}
+
+/** Kept for the life of an isolate: a token is signed once for each origin and hour. */
+const authorizers = new Map<string, Authorize>();
+
+function authorizer({ vapid: keys, contact, publicUrl }: Settings): Authorize | null {
+  if (keys === null) return null;
+  const subject = contact === null ? publicUrl : contact.includes(':') ? contact : `mailto:${contact}`;
+  const name = `${keys.publicKey} ${subject}`;
+  const found = authorizers.get(name) ?? vapid(keys, subject);
+  authorizers.set(name, found);
+  return found;
 }
 
 /** Invented weather for the places of the demo, and for nobody else. */

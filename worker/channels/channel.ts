@@ -13,6 +13,8 @@ export interface Message {
   /** The oldest run behind it, null when there is none or one is not known. */
   readonly dataRunAtMs: number | null;
   readonly validUntilMs: number;
+  /** Worse than what was said before: it may wake somebody. */
+  readonly urgent: boolean;
   /** Holds invented weather. */
   readonly demo: boolean;
   readonly days: readonly MessageDay[];
@@ -45,6 +47,8 @@ export type SendOutcome =
 export interface Attempt {
   readonly nowMs: number;
   readonly timeoutMs: number;
+  /** Nothing of it may arrive later. */
+  readonly untilMs: number;
 }
 
 /** A way to reach a subscriber. It never throws for anything the world did, and repeats nothing on its own account. */

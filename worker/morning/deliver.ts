@@ -44,7 +44,7 @@ export async function deliverStep(services: Services): Promise<boolean> {
 async function deliverOne(services: Services, item: Composed, by: string): Promise<SettledState | 'retry'> {
   const { stores, clock } = services;
   const { row, message } = item;
-  if (clock.nowMs() >= Math.min(row.validUntilMs, message.validUntilMs)) {
+  if (clock.nowMs() >= lastMomentOf(item)) {
     return mark(services, [stores.outbox.settle(row.id, { state: 'expired', reason: 'no longer valid when its turn came' }, clock.nowMs())], 'expired');
   }
   const outcome = await sendOne(services, item);
@@ -57,8 +57,7 @@ async function deliverOne(services: Services, item: Composed, by: string): Promi
     case 'refused':
       return mark(services, dead(services, item, outcome.reason), 'dead');
     case 'retry': {
-      const validUntilMs = Math.min(row.validUntilMs, message.validUntilMs);
-      const next = nextAttempt({ nowMs, attempts: row.attempts, validUntilMs, afterMs: outcome.afterMs, random: services.random() });
+      const next = nextAttempt({ nowMs, attempts: row.attempts, validUntilMs: lastMomentOf(item), afterMs: outcome.afterMs, random: services.random() });
       if ('atMs' in next) return mark(services, [stores.outbox.retry(row.id, by, { atMs: next.atMs, reason: outcome.reason })], 'retry');
       if (next.never === 'given up') return mark(services, dead(services, item, `given up after ${row.attempts} attempts; last: ${outcome.reason}`), 'dead');
       return mark(services, [stores.outbox.settle(row.id, { state: 'expired', reason: `no attempt left before it ceases to be valid; last: ${outcome.reason}` }, nowMs)], 'expired');
@@ -66,12 +65,17 @@ async function deliverOne(services: Services, item: Composed, by: string): Promi
   }
 }
 
+/** Neither later than a message is of use, nor later than what it says holds. */
+function lastMomentOf({ row, message }: Pick<Composed, 'row' | 'message'>): number {
+  return Math.min(row.validUntilMs, message.validUntilMs);
+}
+
 /** A channel that throws has a fault of ours: the message is tried again like after any other failure. */
 async function sendOne(services: Services, { row, channel, message }: Composed): Promise<SendOutcome> {
   const carrier = services.channels[channel.kind];
   if (carrier === undefined) return { state: 'retry', reason: `this service has no channel "${channel.kind}"`, afterMs: null };
   try {
-    return await carrier.send(message, channel, { nowMs: services.clock.nowMs(), timeoutMs: SEND_TIMEOUT_MS });
+    return await carrier.send(message, channel, { nowMs: services.clock.nowMs(), timeoutMs: SEND_TIMEOUT_MS, untilMs: lastMomentOf({ row, message }) });
   } catch (error) {
     const fault = error instanceof Error ? error.name : 'unknown';
     await services.stores.log.write([{ level: 'error', step: 'deliver', event: 'channel-threw', detail: { kind: channel.kind, message: row.id, fault } }], services.clock.nowMs());

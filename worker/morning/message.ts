@@ -56,6 +56,7 @@ export function briefMessage({ row, content, heads, places }: MessageParts): Mes
     issuedAtMs: content.issuedAtMs,
     dataRunAtMs: known.length > 0 && known.length === runs.length ? Math.min(...known) : null,
     validUntilMs: Math.min(...days.map((day) => Date.parse(day.validUntil))),
+    urgent: false,
     demo: days.some((day) => day.demo),
     days: days.map((day) => ({ siteId: day.siteId, localDate: day.localDate, verdict: dayVerdict(day), windows: day.windows })),
   };
@@ -81,6 +82,6 @@ export function missedMessage(row: OutboxRow, { demo, nowMs }: { demo: boolean; 
     id: row.id, kind: row.kind,
     title: demo ? `${INVENTED}: ${title}` : title,
     text: `${demo ? `${INVENTED}. ` : ''}${text}\n\n${CLOSING}\n`,
-    issuedAtMs: nowMs, dataRunAtMs: null, validUntilMs: row.validUntilMs, demo, days: [],
+    issuedAtMs: nowMs, dataRunAtMs: null, validUntilMs: row.validUntilMs, urgent: false, demo, days: [],
   };
 }

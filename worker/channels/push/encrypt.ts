@@ -1,0 +1,81 @@
+/**
+ * Message encryption for Web Push: RFC 8291, with the content coding aes128gcm of RFC 8188, in one record. Section and
+ * step names are those of RFC 8291. WebCrypto only.
+ */
+const RECORD_SIZE = 4096;
+/** Header: salt 16, record size 4, key id length 1, key id 65. A record carries one delimiter octet and the tag of 16. */
+const HEADER_BYTES = 86;
+const OVERHEAD_BYTES = 17;
+
+/** Bytes of text that fit into one record; RFC 8291, section 4, asks services to take 4096 in all. */
+export const MOST_PLAIN_BYTES = RECORD_SIZE - HEADER_BYTES - OVERHEAD_BYTES;
+
+export interface PushKeys {
+  /** The browser's public key: an uncompressed P-256 point, 65 bytes. */
+  readonly p256dh: Uint8Array;
+  /** Its authentication secret, 16 bytes. */
+  readonly auth: Uint8Array;
+}
+
+/** What is fresh for each message; given from outside only to redo the example of the RFC. */
+export interface Fresh {
+  readonly salt: Uint8Array;
+  readonly keys: CryptoKeyPair;
+}
+
+const encoder = new TextEncoder();
+const P256 = { name: 'ECDH', namedCurve: 'P-256' } as const;
+
+export async function fresh(): Promise<Fresh> {
+  const keys = (await crypto.subtle.generateKey(P256, true, ['deriveBits'])) as CryptoKeyPair;
+  return { salt: crypto.getRandomValues(new Uint8Array(16)), keys };
+}
+
+/** Throws where the keys are none: a point off the curve, a wrong length. Check them with `areKeys` when they come in. */
+export async function encrypt(plain: Uint8Array, to: PushKeys, { salt, keys }: Fresh): Promise<Uint8Array> {
+  if (plain.length > MOST_PLAIN_BYTES) throw new Error(`a push message holds at most ${MOST_PLAIN_BYTES} bytes, not ${plain.length}`);
+  const browserKey = await crypto.subtle.importKey('raw', to.p256dh, P256, false, []);
+  const ownPublic = new Uint8Array((await crypto.subtle.exportKey('raw', keys.publicKey)) as ArrayBuffer);
+  // Section 3.1: the shared secret. The runtime's name for the peer's key differs from that of its type definitions.
+  const shared = await crypto.subtle.deriveBits({ name: 'ECDH', public: browserKey } as unknown as SubtleCryptoDeriveKeyAlgorithm, keys.privateKey, 256);
+  // Section 3.3 and 3.4: from it and the authentication secret the input key, from that and the salt the key and nonce.
+  const ikm = await hkdf({ salt: to.auth, ikm: new Uint8Array(shared), info: joined(encoder.encode('WebPush: info\0'), to.p256dh, ownPublic), bytes: 32 });
+  const key = await hkdf({ salt, ikm, info: encoder.encode('Content-Encoding: aes128gcm\0'), bytes: 16 });
+  const nonce = await hkdf({ salt, ikm, info: encoder.encode('Content-Encoding: nonce\0'), bytes: 12 });
+  const cipher = await crypto.subtle.importKey('raw', key, 'AES-GCM', false, ['encrypt']);
+  // RFC 8188, section 2: the last record ends in a delimiter of 2, without padding here.
+  const record = await crypto.subtle.encrypt({ name: 'AES-GCM', iv: nonce }, cipher, joined(plain, new Uint8Array([2])));
+  return joined(salt, bigEndian32(RECORD_SIZE), new Uint8Array([ownPublic.length]), ownPublic, new Uint8Array(record));
+}
+
+/** Whether these can be encrypted to: the right lengths, and a point of the curve. */
+export async function areKeys(keys: PushKeys): Promise<boolean> {
+  if (keys.p256dh.length !== 65 || keys.p256dh[0] !== 4 || keys.auth.length !== 16) return false;
+  try {
+    await crypto.subtle.importKey('raw', keys.p256dh, P256, false, []);
+    return true;
+  } catch {
+    return false;
+  }
+}
+
+async function hkdf({ salt, ikm, info, bytes }: { salt: Uint8Array; ikm: Uint8Array; info: Uint8Array; bytes: number }): Promise<Uint8Array> {
+  const key = await crypto.subtle.importKey('raw', ikm, 'HKDF', false, ['deriveBits']);
+  return new Uint8Array(await crypto.subtle.deriveBits({ name: 'HKDF', hash: 'SHA-256', salt, info }, key, bytes * 8));
+}
+
+function bigEndian32(value: number): Uint8Array {
+  const bytes = new Uint8Array(4);
+  new DataView(bytes.buffer).setUint32(0, value);
+  return bytes;
+}
+
+export function joined(...parts: readonly Uint8Array[]): Uint8Array {
+  const whole = new Uint8Array(parts.reduce((sum, part) => sum + part.length, 0));
+  let at = 0;
+  for (const part of parts) {
+    whole.set(part, at);
+    at += part.length;
+  }
+  return whole;
+}

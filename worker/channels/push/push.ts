@@ -1,0 +1,108 @@
+import { base64Url, sha256 } from '../../secrets.ts';
+import type { Address, Attempt, Channel, Message, SendOutcome } from '../channel.ts';
+import { retryAfterMs } from '../retry-after.ts';
+import { areKeys, encrypt, fresh } from './encrypt.ts';
+import { isLoopbackEndpoint, readTarget, type PushTarget } from './endpoint.ts';
+import { pushPayload } from './payload.ts';
+import type { Authorize } from './vapid.ts';
+
+/**
+ * Web Push (RFC 8030): one POST to the endpoint that a browser gave us, encrypted for that browser. What the service's
+ * answer means for the subscription is decided by its status alone.
+ */
+export interface PushOptions {
+  readonly fetch: (url: string, init: RequestInit) => Promise<Response>;
+  /** null where this service has no VAPID keys. */
+  readonly authorize: Authorize | null;
+  readonly local: boolean;
+  readonly publicUrl: string;
+  readonly quarrels: Quarrels;
+}
+
+/** Origins that refuse us as a sender, whoever the receiver is: nothing is sent there until then. */
+export interface Quarrels {
+  untilMs(origin: string): Promise<number | null>;
+  begin(origin: string, untilMs: number, nowMs: number): Promise<void>;
+}
+
+/** Side by side to one service; it is one host for thousands of subscribers. */
+const LANES = 3;
+const QUARREL_MS = 10 * 60_000;
+
+export function pushChannel(options: PushOptions): Channel {
+  const targetOf = (address: Address): PushTarget | { readonly problem: string } => readTarget(address.target, { local: options.local });
+  return {
+    lane(address) {
+      const target = targetOf(address);
+      if ('problem' in target) return address.id;
+      const { origin, pathname } = new URL(target.endpoint);
+      return `${origin} ${[...pathname].reduce((sum, character) => (sum * 31 + character.charCodeAt(0)) % 9973, 7) % LANES}`;
+    },
+    async send(message, address, attempt) {
+      const target = targetOf(address);
+      if ('problem' in target) return { state: 'gone', reason: `the push subscription is refused: ${target.problem}` };
+      if (message.demo && !isLoopbackEndpoint(target.endpoint)) return { state: 'refused', reason: 'invented weather stays on this machine' };
+      if (options.authorize === null) return { state: 'retry', reason: 'the settings VAPID_PUBLIC_KEY and VAPID_PRIVATE_KEY are missing', afterMs: null };
+      if (!(await areKeys(target.keys))) return { state: 'gone', reason: 'the push subscription is refused: its keys are none' };
+      const { origin } = new URL(target.endpoint);
+      const quarrelMs = await options.quarrels.untilMs(origin);
+      if (quarrelMs !== null && quarrelMs > attempt.nowMs) return { state: 'retry', reason: 'the push service refuses this sender', afterMs: quarrelMs - attempt.nowMs };
+      const { authorize } = options;
+      const full = await post(message, target, attempt, { ...options, authorize, minimal: false });
+      // Too large for this service: what fits is the call to look.
+      const outcome = full === 'too-large' ? await post(message, target, attempt, { ...options, authorize, minimal: true }) : full;
+      if (outcome === 'too-large') return { state: 'refused', reason: 'the push service answered 413 to the smallest message' };
+      if (outcome === 'quarrel') {
+        await options.quarrels.begin(origin, attempt.nowMs + QUARREL_MS, attempt.nowMs);
+        return { state: 'retry', reason: 'the push service refuses this sender', afterMs: QUARREL_MS };
+      }
+      return outcome;
+    },
+  };
+}
+
+interface Posting extends Pick<PushOptions, 'fetch' | 'publicUrl'> {
+  readonly authorize: Authorize;
+  readonly minimal: boolean;
+}
+
+async function post(message: Message, target: PushTarget, { nowMs, timeoutMs, untilMs }: Attempt, posting: Posting): Promise<SendOutcome | 'too-large' | 'quarrel'> {
+  const body = await encrypt(pushPayload(message, { origin: posting.publicUrl, minimal: posting.minimal }), target.keys, await fresh());
+  try {
+    const response = await posting.fetch(target.endpoint, {
+      method: 'POST',
+      headers: {
+        authorization: await posting.authorize(new URL(target.endpoint).origin, nowMs),
+        'content-type': 'application/octet-stream',
+        'content-encoding': 'aes128gcm',
+        ttl: String(Math.max(0, Math.floor((untilMs - nowMs) / 1000))),
+        topic: await topicOf(message),
+        urgency: message.urgent ? 'high' : 'normal',
+      },
+      body,
+      redirect: 'manual',
+      signal: AbortSignal.timeout(timeoutMs),
+    });
+    await response.body?.cancel().catch(() => undefined);
+    return outcomeOf(response, nowMs);
+  } catch (error) {
+    const isLate = error instanceof Error && error.name === 'TimeoutError';
+    return { state: 'retry', reason: isLate ? `no answer within ${timeoutMs / 1000} s` : 'the push service could not be reached', afterMs: null };
+  }
+}
+
+/** At most 32 characters (RFC 8030, 5.4): a repeat takes the place of the first, in the service and on the screen. */
+async function topicOf(message: Message): Promise<string> {
+  return base64Url(await sha256(message.id)).slice(0, 32);
+}
+
+function outcomeOf(response: Response, nowMs: number): SendOutcome | 'too-large' | 'quarrel' {
+  const { status } = response;
+  if (status >= 200 && status < 300) return { state: 'sent' };
+  if (status === 404 || status === 410) return { state: 'gone', reason: `the push service answered ${status}: the subscription has ended` };
+  if (status === 413) return 'too-large';
+  if (status === 400 || status === 401 || status === 403) return 'quarrel';
+  const wait = status === 429 || status === 503 ? retryAfterMs(response.headers.get('retry-after'), nowMs) : null;
+  const reason = status === 0 || (status >= 300 && status < 400) ? 'the push service redirects' : `the push service answered ${status}`;
+  return { state: 'retry', reason, afterMs: wait };
+}
