@@ -1,12 +1,13 @@
 // Judging one site-day against parsing a forecast payload of 150 kB, in one process and in turns: the ratio is what is
 // asserted, because a clock alone says more about the machine than about the code.
 import { readFileSync } from 'node:fs';
+import path from 'node:path';
 import { judgeDay } from '../../lib/brief/judge-day.ts';
 import type { DayInput } from '../../lib/brief/day-input.ts';
 import { loadConfig } from '../../lib/config/load.ts';
 import { inventedForecast } from '../../lib/forecast/invented/forecast.ts';
 
-const file = (name: string): unknown => JSON.parse(readFileSync(new URL(`../../config/${name}.json`, import.meta.url), 'utf8'));
+const file = (name: string): unknown => JSON.parse(readFileSync(path.join(import.meta.dirname, '../../config', `${name}.json`), 'utf8'));
 const NOW = '2027-05-14T04:00:00Z';
 /** Rounds before the count begins: the compiler has settled by then. */
 const WARM_UP = 300;
