@@ -1,45 +1,12 @@
-import { spawn, type ChildProcess } from 'node:child_process';
 import { mkdirSync, mkdtempSync, rmSync } from 'node:fs';
-import { createServer } from 'node:net';
 import { tmpdir } from 'node:os';
 import path from 'node:path';
 import { chromium, type Browser } from 'playwright-core';
+import { freePort, startDemo } from './own-demo.ts';
 
 /** npm run shots -- DIR: the demo's pages as pictures, for looking at before calling a page done. They never go into git. */
 const WIDTHS = [390, 1280];
 const THEMES = ['light', 'dark'] as const;
-const START_WITHIN_MS = 90_000;
-
-async function freePort(): Promise<number> {
-  return new Promise((resolve, reject) => {
-    const server = createServer();
-    server.once('error', reject);
-    server.listen(0, '127.0.0.1', () => {
-      const address = server.address();
-      server.close(() => (address === null || typeof address === 'string' ? reject(new Error('no port')) : resolve(address.port)));
-    });
-  });
-}
-
-/** A demo of our own on a state of our own; resolves with its address once it serves. */
-function startDemo(port: number, folder: string): { readonly child: ChildProcess; readonly origin: Promise<string> } {
-  const child = spawn(process.execPath, [path.join(import.meta.dirname, 'start.ts')], {
-    env: { ...process.env, PORT: String(port), STATE_DIR: path.join(folder, 'state') }, stdio: ['ignore', 'pipe', 'inherit'],
-  });
-  const origin = new Promise<string>((resolve, reject) => {
-    let said = '';
-    const late = setTimeout(() => reject(new Error(`the demo did not serve within ${START_WITHIN_MS / 1000} s`)), START_WITHIN_MS);
-    child.stdout.on('data', (chunk: Buffer) => {
-      said += chunk.toString('utf8');
-      const found = /Pages at (\S+?)\/ until/.exec(said);
-      if (found?.[1] === undefined) return;
-      clearTimeout(late);
-      resolve(found[1]);
-    });
-    child.once('exit', (code) => { clearTimeout(late); reject(new Error(`the demo ended with ${code}`)); });
-  });
-  return { child, origin };
-}
 
 /** The board, the day of every site on it, and one "what if". */
 async function pagePaths(origin: string): Promise<Map<string, string>> {
@@ -85,8 +52,7 @@ async function main(): Promise<void> {
     }
   } finally {
     await browser?.close();
-    const ended = new Promise((resolve) => demo.child.once('exit', resolve));
-    if (demo.child.exitCode === null && demo.child.kill('SIGTERM')) await ended;
+    await demo.stop();
     rmSync(folder, { recursive: true, force: true });
   }
 }

@@ -29,16 +29,16 @@ function siteHead(day: JudgedDay, reader: Reader): Html {
 function entry(day: JudgedDay, options: { readonly reader: Reader; readonly now: Date; readonly id: string }): Html {
   const { reader, now, id } = options;
   if (isExpired(day, now)) {
-    return html`<article class="entry"><div class="margin">${siteHead(day, reader)}</div><div class="body"><p class="day">${EXPIRED}</p></div></article>`;
+    return html`<article class="entry"><div class="margin">${siteHead(day, reader)}</div><div class="say"><p class="day">${EXPIRED}</p></div></article>`;
   }
   const cautions = cautionSentences(day.cautions, day, reader).map((caution) => html`<li>${caution}</li>`);
   const picture = day.hours.length === 0 ? null : html`<div class="small">${columnsPicture(day, reader, { size: SMALL, id })}${hourScale(day)}</div>`;
-  return html`<article class="entry" data-valid-until="${day.validUntil}"><div class="margin">${siteHead(day, reader)}</div><div class="body">
+  return html`<article class="entry" data-valid-until="${day.validUntil}"><div class="margin">${siteHead(day, reader)}</div><div class="say">
 <p class="day">${day.demo ? html`<span class="tag">Invented weather.</span> ` : null}${dayStatement(day, reader)}</p>
 ${day.windows.length === 0 ? null : html`<ul class="windows">${day.windows.map((window) => html`<li>${windowSentence(window, day)}</li>`)}</ul>`}
-${cautions.length === 0 ? null : html`<ul class="cautions" aria-label="Cautions">${cautions}</ul>`}
+</div>${picture}<div class="rest">${cautions.length === 0 ? null : html`<ul class="cautions" aria-label="Cautions">${cautions}</ul>`}
 ${day.localRules === null ? null : html`<p class="rules">${plainText(day.localRules, 300)}</p>`}
-<p class="ages">${provenance(day)}</p></div>${picture}</article>`;
+<p class="ages">${provenance(day)}</p></div></article>`;
 }
 
 /** A site without a brief is a day of which nothing can be said, in the title as on the page. */
@@ -54,7 +54,7 @@ function silentDay(site: BoardSite, now: Date): JudgedDay {
 function notMade(day: JudgedDay): Html {
   const name = placeName({ name: day.siteName, id: day.siteId });
   return html`<article class="entry"><div class="margin"><h2><a href="/sites/${encodeURIComponent(day.siteId)}">${name}</a></h2></div>
-<div class="body"><p class="day">Cannot say: no brief has been made for this morning yet.</p></div></article>`;
+<div class="say"><p class="day">Cannot say: no brief has been made for this morning yet.</p></div></article>`;
 }
 
 export function boardPage(sites: readonly BoardSite[], options: { readonly reader: Reader; readonly now: Date }): string {

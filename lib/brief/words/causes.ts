@@ -40,7 +40,7 @@ function foundPhrase(id: MarginId, found: string): string {
     case 'pressureStep': return `the pressure step across the mountains is ${found}`;
     case 'sector': return `the wind comes from a sheltered sector with ${found}`;
     case 'ridgeLift': return `the ridge lifts ${found} more than the wing sinks`;
-    case 'agreement': return `${found} of the forecast members agree`;
+    case 'agreement': return `in ${found} of the forecast members no limit is passed`;
     case 'stripWind': return `the mean wind on the strip reaches ${found}`;
     case 'stripGust': return `a gust on the strip reaches ${found}`;
     case 'stripCross': return `a gust blows ${found} across the strip`;
