@@ -80,7 +80,8 @@ function checkedWind(wind: Wind | null | undefined): CheckedWind {
 }
 
 function checkedNearGround(list: readonly NearGroundWind[] | null | undefined): CheckedHour['nearGround'] {
-  return (list ?? [])
+  if (list === null || list === undefined || list.length === 0) return [];
+  return list
     .filter((entry) => Number.isFinite(entry.heightAglM) && entry.heightAglM > 10 && entry.heightAglM <= 1000)
     .map((entry) => ({ ...checkedWind(entry), heightAglM: entry.heightAglM }))
     .sort((a, b) => a.heightAglM - b.heightAglM)
@@ -93,7 +94,8 @@ function standardHeightM(pressureHpa: number): number {
 }
 
 function checkedLevels(list: readonly Level[] | null | undefined): CheckedLevel[] {
-  const levels = (list ?? [])
+  if (list === null || list === undefined || list.length === 0) return [];
+  const levels = list
     .filter((level) => !Number.isNaN(plausible(level.pressureHpa, 'pressureHpa')))
     .map((level) => {
       const wind = checkedWind(level);
@@ -126,6 +128,7 @@ function placed(levels: readonly CheckedLevel[]): CheckedLevel[] {
 
 function checkedSurfacePressure(value: unknown, gridElevationM: number): number {
   const pressureHpa = plausible(value, 'pressureHpa');
+  if (Number.isNaN(pressureHpa)) return NaN;
   const standardHpa = standardAir(geopotentialM(gridElevationM)).pressurePa / 100;
   return Math.abs(pressureHpa - standardHpa) <= SURFACE_PRESSURE_TOLERANCE_HPA ? pressureHpa : NaN;
 }

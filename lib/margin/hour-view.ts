@@ -39,6 +39,8 @@ export class HourView {
   #profile: Profile | undefined;
   #column: Column | undefined;
   #winds: readonly Estimate[] | undefined;
+  #windNeeds: readonly ConditionField[] | undefined;
+  #gustNeeds: readonly ConditionField[] | undefined;
   #mixedLayer: { readonly depthM: number; readonly origin: string } | undefined;
   #thermalMps: number | undefined;
   #tow: ChosenTow | undefined;
@@ -100,6 +102,17 @@ export class HourView {
     return this.#winds;
   }
 
+  /** Fields behind the wind estimates. A launch that no estimate reaches needs levels the source does not give. */
+  get windNeeds(): readonly ConditionField[] {
+    this.#windNeeds ??= windFields(this.winds, this.context.declares);
+    return this.#windNeeds;
+  }
+
+  get gustNeeds(): readonly ConditionField[] {
+    this.#gustNeeds ??= [...this.windNeeds, 'gustMps'];
+    return this.#gustNeeds;
+  }
+
   /** Speed of the gust above the mean, never negative; NaN when either is unknown. */
   get gustIncrementMps(): number {
     return Math.max(0, this.hour.gustMps - this.hour.wind10m.speedMps);
@@ -149,6 +162,13 @@ export class HourView {
   }
 }
 
+function windFields(winds: readonly Estimate[], declares: ReadonlySet<ConditionField>): readonly ConditionField[] {
+  if (winds.length === 0) return ['levels'];
+  const aloft = winds.some(({ name }) => name === 'freeAir') ? (['nearGround', 'levels'] as const).filter((field) => declares.has(field)) : [];
+  const onGround = declares.has('wind10m') || winds.some(({ name }) => name !== 'freeAir');
+  return onGround ? ['wind10m', ...aloft] : aloft;
+}
+
 /** u and v of a checked wind; a calm has no direction and no components. */
 export function nodeVector(wind: CheckedWind): { readonly uMps: number; readonly vMps: number } {
   return isCalm(wind.speedMps) ? { uMps: 0, vMps: 0 } : vectorOf(wind.speedMps, wind.fromDeg);
@@ -159,7 +179,14 @@ export function reachOf(hours: readonly CheckedHour[], declares: ReadonlySet<Con
   const aloft = (['levels', 'nearGround'] as const).find((field) => declares.has(field));
   const delivering = aloft === undefined ? hours : hours.filter((hour) => hour[aloft].length > 0);
   if (delivering.length === 0) return aloft === undefined ? -Infinity : OUT_OF_SIGHT_M;
-  return delivering.reduce((highest, hour) => Math.max(highest, topM(profileOf(hour, declares))), -Infinity);
+  return delivering.reduce((highest, hour) => Math.max(highest, topOf(hour, declares)), -Infinity);
+}
+
+/** Height of the highest node that profileOf would make, without making it. */
+function topOf(hour: CheckedHour, declares: ReadonlySet<ConditionField>): number {
+  if (declares.has('levels')) return topM(profileOf(hour, declares));
+  if (declares.has('nearGround')) return hour.gridElevationM + (hour.nearGround.at(-1)?.heightAglM ?? 10.5);
+  return declares.has('wind10m') && !Number.isNaN(hour.gridElevationM) ? hour.gridElevationM + 10 : -Infinity;
 }
 
 function profileOf(hour: CheckedHour, declares: ReadonlySet<ConditionField>): Profile {

@@ -59,18 +59,12 @@ export function pick(winds: readonly Estimate[], which: 'largest' | 'least', mea
 }
 
 /** Fields behind the wind estimates. A launch that no estimate reaches needs levels the source does not give. */
-export function windNeeds(view: HourView): Need[] {
-  if (view.winds.length === 0) return ['levels'];
-  const needs: Need[] = [];
-  for (const { name } of view.winds) {
-    if (name === 'freeAir') needs.push(...declaredWinds(view));
-    else needs.push('wind10m');
-  }
-  return [...new Set(needs)];
+export function windNeeds(view: HourView): readonly Need[] {
+  return view.windNeeds;
 }
 
-export function gustNeeds(view: HourView): Need[] {
-  return [...windNeeds(view), 'gustMps'];
+export function gustNeeds(view: HourView): readonly Need[] {
+  return view.gustNeeds;
 }
 
 /** The wind fields a source declares for its profile. */
