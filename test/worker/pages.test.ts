@@ -45,7 +45,7 @@ describe.each(['/', '/sites/kestrel-edge', '/sites/kestrel-edge/what-if?wind=5',
 
 test('expired says expired and shows no verdict', async () => {
   const late = new Date('2027-05-14T22:00:00Z');
-  for (const path of ['/', '/sites/kestrel-edge']) {
+  for (const path of ['/', '/sites/kestrel-edge', '/sites/kestrel-edge/what-if?wind=3']) {
     const { markup } = await get(path, one(DAYS['kestrel-edge']!), late);
     expect(markup).toContain(EXPIRED);
     const seen = text(markup.replace(/<title>.*?<\/title>/s, ''));

@@ -1,8 +1,8 @@
 /** The answer to "what if": one hour judged with the visitor's numbers, and the form to ask again. */
 import type { CombinedMargin, JudgedDay } from '../../lib/brief/day.ts';
 import { tightestFirst } from '../../lib/brief/tightest.ts';
-import { capital, causeClause, dateName, hourName, INVENTED, placeName, plainText, sentence, sourceName, verdictPhrase, votePhrase } from '../../lib/brief/words/index.ts';
-import { creditsOf } from './board.ts';
+import { capital, causeClause, dateName, EXPIRED, hourName, INVENTED, placeName, plainText, sentence, sourceName, verdictPhrase, votePhrase } from '../../lib/brief/words/index.ts';
+import { creditsOf, isExpired } from './board.ts';
 import { html, type Html } from './html.ts';
 import { layout } from './layout.ts';
 import { marginsList } from './margins-list.ts';
@@ -36,9 +36,10 @@ export function whatIfPage(day: JudgedDay, answered: WhatIf, options: WhatIfPage
   const { reader, hour } = options;
   const name = placeName({ name: day.siteName, id: day.siteId });
   const back = address(`/sites/${encodeURIComponent(day.siteId)}`, { date: day.localDate, wing: day.wingKey, sheet: day.sheetId, hour, ...unitsPart(reader.units) }, '#hour');
-  const said = answered.kind === 'judged' ? answer(day, answered, options)
+  const expired = isExpired(day, options.now);
+  const said = expired ? html`<p class="day">${EXPIRED}</p>` : answered.kind === 'judged' ? answer(day, answered, options)
     : html`<p class="day">This cannot be judged.</p><ul class="cautions">${answered.problems.map((problem) => html`<li>${problem}</li>`)}</ul>`;
-  const verdict = answered.kind === 'judged' ? capital(verdictPhrase(answered.hour.verdict)) : 'Cannot be judged';
+  const verdict = expired ? 'Expired' : answered.kind === 'judged' ? capital(verdictPhrase(answered.hour.verdict)) : 'Cannot be judged';
   return layout({
     title: `${day.demo ? `${INVENTED}: ` : ''}${verdict} with own numbers, ${name} - Dawnmargin`, description: `What if: one hour at ${name} judged with own numbers.`,
     body: html`<article class="site"><div class="margin"><h1>${name}</h1><p class="aside">${dateName(day.localDate)}<br>What if<br>${plainText(day.wingName)}<br>${plainText(day.sheetName)}</p></div>
