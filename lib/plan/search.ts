@@ -4,15 +4,13 @@
  * and the flow of mostHours; states that were searched before (the same groups to come, the same room for them) are not
  * searched again. Exact unless the search runs out of `nodeBudget`, which it then says.
  */
-import { count } from './bits.ts';
 import { demandOf, stateOf, type Demand } from './demand.ts';
 import { mostHoursOf } from './most-hours.ts';
 import type { Puzzle, Stay } from './puzzle.ts';
+import { alone, HOUR_WORTH, inOrder } from './order.ts';
 import { roomFor, slotsAt, type GroupRoom } from './room.ts';
+import { staffedHours } from './staffed-hours.ts';
 import { eachWay } from './stays.ts';
-
-/** One hour outweighs every move of a day. */
-const HOUR_WORTH = 1000;
 
 export interface SearchOptions {
   /** Slots with less spare are not used. */
@@ -52,8 +50,12 @@ export function search(whole: Puzzle, options: SearchOptions): Found {
   let best: { readonly worth: number; readonly stays: readonly (readonly Stay[])[] } | null = null;
   let nodes = 0;
 
-  const bestWorth = (): number => best?.worth ?? -1;
-  const isOver = (): boolean => nodes > options.nodeBudget || (options.anyPlan && best !== null);
+  /** What a plan must be worth more than: the best so far, or the hours that are asked for at the moment. */
+  let floor = -1;
+  const bestWorth = (): number => Math.max(floor, best?.worth ?? -1);
+  let budget = options.nodeBudget;
+  let anyPlan = options.anyPlan;
+  const isOver = (): boolean => nodes > budget || (anyPlan && best !== null);
 
   /** What the groups from `depth` on can be worth at most; null when too many of them have no room. */
   function bound(depth: number, leaveOut: number, needed: number): { readonly waiting: readonly Waiting[]; readonly worth: number } | null {
@@ -63,10 +65,25 @@ export function search(whole: Puzzle, options: SearchOptions): Found {
     if (spareLeaves < 0) return null;
     const worth = waiting.reduce((sum, each) => sum + alone(each.room), 0);
     if (worth <= needed || waiting.length < 2) return { waiting, worth };
+    const staffed = staffedHours(waiting.map((each) => ({ ...hoursOf(each.group), mostHours: each.room.mostHours })), staffLeftFor(waiting), spareLeaves > 0);
+    if (staffed < 0) return null;
+    const byStaff = Math.min(worth, staffed * HOUR_WORTH);
+    if (byStaff <= needed) return { waiting, worth: byStaff };
     const flow = mostHours(waiting, room);
     const least = waiting.map(({ group }) => puzzle.groups[group]?.minHours ?? 0).sort((a, b) => a - b).slice(0, waiting.length - spareLeaves);
     if (flow < least.reduce((sum, hours) => sum + hours, 0)) return null;
-    return { waiting, worth: Math.min(worth, flow * HOUR_WORTH) };
+    return { waiting, worth: Math.min(byStaff, flow * HOUR_WORTH) };
+  }
+
+  function hoursOf(group: number): { readonly instructors: number; readonly minHours: number } {
+    const { instructors, minHours } = puzzle.groups[group] ?? { instructors: 0, minHours: Infinity };
+    return { instructors, minHours };
+  }
+
+  /** Hours of instructors in those slots in which somebody could be out. */
+  function staffLeftFor(waiting: readonly Waiting[]): number {
+    const open = waiting.reduce((all, each) => all | each.room.bySite.reduce((bits, more) => bits | more, 0), 0);
+    return room.staffLeft.reduce((sum, left, slot) => sum + ((open & (1 << slot)) === 0 ? 0 : left), 0);
   }
 
   function descend(depth: number, worth: number, leaveOut: number): void {
@@ -88,7 +105,7 @@ export function search(whole: Puzzle, options: SearchOptions): Found {
   }
 
   function place({ own, depth, worth, leaveOut, rest }: { own: Waiting; depth: number; worth: number; leaveOut: number; rest: number }): void {
-    const { minHours } = puzzle.groups[own.group] ?? { minHours: Infinity };
+    const { minHours } = hoursOf(own.group);
     for (let hours = own.room.mostHours; hours >= minHours; hours -= 1) {
       for (let stays = 1; stays * minHours <= hours; stays += 1) {
         const gain = hours * HOUR_WORTH - (stays - 1);
@@ -108,19 +125,19 @@ export function search(whole: Puzzle, options: SearchOptions): Found {
     }
   }
 
-  descend(0, 0, options.leaveOut);
+  // Hours are asked for from the most there could be downward: a plan of so many is found sooner, or ruled out for good.
+  const most = bound(0, options.leaveOut, -1)?.worth ?? 0;
+  for (let hours = Math.ceil(most / HOUR_WORTH); hours >= 0 && best === null && !isOver(); hours -= 1) {
+    floor = options.anyPlan ? -1 : (hours - 1) * HOUR_WORTH;
+    descend(0, 0, options.leaveOut);
+    if (options.anyPlan) break;
+  }
+  const proven = nodes <= budget;
+  if (best === null && !proven && !options.anyPlan) {
+    // Out of budget with nothing in hand: the first plan there is.
+    [floor, anyPlan, budget] = [-1, true, nodes + options.nodeBudget];
+    descend(0, 0, options.leaveOut);
+  }
   const found = best as { readonly stays: readonly (readonly Stay[])[] } | null;
-  return { stays: found?.stays ?? null, nodes, proven: nodes <= options.nodeBudget };
-}
-
-/** What a group is worth with nobody else about. */
-function alone({ mostHours, longest }: GroupRoom): number {
-  return mostHours * HOUR_WORTH - (Math.ceil(mostHours / longest) - 1);
-}
-
-/** The most confined first; among equals the one that needs more instructors, then as given. */
-function inOrder(puzzle: Puzzle, roomOf: (group: number) => GroupRoom): number[] {
-  const sizes = puzzle.groups.map((_, group) => roomOf(group).bySite.reduce((sum, bits) => sum + count(bits), 0));
-  const needs = puzzle.groups.map(({ instructors }) => instructors);
-  return [...puzzle.groups.keys()].sort((a, b) => (sizes[a] ?? 0) - (sizes[b] ?? 0) || (needs[b] ?? 0) - (needs[a] ?? 0) || a - b);
+  return { stays: found?.stays ?? null, nodes, proven };
 }
