@@ -138,7 +138,7 @@ test('an outage that ends in the evening owes one subscriber today and the other
     { ...ana, id: 'ben', sites: ['north'], urls: [hook('ben')], deliverMinute: 22 * 60, dueIso: '2027-05-14T20:00:00Z' },
   ]);
   await house.minute();
-  expect(house.posts.map((post) => JSON.parse(post.body).data.days[0].localDate).sort()).toEqual(['2027-05-14', '2027-05-15']);
+  expect(house.posts.map((post) => JSON.parse(post.body).data.days[0].localDate).toSorted((a: string, b: string) => a.localeCompare(b))).toEqual(['2027-05-14', '2027-05-15']);
 });
 
 describe('when something fails', () => {
@@ -200,7 +200,10 @@ describe('when something fails', () => {
   ])('%s end the row with a reason', async (_, status, headers, state, reason) => {
     const house = await newHouse({ nowIso: six, answer: () => new Response(null, { status, headers }) });
     await house.seed([ana]);
-    await house.minutes(90);
+    for (let look = 0; look < 10; look += 1) {
+      await house.minute();
+      house.nowMs += 10 * 60_000;
+    }
     const [row] = await house.outbox();
     expect(row).toMatchObject({ state });
     expect(row!.reason).toMatch(reason);
@@ -235,6 +238,70 @@ describe('when something fails', () => {
     await house.minute();
     expect(await house.outbox()).toMatchObject([{ state: 'suppressed' }]);
     expect(house.posts).toHaveLength(1);
+  });
+});
+
+describe('a webhook', () => {
+  const unverified = async (): Promise<void> => { await env.DB.prepare(`UPDATE channel SET state = 'unverified'`).run(); };
+  const stateOf = async (): Promise<unknown> => (await env.DB.prepare('SELECT state FROM channel').first<{ state: string }>())!.state;
+
+  test('gets no brief before it has echoed the challenge, and all of them after', async () => {
+    const house = await newHouse({
+      nowIso: six,
+      answer: ({ body }) => {
+        const { type, data } = JSON.parse(body) as { type: string; data: { challenge?: string } };
+        return type === 'endpoint.challenge' ? Response.json({ challenge: data.challenge }) : new Response(null, { status: 200 });
+      },
+    });
+    await house.seed([ana]);
+    await unverified();
+    await house.minute();
+    expect(house.posts.map((post) => JSON.parse(post.body).type)).toEqual(['endpoint.challenge', 'brief.issued']);
+    expect(await stateOf()).toBe('active');
+    house.nowMs = Date.parse('2027-05-15T04:00:00Z');
+    await house.minute();
+    expect(house.posts.map((post) => JSON.parse(post.body).type)).toEqual(['endpoint.challenge', 'brief.issued', 'brief.issued']);
+  });
+
+  test.each([
+    ['200 without the echo', () => new Response('thanks', { status: 200 })], ['another echo', () => Response.json({ challenge: 'x' })],
+    ['an endless answer', () => new Response('{"challenge":"'.padEnd(5000, 'x'))], ['500', () => new Response(null, { status: 500 })],
+  ])('that answers %s is asked three times, gets nothing and stays unverified', async (_, answer) => {
+    const house = await newHouse({ nowIso: six, answer });
+    await house.seed([ana]);
+    await unverified();
+    for (let look = 0; look < 4; look += 1) {
+      await house.minute();
+      house.nowMs += 4 * 60_000;
+    }
+    expect(house.posts.map((post) => JSON.parse(post.body).type)).toEqual(Array.from({ length: 3 }, () => 'endpoint.challenge'));
+    expect(await house.outbox()).toMatchObject([{ state: 'dead', reason: 'the receiver has not echoed the challenge' }]);
+    expect(await stateOf()).toBe('unverified');
+  });
+
+  test('is signed with two secrets while one is being changed, and with none that was given up', async () => {
+    const house = await newHouse({ nowIso: six });
+    await house.seed([ana]);
+    await env.DB.prepare('UPDATE channel SET secret_version = 3, oldest_secret_version = 2').run();
+    await house.minute();
+    const [post] = house.posts;
+    const headers = Object.fromEntries(['id', 'timestamp', 'signature'].map((name) => [`webhook-${name}`, post!.headers.get(`webhook-${name}`)!]));
+    expect(headers['webhook-signature']!.split(' ')).toHaveLength(2);
+    vi.useFakeTimers({ now: house.nowMs, toFake: ['Date'] });
+    for (const [version, isGood] of [[1, false], [2, true], [3, true]] as const) {
+      const receiver = new Webhook(webhookSecretText(await derivedKey(LINK_KEY, { purpose: 'webhook', id: 'ana-0', version })));
+      if (isGood) expect(receiver.verify(post!.body, headers)).toBeTruthy();
+      else expect(() => receiver.verify(post!.body, headers)).toThrow();
+    }
+  });
+
+  test('with a target that is no target is dead and breaks nobody else', async () => {
+    const house = await newHouse({ nowIso: six });
+    await house.seed([ana, { ...ana, id: 'ben', urls: [hook('ben')] }, { ...ana, id: 'cid', urls: [hook('cid')] }]);
+    await env.DB.prepare(`UPDATE channel SET target = '{' WHERE id = 'ana-0'`).run();
+    await env.DB.prepare(`UPDATE channel SET kind = 'push', target = 'null' WHERE id = 'ben-0'`).run();
+    await house.minute();
+    expect((await house.outbox()).map(({ channel_id, state }) => [channel_id, state])).toEqual([['ana-0', 'dead'], ['ben-0', 'dead'], ['cid-0', 'sent']]);
   });
 });
 

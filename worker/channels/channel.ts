@@ -31,12 +31,14 @@ export interface MessageDay {
 export interface Address {
   readonly id: string;
   readonly target: string;
+  /** `unverified`: it has not shown yet that it wants to be told. */
+  readonly state: 'unverified' | 'active' | 'dead';
   readonly secretVersion: number;
   readonly oldestSecretVersion: number;
 }
 
 export type SendOutcome =
-  | { readonly state: 'sent' }
+  | { readonly state: 'sent'; /** It has just shown that it wants to be told. */ readonly verified?: true }
   /** The world failed for now. */
   | { readonly state: 'retry'; readonly reason: string; readonly afterMs: number | null }
   /** This message will never be taken there, another may be. */
@@ -45,6 +47,8 @@ export type SendOutcome =
   | { readonly state: 'gone'; readonly reason: string };
 
 export interface Attempt {
+  /** 1 for the first. */
+  readonly number: number;
   readonly nowMs: number;
   readonly timeoutMs: number;
   /** Nothing of it may arrive later. */

@@ -1,13 +1,16 @@
 import { CLOSING } from '../../lib/brief/words/closing.ts';
 import { base64, derivedKey, hmacSha256 } from '../secrets.ts';
-import type { Address, Channel, Message, SendOutcome } from './channel.ts';
+import { challengeBody, challengeOf, isEcho } from './challenge.ts';
+import type { Address, Attempt, Channel, Message, SendOutcome } from './channel.ts';
 import { retryAfterMs } from './retry-after.ts';
 import { isLoopback, webhookUrl } from './webhook-url.ts';
+
+const MOST_CHALLENGES = 3;
 
 /**
  * A signed POST by Standard Webhooks 1.0. The secret is derived, never stored; while it is being changed two versions
  * sign side by side. Of the answer only its status counts: 2xx is delivered, 410 ends the channel, anything else is tried
- * again, redirects included.
+ * again, redirects included. A receiver that has not echoed a challenge yet gets that first, and no brief before.
  */
 export interface WebhookOptions {
   readonly fetch: (url: string, init: RequestInit) => Promise<Response>;
@@ -19,46 +22,40 @@ export interface WebhookOptions {
 export function webhookChannel(options: WebhookOptions): Channel {
   const rules = { local: options.local, ownHost: new URL(options.publicUrl).hostname };
   const addressOf = (address: Address): ReturnType<typeof webhookUrl> => {
-    const target: unknown = JSON.parse(address.target);
-    const url = typeof target === 'object' && target !== null && 'url' in target ? target.url : null;
-    return typeof url === 'string' ? webhookUrl(url, rules) : { problem: 'no address' };
+    const url = urlIn(address.target);
+    return url === null ? { problem: 'it cannot be read' } : webhookUrl(url, rules);
   };
   return {
     lane(address) {
       const to = addressOf(address);
       return 'url' in to ? new URL(to.url).host : address.id;
     },
-    async send(message, address, { nowMs, timeoutMs }) {
+    async send(message, address, attempt) {
       const to = addressOf(address);
       if ('problem' in to) return { state: 'gone', reason: `the webhook address is refused: ${to.problem}` };
       if (message.demo && !isLoopback(new URL(to.url))) return { state: 'refused', reason: 'invented weather stays on this machine' };
       if (options.linkKey === null) return { state: 'retry', reason: 'the setting LINK_KEY is missing', afterMs: null };
-      const body = JSON.stringify(payload(message));
-      const timestampS = Math.floor(nowMs / 1000);
-      const secrets = await webhookSecrets(options.linkKey, address);
-      const signatures = await Promise.all(secrets.map((key) => signature(key, `${message.id}.${timestampS}.${body}`)));
-      try {
-        const response = await options.fetch(to.url, {
-          method: 'POST',
-          headers: {
-            'content-type': 'application/json',
-            'user-agent': 'dawnmargin',
-            'webhook-id': message.id,
-            'webhook-timestamp': String(timestampS),
-            'webhook-signature': signatures.join(' '),
-          },
-          body,
-          redirect: 'manual',
-          signal: AbortSignal.timeout(timeoutMs),
-        });
-        await response.body?.cancel().catch(() => undefined);
-        return outcomeOf(response, nowMs);
-      } catch (error) {
-        const isLate = error instanceof Error && error.name === 'TimeoutError';
-        return { state: 'retry', reason: isLate ? `no answer within ${timeoutMs / 1000} s` : 'the address could not be reached', afterMs: null };
+      const post = poster(options, { url: to.url, linkKey: options.linkKey, address, attempt });
+      if (address.state === 'active') return outcomeOf(await post(message.id, payload(message)), attempt);
+      const challenge = await challengeOf(options.linkKey, address);
+      const answer = await post(`chl_${challenge}`, challengeBody(challenge, attempt.nowMs));
+      if (answer instanceof Response && (await isEcho(answer, challenge))) {
+        const outcome = await outcomeOf(await post(message.id, payload(message)), attempt);
+        return outcome.state === 'sent' ? { ...outcome, verified: true } : outcome;
       }
+      const reason = 'the receiver has not echoed the challenge';
+      return attempt.number < MOST_CHALLENGES ? { state: 'retry', reason, afterMs: null } : { state: 'refused', reason };
     },
   };
+}
+
+function urlIn(target: string): string | null {
+  try {
+    const parsed = JSON.parse(target) as { readonly url?: unknown } | null;
+    return typeof parsed?.url === 'string' ? parsed.url : null;
+  } catch {
+    return null;
+  }
 }
 
 /** The keys whose signatures a message carries: the newest version, and the one before while it is still valid. */
@@ -77,11 +74,37 @@ async function signature(key: Uint8Array, content: string): Promise<string> {
   return `v1,${base64(await hmacSha256(key, new TextEncoder().encode(content)))}`;
 }
 
-function outcomeOf(response: Response, nowMs: number): SendOutcome {
-  const { status } = response;
+type Post = (id: string, body: unknown) => Promise<Response | 'too late' | 'unreachable'>;
+
+function poster(
+  { fetch }: WebhookOptions,
+  { url, linkKey, address, attempt }: { readonly url: string; readonly linkKey: string; readonly address: Address; readonly attempt: Attempt },
+): Post {
+  return async (id, value) => {
+    const body = JSON.stringify(value);
+    const timestampS = Math.floor(attempt.nowMs / 1000);
+    const secrets = await webhookSecrets(linkKey, address);
+    const signatures = await Promise.all(secrets.map((key) => signature(key, `${id}.${timestampS}.${body}`)));
+    const headers = {
+      'content-type': 'application/json', 'user-agent': 'dawnmargin',
+      'webhook-id': id, 'webhook-timestamp': String(timestampS), 'webhook-signature': signatures.join(' '),
+    };
+    try {
+      return await fetch(url, { method: 'POST', headers, body, redirect: 'manual', signal: AbortSignal.timeout(attempt.timeoutMs) });
+    } catch (error) {
+      return error instanceof Error && error.name === 'TimeoutError' ? 'too late' : 'unreachable';
+    }
+  };
+}
+
+async function outcomeOf(answer: Awaited<ReturnType<Post>>, { nowMs, timeoutMs }: Attempt): Promise<SendOutcome> {
+  if (answer === 'too late') return { state: 'retry', reason: `no answer within ${timeoutMs / 1000} s`, afterMs: null };
+  if (answer === 'unreachable') return { state: 'retry', reason: 'the address could not be reached', afterMs: null };
+  await answer.body?.cancel().catch(() => undefined);
+  const { status } = answer;
   if (status >= 200 && status < 300) return { state: 'sent' };
   if (status === 410) return { state: 'gone', reason: 'the receiver answered 410, gone' };
-  const wait = status === 429 || status === 503 ? retryAfterMs(response.headers.get('retry-after'), nowMs) : null;
+  const wait = status === 429 || status === 503 ? retryAfterMs(answer.headers.get('retry-after'), nowMs) : null;
   const reason = status === 0 || (status >= 300 && status < 400) ? 'the receiver redirects' : `the receiver answered ${status}`;
   return { state: 'retry', reason, afterMs: wait };
 }

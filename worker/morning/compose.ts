@@ -52,7 +52,7 @@ export async function compose(services: Services, rows: readonly OutboxRow[]): P
     const channel = channels.get(row.channelId);
     const content = contents.get(row.id);
     const message = content === undefined ? null : messageOf({ row, content, heads: row.content === null ? heads : exactHeads, places });
-    if (channel === undefined || channel.state !== 'active' || message === null) orphans.push(row);
+    if (channel === undefined || channel.state === 'dead' || message === null) orphans.push(row);
     else composed.push({ row, channel, message });
   }
   return { composed, orphans };

@@ -43,15 +43,17 @@ export async function deliverStep(services: Services): Promise<boolean> {
 
 async function deliverOne(services: Services, item: Composed, by: string): Promise<SettledState | 'retry'> {
   const { stores, clock } = services;
-  const { row, message } = item;
+  const { row } = item;
   if (clock.nowMs() >= lastMomentOf(item)) {
     return mark(services, [stores.outbox.settle(row.id, { state: 'expired', reason: 'no longer valid when its turn came' }, clock.nowMs())], 'expired');
   }
   const outcome = await sendOne(services, item);
   const nowMs = clock.nowMs();
   switch (outcome.state) {
-    case 'sent':
-      return mark(services, [stores.outbox.settle(row.id, { state: 'sent', reason: 'taken by the receiver' }, nowMs)], 'sent');
+    case 'sent': {
+      const verified = outcome.verified === true ? [stores.channel.verify(item.channel.id)] : [];
+      return mark(services, [stores.outbox.settle(row.id, { state: 'sent', reason: 'taken by the receiver' }, nowMs), ...verified], 'sent');
+    }
     case 'gone':
       return mark(services, [stores.channel.end(item.channel.id, outcome.reason), ...dead(services, item, outcome.reason)], 'dead');
     case 'refused':
@@ -75,7 +77,7 @@ async function sendOne(services: Services, { row, channel, message }: Composed):
   const carrier = services.channels[channel.kind];
   if (carrier === undefined) return { state: 'retry', reason: `this service has no channel "${channel.kind}"`, afterMs: null };
   try {
-    return await carrier.send(message, channel, { nowMs: services.clock.nowMs(), timeoutMs: SEND_TIMEOUT_MS, untilMs: lastMomentOf({ row, message }) });
+    return await carrier.send(message, channel, { number: row.attempts, nowMs: services.clock.nowMs(), timeoutMs: SEND_TIMEOUT_MS, untilMs: lastMomentOf({ row, message }) });
   } catch (error) {
     const fault = error instanceof Error ? error.name : 'unknown';
     await services.stores.log.write([{ level: 'error', step: 'deliver', event: 'channel-threw', detail: { kind: channel.kind, message: row.id, fault } }], services.clock.nowMs());

@@ -1,5 +1,6 @@
 import type { JudgedDay } from '../../lib/brief/day.ts';
-import { briefText, briefTitle, CLOSING, dateName, dayVerdict, INVENTED, type Reader } from '../../lib/brief/words/index.ts';
+import { briefText, briefTitle, dayVerdict, type Reader } from '../../lib/brief/words/index.ts';
+import { missedNotice, NOT_COMPUTED } from '../../lib/brief/words/notices.ts';
 import { isoUtc, localDay } from '../../lib/time.ts';
 import type { Message } from '../channels/channel.ts';
 import type { Place } from '../service-set.ts';
@@ -69,19 +70,12 @@ function notComputed(place: Place, pair: PairDay, nowMs: number): JudgedDay {
     siteId: site.id, siteName: site.name, kind: site.kind, timeZone: site.timeZone, localDate: pair.localDate,
     wingKey: pair.wingKey, wingName: pair.wingKey, sheetId: pair.sheetId, sheetName: pair.sheetId, sheetVersion: 0,
     issuedAt: isoUtc(nowMs), validUntil: isoUtc(localDay(pair.localDate, site.timeZone).toMs), demo,
-    legalDay: { none: 'the brief was not computed in time' },
+    legalDay: { none: NOT_COMPUTED },
     verdict: 'unknown', cause: null, windows: [], hours: [], sources: [], cautions: [], notJudged: [], localRules: site.localRules,
   };
 }
 
-/** What is said where a morning was missed altogether: silence must not read as good news. */
 export function missedMessage(row: OutboxRow, { demo, nowMs }: { demo: boolean; nowMs: number }): Message {
-  const title = `Cannot say: no brief was computed for ${dateName(row.dueLocalDate, 'short')}`;
-  const text = `Cannot say: the brief of ${dateName(row.dueLocalDate)} was neither computed nor sent, because this service did not run at its time. The next one comes at its usual hour.`;
-  return {
-    id: row.id, kind: row.kind,
-    title: demo ? `${INVENTED}: ${title}` : title,
-    text: `${demo ? `${INVENTED}. ` : ''}${text}\n\n${CLOSING}\n`,
-    issuedAtMs: nowMs, dataRunAtMs: null, validUntilMs: row.validUntilMs, urgent: false, demo, days: [],
-  };
+  const { title, text } = missedNotice({ date: row.dueLocalDate, demo });
+  return { id: row.id, kind: row.kind, title, text, issuedAtMs: nowMs, dataRunAtMs: null, validUntilMs: row.validUntilMs, urgent: false, demo, days: [] };
 }

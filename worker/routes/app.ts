@@ -2,6 +2,7 @@ import { Hono } from 'hono';
 import type { Services } from '../service-set.ts';
 import { pageServices } from '../web/page-data.ts';
 import { api } from './api.ts';
+import { feeds } from './feeds.ts';
 import { health } from './health.ts';
 import { local } from './local.ts';
 import { pages } from './pages.ts';
@@ -12,6 +13,7 @@ const METHODS: Readonly<Record<string, string>> = {
   '/': 'GET, HEAD',
   '/sites/:id': 'GET, HEAD',
   '/healthz': 'GET, HEAD',
+  '/feeds/:file': 'GET, HEAD',
   '/api/v1/assess': 'POST',
   '/api/v1/sites': 'GET, HEAD',
   '/api/v1/sites/:id/days/:date': 'GET, HEAD',
@@ -22,6 +24,7 @@ export function app(services: Services): Hono {
   const hono = new Hono();
   hono.get('/healthz', () => health(services));
   hono.route('/api/v1', api(services));
+  hono.route('/feeds', feeds(services));
   if (services.settings.local) hono.route('/local', local(services));
   hono.route('/', pages(pageServices(services)));
   for (const [path, allow] of Object.entries(METHODS)) {

@@ -79,6 +79,13 @@ export function briefStore(db: Database) {
         AND b.sheet_version = j.value ->> 'sheetVersion' AND b.revision = j.value ->> 'revision'`;
       return (await db.read<Row>(sql, JSON.stringify(keys))).map(head);
     },
+    /** Every revision of these pair-days, each day's in the order in which they were issued. */
+    async history(pairDays: readonly PairDay[]): Promise<BriefHead[]> {
+      const sql = `SELECT ${HEAD} FROM json_each(?) AS j JOIN brief AS b ON b.site_id = j.value ->> 'siteId'
+        AND b.local_date = j.value ->> 'localDate' AND b.wing_key = j.value ->> 'wingKey' AND b.sheet_id = j.value ->> 'sheetId'
+        ORDER BY b.local_date, b.site_id, b.wing_key, b.sheet_id, b.issued_at, b.revision`;
+      return (await db.read<Row>(sql, JSON.stringify(pairDays))).map(head);
+    },
     /** One of those with its body, the judged day as JSON. */
     async newest(pairDay: PairDay): Promise<(BriefHead & { readonly body: string }) | null> {
       const sql = `SELECT ${HEAD}, b.body FROM brief AS b WHERE b.site_id = ? AND b.local_date = ? AND b.wing_key = ? AND b.sheet_id = ?

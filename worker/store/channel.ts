@@ -36,6 +36,10 @@ export function channelStore(db: Database) {
     reached(ids: readonly string[], nowMs: number): Statement {
       return { sql: 'UPDATE channel SET reached_at = ? WHERE id IN (SELECT value FROM json_each(?))', values: [nowMs, JSON.stringify(ids)] };
     },
+    /** It has shown that it wants to be told. */
+    verify(id: string): Statement {
+      return { sql: `UPDATE channel SET state = 'active' WHERE id = ? AND state = 'unverified'`, values: [id] };
+    },
     /** Nothing is sent there again; its subscription stays. */
     end(id: string, reason: string): Statement {
       return { sql: `UPDATE channel SET state = 'dead', reason = ? WHERE id = ?`, values: [reason, id] };

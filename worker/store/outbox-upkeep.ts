@@ -22,7 +22,7 @@ export function outboxUpkeepStore(db: Database) {
           sql: `UPDATE outbox SET state = 'suppressed', reason = 'the subscription or its channel has ended', settled_at = ?1,
             lease_until = NULL, lease_by = NULL
             WHERE ${idle} AND NOT EXISTS (SELECT 1 FROM subscription AS s JOIN channel AS c ON c.subscription_id = s.id
-              WHERE s.id = outbox.subscription_id AND s.state = 'active' AND c.id = outbox.channel_id AND c.state = 'active')`,
+              WHERE s.id = outbox.subscription_id AND s.state = 'active' AND c.id = outbox.channel_id AND c.state <> 'dead')`,
           values: [nowMs],
         },
       ];

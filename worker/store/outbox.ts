@@ -63,8 +63,8 @@ export function outboxStore(db: Database) {
           FROM json_each(?1) AS g
           JOIN subscription AS s ON s.state = 'active' AND s.next_due_at = g.value ->> 'nextDueAtMs'
             AND s.time_zone = g.value ->> 'timeZone' AND s.deliver_minute = g.value ->> 'deliverMinute'
-          JOIN channel AS c ON c.subscription_id = s.id AND c.state = 'active'
-            AND c.rank = (SELECT MIN(rank) FROM channel WHERE subscription_id = s.id AND state = 'active')
+          JOIN channel AS c ON c.subscription_id = s.id AND c.state <> 'dead'
+            AND c.rank = (SELECT MIN(rank) FROM channel WHERE subscription_id = s.id AND state <> 'dead')
           WHERE true
           ON CONFLICT (subscription_id, channel_id, due_local_date, kind, seq) DO NOTHING`,
         values: [JSON.stringify(groups), nowMs],
@@ -123,8 +123,8 @@ export function outboxStore(db: Database) {
           SELECT 'msg_' || lower(hex(randomblob(16))), o.subscription_id, c.id, o.due_local_date, o.kind, o.seq, ${OUTBOX_FORMAT}, o.due_at,
             o.ready_by, o.valid_until, 'pending', ?2, o.content, ?2
           FROM outbox AS o JOIN channel AS was ON was.id = o.channel_id
-          JOIN channel AS c ON c.subscription_id = o.subscription_id AND c.state = 'active'
-            AND c.rank = (SELECT MIN(rank) FROM channel WHERE subscription_id = o.subscription_id AND state = 'active' AND rank > was.rank)
+          JOIN channel AS c ON c.subscription_id = o.subscription_id AND c.state <> 'dead'
+            AND c.rank = (SELECT MIN(rank) FROM channel WHERE subscription_id = o.subscription_id AND state <> 'dead' AND rank > was.rank)
           WHERE o.id = ?1 AND o.state = 'dead'
           ON CONFLICT (subscription_id, channel_id, due_local_date, kind, seq) DO NOTHING`,
         values: [id, nowMs],

@@ -35,6 +35,10 @@ export function subscriptionStore(db: Database) {
         nowMs,
       );
     },
+    async one(id: string): Promise<{ readonly id: string; readonly state: 'active' | 'paused' | 'ended'; readonly linkVersion: number } | null> {
+      const [row] = await db.read<{ id: string; state: 'active' | 'paused' | 'ended'; linkVersion: number }>('SELECT id, state, link_version AS linkVersion FROM subscription WHERE id = ?', id);
+      return row ?? null;
+    },
     pairsOf(subscriptionIds: readonly string[]): Promise<(Pair & { readonly subscriptionId: string })[]> {
       return db.read(
         `SELECT subscription_id AS subscriptionId, site_id AS siteId, wing_key AS wingKey, sheet_id AS sheetId FROM subscription_site

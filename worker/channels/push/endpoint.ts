@@ -15,13 +15,13 @@ export interface PushTarget {
 
 /** The target as it is stored, `{"endpoint", "p256dh", "auth"}`, or what is wrong with it. */
 export function readTarget(text: string, rules: { readonly local: boolean }): PushTarget | { readonly problem: string } {
-  let stored: { readonly endpoint?: unknown; readonly p256dh?: unknown; readonly auth?: unknown };
+  let stored: { readonly endpoint?: unknown; readonly p256dh?: unknown; readonly auth?: unknown } | null;
   try {
     stored = JSON.parse(text) as typeof stored;
   } catch {
     return { problem: 'it cannot be read' };
   }
-  const { endpoint, p256dh, auth } = stored;
+  const { endpoint, p256dh, auth } = stored ?? {};
   if (typeof endpoint !== 'string' || typeof p256dh !== 'string' || typeof auth !== 'string') return { problem: 'a part of it is missing' };
   const problem = endpointProblem(endpoint, rules);
   if (problem !== null) return { problem };

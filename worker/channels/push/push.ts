@@ -36,7 +36,7 @@ export function pushChannel(options: PushOptions): Channel {
       const target = targetOf(address);
       if ('problem' in target) return address.id;
       const { origin, pathname } = new URL(target.endpoint);
-      return `${origin} ${[...pathname].reduce((sum, character) => (sum * 31 + character.charCodeAt(0)) % 9973, 7) % LANES}`;
+      return `${origin} ${Array.from({ length: pathname.length }, (_, at) => pathname.charCodeAt(at)).reduce((sum, code) => (sum * 31 + code) % 9973, 7) % LANES}`;
     },
     async send(message, address, attempt) {
       const target = targetOf(address);

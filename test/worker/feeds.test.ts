@@ -1,0 +1,171 @@
+import { XMLParser, XMLValidator } from 'fast-xml-parser';
+import ICAL from 'ical.js';
+import { env } from 'cloudflare:workers';
+import { beforeEach, describe, expect, test } from 'vitest';
+import { app } from '../../worker/routes/app.ts';
+import { linkToken } from '../../worker/secrets.ts';
+import { folded, icalText } from '../../worker/feeds/ical.ts';
+import { xml } from '../../worker/feeds/atom.ts';
+import { LINK_KEY, newHouse, type House } from './support/house.ts';
+import { judgedAs } from './support/stand-ins.ts';
+
+const six = '2027-05-14T04:00:00Z';
+let house: House;
+let token: string;
+let isOpen: boolean;
+
+beforeEach(async () => {
+  isOpen = true;
+  house = await newHouse({ nowIso: six, judge: (input) => judgedAs(input, input.site.id === 'south' || !isOpen ? 'beyond' : 'close') });
+  await house.seed([{ id: 'ana', sites: ['north', 'south'], urls: ['terminal'], dueIso: six }]);
+  await house.minute();
+  token = await linkToken(LINK_KEY, { purpose: 'feed', id: 'ana', version: 1 });
+});
+
+function get(path: string, headers: Record<string, string> = {}): Promise<Response> {
+  return Promise.resolve(app(house.services()).request(path, { headers }));
+}
+
+async function events(): Promise<{ uid: string; title: string; status: string; sequence: number; text: string; isDate: boolean; from: string }[]> {
+  const response = await get(`/feeds/${token}.ics`);
+  expect(response.headers.get('content-type')).toBe('text/calendar; charset=utf-8');
+  const calendar = new ICAL.Component(ICAL.parse(await response.text()) as unknown as string);
+  return calendar.getAllSubcomponents('vevent').map((component) => {
+    const event = new ICAL.Event(component);
+    return {
+      uid: event.uid, title: event.summary, status: String(component.getFirstPropertyValue('status')), sequence: event.sequence, text: event.description,
+      isDate: event.startDate.isDate, from: event.startDate.toString(),
+    };
+  });
+}
+
+/** The morning again, judged anew because a new forecast has come. */
+async function laterBrief(): Promise<void> {
+  house.nowMs += 4 * 3_600_000;
+  await env.DB.prepare('UPDATE subscription SET next_due_at = ?').bind(house.nowMs).run();
+  await house.minute();
+}
+
+describe('the calendar', () => {
+  test('is read by somebody else: a day event for each site and a tentative one for each window', async () => {
+    const found = await events();
+    expect(found.map(({ uid, status, isDate }) => [uid, status, isDate])).toEqual([
+      ['north.2027-05-14.EN-B.hill.day@127.0.0.1', 'TENTATIVE', true],
+      ['north.2027-05-14.EN-B.hill.window-1@127.0.0.1', 'TENTATIVE', false],
+      ['south.2027-05-14.EN-B.hill.day@127.0.0.1', 'TENTATIVE', true],
+    ]);
+    expect(found[2]!.text).toMatch(/^Beyond a limit/);
+    expect(found[0]!.text).toContain('not observed');
+  });
+
+  test('has titles that begin with their time and carry no verdict', async () => {
+    for (const { title } of await events()) {
+      expect(title).toMatch(/^As of 6:00: /);
+      expect(title.toLowerCase()).not.toMatch(/within|close|beyond|cannot say/);
+    }
+  });
+
+  test('keeps a window that a later revision has lost, cancelled, with a higher sequence', async () => {
+    isOpen = false;
+    await laterBrief();
+    const found = await events();
+    expect(found.map(({ status, sequence }) => [status, sequence])).toEqual([['TENTATIVE', 1], ['CANCELLED', 1], ['TENTATIVE', 1]]);
+    expect(found[1]!.title).toBe('As of 10:00: no longer a window, Site north');
+  });
+
+  test('round-trips through the other parser', async () => {
+    const text = await (await get(`/feeds/${token}.ics`)).text();
+    const parsed = ICAL.parse(text);
+    expect(ICAL.parse(ICAL.stringify(parsed))).toEqual(parsed);
+    expect(text.split('\r\n').every((line) => new TextEncoder().encode(line).length <= 75)).toBe(true);
+    expect(text.replaceAll('\r\n', '')).not.toMatch(/[\r\n]/);
+  });
+
+  test('lets nothing of a text become structure', () => {
+    const hostile = 'A;B,C\\D\r\nBEGIN:VEVENT\nX\u0000\u2028"<>&🪁';
+    const component = new ICAL.Component(ICAL.parse(`BEGIN:VCALENDAR\r\n${folded(`SUMMARY:${icalText(hostile)}`)}\r\nEND:VCALENDAR`) as unknown as string);
+    expect(component.getFirstPropertyValue('summary')).toBe('A;B,C\\D\nBEGIN:VEVENT\nX \u2028"<>&🪁');
+    expect(component.getAllSubcomponents()).toHaveLength(0);
+  });
+
+  test('folds on the edges of characters', () => {
+    const line = `SUMMARY:${'🪁ä'.repeat(60)}`;
+    const parts = folded(line).split('\r\n ');
+    expect(parts.join('')).toBe(line);
+    expect(parts.every((part) => part.isWellFormed())).toBe(true);
+  });
+});
+
+describe('Atom', () => {
+  interface Parsed { feed: { id: string; updated: string; title: string; link: { rel: string; href: string }[]; author: { name: string }; entry: { id: string; title: { text: string }; updated: string; content: { text: string } }[] } }
+
+  test('is well-formed and has what RFC 4287 asks of a feed and of an entry', async () => {
+    const response = await get(`/feeds/${token}.atom`);
+    expect(response.headers.get('content-type')).toBe('application/atom+xml; charset=utf-8');
+    const text = await response.text();
+    expect(XMLValidator.validate(text)).toBe(true);
+    const { feed } = new XMLParser({ ignoreAttributes: false, attributeNamePrefix: '', textNodeName: 'text', isArray: (name) => name === 'entry' || name === 'link', parseTagValue: false }).parse(text) as Parsed;
+    expect(feed.id).toBe('urn:dawnmargin:feed:ana');
+    expect(feed.title).toBeTruthy();
+    expect(feed.author.name).toBeTruthy();
+    expect(feed.updated).toBe('2027-05-14T04:00:00.000Z');
+    expect(feed.link.find(({ rel }) => rel === 'self')!.href).toBe(`http://127.0.0.1:8787/feeds/${token}.atom`);
+    expect(new Set(feed.entry.map(({ id }) => id)).size).toBe(2);
+    for (const entry of feed.entry) {
+      expect(Number.isFinite(Date.parse(entry.updated))).toBe(true);
+      expect(entry.title.text).toMatch(/^(Beyond|Close to) a limit/);
+      expect(entry.content.text).toMatch(/Valid until 2027-05-14T22:00:00Z/);
+    }
+  });
+
+  test('lets nothing of a text become structure', () => {
+    const hostile = `</title><script>"'&]]>\u0000\ud800`;
+    const parsed = new XMLParser().parse(`<a>${xml(hostile)}</a>`) as { a: string };
+    expect(parsed.a).toBe(`</title><script>"'&]]>`);
+  });
+});
+
+describe('the address', () => {
+  test('answers 304 until something changes', async () => {
+    const first = await get(`/feeds/${token}.ics`);
+    const etag = first.headers.get('etag')!;
+    expect((await get(`/feeds/${token}.ics`, { 'if-none-match': etag })).status).toBe(304);
+    expect((await get(`/feeds/${token}.ics`, { 'if-none-match': `"x", W/${etag}` })).status).toBe(304);
+    isOpen = false;
+    await laterBrief();
+    expect((await get(`/feeds/${token}.ics`, { 'if-none-match': etag })).status).toBe(200);
+  });
+
+  test('is one and the same 404 for whatever is not a token of ours', async () => {
+    const other = await linkToken(LINK_KEY, { purpose: 'manage', id: 'ana', version: 1 });
+    const unknown = await linkToken(LINK_KEY, { purpose: 'feed', id: 'nobody', version: 1 });
+    const bodies = new Set<string>();
+    for (const file of ['x.ics', `${token.slice(0, -1)}.ics`, `${token}x.ics`, `${other}.ics`, `${unknown}.atom`, `${token}.txt`, token, '.ics', `${'a'.repeat(190)}.ics`, 'ana.1.%00.ics', 'ana.1..ics']) {
+      const response = await get(`/feeds/${file}`);
+      expect(response.status, file).toBe(404);
+      bodies.add(await response.text());
+    }
+    expect(bodies.size).toBe(1);
+  });
+
+  test('dies with a raised version or an ended subscription', async () => {
+    await env.DB.prepare('UPDATE subscription SET link_version = 2').run();
+    expect((await get(`/feeds/${token}.ics`)).status).toBe(404);
+    token = await linkToken(LINK_KEY, { purpose: 'feed', id: 'ana', version: 2 });
+    expect((await get(`/feeds/${token}.ics`)).status).toBe(200);
+    await env.DB.prepare(`UPDATE subscription SET state = 'ended'`).run();
+    expect((await get(`/feeds/${token}.ics`)).status).toBe(404);
+  });
+
+  test('tells nobody where it was read, and no search engine of it', async () => {
+    const { headers } = await get(`/feeds/${token}.ics`);
+    expect(headers.get('referrer-policy')).toBe('no-referrer');
+    expect(headers.get('x-robots-tag')).toBe('noindex');
+    expect(headers.get('cache-control')).toBe('private, no-cache');
+  });
+
+  test('shows no day whose brief has ceased to hold', async () => {
+    house.nowMs = Date.parse('2027-05-14T22:00:00Z');
+    expect(await events()).toHaveLength(0);
+  });
+});
