@@ -19,7 +19,7 @@ function shown(name: OwnNumber, value: number | undefined, reader: Reader): stri
   if (value === undefined) return '';
   const isSpeed = numberField(name, reader.units).isSpeed;
   const out = isSpeed ? inUnits({ value, unit: 'm/s' }, reader.units).value : value;
-  return figure(out, { decimals: name === 'from' || name === 'cape' ? 0 : 1 });
+  return figure(out, { decimals: name === 'from' || name === 'cape' ? 0 : name === 'sink' ? 2 : 1 });
 }
 
 export function whatIfForm(day: JudgedDay, options: WhatIfFormOptions): Html {
