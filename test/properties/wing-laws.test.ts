@@ -166,6 +166,17 @@ law('release height is within 1 % of an integration in far finer steps, through 
   expect(Math.abs(ours.releaseM - theirs)).toBeLessThanOrEqual(Math.max(0.01 * theirs, 0.05));
 });
 
+law('winds that end just above the highest point of a tow leave it as it is, winds that end below make it unknown', [tows, from(0, 3), from(0.01, 0.2)], (tow, headMps, share) => {
+  let highestM = 0;
+  const whole = flyTow({ ...tow, headwindMps: () => headMps }, ({ heightM }) => {
+    highestM = Math.max(highestM, heightM);
+  });
+  fc.pre(whole.releaseM > 20);
+  const knownTo = (topM: number) => flyTow({ ...tow, headwindMps: (heightM) => (heightM <= topM ? headMps : NaN) }).releaseM;
+  expect(knownTo(highestM * (1 + share))).toBeCloseTo(whole.releaseM, 3);
+  expect(knownTo(highestM * (1 - share))).toBeNaN();
+});
+
 law('on the way up the line never grows longer than it is, and the time only runs forward', [tows, from(-2, 9)], (tow, headMps) => {
   const points: TowPoint[] = [];
   flyTow({ ...tow, headwindMps: () => headMps }, (point) => points.push(point));
