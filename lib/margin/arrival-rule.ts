@@ -46,7 +46,8 @@ export function glideTimeS(view: HourView): number {
 
 export function thermalNeeds(view: HourView): Need[] {
   const heat: Need = view.declares('sensibleHeatWm2') ? 'sensibleHeatWm2' : 'shortwaveWm2';
-  if (view.heatFluxWm2 <= 0) return [heat];
+  // No heat needs no depth; a heat that is missing makes the margin unknown whatever else the source can give.
+  if (Number.isNaN(view.heatFluxWm2) || view.heatFluxWm2 <= 0) return [heat];
   const depth: Need[] = view.declares('mixedLayerM') || (view.context.borrowedMixedLayer === null && !view.declares('levels')) ? ['mixedLayerM'] : view.context.borrowedMixedLayer === null ? ['levels', 'wind10m'] : [];
   return [heat, ...depth, 'temperature2mC', 'dewPoint2mC', 'surfacePressureHpa'];
 }

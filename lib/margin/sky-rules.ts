@@ -89,9 +89,15 @@ const cloudBase: Rule = {
 export function towNeeds(view: HourView): Need[] {
   const { site } = view.setup;
   const winds = (['wind10m', 'nearGround', 'levels'] as const).filter((field) => view.declares(field));
-  // A climb that ends where the declared winds end says that they do not reach.
-  const reached = site.kind !== 'strip' || !Number.isNaN(view.tow.end.releaseM);
-  return [...winds, ...(reached ? [] : ['levels' as const]), ...airNeeds(view, site.kind === 'strip' ? readAtM(view, site, 0) : site.elevationM)];
+  return [...winds, ...(climbsOutOfSight(view) ? ['levels' as const] : []), ...airNeeds(view, site.kind === 'strip' ? readAtM(view, site, 0) : site.elevationM)];
+}
+
+/** Whether a climb ends where the declared winds end: they do not reach. One that meets a hole in them, or lacks its density, is unknown. */
+function climbsOutOfSight(view: HourView): boolean {
+  const { site } = view.setup;
+  if (site.kind !== 'strip' || Number.isFinite(view.tow.end.releaseM)) return false;
+  const isWhole = view.profile.uMps.every((uMps) => Number.isFinite(uMps));
+  return isWhole && Number.isFinite(view.trimAt(readAtM(view, site, 0)));
 }
 
 /** WMO code table 4677: thunderstorm without precipitation, in the past hour, now, and thunder with any precipitation. */
