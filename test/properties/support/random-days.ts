@@ -5,7 +5,7 @@ import type { DayInput } from '../../../lib/brief/day-input.ts';
 import type { JudgedDay } from '../../../lib/brief/day.ts';
 import { judgeDay } from '../../../lib/brief/judge-day.ts';
 import { CONDITION_FIELDS, type ConditionField, type Conditions, type Forecast } from '../../../lib/forecast/conditions.ts';
-import { epochOf, HOUR_MS, hourlyInstants } from '../../../lib/time.ts';
+import { epochOf, hourlyInstants } from '../../../lib/time.ts';
 import { dice, tricks, type Dice } from '../../support/second-opinion/random-hours.ts';
 import { conditions, thresholds, type Sky } from '../../support/typical-days.ts';
 import { requestOf } from './requests.ts';
