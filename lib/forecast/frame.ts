@@ -10,6 +10,7 @@ import { constantField } from './constant.ts';
 import type { SourceFailure } from './failure.ts';
 import { timesFault } from './instants.ts';
 import { MAX_GRID_DISTANCE_M, MAX_GROUND_ABOVE_SITE_M, MAX_GROUND_CHANGE_M } from './place.ts';
+import { plausible } from './ranges.ts';
 import { failure, success, type Result } from '../result.ts';
 import type { PlaceM } from '../site.ts';
 import { epochOf, HOUR_MS, hourlyInstants, isoUtc } from '../time.ts';
@@ -70,7 +71,7 @@ function placeFault(forecast: Forecast, context: FrameContext): SourceFailure | 
 function groundFault(forecast: Forecast, context: FrameContext): SourceFailure | null {
   const grounds = forecast.members.flat().map((hour): unknown => hour.gridElevationM);
   const ground = grounds[0];
-  if (typeof ground !== 'number' || !Number.isFinite(ground)) return { kind: 'ground', why: 'missing', byM: null };
+  if (typeof ground !== 'number' || Number.isNaN(plausible(ground, 'elevationM'))) return { kind: 'ground', why: 'missing', byM: null };
   if (grounds.some((other) => other !== ground)) return { kind: 'ground', why: 'changed', byM: null };
   const movedM = Math.abs(ground - (context.storedGroundM[forecast.source] ?? ground));
   if (movedM > MAX_GROUND_CHANGE_M) return { kind: 'ground', why: 'changed', byM: movedM };
