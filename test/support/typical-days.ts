@@ -103,7 +103,7 @@ const COMMON = {
 export const ALPINE: LaunchSite = {
   ...COMMON, kind: 'launch', id: 'alpine', lonDeg: 11.4, latDeg: 47.2, elevationM: 1340, facingDeg: 250, slopeDeg: 24,
   hill: { form: 'ridge', heightM: 180, halfLengthM: 320 }, summitElevationM: null,
-  landing: { lonDeg: 11.39, latDeg: 47.2, elevationM: 1185, roughnessM: 0.03 }, trackDeg: 250, distanceM: 560,
+  landing: { lonDeg: 11.39, latDeg: 47.2, elevationM: 1185, roughnessM: 0.03 }, trackDeg: 250, distanceM: 430,
 };
 export const ALPINE_GROUND_M = 1180;
 
