@@ -63,7 +63,7 @@ export interface Block {
 }
 
 export type LeftOut =
-  /** No site has its least hours in one go, whoever else is there: the site that comes nearest, and what closes most of it. */
+  /** No site has its least hours at a stretch, whoever else is there: the site that comes nearest, and what closes most of it. */
   | { readonly kind: 'no hours'; readonly site: string; readonly siteName: string; readonly longestHours: number; readonly cause: Closed | null }
   /** It asks for more instructors than there are. */
   | { readonly kind: 'instructors'; readonly needed: number }

@@ -3,7 +3,7 @@
  * slot (weather, opening hours, the group's own hours) is already in `spare`, so that nothing here knows of weather.
  */
 export interface PuzzleGroup {
-  /** Least hours in one go at one site. */
+  /** Least hours at a stretch at one site. */
   readonly minHours: number;
   /** Most hours over the day. */
   readonly wishHours: number;

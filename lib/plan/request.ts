@@ -15,7 +15,7 @@ export interface PlanGroup {
   /** Id of a limit sheet. */
   readonly sheet: string;
   readonly wing: WingClass;
-  /** Least hours in one go at one site: less is not worth unpacking. */
+  /** Least hours at a stretch at one site: less is not worth unpacking. */
   readonly minHours: number;
   /** Most hours over the day. */
   readonly wishHours: number;

@@ -9,7 +9,7 @@ describe('against brute force', () => {
     const placed = new Map<number, number>();
     for (let seed = 1; seed <= 500; seed += 1) {
       const groups = 1 + (seed % 3);
-      const puzzle = randomPuzzle(seed, { groups, sites: 1 + (seed % 4 === 0 ? 1 : 2) % 3, slots: groups === 3 ? 4 : 5, wish: groups === 3 ? 3 : 4 });
+      const puzzle = randomPuzzle(seed, { groups, sites: seed % 4 === 0 ? 2 : 3, slots: groups === 3 ? 4 : 5, wish: groups === 3 ? 3 : 4 });
       const best = bestStays(puzzle);
       expect(best.objective, `seed ${seed}`).toEqual(bruteForce(puzzle));
       expect(objectiveOf(puzzle, best.stays)).toEqual(best.objective);
@@ -19,5 +19,30 @@ describe('against brute force', () => {
     }
     // The days are of every kind: some place nobody, some everybody.
     for (const count of [0, 1, 2, 3]) expect(placed.get(count) ?? 0, `${count} placed`).toBeGreaterThan(20);
+  });
+});
+
+describe('the work', () => {
+  test('8 groups, 6 sites, 12 hours: few ways are tried, and a search that runs out says so', () => {
+    const nodes: number[] = [];
+    let unproven = 0;
+    for (let seed = 1; seed <= 40; seed += 1) {
+      const best = bestStays(randomPuzzle(seed * 7919, { groups: 8, sites: 6, slots: 12, wish: 4 }), 20_000);
+      nodes.push(best.nodes);
+      if (!best.proven) unproven += 1;
+    }
+    nodes.sort((a, b) => a - b);
+    expect(nodes[20]).toBeLessThan(100);
+    expect(nodes[36]).toBeLessThan(2_000);
+    expect(unproven).toBeLessThanOrEqual(1);
+  });
+
+  test('out of budget there is still a plan that keeps every rule', () => {
+    for (let seed = 1; seed <= 40; seed += 1) {
+      const puzzle = randomPuzzle(seed * 7919, { groups: 8, sites: 6, slots: 12, wish: 6 });
+      const hurried = bestStays(puzzle, 12);
+      expect(isLawful(puzzle, hurried.stays), `seed ${seed}`).toBe(true);
+      if (hurried.proven) expect(hurried.objective).toEqual(bestStays(puzzle).objective);
+    }
   });
 });
