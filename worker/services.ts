@@ -32,7 +32,7 @@ import { terminalStore } from './store/terminal.ts';
 import { wingStore } from './store/wing.ts';
 import { waker } from './wake.ts';
 
-const DATABASE_TIMEOUT_MS = 10_000;
+const PATIENCE_MS = 10_000;
 
 /** What of the world the services are made from. */
 export interface World {
@@ -44,6 +44,8 @@ export interface World {
   readonly clock: Clock;
   readonly ids: IdSource;
   readonly random: () => number;
+  /** How long database and queue are waited for. */
+  readonly patienceMs?: number;
 }
 
 /** The services of one invocation, or every setting that is wrong. */
@@ -64,14 +66,14 @@ export function createServices(env: Env): Result<Services, Issue[]> {
 
 export function assemble(world: World, instead: Partial<Pick<Services, 'sourcesFor' | 'judge'>> = {}): Services {
   const { settings, clock, ids, random } = world;
-  const stores = storesOn(database(world.db, { sleep: world.sleep, random, timeoutMs: DATABASE_TIMEOUT_MS }));
+  const stores = storesOn(database(world.db, { sleep: world.sleep, random, timeoutMs: world.patienceMs ?? PATIENCE_MS }));
   return {
     settings, clock, ids, random, stores,
     read: ownReaders,
     wingClasses: ownData.wingClasses,
     shippedSheets: ownData.sheets,
     thresholds: ownData.thresholds,
-    wake: waker(world.queues),
+    wake: waker(world.queues, world.patienceMs ?? PATIENCE_MS),
     sourcesFor: sourcesOf(world, stores),
     judge: judgeDay,
     channels: {

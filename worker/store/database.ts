@@ -1,3 +1,5 @@
+import { inTime } from '../in-time.ts';
+
 /**
  * The door to D1. Four ways in, by what a repeated call would do: `read` and `write` are repeated after a transient
  * error, so `write` is for statements that leave the same rows when run twice; `together` is a batch of such
@@ -42,26 +44,18 @@ export function isOwnFault(error: unknown): boolean {
 export function database(d1: D1, options: DatabaseOptions): Database {
   const prepare = ({ sql, values }: Statement): D1PreparedStatement => d1.prepare(sql).bind(...values);
 
-  async function inTime<T>(work: Promise<T>): Promise<T> {
-    const { promise: late, reject } = Promise.withResolvers<never>();
-    const timer = setTimeout(() => reject(new Error(`the database did not answer within ${options.timeoutMs} ms`)), options.timeoutMs);
-    try {
-      return await Promise.race([work, late]);
-    } finally {
-      clearTimeout(timer);
-    }
-  }
+  const timed = <T>(work: Promise<T>): Promise<T> => inTime(work, options.timeoutMs, 'the database');
 
   async function repeated<T>(work: () => Promise<T>): Promise<T> {
     for (const baseMs of RETRY_BASE_MS) {
       try {
-        return await inTime(work());
+        return await timed(work());
       } catch (error) {
         if (isOwnFault(error)) throw error;
         await options.sleep(baseMs * (0.5 + options.random()));
       }
     }
-    return inTime(work());
+    return timed(work());
   }
 
   return {
@@ -79,7 +73,7 @@ export function database(d1: D1, options: DatabaseOptions): Database {
       return answers.map((answer) => answer.meta.changes);
     },
     async take<Row>(sql: string, ...values: Bindable[]) {
-      const answer = await inTime(prepare({ sql, values }).all<Row>());
+      const answer = await timed(prepare({ sql, values }).all<Row>());
       return answer.results;
     },
   };
