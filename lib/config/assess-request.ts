@@ -2,7 +2,7 @@
  * The body of POST /api/v1/assess: hours of one deterministic source, to be judged for a site, a wing and a sheet that are
  * given whole or by their id here. Either every part of it is right, or every problem of every part is reported.
  */
-import * as z from 'zod';
+import * as z from 'zod/mini';
 import type { ConditionField, Conditions } from '../forecast/conditions.ts';
 import type { LimitSheet } from '../margin/sheet.ts';
 import { failure, success, type Issue, type Result } from '../result.ts';
@@ -43,15 +43,16 @@ const INSTANT_FORM = 'an instant in UTC, ISO 8601: "2027-05-14T04:00:00Z"';
 /** The parts say for themselves when they are missing. */
 const requestSchema = once(() =>
   fields({
-    site: z.unknown().optional(),
-    wing: z.unknown().optional(),
-    sheet: z.unknown().optional(),
-    hours: z.unknown().optional(),
-    declares: z.unknown().optional(),
-    now: z
-      .string({ error: () => INSTANT_FORM })
-      .refine((text) => Number.isFinite(instantMs(text)), { error: () => INSTANT_FORM, params: { problem: 'no instant in UTC' } })
-      .nullish(),
+    site: z.optional(z.unknown()),
+    wing: z.optional(z.unknown()),
+    sheet: z.optional(z.unknown()),
+    hours: z.optional(z.unknown()),
+    declares: z.optional(z.unknown()),
+    now: z.nullish(
+      z.string({ error: () => INSTANT_FORM }).check(
+        z.refine((text) => Number.isFinite(instantMs(text)), { error: () => INSTANT_FORM, params: { problem: 'no instant in UTC' } }),
+      ),
+    ),
   }),
 );
 

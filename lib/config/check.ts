@@ -1,5 +1,5 @@
 /** Holds a value against a schema and says everything that is wrong with it, for people, at once. */
-import type * as z from 'zod';
+import type * as z from 'zod/mini';
 import { failure, success, type Issue, type Result } from '../result.ts';
 import { closestWord } from './closest-word.ts';
 import { formatPath, valueAt, valueText, type Path } from './path.ts';
@@ -9,7 +9,7 @@ const MOST_ISSUES = 500;
 const MOST_SUGGESTIONS = 50;
 
 /** The value as the schema reads it, or every issue; `path` is where the value stands in the whole text. */
-export function check<T extends z.ZodType>(schema: T, value: unknown, path: Path): Result<z.output<T>, Issue[]> {
+export function check<T extends z.ZodMiniType>(schema: T, value: unknown, path: Path): Result<z.output<T>, Issue[]> {
   const parsed = schema.safeParse(value);
   if (parsed.success) return success(parsed.data);
   return failure(parsed.error.issues.flatMap((found) => issuesOf(found, value, path)));

@@ -2,7 +2,7 @@
  * Hours of conditions that a caller gives. A wrong type, an unknown key or an instant off the hour is an error; a number
  * that is merely implausible is kept, for it is the judge who makes its margins unknown.
  */
-import * as z from 'zod';
+import * as z from 'zod/mini';
 import { CONDITION_FIELDS, type ConditionField, type Conditions } from '../forecast/conditions.ts';
 import { failure, success, type Issue, type Result } from '../result.ts';
 import { HOUR_MS, isoUtc } from '../time.ts';
@@ -17,12 +17,12 @@ const MOST_HOURS = 400;
 const HOUR_FORM = 'ISO 8601 in UTC, on the hour: "2027-05-14T04:00:00Z"';
 
 function maybe(unit: string) {
-  return anyNumber(unit).nullish();
+  return z.nullish(anyNumber(unit));
 }
 
 /** Inside a wind or a level: absent reads as null. */
 function orNull(unit: string) {
-  return anyNumber(unit).nullable().default(null);
+  return z._default(z.nullable(anyNumber(unit)), null);
 }
 
 function wind() {
@@ -30,28 +30,27 @@ function wind() {
 }
 
 function validAt() {
-  return z.string({ error: () => HOUR_FORM }).refine((text) => instantMs(text) % HOUR_MS === 0, {
-    error: () => HOUR_FORM,
-    params: { problem: 'no instant on the hour in UTC' },
-  });
+  return z.string({ error: () => HOUR_FORM }).check(
+    z.refine((text) => instantMs(text) % HOUR_MS === 0, { error: () => HOUR_FORM, params: { problem: 'no instant on the hour in UTC' } }),
+  );
 }
 
 const hourSchema = once(() =>
   fields({
     validAt: validAt(),
     gridElevationM: anyNumber("m above sea level, the model's ground"),
-    wind10m: fields(wind()).nullish(),
+    wind10m: z.nullish(fields(wind())),
     gustMps: maybe('m/s'),
-    nearGround: list(fields({ heightAglM: anyNumber("m above the model's ground"), ...wind() }), { min: 0, max: 20 }).nullish(),
-    levels: list(
+    nearGround: z.nullish(list(fields({ heightAglM: anyNumber("m above the model's ground"), ...wind() }), { min: 0, max: 20 })),
+    levels: z.nullish(list(
       fields({ pressureHpa: anyNumber('hPa'), altitudeM: orNull('m above sea level'), ...wind(), temperatureC: orNull('°C'), relativeHumidityPct: orNull('%') }),
       { min: 0, max: 60 },
-    ).nullish(),
+    )),
     temperature2mC: maybe('°C'),
     dewPoint2mC: maybe('°C'),
     surfacePressureHpa: maybe('hPa'),
     seaLevelPressureHpa: maybe('hPa'),
-    referencePressureHpa: fields({ a: orNull('hPa'), b: orNull('hPa') }).nullish(),
+    referencePressureHpa: z.nullish(fields({ a: orNull('hPa'), b: orNull('hPa') })),
     mixedLayerM: maybe("m above the model's ground"),
     shortwaveWm2: maybe('W/m²'),
     sensibleHeatWm2: maybe('W/m², upward positive'),

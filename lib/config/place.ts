@@ -1,5 +1,5 @@
 /** Coordinates as GeoJSON writes them (RFC 7946: longitude first, then latitude, then metres), and what they may be. */
-import * as z from 'zod';
+import * as z from 'zod/mini';
 import type { Issue } from '../result.ts';
 import { issue } from './check.ts';
 import { number } from './fields.ts';
@@ -13,8 +13,9 @@ export const elevationRange = { min: -500, max: 9000, unit: 'm above sea level' 
 /** Nearer to 0, 0 than this is no place but a field that nobody filled. */
 const NULL_ISLAND_DEG = 0.001;
 
-type Position = z.ZodTuple<readonly [z.ZodNumber, z.ZodNumber, z.ZodNumber], null>;
-type PositionMaybeHigh = z.ZodTuple<readonly [z.ZodNumber, z.ZodNumber, z.ZodOptional<z.ZodNumber>], null>;
+type Coordinate = z.ZodMiniNumber<number>;
+type Position = z.ZodMiniTuple<readonly [Coordinate, Coordinate, Coordinate], null>;
+type PositionMaybeHigh = z.ZodMiniTuple<readonly [Coordinate, Coordinate, z.ZodMiniOptional<Coordinate>], null>;
 
 export function position(): Position {
   const error = (): string => '[longitude, latitude, metres above sea level], decimal degrees';
@@ -23,7 +24,7 @@ export function position(): Position {
 
 export function positionMaybeHigh(): PositionMaybeHigh {
   const error = (): string => '[longitude, latitude] or [longitude, latitude, metres above sea level], decimal degrees';
-  return z.tuple([number(lonRange), number(latRange), number(elevationRange).optional()], { error });
+  return z.tuple([number(lonRange), number(latRange), z.optional(number(elevationRange))], { error });
 }
 
 /** The issue of coordinates that lie at 0, 0, none otherwise. `at` leads to the list of coordinates. */

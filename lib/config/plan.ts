@@ -7,7 +7,7 @@ import { isCalendarDate } from '../time.ts';
 import { capped, check, issue } from './check.ts';
 import { closestWord } from './closest-word.ts';
 import { fields, list, once, oneOf, trueOrFalse, wholeNumber } from './fields.ts';
-import * as z from 'zod';
+import * as z from 'zod/mini';
 import type { Path } from './path.ts';
 import { kebabId, line } from './text.ts';
 import { WING_CLASSES } from './wing.ts';
@@ -29,19 +29,19 @@ const people = (min: number) => wholeNumber({ min, max: 99, unit: 'instructors' 
 const minutes = () => wholeNumber({ min: 0, max: 360, unit: 'min' });
 
 const planSchema = once(() => fields({
-  date: z.string({ error: () => DATE }).refine(isCalendarDate, { error: () => DATE, params: { problem: 'not a date' } }).nullish(),
+  date: z.nullish(z.string({ error: () => DATE }).check(z.refine(isCalendarDate, { error: () => DATE, params: { problem: 'not a date' } }))),
   instructors: people(0),
-  movingMin: minutes().default(30),
-  moves: list(fields({ from: kebabId(), to: kebabId(), minutes: minutes() }), { min: 0, max: 56 }).default([]),
+  movingMin: z._default(minutes(), 30),
+  moves: z._default(list(fields({ from: kebabId(), to: kebabId(), minutes: minutes() }), { min: 0, max: 56 }), []),
   sites: list(fields({
-    id: kebabId(), capacity: wholeNumber({ min: 1, max: 50, unit: 'groups at once' }), openFromHour: hour(0, 23).default(0), openToHour: hour(1, 24).default(24),
+    id: kebabId(), capacity: wholeNumber({ min: 1, max: 50, unit: 'groups at once' }), openFromHour: z._default(hour(0, 23), 0), openToHour: z._default(hour(1, 24), 24),
   }), { min: 1, max: MOST_PLAN_SITES }),
   groups: list(fields({
-    name: line(40), sheet: kebabId(), wing: oneOf(WING_CLASSES), minHours: hours().default(1), wishHours: hours(),
-    earliestHour: hour(0, 23).default(0), latestHour: hour(1, 24).default(24), sites: list(kebabId(), { min: 1, max: MOST_PLAN_SITES }),
-    close: trueOrFalse().default(false), instructors: people(0).default(1),
+    name: line(40), sheet: kebabId(), wing: oneOf(WING_CLASSES), minHours: z._default(hours(), 1), wishHours: hours(),
+    earliestHour: z._default(hour(0, 23), 0), latestHour: z._default(hour(1, 24), 24), sites: list(kebabId(), { min: 1, max: MOST_PLAN_SITES }),
+    close: z._default(trueOrFalse(), false), instructors: z._default(people(0), 1),
   }), { min: 1, max: MOST_GROUPS }),
-  lost: list(fields({ site: kebabId(), hour: hour(0, 23) }), { min: 0, max: 200 }).default([]),
+  lost: z._default(list(fields({ site: kebabId(), hour: hour(0, 23) }), { min: 0, max: 200 }), []),
 }));
 
 type Shape = z.output<ReturnType<typeof planSchema>>;

@@ -1,4 +1,5 @@
 /** For which wing and which sheet a site is judged where nobody has chosen (config/published.json): by the kind of site, or for one site. */
+import * as z from 'zod/mini';
 import type { LimitSheet } from '../margin/sheet.ts';
 import { failure, success, type Issue, type Result } from '../result.ts';
 import type { Site } from '../site.ts';
@@ -25,7 +26,7 @@ export interface Published {
 const publishedSchema = once(() => {
   const pair = fields({ wing: oneOf(WING_CLASSES), sheet: kebabId() });
   const pairs = () => list(pair, { min: 1, max: 8 });
-  return fields({ launch: pairs(), strip: pairs(), sites: list(fields({ site: kebabId(), pairs: pairs() }), { min: 0, max: 1000 }).default([]) });
+  return fields({ launch: pairs(), strip: pairs(), sites: z._default(list(fields({ site: kebabId(), pairs: pairs() }), { min: 0, max: 1000 }), []) });
 });
 
 /** What the ids in it must stand for: sheets of the right kind, sites that are there. */

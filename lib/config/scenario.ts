@@ -1,5 +1,5 @@
 /** The demo's invented weather (config/demo.json): regions, what each demo site gets of them, and the invented sources. */
-import * as z from 'zod';
+import * as z from 'zod/mini';
 import type { Scenario } from '../forecast/invented/scenario.ts';
 import { failure, success, type Issue, type Result } from '../result.ts';
 import { check, issue, issuesIn } from './check.ts';
@@ -28,45 +28,45 @@ function region() {
     cloudShare: number(share),
     freeWind: wind(),
     pressureStepHpa: number({ min: -15, max: 15, unit: 'hPa' }),
-    front: fields({
+    front: z.nullable(fields({
       dayShare: number(share),
       wind: wind(),
       rainMm: number({ min: 0, max: 50, unit: 'mm' }),
       fallHpa: number({ min: 0, max: 20, unit: 'hPa' }),
       thunderFromC: number({ min: -20, max: 60, unit: '°C' }),
-    }).nullable(),
+    })),
   });
 }
 
 function site() {
   return fields({
     site: kebabId(),
-    withheld: trueOrFalse().default(false),
+    withheld: z._default(trueOrFalse(), false),
     region: kebabId(),
     fineGroundM: number(elevationRange),
     coarseGroundM: number(elevationRange),
     breeze: wind(),
     drainageMps: number({ min: 0, max: 5, unit: 'm/s' }),
     roughnessM: number({ min: 0.0002, max: 2, unit: 'm' }),
-    fogHours: number({ min: 0, max: 12, unit: 'h after sunrise' }).default(0),
+    fogHours: z._default(number({ min: 0, max: 12, unit: 'h after sunrise' }), 0),
   });
 }
 
 function source() {
   const form = (): string => '"invented:" and a word';
   return fields({
-    id: z.string({ error: form }).regex(/^invented:[a-z]+$/, { error: form }),
+    id: z.string({ error: form }).check(z.regex(/^invented:[a-z]+$/, { error: form })),
     kind: oneOf(['deterministic', 'ensemble']),
     grid: oneOf(['fine', 'coarse']),
-    members: wholeNumber({ min: 1, max: 100, unit: 'members' }).default(1),
-    breezeFactor: number({ min: 0, max: 3, unit: '' }).default(1),
-    windFactor: number({ min: 0, max: 3, unit: '' }).default(1),
-    frontShiftHours: number({ min: -6, max: 6, unit: 'h' }).default(0),
-    levelsHpa: list(wholeNumber({ min: 300, max: 1000, unit: 'hPa' }), { min: 0, max: 40 }).default([]),
-    nearGroundM: list(wholeNumber({ min: 20, max: 300, unit: 'm' }), { min: 0, max: 8 }).default([]),
-    speedSpread: number(share).default(0),
-    turnSpreadDeg: number({ min: 0, max: 60, unit: '°' }).default(0),
-    shiftedMembers: wholeNumber({ min: 0, max: 50, unit: 'members' }).default(0),
+    members: z._default(wholeNumber({ min: 1, max: 100, unit: 'members' }), 1),
+    breezeFactor: z._default(number({ min: 0, max: 3, unit: '' }), 1),
+    windFactor: z._default(number({ min: 0, max: 3, unit: '' }), 1),
+    frontShiftHours: z._default(number({ min: -6, max: 6, unit: 'h' }), 0),
+    levelsHpa: z._default(list(wholeNumber({ min: 300, max: 1000, unit: 'hPa' }), { min: 0, max: 40 }), []),
+    nearGroundM: z._default(list(wholeNumber({ min: 20, max: 300, unit: 'm' }), { min: 0, max: 8 }), []),
+    speedSpread: z._default(number(share), 0),
+    turnSpreadDeg: z._default(number({ min: 0, max: 60, unit: '°' }), 0),
+    shiftedMembers: z._default(wholeNumber({ min: 0, max: 50, unit: 'members' }), 0),
   });
 }
 

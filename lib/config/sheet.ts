@@ -3,7 +3,7 @@
  * for are optional there, and kind is the site's. A limit that is misspelt, without a number or out of range is an error:
  * dropped in silence it would let everything pass.
  */
-import * as z from 'zod';
+import * as z from 'zod/mini';
 import { MARGIN_IDS, type MarginId } from '../margin/ids.ts';
 import { LIMIT_NAMES, PARAMETER_NAMES, type LimitName, type LimitSheet, type ParameterName } from '../margin/sheet.ts';
 import { failure, success, type Issue, type Result } from '../result.ts';
@@ -20,8 +20,8 @@ export type SheetRules =
 
 const ALL_NAMES = [...LIMIT_NAMES, ...PARAMETER_NAMES];
 
-function optionalOf<K extends string, T extends z.ZodType>(names: readonly K[], build: (name: K) => T): Record<K, z.ZodOptional<T>> {
-  return Object.fromEntries(names.map((name) => [name, build(name).optional()])) as Record<K, z.ZodOptional<T>>;
+function optionalOf<K extends string, T extends z.ZodMiniType>(names: readonly K[], build: (name: K) => T): Record<K, z.ZodMiniOptional<T>> {
+  return Object.fromEntries(names.map((name) => [name, z.optional(build(name))])) as Record<K, z.ZodMiniOptional<T>>;
 }
 
 function limits() {
@@ -35,8 +35,8 @@ function shared() {
   return {
     id: kebabId(),
     limits: limits(),
-    closeBands: fields(optionalOf(MARGIN_IDS, () => number(CLOSE_BAND_RANGE))).default({}),
-    basis: fields(optionalOf(ALL_NAMES, () => line(200))).default({}),
+    closeBands: z._default(fields(optionalOf(MARGIN_IDS, () => number(CLOSE_BAND_RANGE))), {}),
+    basis: z._default(fields(optionalOf(ALL_NAMES, () => line(200))), {}),
   };
 }
 
@@ -46,7 +46,7 @@ const kind = () => oneOf(['launch', 'strip']);
 const shippedSchema = once(() => fields({ ...shared(), name: line(80), version: version(), kind: kind(), for: line(500) }));
 
 const requestSchema = once(() =>
-  fields({ ...shared(), name: line(80).optional(), version: version().default(1), kind: kind().optional(), for: lineOrNothing(500).default('') }),
+  fields({ ...shared(), name: z.optional(line(80)), version: z._default(version(), 1), kind: z.optional(kind()), for: z._default(lineOrNothing(500), '') }),
 );
 
 type Shape = z.output<ReturnType<typeof requestSchema>>;

@@ -1,5 +1,5 @@
 /** The shape of a site as a GeoJSON Feature (RFC 7946), strict: what is not named here is an error. */
-import type * as z from 'zod';
+import * as z from 'zod/mini';
 import { fields, list, number, once, oneOf, trueOrFalse, wholeNumber } from './fields.ts';
 import { elevationRange, position, positionMaybeHigh } from './place.ts';
 import { kebabId, line } from './text.ts';
@@ -15,13 +15,13 @@ function commonShape() {
   return {
     name: line(80),
     timeZone: zone(),
-    headingReference: oneOf(['true', 'magnetic']).default('true'),
-    daylight: fields({
+    headingReference: z._default(oneOf(['true', 'magnetic']), 'true'),
+    daylight: z._default(fields({
       rule: oneOf(['sunrise-sunset', 'civil-twilight']),
-      beforeMin: number({ min: -180, max: 60, unit: 'min' }).default(0),
-      afterMin: number({ min: -180, max: 60, unit: 'min' }).default(0),
-    }).default({ rule: 'sunrise-sunset', beforeMin: 0, afterMin: 0 }),
-    sectors: list(
+      beforeMin: z._default(number({ min: -180, max: 60, unit: 'min' }), 0),
+      afterMin: z._default(number({ min: -180, max: 60, unit: 'min' }), 0),
+    }), { rule: 'sunrise-sunset', beforeMin: 0, afterMin: 0 }),
+    sectors: z._default(list(
       fields({
         fromDeg: number(directionRange),
         toDeg: number(directionRange),
@@ -29,8 +29,8 @@ function commonShape() {
         why: line(120),
       }),
       { min: 0, max: 36 },
-    ).default([]),
-    localWind: list(
+    ), []),
+    localWind: z._default(list(
       fields({
         fromHour: wholeNumber({ min: 0, max: 23, unit: 'o\'clock, local' }),
         toHour: wholeNumber({ min: 1, max: 24, unit: 'o\'clock, local' }),
@@ -38,10 +38,10 @@ function commonShape() {
         fromDeg: number(directionRange),
       }),
       { min: 0, max: 24 },
-    ).default([]),
-    pressureStep: fields({ a: referencePoint(), b: referencePoint() }).nullish(),
-    localRules: line(300).nullable().default(null),
-    notes: list(line(300), { min: 0, max: 20 }).default([]),
+    ), []),
+    pressureStep: z.nullish(fields({ a: referencePoint(), b: referencePoint() })),
+    localRules: z._default(z.nullable(line(300)), null),
+    notes: z._default(list(line(300), { min: 0, max: 20 }), []),
   };
 }
 
@@ -49,7 +49,7 @@ function referencePoint() {
   return fields({ name: line(80), coordinates: positionMaybeHigh() });
 }
 
-function feature<S extends z.core.$ZodLooseShape>(properties: z.ZodObject<S, z.core.$strict>) {
+function feature<S extends z.core.$ZodLooseShape>(properties: z.ZodMiniObject<S, z.core.$strict>) {
   return fields({
     type: oneOf(['Feature']),
     id: kebabId(),
@@ -70,10 +70,10 @@ export const launchSchema = once(() =>
         heightM: number({ min: 0, max: 3000, unit: 'm' }),
         halfLengthM: number({ min: 10, max: 10_000, unit: 'm from the crest upwind to half the height' }),
       }),
-      summitElevationM: number(elevationRange).nullish(),
+      summitElevationM: z.nullish(number(elevationRange)),
       landing: fields({ coordinates: position(), roughnessM: number(roughnessRange) }),
-      trackDeg: number(directionRange).nullish(),
-      distanceM: number(distanceRange).nullish(),
+      trackDeg: z.nullish(number(directionRange)),
+      distanceM: z.nullish(number(distanceRange)),
     }),
   ),
 );
@@ -84,12 +84,12 @@ export const stripSchema = once(() =>
       kind: oneOf(['strip']),
       ...commonShape(),
       headingDeg: number(directionRange),
-      usableBothWays: trueOrFalse().default(false),
+      usableBothWays: z._default(trueOrFalse(), false),
       lineLengthM: number({ min: 100, max: 3000, unit: 'm' }),
       roughnessM: number(roughnessRange),
-      lineTensionRatio: number({ min: 0.1, max: 1.5, unit: 'of all-up weight' }).default(0.8),
-      releaseAngleDeg: number({ min: 30, max: 85, unit: '° below the horizon at the wing' }).default(70),
-      lineClearM: number({ min: 1, max: 2000, unit: 'm' }).nullish(),
+      lineTensionRatio: z._default(number({ min: 0.1, max: 1.5, unit: 'of all-up weight' }), 0.8),
+      releaseAngleDeg: z._default(number({ min: 30, max: 85, unit: '° below the horizon at the wing' }), 70),
+      lineClearM: z.nullish(number({ min: 1, max: 2000, unit: 'm' })),
     }),
   ),
 );

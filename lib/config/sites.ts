@@ -1,5 +1,5 @@
 /** Sites travel in a GeoJSON FeatureCollection (RFC 7946): a file of `config/`, or a club's own. */
-import * as z from 'zod';
+import * as z from 'zod/mini';
 import { failure, success, type Issue, type Result } from '../result.ts';
 import type { Site } from '../site.ts';
 import { check, issue, issuesIn } from './check.ts';

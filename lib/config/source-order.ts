@@ -2,7 +2,7 @@
  * Which forecast services are asked, in which order, for which part of the world, and what each can give at all
  * (config/sources.json). Data only: adding a model or changing the order is an edit of that file.
  */
-import * as z from 'zod';
+import * as z from 'zod/mini';
 import { CONDITION_FIELDS, type ConditionField } from '../forecast/conditions.ts';
 import { failure, success, type Issue, type Result } from '../result.ts';
 import { check, issue, issuesIn } from './check.ts';
@@ -63,7 +63,7 @@ export interface SourceOrder {
 
 function name() {
   const error = (): string => 'the name the service uses: lower-case letters, digits, underscores';
-  return z.string({ error }).regex(/^[a-z0-9_]{1,60}$/, { error });
+  return z.string({ error }).check(z.regex(/^[a-z0-9_]{1,60}$/, { error }));
 }
 
 function common() {
@@ -71,11 +71,11 @@ function common() {
   const lon = { min: -180, max: 180, unit: '°' };
   const lat = { min: -90, max: 90, unit: '°' };
   return {
-    id: z.string({ error: idForm }).regex(/^[a-z0-9-]{1,40}:[a-z0-9_-]{1,60}$/, { error: idForm }),
+    id: z.string({ error: idForm }).check(z.regex(/^[a-z0-9-]{1,40}:[a-z0-9_-]{1,60}$/, { error: idForm })),
     kind: oneOf(['deterministic', 'ensemble']),
     regions: list(fields({ westDeg: number(lon), southDeg: number(lat), eastDeg: number(lon), northDeg: number(lat) }), { min: 0, max: 20 }),
     declares: list(oneOf(CONDITION_FIELDS), { min: 1, max: CONDITION_FIELDS.length }),
-    trustWithoutRunTime: trueOrFalse().default(false),
+    trustWithoutRunTime: z._default(trueOrFalse(), false),
   };
 }
 
@@ -87,8 +87,8 @@ const openMeteoSchema = once(() =>
     runTimeNames: list(name(), { min: 1, max: 4 }),
     nearGroundM: list(wholeNumber({ min: 20, max: 300, unit: "m above the model's ground" }), { min: 0, max: 8 }),
     levelsHpa: list(wholeNumber({ min: 300, max: 1000, unit: 'hPa' }), { min: 0, max: 40 }),
-    members: wholeNumber({ min: 1, max: 100, unit: 'columns' }).default(1),
-    mixedLayerFrom: fields({ model: name(), runTimeNames: list(name(), { min: 1, max: 4 }) }).nullable().default(null),
+    members: z._default(wholeNumber({ min: 1, max: 100, unit: 'columns' }), 1),
+    mixedLayerFrom: z._default(z.nullable(fields({ model: name(), runTimeNames: list(name(), { min: 1, max: 4 }) })), null),
   }),
 );
 

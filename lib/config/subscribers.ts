@@ -1,5 +1,5 @@
 /** Subscribers that a new database begins with (config/subscribers.json), until people can subscribe themselves. */
-import * as z from 'zod';
+import * as z from 'zod/mini';
 import { failure, success, type Issue, type Result } from '../result.ts';
 import type { Site } from '../site.ts';
 import { check, issue, issuesIn } from './check.ts';
@@ -27,9 +27,9 @@ const CLOCK_FORM = 'a local time "HH:MM" from 00:00 to 23:59';
 const URL_FORM = 'an https address, at most 2048 characters';
 
 const subscribersSchema = once(() => {
-  const clock = z.string({ error: () => CLOCK_FORM }).regex(/^(?:[01]\d|2[0-3]):[0-5]\d$/, { error: () => CLOCK_FORM });
+  const clock = z.string({ error: () => CLOCK_FORM }).check(z.regex(/^(?:[01]\d|2[0-3]):[0-5]\d$/, { error: () => CLOCK_FORM }));
   // What an address may be beyond this is for the webhook channel to say, at every attempt.
-  const url = z.url({ protocol: /^https?$/, error: () => URL_FORM }).max(2048, { error: () => URL_FORM });
+  const url = z.url({ protocol: /^https?$/, error: () => URL_FORM }).check(z.maxLength(2048, { error: () => URL_FORM }));
   const channel = z.discriminatedUnion('kind', [fields({ kind: oneOf(['terminal']) }), fields({ kind: oneOf(['webhook']), url })], {
     error: () => 'an object whose kind is "terminal" or "webhook"',
   });
@@ -38,7 +38,7 @@ const subscribersSchema = once(() => {
     enabled: trueOrFalse(),
     timeZone: zone(),
     deliverAt: clock,
-    sites: list(kebabId(), { min: 1, max: 200 }).nullable(),
+    sites: z.nullable(list(kebabId(), { min: 1, max: 200 })),
     channels: list(channel, { min: 1, max: 4 }),
   });
   return list(subscriber, { min: 0, max: 100 });

@@ -1,5 +1,5 @@
 /** From where on a caution is printed (config/thresholds.json): starting values, common practice without a source, the operator's to change. */
-import type * as z from 'zod';
+import type * as z from 'zod/mini';
 import type { CautionThresholds } from '../brief/thresholds.ts';
 import { success, type Issue, type Result } from '../result.ts';
 import { check } from './check.ts';
@@ -33,7 +33,7 @@ const ranges: Readonly<Record<keyof CautionThresholds, Range>> = {
 
 const thresholdsSchema = once(() => {
   const numbers = Object.fromEntries(Object.entries(ranges).map(([name, range]) => [name, number(range)]));
-  return fields({ basis: line(200), ...(numbers as Record<keyof CautionThresholds, z.ZodNumber>) });
+  return fields({ basis: line(200), ...(numbers as Record<keyof CautionThresholds, z.ZodMiniNumber>) });
 });
 
 export function parseThresholds(json: unknown, path: Path = []): Result<CautionThresholds, Issue[]> {

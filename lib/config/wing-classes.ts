@@ -1,5 +1,5 @@
 /** The figures of the wing classes (EN 926-2), from config/wing-classes.json: all five, trim in km/h as the trade says it. */
-import type * as z from 'zod';
+import type * as z from 'zod/mini';
 import { failure, success, type Issue, type Result } from '../result.ts';
 import { MPS_PER_KMH } from '../units.ts';
 import { check, issuesIn } from './check.ts';

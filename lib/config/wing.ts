@@ -2,6 +2,7 @@
  * A wing from a class, from a pilot's own three figures, or from a class with masses. Figures that no polar fits are
  * refused with the reason (flight model, section 4): the speed of least sink must lie between stall and trim.
  */
+import * as z from 'zod/mini';
 import { failure, success, type Issue, type Result } from '../result.ts';
 import type { Wing, WingClass } from '../wing/wing.ts';
 import { check, issue, issuesIn } from './check.ts';
@@ -19,7 +20,7 @@ const TOP_OF_TRIM = 1.35;
 const massRange = { min: 20, max: 500, unit: 'kg' };
 
 function masses() {
-  return { referenceMassKg: number(massRange).nullish(), allUpMassKg: number(massRange).nullish() };
+  return { referenceMassKg: z.nullish(number(massRange)), allUpMassKg: z.nullish(number(massRange)) };
 }
 
 export function figures() {
@@ -35,8 +36,8 @@ const byFiguresSchema = once(() =>
   fields({
     trimMps: number({ min: 5, max: 20, unit: 'm/s (km/h divided by 3.6)' }),
     ...figures(),
-    stallMps: number({ min: 3, max: 15, unit: 'm/s' }).nullish(),
-    topMps: number({ min: 5, max: 40, unit: 'm/s' }).nullish(),
+    stallMps: z.nullish(number({ min: 3, max: 15, unit: 'm/s' })),
+    topMps: z.nullish(number({ min: 5, max: 40, unit: 'm/s' })),
     ...masses(),
   }),
 );

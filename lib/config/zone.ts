@@ -1,5 +1,5 @@
 /** Time zones by their IANA name, Area/City only: "CET" and "Etc/GMT+2" say an offset, and the latter with its sign turned round. */
-import * as z from 'zod';
+import * as z from 'zod/mini';
 import { HOUR_MS, zoneOffsetMs } from '../time.ts';
 import { closestWord } from './closest-word.ts';
 
@@ -21,11 +21,11 @@ export function isZone(name: string): boolean {
   }
 }
 
-export function zone(): z.ZodString {
-  return z.string({ error: allowed }).refine(isZone, {
+export function zone(): z.ZodMiniString {
+  return z.string({ error: allowed }).check(z.refine(isZone, {
     error: (found) => allowed(found),
     params: { problem: 'not a time zone of the form Area/City' },
-  });
+  }));
 }
 
 function allowed(found: { readonly input?: unknown }): string {

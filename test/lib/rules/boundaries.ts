@@ -61,8 +61,8 @@ function libComplaint(source: Source, item: Import, target: Target): string | un
     const rule = libPackages[target.package];
     if (rule === undefined) return `lib may not import "${target.package}"`;
     if (!source.file.startsWith(rule.folder)) return `"${target.package}" belongs in ${rule.folder} only`;
-    const isWhole = item.namespace || item.typeOnly;
-    return target.package === 'zod' && !isWhole ? "zod is imported as import * as z from 'zod'" : undefined;
+    const isWhole = (item.namespace || item.typeOnly) && item.specifier === 'zod/mini';
+    return target.package === 'zod' && !isWhole ? "zod is imported as import * as z from 'zod/mini'" : undefined;
   }
   if (!target.file.startsWith('lib/')) return 'lib imports nothing but lib';
   if (target.file.endsWith('.json')) return 'lib is handed its data, it does not import it';
