@@ -1,0 +1,50 @@
+import type { Database, Statement } from './database.ts';
+
+export interface StoredPlan {
+  readonly id: string;
+  /** Of its link: raising it revokes what was handed out before. */
+  readonly linkVersion: number;
+  /** 1 when it was first made, one more each time it is made anew. */
+  readonly revision: number;
+  /** yyyy-mm-dd at its sites. */
+  readonly localDate: string;
+  /** What was asked for, as JSON. */
+  readonly request: string;
+  /** What was planned, as JSON. */
+  readonly body: string;
+}
+
+const COLUMNS = 'id, link_version AS linkVersion, revision, local_date AS localDate, request, body';
+
+/** A plan is kept for a month after its last change, so that a day can be looked back on. */
+const KEPT_MS = 31 * 24 * 3_600_000;
+
+/** Rows that one call tidies away: a plan made is never slow because many have run out. */
+const TIDIED = 50;
+
+export function planStore(db: Database) {
+  return {
+    /** Running it twice leaves the same row: the revision is given, not counted. Old plans leave with it. */
+    put(plan: Omit<StoredPlan, 'linkVersion'>, nowMs: number): Statement[] {
+      return [
+        { sql: `DELETE FROM plan WHERE id IN (SELECT id FROM plan WHERE expires_at < ? LIMIT ${TIDIED})`, values: [nowMs] },
+        {
+          sql: `INSERT INTO plan (id, revision, local_date, request, body, stored_at, expires_at) VALUES (?1, ?2, ?3, ?4, ?5, ?6, ?7)
+            ON CONFLICT (id) DO UPDATE SET revision = excluded.revision, local_date = excluded.local_date, request = excluded.request,
+              body = excluded.body, stored_at = excluded.stored_at, expires_at = excluded.expires_at WHERE plan.revision <= excluded.revision`,
+          values: [plan.id, plan.revision, plan.localDate, plan.request, plan.body, nowMs, nowMs + KEPT_MS],
+        },
+      ];
+    },
+    async one(id: string): Promise<StoredPlan | null> {
+      const [row] = await db.read<StoredPlan>(`SELECT ${COLUMNS} FROM plan WHERE id = ?`, id);
+      return row ?? null;
+    },
+    /** The plans of these days, for whoever tells their holders that an hour has turned. */
+    ofDates(localDates: readonly string[]): Promise<StoredPlan[]> {
+      return db.read<StoredPlan>(`SELECT ${COLUMNS} FROM plan WHERE local_date IN (SELECT value FROM json_each(?)) ORDER BY id`, JSON.stringify(localDates));
+    },
+  };
+}
+
+export type PlanStore = ReturnType<typeof planStore>;
