@@ -19,6 +19,7 @@ import type { LogStore } from './store/log.ts';
 import type { MetaStore } from './store/meta.ts';
 import type { OutboxStore } from './store/outbox.ts';
 import type { OutboxUpkeepStore } from './store/outbox-upkeep.ts';
+import type { PlanStore } from './store/plan.ts';
 import type { PublishedStore } from './store/published.ts';
 import type { RunStore } from './store/run.ts';
 import type { RunWorkStore } from './store/run-work.ts';
@@ -78,6 +79,7 @@ export interface Stores {
   readonly site: SiteStore;
   readonly sheet: SheetStore;
   readonly wing: WingStore;
+  readonly plan: PlanStore;
   readonly published: PublishedStore;
   readonly sourceGround: SourceGroundStore;
   readonly forecast: ForecastStore;

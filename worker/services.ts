@@ -20,6 +20,7 @@ import { logStore } from './store/log.ts';
 import { metaStore } from './store/meta.ts';
 import { outboxStore } from './store/outbox.ts';
 import { outboxUpkeepStore } from './store/outbox-upkeep.ts';
+import { planStore } from './store/plan.ts';
 import { publishedStore } from './store/published.ts';
 import { runStore } from './store/run.ts';
 import { runWorkStore } from './store/run-work.ts';
@@ -114,6 +115,7 @@ function storesOn(db: Database): Stores {
     site: siteStore(db),
     sheet: sheetStore(db),
     wing: wingStore(db),
+    plan: planStore(db),
     published: publishedStore(db),
     sourceGround: sourceGroundStore(db),
     forecast: forecastStore(db),
