@@ -82,8 +82,9 @@ function leastAloft(view: HourView): { readonly forwardMps: number; readonly alt
 const forwardAloft: Rule = {
   id: 'forwardAloft', unit: 'm/s', sense: 'atLeast', limit: fromSheet('minForwardAloftMps'),
   needs(view) {
-    const topM = launchOf(view).elevationM + view.setup.sheet.parameters.bandM;
-    return [...profileNeeds(view, topM), ...airNeeds(view, topM)];
+    const { elevationM } = launchOf(view);
+    const topM = elevationM + view.setup.sheet.parameters.bandM;
+    return [...profileNeeds(view, topM), ...airNeeds(view, elevationM), ...airNeeds(view, topM)];
   },
   demand: (view) => leastAloft(view).forwardMps,
   terms(view, limit) {

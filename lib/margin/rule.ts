@@ -84,6 +84,8 @@ export function airNeeds(view: HourView, altitudeM: number): readonly Need[] {
   const [groundM, lowestLevelM] = view.column.altitudeM;
   if (lowestLevelM !== undefined && altitudeM >= lowestLevelM) return ['levels'];
   const riseM = altitudeM - (groundM ?? NaN);
+  // Declared levels that did not come could have begun anywhere above the ground: missing, whatever else is not declared.
+  if (riseM > 0 && lowestLevelM === undefined && view.declares('levels') && view.column.carriesUp === false) return ['levels'];
   const surface = ['temperature2mC', 'dewPoint2mC', 'surfacePressureHpa'] as const;
   return riseM > 0 && (!view.column.carriesUp || riseM > 150) ? [...surface, 'levels'] : surface;
 }
