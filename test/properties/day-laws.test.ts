@@ -58,6 +58,8 @@ law('one more source never turns beyond into anything else, nor close into withi
 
 law('a declared field that goes missing never loosens a margin, an hour or the day, whoever else has a vote', [requests, fc.constantFrom(...CONDITION_FIELDS), fc.nat(3), fc.nat(12)], (seed, field, source, which) => {
   const { input } = oneEnded(dayOf(seed));
+  // A gust that contradicts its mean is unknown; with the mean gone nothing contradicts it any more.
+  fc.pre(!forecastsOf(input).some(({ members }) => members.flat().some(({ wind10m, gustMps }) => (gustMps ?? Infinity) < (wind10m?.speedMps ?? 0) - 1)));
   const spoilt = source % input.answers.length;
   const without = (hour: Conditions, i: number): Conditions => {
     if (which < 12 && i !== which) return hour;

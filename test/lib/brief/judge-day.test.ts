@@ -142,6 +142,21 @@ describe('a declared field that is missing is never mistaken for one that is not
     expect(marginOf(dayOf([holed, source('clear')]), 'thermal')).toMatchObject({ status: 'unknown', source: 'dark', missing: ['shortwaveWm2'] });
   });
 
+  test('a source without the temperature on the ground has no vote on speeds that begin below its lowest level, levels missing or not', () => {
+    const cold = without(source('cold', { wind: [9, 250] }), 'temperature2mC');
+    const holed = edited(cold, (hour) => ({ ...hour, levels: null }));
+    for (const each of [cold, holed]) expect(marginOf(dayOf([each, source('one')]), 'forwardAloft')).toMatchObject({ status: 'within', source: 'one' });
+  });
+
+  test('levels that did not come are missing, also for a source that gives no air on the ground', () => {
+    const high = { ...ALPINE, elevationM: 1700, landing: { ...ALPINE.landing, elevationM: 1560 } };
+    const above = without(source('above'), 'temperature2mC', 'dewPoint2mC', 'surfacePressureHpa');
+    const holed = edited(above, (hour) => (Date.parse(hour.validAt) === instantAt(NOON) ? { ...hour, levels: null } : hour));
+    const day = judgeDay(inputOf({ site: high, sheet: SHEET, forecasts: [holed, source('one')] }));
+    expect(marginOf(day, 'run', NOON - 1)).toMatchObject({ status: expect.stringMatching(/within|close/) });
+    expect(marginOf(day, 'run')).toMatchObject({ status: 'unknown', source: 'above', missing: ['levels'] });
+  });
+
   test('a ground that no place has is no ground', () => {
     const sunken = edited(source('sunken'), (hour) => ({ ...hour, gridElevationM: -600 }));
     expect(dayOf([sunken, source('one')], { storedGroundM: {} }).sources[0]).toMatchObject({ state: 'no vote', why: 'it does not say how high its ground is' });
