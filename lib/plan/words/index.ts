@@ -1,2 +1,2 @@
 export { blockLastLaunch, blockPlace, blockReason, blockSentence, blockVerdict, blockWhere, moveWords, spareWords } from './blocks.ts';
-export { asOfWords, groupName, ifLostSentence, leftOutSentence, nextBestSentence, noticeSentence, objectiveWords, planSentence, planTitle } from './plan.ts';
+export { asOfWords, eventTitle, groupName, ifLostSentence, leftOutSentence, nextBestSentence, noticeSentence, objectiveWords, planSentence, planTitle } from './plan.ts';

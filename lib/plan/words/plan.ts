@@ -2,8 +2,8 @@
 import { causeClause } from '../../brief/words/causes.ts';
 import { capital, clockTime, counted, dateName, hourName, hourSpan, INVENTED, listed, mostRestrictive, placeName, plainText, sentence, verdictPhrase, type Reader } from '../../brief/words/index.ts';
 import type { PlanNotice } from '../changes.ts';
-import type { Alternative, DayPlan, GroupPlan, IfLost, PlanObjective } from '../day-plan.ts';
-import { blockWhere, spareWords } from './blocks.ts';
+import type { Alternative, Block, DayPlan, GroupPlan, IfLost, PlanObjective } from '../day-plan.ts';
+import { blockPlace, blockWhere, spareWords } from './blocks.ts';
 import { closedClause } from './closed.ts';
 
 type Day = Pick<DayPlan, 'timeZone'>;
@@ -27,6 +27,12 @@ export function planTitle(plan: DayPlan): string {
     `plan ${asOfWords(plan)}, ${dateName(plan.date, 'short')}`,
   ].join('; ');
   return plan.demo ? `${INVENTED}: ${parts}` : capital(parts);
+}
+
+/** "Invented weather, as of 5:30 Fri 14 May: Tow course at Tivvern Strip". No verdict: it is read long after it was written. */
+export function eventTitle(plan: DayPlan, group: Pick<GroupPlan, 'name'>, block: Pick<Block, 'site' | 'siteName'>): string {
+  const asOf = `${asOfWords(plan)} ${dateName(plan.date, 'short')}`;
+  return `${plan.demo ? `${INVENTED}, ${asOf}` : capital(asOf)}: ${groupName(group.name)} at ${blockPlace(block)}`;
 }
 
 /** The plan in one line, what it could not do first. */
