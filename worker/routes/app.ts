@@ -1,11 +1,13 @@
 import { Hono } from 'hono';
 import type { Services } from '../service-set.ts';
 import { pageServices } from '../web/page-data.ts';
+import { planServices } from '../web/plan/plan-data.ts';
 import { api } from './api.ts';
 import { feeds } from './feeds.ts';
 import { health } from './health.ts';
 import { local } from './local.ts';
 import { pages } from './pages.ts';
+import { planApi, planPages } from './plan.ts';
 import { problem } from './problem.ts';
 
 /** The methods that the paths answer; any other is told so. */
@@ -14,7 +16,11 @@ const METHODS: Readonly<Record<string, string>> = {
   '/sites/:id': 'GET, HEAD',
   '/healthz': 'GET, HEAD',
   '/feeds/:file': 'GET, HEAD',
+  '/plan': 'GET, HEAD, POST',
+  '/plan/:token': 'GET, HEAD, POST',
+  '/plan/:token/:file': 'GET, HEAD',
   '/api/v1/assess': 'POST',
+  '/api/v1/plan': 'POST',
   '/api/v1/sites': 'GET, HEAD',
   '/api/v1/sites/:id/days/:date': 'GET, HEAD',
 };
@@ -23,9 +29,11 @@ const METHODS: Readonly<Record<string, string>> = {
 export function app(services: Services): Hono {
   const hono = new Hono();
   hono.get('/healthz', () => health(services));
+  hono.route('/api/v1/plan', planApi(planServices(services)));
   hono.route('/api/v1', api(services));
   hono.route('/feeds', feeds(services));
   if (services.settings.local) hono.route('/local', local(services));
+  hono.route('/plan', planPages(planServices(services)));
   hono.route('/', pages(pageServices(services)));
   for (const [path, allow] of Object.entries(METHODS)) {
     hono.all(path, () => problem('wrong-method', { detail: `answered are ${allow}`, headers: { allow } }));

@@ -21,7 +21,7 @@ export async function jsonBody(request: Request, maxBytes: number): Promise<Resu
   return value.ok ? value : { ok: false, error: problem('bad-input', { problems: value.error }) };
 }
 
-async function readUpTo(body: ReadableStream<Uint8Array> | null, maxBytes: number): Promise<Uint8Array | null> {
+export async function readUpTo(body: ReadableStream<Uint8Array> | null, maxBytes: number): Promise<Uint8Array | null> {
   if (body === null) return new Uint8Array();
   const parts: Uint8Array[] = [];
   let length = 0;
