@@ -23,6 +23,8 @@ export interface Spoilt {
   edge?: 'moved' | 'cut';
   /** Two stamps have changed places: taking one of them away would only leave a value at a wrong hour. */
   disordered?: true;
+  /** A column has lost or gained a value at one end: cutting the rows to one length again would only move it by an hour. */
+  uneven?: true;
 }
 
 type Mutation = (spoilt: Spoilt, random: () => number) => void;
@@ -95,10 +97,16 @@ export const mutations: Readonly<Record<string, Mutation>> = {
     hourly[pick([`${name}_member01`, `${name}_best_match`, name.toUpperCase(), `${name} `, '__proto__x', 'constructor'], random)] = hourly[name];
     delete hourly[name];
   },
-  'a short column': (spoilt, random) => void anyColumn(spoilt, random).splice(Math.floor(random() * 3) === 0 ? 0 : -1 - Math.floor(random() * 3), 1 + Math.floor(random() * 3)),
-  'a long column': (spoilt, random) => void anyColumn(spoilt, random).push(pick([0, 1, null], random)),
+  'a short column': (spoilt, random) => {
+    spoilt.uneven = true;
+    anyColumn(spoilt, random).splice(Math.floor(random() * 3) === 0 ? 0 : -1 - Math.floor(random() * 3), 1 + Math.floor(random() * 3));
+  },
+  'a long column': (spoilt, random) => {
+    spoilt.uneven = true;
+    anyColumn(spoilt, random).push(pick([0, 1, null], random));
+  },
   'rows cut off': (spoilt, random) => {
-    if (spoilt.edge === 'moved' || spoilt.disordered) return;
+    if (spoilt.edge === 'moved' || spoilt.disordered || spoilt.uneven) return;
     spoilt.edge = 'cut';
     const rows = spoilt.location.hourly?.['time']?.length ?? 0;
     const keep = Math.floor(random() * rows);
