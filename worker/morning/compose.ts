@@ -26,6 +26,7 @@ export async function compose(services: Services, rows: readonly OutboxRow[]): P
   const nowMs = clock.nowMs();
   const channels = new Map((await stores.channel.some(rows.map((row) => row.channelId))).map((channel) => [channel.id, channel]));
   const pairs = await stores.subscription.pairsOf([...new Set(rows.map((row) => row.subscriptionId))]);
+  const units = await stores.subscription.unitsOf([...new Set(rows.map((row) => row.subscriptionId))]);
   const places = await placesOf(services, [...new Set(pairs.map((pair) => pair.siteId))]);
   const contents = new Map<string, Content>();
   for (const row of rows) if (row.content !== null) contents.set(row.id, JSON.parse(row.content) as Content);
@@ -51,7 +52,7 @@ export async function compose(services: Services, rows: readonly OutboxRow[]): P
   for (const row of rows) {
     const channel = channels.get(row.channelId);
     const content = contents.get(row.id);
-    const message = content === undefined ? null : messageOf({ row, content, heads: row.content === null ? heads : exactHeads, places });
+    const message = content === undefined ? null : messageOf({ row, content, heads: row.content === null ? heads : exactHeads, places, units: units.get(row.subscriptionId) });
     if (channel === undefined || channel.state === 'dead' || message === null) orphans.push(row);
     else composed.push({ row, channel, message });
   }

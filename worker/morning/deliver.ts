@@ -5,6 +5,7 @@ import type { SettledState } from '../store/outbox.ts';
 import { nextAttempt } from './backoff.ts';
 import { compose, type Composed } from './compose.ts';
 import { inLanes } from './lanes.ts';
+import { quietUntilMs } from './quiet.ts';
 import { SEND_CHUNK, SENDS_SIDE_BY_SIDE } from './sizes.ts';
 import { LEASE_MS, SEND_TIMEOUT_MS } from './times.ts';
 
@@ -47,6 +48,8 @@ async function deliverOne(services: Services, item: Composed, by: string): Promi
   if (clock.nowMs() >= lastMomentOf(item)) {
     return mark(services, [stores.outbox.settle(row.id, { state: 'expired', reason: 'no longer valid when its turn came' }, clock.nowMs())], 'expired');
   }
+  const quietMs = quietUntilMs(item.channel, clock.nowMs());
+  if (quietMs !== null) return mark(services, [stores.outbox.hold(row.id, by, quietMs)], 'retry');
   const outcome = await sendOne(services, item);
   const nowMs = clock.nowMs();
   switch (outcome.state) {

@@ -1,6 +1,7 @@
 import type { JudgedDay } from '../../lib/brief/day.ts';
 import { briefText, briefTitle, dayVerdict, type Reader } from '../../lib/brief/words/index.ts';
 import { missedNotice, NOT_COMPUTED } from '../../lib/brief/words/notices.ts';
+import type { DisplayUnits } from '../../lib/brief/units-out.ts';
 import { isoUtc, localDay } from '../../lib/time.ts';
 import type { Message } from '../channels/channel.ts';
 import type { Place } from '../service-set.ts';
@@ -34,10 +35,12 @@ export interface MessageParts {
   /** By pairDayKey. */
   readonly heads: ReadonlyMap<string, BriefHead>;
   readonly places: ReadonlyMap<string, Place>;
+  /** Those that the subscriber chose. */
+  readonly units?: DisplayUnits | undefined;
 }
 
 /** A message for all sites of a subscriber; null when none of them is kept any more. */
-export function briefMessage({ row, content, heads, places }: MessageParts): Message | null {
+export function briefMessage({ row, content, heads, places, units }: MessageParts): Message | null {
   const days: JudgedDay[] = [];
   const runs: (number | null)[] = [];
   for (const pair of content.briefs) {
@@ -53,7 +56,7 @@ export function briefMessage({ row, content, heads, places }: MessageParts): Mes
     id: row.id,
     kind: row.kind,
     title: briefTitle(days),
-    text: briefText(days, READER),
+    text: briefText(days, units === undefined ? READER : { units }),
     issuedAtMs: content.issuedAtMs,
     dataRunAtMs: known.length > 0 && known.length === runs.length ? Math.min(...known) : null,
     validUntilMs: Math.min(...days.map((day) => Date.parse(day.validUntil))),

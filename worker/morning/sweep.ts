@@ -16,6 +16,7 @@ export async function sweep(services: Services, nowMs: number): Promise<void> {
   await stores.db.together([
     ...stores.outboxUpkeep.closeOverdue(nowMs),
     stores.runWork.giveUp(nowMs),
+    stores.subscription.resumeDue(nowMs),
     stores.meta.setting('last-sweep', String(nowMs)),
   ]);
   const work = await stores.run.ready(nowMs, ASSESS_CHUNK, null);

@@ -22,15 +22,21 @@ export const DELIVER_WITHIN_MS = 6 * HOUR_MS;
 export const LEASE_MS = MINUTE_MS;
 export const SEND_TIMEOUT_MS = 15_000;
 
-/** The instant after `afterMs` at which a zone's clocks next show this minute of the day. */
-export function followingDueMs(group: { readonly timeZone: string; readonly deliverMinute: number }, afterMs: number): number {
+/** Whether a brief is wanted on a date; bit 0 of the days is Monday. */
+function isWanted(date: string, days: number): boolean {
+  return ((days >> ((new Date(`${date}T00:00:00Z`).getUTCDay() + 6) % 7)) & 1) === 1;
+}
+
+/** The instant after `afterMs` at which a zone's clocks next show this minute of the day, on a day that is wanted. */
+export function followingDueMs(group: { readonly timeZone: string; readonly deliverMinute: number; readonly days?: number }, afterMs: number): number {
   const clock = { hour: Math.floor(group.deliverMinute / 60), minute: group.deliverMinute % 60 };
   const today = localDate(afterMs, group.timeZone);
-  for (let days = 0; days <= 3; days += 1) {
-    const at = instantOfLocal(shiftDate(today, days), clock, group.timeZone);
-    if (at > afterMs) return at;
+  for (let ahead = 0; ahead <= 9; ahead += 1) {
+    const date = shiftDate(today, ahead);
+    const at = instantOfLocal(date, clock, group.timeZone);
+    if (at > afterMs && isWanted(date, group.days ?? 127)) return at;
   }
-  throw new Error(`no ${clock.hour}:${clock.minute} within three days of ${new Date(afterMs).toISOString()} in "${group.timeZone}"`);
+  throw new Error(`no ${clock.hour}:${clock.minute} within nine days of ${new Date(afterMs).toISOString()} in "${group.timeZone}"`);
 }
 
 /** The local date that a brief asked for at an instant is about: once the legal day has ended, "this morning" is tomorrow's. */

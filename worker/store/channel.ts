@@ -13,21 +13,41 @@ export interface StoredChannel {
   /** Link and signing secrets are derived from this number; the one before may still be valid. */
   readonly secretVersion: number;
   readonly oldestSecretVersion: number;
+  /** Of its subscription: the links in a message are derived from it. */
+  readonly linkVersion: number;
+  readonly timeZone: string;
+  /** Minutes of the subscriber's day between which nothing is sent there; both or neither. */
+  readonly quietFrom: number | null;
+  readonly quietTo: number | null;
 }
 
-const COLUMNS = `id, subscription_id AS subscriptionId, rank, kind, target, state, secret_version AS secretVersion,
-  oldest_secret_version AS oldestSecretVersion`;
+const COLUMNS = `c.id, c.subscription_id AS subscriptionId, c.rank, c.kind, c.target, c.state, c.secret_version AS secretVersion,
+  c.oldest_secret_version AS oldestSecretVersion, COALESCE(s.link_version, 1) AS linkVersion, COALESCE(s.time_zone, 'UTC') AS timeZone,
+  c.quiet_from AS quietFrom, c.quiet_to AS quietTo FROM channel AS c LEFT JOIN subscription AS s ON s.id = c.subscription_id`;
+
+export interface NewChannel extends Pick<StoredChannel, 'id' | 'subscriptionId' | 'rank' | 'kind' | 'target' | 'state'> {
+  readonly quiet?: { readonly from: number; readonly to: number } | null;
+}
 
 export function channelStore(db: Database) {
   return {
     some(ids: readonly string[]): Promise<StoredChannel[]> {
-      return db.read<StoredChannel>(`SELECT ${COLUMNS} FROM channel WHERE id IN (SELECT value FROM json_each(?))`, JSON.stringify(ids));
+      return db.read<StoredChannel>(`SELECT ${COLUMNS} WHERE c.id IN (SELECT value FROM json_each(?))`, JSON.stringify(ids));
+    },
+    ofSubscription(id: string): Promise<StoredChannel[]> {
+      return db.read<StoredChannel>(`SELECT ${COLUMNS} WHERE c.subscription_id = ? ORDER BY c.rank`, id);
+    },
+    /** How many that have not shown yet that they want to be told point at this host: a limit on using us against somebody. */
+    async unverifiedAt(host: string): Promise<number> {
+      const [row] = await db.read<{ n: number }>(`SELECT COUNT(*) AS n FROM channel WHERE state = 'unverified' AND target ->> 'host' = ?`, host);
+      return row?.n ?? 0;
     },
     /** New ones are added as given; one that exists keeps its state and secrets and takes the rest. */
-    put(channels: readonly Pick<StoredChannel, 'id' | 'subscriptionId' | 'rank' | 'kind' | 'target' | 'state'>[], nowMs: number): Statement {
+    put(channels: readonly NewChannel[], nowMs: number): Statement {
       return {
-        sql: `INSERT INTO channel (id, subscription_id, rank, kind, target, state, stored_at)
-          SELECT value ->> 'id', value ->> 'subscriptionId', value ->> 'rank', value ->> 'kind', value ->> 'target', value ->> 'state', ?2
+        sql: `INSERT INTO channel (id, subscription_id, rank, kind, target, state, quiet_from, quiet_to, stored_at)
+          SELECT value ->> 'id', value ->> 'subscriptionId', value ->> 'rank', value ->> 'kind', value ->> 'target', value ->> 'state',
+            value ->> '$.quiet.from', value ->> '$.quiet.to', ?2
           FROM json_each(?1) WHERE true
           ON CONFLICT (id) DO UPDATE SET rank = excluded.rank, kind = excluded.kind, target = excluded.target`,
         values: [JSON.stringify(channels), nowMs],

@@ -107,6 +107,14 @@ export function outboxStore(db: Database) {
         values: [id, by, next.atMs, next.reason],
       };
     },
+    /** Gives a leased row back until quiet hours end: nothing was tried. */
+    hold(id: string, by: string, untilMs: number): Statement {
+      return {
+        sql: `UPDATE outbox SET next_attempt_at = ?3, reason = 'quiet hours', lease_until = NULL, lease_by = NULL, attempts = attempts - 1
+          WHERE id = ?1 AND lease_by = ?2 AND state = 'pending'`,
+        values: [id, by, untilMs],
+      };
+    },
     /** Gives a leased row back as if it had not been taken. */
     putBack(ids: readonly string[], by: string): Statement {
       return {
