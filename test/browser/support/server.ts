@@ -21,7 +21,11 @@ export async function serve(app: Hono): Promise<Served> {
         response.writeHead(200, { 'content-type': TYPES[path.extname(file)] ?? 'text/plain' }).end(readFileSync(file));
         return;
       }
-      const answer = await app.request(url.pathname + url.search, { method: request.method ?? 'GET' });
+      const chunks: Buffer[] = [];
+      for await (const chunk of request) chunks.push(chunk as Buffer);
+      const body = chunks.length === 0 ? null : new Uint8Array(Buffer.concat(chunks));
+      const headers = { 'content-type': request.headers['content-type'] ?? '', accept: request.headers.accept ?? '' };
+      const answer = await app.request(url.pathname + url.search, { method: request.method ?? 'GET', headers, body });
       response.writeHead(answer.status, Object.fromEntries(answer.headers)).end(await answer.text());
     })();
   });
