@@ -52,7 +52,6 @@ const at = (localHour: number) => isoUtc(instantAt(localHour));
 /** First and last judged hour: on the hour, inside the legal day. */
 const FIRST_H = 6;
 const LAST_H = 20;
-const wholeDay = { from: at(FIRST_H), to: at(LAST_H) };
 
 test('the usual day has nothing to say but its end', () => {
   expect(dayOf(usual).cautions.map(({ id }) => id)).toEqual(['lastLight']);
