@@ -55,14 +55,17 @@ export function judgeHours(input: HoursInput): Assessment {
     const speed = adviceMps(view);
     const headingDeg = setup.site.kind === 'strip' ? { headingDeg: view.tow.headingDeg } : {};
     return {
-      validAt: input.hours[i]!.validAt,
+      validAt: input.hours[i]?.validAt ?? isoUtc(view.hour.validAtMs),
       verdict: worstVerdict(results.map(({ status }) => status)),
       causes: causesOf(results),
       margins: results,
       advice: { speedToFlyMps: Number.isFinite(speed) ? speed : null, ...headingDeg },
     };
   });
-  const windows = windowsOf(views.map((view, i) => ({ validAtMs: view.hour.validAtMs, verdict: judged[i]!.verdict, flightS: flightTimeS(view) })));
+  const windows = windowsOf(judged.flatMap(({ verdict }, i) => {
+    const view = views[i];
+    return view === undefined ? [] : [{ validAtMs: view.hour.validAtMs, verdict, flightS: flightTimeS(view) }];
+  }));
   return {
     hours: judged,
     windows: windows.map(({ fromMs, toMs, lastLaunchMs, verdict }) => ({

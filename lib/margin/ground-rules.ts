@@ -5,7 +5,7 @@ import { components } from '../air/wind.ts';
 import { isCalm } from '../air/gust.ts';
 import { launchOf, trimTerm } from './forward-rules.ts';
 import type { HourView } from './hour-view.ts';
-import { airNeeds, estimateOrigin, fixed, fromSheet, gustNeeds, limitTerm, pick, profileNeeds, term, windNeeds, type Need, type Picked, type Rule } from './rule.ts';
+import { airNeeds, estimateOrigin, fixed, fromSheet, limitTerm, pick, profileNeeds, term, windNeeds, type Need, type Picked, type Rule } from './rule.ts';
 import { readAtM, SAME_GROUND_M } from './strip-profile.ts';
 
 /** Margins of feet and ground: the landing's gradient, the run, the slope, ridge lift. */

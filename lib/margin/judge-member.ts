@@ -88,14 +88,12 @@ export function workingOf(rule: Rule, view: HourView): readonly Term[] {
 function missingFields(view: HourView, needs: readonly Need[]): string[] {
   const { hour } = view;
   const found = [...new Set(needs)].flatMap((need): string[] => {
-    switch (need) {
-      case 'wind10m': return missingWind('wind10m', hour.wind10m);
-      case 'nearGround': return hour.nearGround.length === 0 ? ['nearGround'] : hour.nearGround.flatMap((wind) => missingWind(`nearGround ${wind.heightAglM} m`, wind));
-      case 'levels': return hour.levels.length === 0 ? ['levels'] : hour.levels.flatMap((level) => missingLevel(level, hour.gridElevationM));
-      case 'referencePressureHpa': return (['a', 'b'] as const).filter((key) => Number.isNaN(hour.referencePressureHpa[key])).map((key) => `referencePressureHpa.${key}`);
-      case 'weatherCode': return [hour, ...view.context.next].some(({ weatherCode }) => Number.isNaN(weatherCode)) ? ['weatherCode'] : [];
-      default: return Number.isNaN(hour[need]) ? [need] : [];
-    }
+    if (need === 'wind10m') return missingWind('wind10m', hour.wind10m);
+    if (need === 'nearGround') return hour.nearGround.length === 0 ? ['nearGround'] : hour.nearGround.flatMap((wind) => missingWind(`nearGround ${wind.heightAglM} m`, wind));
+    if (need === 'levels') return hour.levels.length === 0 ? ['levels'] : hour.levels.flatMap((level) => missingLevel(level, hour.gridElevationM));
+    if (need === 'referencePressureHpa') return (['a', 'b'] as const).filter((key) => Number.isNaN(hour.referencePressureHpa[key])).map((key) => `referencePressureHpa.${key}`);
+    if (need === 'weatherCode') return [hour, ...view.context.next].some(({ weatherCode }) => Number.isNaN(weatherCode)) ? ['weatherCode'] : [];
+    return Number.isNaN(hour[need]) ? [need] : [];
   });
   if (Number.isNaN(hour.gridElevationM)) found.unshift('gridElevationM');
   return found.length > 0 || needs.length === 0 ? found : ['levels (do not reach)'];
