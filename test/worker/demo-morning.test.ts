@@ -1,5 +1,5 @@
 import { env } from 'cloudflare:workers';
-import { beforeAll, describe, expect, test } from 'vitest';
+import { beforeAll, describe, expect, test, vi } from 'vitest';
 import published from '../../config/published.json' with { type: 'json' };
 import sheets from '../../config/sheets.json' with { type: 'json' };
 import sites from '../../config/sites.json' with { type: 'json' };
@@ -8,6 +8,9 @@ import { briefText, briefTitle } from '../../lib/brief/words/index.ts';
 import { app } from '../../worker/routes/app.ts';
 import { READER } from '../../worker/morning/message.ts';
 import { newHouse, type House } from './support/house.ts';
+
+// A machine that has other things to do is no fault of ours.
+vi.setConfig({ testTimeout: 30_000, hookTimeout: 30_000 });
 
 const six = '2027-05-14T04:00:00Z';
 let house: House;

@@ -1,13 +1,16 @@
 import { XMLParser, XMLValidator } from 'fast-xml-parser';
 import ICAL from 'ical.js';
 import { env } from 'cloudflare:workers';
-import { beforeEach, describe, expect, test } from 'vitest';
+import { beforeEach, describe, expect, test, vi } from 'vitest';
 import { app } from '../../worker/routes/app.ts';
 import { linkToken } from '../../worker/secrets.ts';
 import { folded, icalText } from '../../worker/feeds/ical.ts';
 import { xml } from '../../worker/feeds/atom.ts';
 import { LINK_KEY, newHouse, type House } from './support/house.ts';
 import { judgedAs } from './support/stand-ins.ts';
+
+// A machine that has other things to do is no fault of ours.
+vi.setConfig({ testTimeout: 30_000, hookTimeout: 30_000 });
 
 const six = '2027-05-14T04:00:00Z';
 let house: House;

@@ -11,6 +11,9 @@ import { READER } from '../../worker/morning/message.ts';
 import { callOf, failing, LINK_KEY, newHouse } from './support/house.ts';
 import { judgedAs } from './support/stand-ins.ts';
 
+// A machine that has other things to do is no fault of ours.
+vi.setConfig({ testTimeout: 30_000, hookTimeout: 30_000 });
+
 const hook = (name: string): string => `http://127.0.0.1:9/${name}`;
 const six = '2027-05-14T04:00:00Z';
 const ana = { id: 'ana', sites: ['north', 'south'], urls: [hook('ana')], dueIso: six };

@@ -23,6 +23,8 @@ export async function deliverStep(services: Services): Promise<boolean> {
   const by = services.ids.next();
   const rows = await stores.outbox.claim({ nowMs: clock.nowMs(), leaseMs: LEASE_MS, by, limit: SEND_CHUNK });
   if (rows.length === 0) return false;
+  // There may be more: whoever answers goes on with it while these are being sent, and waits for no slow receiver of them.
+  if (rows.length === SEND_CHUNK) await services.wake('deliver', 1);
   const { composed, orphans } = await compose(services, rows);
   const reached: string[] = [];
   const putBack: string[] = [];
@@ -38,7 +40,7 @@ export async function deliverStep(services: Services): Promise<boolean> {
     stores.channel.reached(reached, nowMs),
     stores.meta.setting('last-deliver', String(nowMs)),
   ]);
-  if (rows.length === SEND_CHUNK || putBack.length > 0) await services.wake('deliver', 1);
+  if (putBack.length > 0) await services.wake('deliver', 1);
   return true;
 }
 

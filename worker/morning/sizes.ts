@@ -9,8 +9,8 @@ export const FETCH_CHUNK = 8;
 /** Pairs of one site-day judged at once. */
 export const ASSESS_CHUNK = 4;
 
-/** Messages sent at once: each is a send and a mark, and ten calls come before and after. */
-export const SEND_CHUNK = 16;
+/** Messages sent at once: each is a send and a mark, and a dozen calls come before and after. Three rounds of the six connections. */
+export const SEND_CHUNK = 18;
 
 /** Connections that may be open at once. */
 export const SENDS_SIDE_BY_SIDE = 6;

@@ -25,19 +25,13 @@ export interface Quarrels {
   begin(origin: string, untilMs: number, nowMs: number): Promise<void>;
 }
 
-/** Side by side to one service; it is one host for thousands of subscribers. */
-const LANES = 3;
 const QUARREL_MS = 10 * 60_000;
 
 export function pushChannel(options: PushOptions): Channel {
   const targetOf = (address: Address): PushTarget | { readonly problem: string } => readTarget(address.target, { local: options.local });
   return {
-    lane(address) {
-      const target = targetOf(address);
-      if ('problem' in target) return address.id;
-      const { origin, pathname } = new URL(target.endpoint);
-      return `${origin} ${Array.from({ length: pathname.length }, (_, at) => pathname.charCodeAt(at)).reduce((sum, code) => (sum * 31 + code) % 9973, 7) % LANES}`;
-    },
+    // A push service is one host for thousands of browsers, and takes them side by side.
+    lane: (address) => address.id,
     async send(message, address, attempt) {
       const target = targetOf(address);
       if ('problem' in target) return { state: 'gone', reason: `the push subscription is refused: ${target.problem}` };
