@@ -25,7 +25,7 @@ describe.each(['/', '/sites/kestrel-edge', '/sites/kestrel-edge/what-if?wind=5',
     const { status, markup } = await get(path);
     expect(status).toBe(200);
     expect(markup).toContain(CLOSING);
-    expect(markup).toMatch(/run 3 h old/);
+    expect(text(markup)).toMatch(/run 3 h old/);
     expect(text(markup)).toContain('Invented weather');
     expect(markup).toMatch(/<title>Invented weather: /);
   });

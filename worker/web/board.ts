@@ -1,7 +1,7 @@
 /** The board: a line of words a site, its columns of airspeed small beside it, windows, cautions, ages. */
 import type { JudgedDay } from '../../lib/brief/day.ts';
 import {
-  briefTitle, cautionSentences, credits, dateName, dayStatement, EXPIRED, inBriefOrder, placeName, plainText, provenance, windowSentence, type Reader,
+  briefTitle, credits, dateName, EXPIRED, inBriefOrder, placeName, plainText, provenance, type Reader,
 } from '../../lib/brief/words/index.ts';
 import { isoUtc, localDate } from '../../lib/time.ts';
 import { html, type Html } from './html.ts';
@@ -9,6 +9,7 @@ import { layout } from './layout.ts';
 import type { BoardSite } from './page-services.ts';
 import { columnsPicture, SMALL } from './pictures/columns.ts';
 import { hourScale } from './pictures/runs.ts';
+import { cautionItems, dayLine, tied, windowLines } from './sentences.ts';
 import { address, unitsPart } from './units-query.ts';
 
 export function isExpired(day: Pick<JudgedDay, 'validUntil'>, now: Date): boolean {
@@ -23,7 +24,7 @@ function dayHref(day: JudgedDay, reader: Reader): string {
 
 function siteHead(day: JudgedDay, reader: Reader): Html {
   return html`<h2><a href="${dayHref(day, reader)}">${placeName({ name: day.siteName, id: day.siteId })}</a></h2>
-<p class="aside">${dateName(day.localDate, 'short')}<br>${plainText(day.wingName)}<br>${plainText(day.sheetName)}</p>`;
+<p class="aside"><span>${dateName(day.localDate, 'short')}</span> <span>${plainText(day.wingName)}</span> <span>${plainText(day.sheetName)}</span></p>`;
 }
 
 function entry(day: JudgedDay, options: { readonly reader: Reader; readonly now: Date; readonly id: string }): Html {
@@ -31,14 +32,13 @@ function entry(day: JudgedDay, options: { readonly reader: Reader; readonly now:
   if (isExpired(day, now)) {
     return html`<article class="entry"><div class="margin">${siteHead(day, reader)}</div><div class="say"><p class="day">${EXPIRED}</p></div></article>`;
   }
-  const cautions = cautionSentences(day.cautions, day, reader).map((caution) => html`<li>${caution}</li>`);
+  const cautions = cautionItems(day.cautions, day, reader);
   const picture = day.hours.length === 0 ? null : html`<div class="small">${columnsPicture(day, reader, { size: SMALL, id })}${hourScale(day)}</div>`;
   return html`<article class="entry" data-valid-until="${day.validUntil}"><div class="margin">${siteHead(day, reader)}</div><div class="say">
-<p class="day">${day.demo ? html`<span class="tag">Invented weather.</span> ` : null}${dayStatement(day, reader)}</p>
-${day.windows.length === 0 ? null : html`<ul class="windows">${day.windows.map((window) => html`<li>${windowSentence(window, day)}</li>`)}</ul>`}
-</div>${picture}<div class="rest">${cautions.length === 0 ? null : html`<ul class="cautions" aria-label="Cautions">${cautions}</ul>`}
-${day.localRules === null ? null : html`<p class="rules">${plainText(day.localRules, 300)}</p>`}
-<p class="ages">${provenance(day)}</p></div></article>`;
+${dayLine(day, reader)}${windowLines(day)}</div>${picture}
+${cautions.length === 0 ? null : html`<div class="heed"><h3 id="${id}-h">Cautions</h3> <ul class="cautions" aria-labelledby="${id}-h">${cautions}</ul></div>`}
+<div class="notes">${day.localRules === null ? null : html`<p class="rules">${plainText(day.localRules, 300)}</p>`}
+<p class="ages">${tied(provenance(day))}</p></div></article>`;
 }
 
 /** A site without a brief is a day of which nothing can be said, in the title as on the page. */

@@ -1,8 +1,7 @@
 /** The day of one site: first the sentence that says it, then the columns, the cautions, and one hour in full. */
 import type { JudgedDay, JudgedHour } from '../../lib/brief/day.ts';
 import {
-  briefTitle, capital, causeClause, cautionSentences, dateName, dayStatement, EXPIRED, hourName, placeName, plainText, provenance, sentence, verdictPhrase, windowSentence,
-  type Reader,
+  briefTitle, capital, causeClause, dateName, EXPIRED, hourName, placeName, plainText, provenance, sentence, verdictPhrase, type Reader,
 } from '../../lib/brief/words/index.ts';
 import { tightestFirst } from '../../lib/brief/tightest.ts';
 import { creditsOf, isExpired } from './board.ts';
@@ -17,6 +16,7 @@ import { columnsPicture, LARGE } from './pictures/columns.ts';
 import { columnsKey } from './pictures/key.ts';
 import { hourPictures } from './pictures/hour-pictures.ts';
 import { hourLinks, verdictRuns } from './pictures/runs.ts';
+import { cautionItems, dayLine, tied, windowLines } from './sentences.ts';
 import { stripHours } from './strip-hours.ts';
 import { sourcesSection } from './sources-section.ts';
 import { whatIfForm } from './what-if-form.ts';
@@ -41,9 +41,9 @@ function hourHref(day: JudgedDay, hour: JudgedHour, reader: Reader): string {
 }
 
 function cautionsSection(day: JudgedDay, reader: Reader): Piece {
-  const list = cautionSentences(day.cautions, day, reader);
+  const list = cautionItems(day.cautions, day, reader);
   if (list.length === 0) return null;
-  return html`<section class="cautions" aria-labelledby="cautions-h"><h2 id="cautions-h">Cautions</h2><ul>${list.map((caution) => html`<li>${caution}</li>`)}</ul></section>`;
+  return html`<section aria-labelledby="cautions-h"><h2 id="cautions-h">Cautions</h2><ul class="cautions">${list}</ul></section>`;
 }
 
 function columnsSection(day: JudgedDay, chosen: JudgedHour, reader: Reader): Html {
@@ -57,7 +57,7 @@ function causesOf(hour: JudgedHour, reader: Reader): Piece {
   const own = tightestFirst(causes.filter(({ status }) => status === hour.verdict));
   if (own.length === 0) return null;
   const more = own.length - MOST_CAUSES;
-  return html`<ul class="causes">${own.slice(0, MOST_CAUSES).map((margin) => html`<li>${sentence(causeClause(margin, reader))}</li>`)}${more > 0 ? html`<li>And ${more} more, below.</li>` : null}</ul>`;
+  return html`<ul class="causes">${own.slice(0, MOST_CAUSES).map((margin) => html`<li>${tied(sentence(causeClause(margin, reader)))}</li>`)}${more > 0 ? html`<li>And ${more} more, below.</li>` : null}</ul>`;
 }
 
 function hourSection(day: JudgedDay, hour: JudgedHour, options: DayPageOptions): Html {
@@ -70,16 +70,14 @@ ${causesOf(hour, reader)}${hourPictures(day, hour, detail, reader)}
 }
 
 function marginalia(day: JudgedDay): Html {
-  return html`<p class="aside">${dateName(day.localDate)}<br>${plainText(day.wingName)}<br>${plainText(day.sheetName)}, version ${day.sheetVersion}</p>`;
+  return html`<p class="aside"><span>${dateName(day.localDate)}</span> <span>${plainText(day.wingName)}</span> <span>${plainText(day.sheetName)}, version ${day.sheetVersion}</span></p>`;
 }
 
 function judged(day: JudgedDay, options: DayPageOptions): Html {
   const { reader } = options;
   const hour = chosenHour(day, options.hour);
   return html`<div class="judged" data-valid-until="${day.validUntil}">
-<p class="day">${day.demo ? html`<span class="tag">Invented weather.</span> ` : null}${dayStatement(day, reader)}</p>
-${day.windows.length === 0 ? null : html`<ul class="windows">${day.windows.map((window) => html`<li>${windowSentence(window, day)}</li>`)}</ul>`}
-<p class="ages">${provenance(day)}</p>
+${dayLine(day, reader)}${windowLines(day)}<p class="ages">${tied(provenance(day))}</p>
 ${hour === null ? null : columnsSection(day, hour, reader)}${cautionsSection(day, reader)}
 ${day.localRules === null ? null : html`<p class="rules"><strong>Local rules:</strong> ${plainText(day.localRules, 300)}</p>`}
 ${stripHours(day, reader)}${hour === null ? null : hourSection(day, hour, options)}${sourcesSection(day, hour, reader)}</div>`;

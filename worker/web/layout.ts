@@ -27,7 +27,7 @@ function creditLinks(page: Page): Piece {
 }
 
 export function layout(page: Page): string {
-  const demo = page.demo ? html`<p class="invented"><strong>Invented weather.</strong> A demonstration: nothing here is about any real place or day.</p>` : null;
+  const demo = page.demo ? html`<p class="invented"><strong>Invented weather.</strong> A demonstration, about no real place or day.</p>` : null;
   return `<!doctype html>\n${html`<html lang="en"><head><meta charset="utf-8"><meta name="viewport" content="width=device-width, initial-scale=1">
 <title>${page.title}</title><meta name="description" content="${page.description}"><meta name="color-scheme" content="light dark">
 <link rel="stylesheet" href="/dawnmargin.css"><link rel="icon" href="/icon.svg" type="image/svg+xml"><script src="/expiry.js" defer></script></head>

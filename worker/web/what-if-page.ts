@@ -42,7 +42,7 @@ export function whatIfPage(day: JudgedDay, answered: WhatIf, options: WhatIfPage
   const verdict = expired ? 'Expired' : answered.kind === 'judged' ? capital(verdictPhrase(answered.hour.verdict)) : 'Cannot be judged';
   return layout({
     title: `${day.demo ? `${INVENTED}: ` : ''}${verdict} with own numbers, ${name} - Dawnmargin`, description: `What if: one hour at ${name} judged with own numbers.`,
-    body: html`<article class="site"><div class="margin"><h1>${name}</h1><p class="aside">${dateName(day.localDate)}<br>What if<br>${plainText(day.wingName)}<br>${plainText(day.sheetName)}</p></div>
+    body: html`<article class="site"><div class="margin"><h1>${name}</h1><p class="aside"><span>${dateName(day.localDate)}</span> <span>What if</span> <span>${plainText(day.wingName)}</span> <span>${plainText(day.sheetName)}</span></p></div>
 <div class="body">${said}<section aria-labelledby="if-h"><h2 id="if-h">What if</h2>${whatIfForm(day, options)}</section><p class="back"><a href="${back}">Back to the day</a></p></div></article>`,
     demo: day.demo, credits: creditsOf([day]), keep: address('', unitsPart(reader.units)),
   });

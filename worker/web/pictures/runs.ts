@@ -19,13 +19,18 @@ export function runsOf(hours: readonly JudgedHour[]): Run[] {
   return runs;
 }
 
+/** So many hours that a phone has no room for a word under two of them. */
+function crowd(day: JudgedDay): string {
+  return day.hours.length > 11 ? ' many' : '';
+}
+
 export function verdictRuns(day: JudgedDay): Html {
-  return html`<ol class="runs">${runsOf(day.hours).map(({ first, last, count }) => html`<li class="s${count} v-${first.verdict}"><span class="off">${hourSpan({ from: first.validAt, to: last.validAt }, day.timeZone)} </span>${verdictPhrase(first.verdict)}</li>`)}</ol>`;
+  return html`<ol class="runs${crowd(day)}">${runsOf(day.hours).map(({ first, last, count }) => html`<li class="s${count} v-${first.verdict}"><span class="off">${hourSpan({ from: first.validAt, to: last.validAt }, day.timeZone)} </span>${verdictPhrase(first.verdict)}</li>`)}</ol>`;
 }
 
 /** The hours as links that choose one; the chosen one is marked. */
 export function hourLinks(day: JudgedDay, options: { readonly chosen: string; readonly href: (hour: JudgedHour) => string }): Html {
-  return html`<ol class="hours">${day.hours.map((hour) => {
+  return html`<ol class="hours${crowd(day)}">${day.hours.map((hour) => {
     const name = hourName(hour.validAt, day.timeZone);
     const label = `${name}, ${verdictPhrase(hour.verdict)}`;
     const current = hour.validAt === options.chosen ? html` aria-current="true"` : null;
