@@ -8,8 +8,8 @@ import type { Place } from '../service-set.ts';
 import type { BriefHead, PairDay } from '../store/brief.ts';
 import type { OutboxRow } from '../store/outbox.ts';
 
-/** Kilometres an hour and metres, until subscribers can choose. */
-export const READER: Reader = { units: { speed: 'km/h', height: 'm' } };
+/** Metres a second and metres, as on the pages, for whoever has not chosen. */
+export const READER: Reader = { units: { speed: 'm/s', height: 'm' } };
 
 /** Which briefs a message is made of, fixed before its first attempt. */
 export interface Content {
