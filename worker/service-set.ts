@@ -29,6 +29,7 @@ import type { SourceCacheStore } from './store/source-cache.ts';
 import type { SourceGroundStore } from './store/source-ground.ts';
 import type { SubscriptionStore } from './store/subscription.ts';
 import type { TerminalStore } from './store/terminal.ts';
+import type { WindowStateStore } from './store/window-state.ts';
 import type { StoredWing, WingStore } from './store/wing.ts';
 
 /** What one invocation works with. Nothing in the worker reaches the world, the clock or chance but through this. */
@@ -92,6 +93,7 @@ export interface Stores {
   readonly runWork: RunWorkStore;
   readonly breaker: BreakerStore;
   readonly sourceCache: SourceCacheStore;
+  readonly windowState: WindowStateStore;
   readonly terminal: TerminalStore;
   readonly log: LogStore;
 }

@@ -30,6 +30,7 @@ import { sourceCacheStore } from './store/source-cache.ts';
 import { sourceGroundStore } from './store/source-ground.ts';
 import { subscriptionStore } from './store/subscription.ts';
 import { terminalStore } from './store/terminal.ts';
+import { windowStateStore } from './store/window-state.ts';
 import { wingStore } from './store/wing.ts';
 import { waker } from './wake.ts';
 
@@ -128,6 +129,7 @@ function storesOn(db: Database): Stores {
     runWork: runWorkStore(db),
     breaker: breakerStore(db),
     sourceCache: sourceCacheStore(db),
+    windowState: windowStateStore(db),
     terminal: terminalStore(db),
     log: logStore(db),
   };

@@ -7,6 +7,8 @@ export interface Message {
   /** Stable: every attempt at one message has the same. */
   readonly id: string;
   readonly kind: MessageKind;
+  /** Of messages with the same, a later one takes the place of an earlier; its own id where there is none. */
+  readonly thread?: string;
   readonly title: string;
   readonly text: string;
   readonly issuedAtMs: number;

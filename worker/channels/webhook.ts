@@ -113,10 +113,12 @@ function iso(epochMs: number): string {
   return new Date(epochMs).toISOString();
 }
 
+const TYPES: Readonly<Record<Message['kind'], string>> = { brief: 'brief.issued', change: 'brief.changed', missed: 'brief.missed', test: 'service.test' };
+
 /** The body: the same bytes at every attempt. */
 function payload(message: Message): unknown {
   return {
-    type: message.kind === 'brief' ? 'brief.issued' : 'brief.missed',
+    type: TYPES[message.kind],
     timestamp: iso(message.issuedAtMs),
     data: {
       id: message.id,

@@ -3,7 +3,8 @@ import type { Services } from '../service-set.ts';
 import type { BriefHead, BriefKey } from '../store/brief.ts';
 import type { StoredChannel } from '../store/channel.ts';
 import type { OutboxRow } from '../store/outbox.ts';
-import { briefMessage, contentOf, missedMessage, pairDayKey, type Content, type MessageParts } from './message.ts';
+import { contentOf, pairDayKey, type Content, type MessageParts } from './message.ts';
+import { noticeMessage } from './notice-message.ts';
 import { placesOf } from './places.ts';
 import { judgedDate } from './times.ts';
 
@@ -64,7 +65,7 @@ function byKey(heads: readonly BriefHead[]): ReadonlyMap<string, BriefHead> {
 }
 
 function messageOf(parts: MessageParts): Message | null {
-  if (parts.row.kind === 'brief') return briefMessage(parts);
-  const demo = parts.content.briefs.some((brief) => parts.places.get(brief.siteId)?.demo === true);
-  return missedMessage(parts.row, { demo, nowMs: parts.content.issuedAtMs });
+  const message = noticeMessage(parts);
+  // A test is of no day; everything else of a subscriber's day takes the place of what came before.
+  return message === null || parts.row.kind === 'test' ? message : { ...message, thread: `${parts.row.subscriptionId}|${parts.row.dueLocalDate}` };
 }

@@ -3,6 +3,8 @@ import type { Services } from '../service-set.ts';
 import { SCHEMA_VERSION } from '../store/meta.ts';
 import { BOARD_MINUTE, planBoard } from './board.ts';
 import { planDue } from './due.ts';
+import { noticeChanges } from './notices.ts';
+import { isRecheckDue, planRecheck } from './recheck.ts';
 import { sweep, tidy } from './sweep.ts';
 import { USUAL_PATIENCE, type Patience } from './times.ts';
 
@@ -27,6 +29,8 @@ export async function tick(services: Services, scheduledAtMs: number, patience: 
   }
   await planDue(services, nowMs, patience);
   if (new Date(scheduledAtMs).getUTCMinutes() === BOARD_MINUTE) await planBoard(services, nowMs);
+  if (isRecheckDue(nowMs, Number(meta.get('last-recheck') ?? 0))) await planRecheck(services, nowMs, patience);
+  if (Number(meta.get('last-assess') ?? 0) >= Number(meta.get('last-notice') ?? 0) - MINUTE_MS) await noticeChanges(services, nowMs, Number(meta.get('last-notice') ?? 0));
   await sweep(services, nowMs);
   await tidy(services, nowMs, Number(meta.get('last-tidy') ?? 0));
   const done = stores.meta.setting('last-tick', String(nowMs));

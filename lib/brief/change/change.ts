@@ -4,11 +4,7 @@
  * its whole close band to spare, inside a window: a number that swings about its limit is told once and then rests.
  */
 import { epochOf, HOUR_MS } from '../../time.ts';
-import type { JudgedDay } from '../day.ts';
-import { packed, saidOf, unpacked, type Said, type Told } from './told.ts';
-
-/** A judgement as far as a change is concerned. */
-export type Judgement = Pick<JudgedDay, 'hours' | 'windows' | 'sheetVersion'>;
+import { packed, saidOf, unpacked, type Judgement, type Said, type Told } from './told.ts';
 
 export interface DayChange {
   /** Hours that got worse, each with what it is now. */

@@ -1,6 +1,6 @@
 import { HOUR_MS, epochOf, isoUtc } from '../../time.ts';
 import type { Verdict } from '../../margin/ids.ts';
-import type { JudgedDay } from '../day.ts';
+import type { JudgedDay, JudgedHour } from '../day.ts';
 
 /**
  * What somebody was told of a day, an hour a letter: open (within or close), unknown, beyond. Kept with a message, so that
@@ -15,6 +15,11 @@ export interface Told {
   readonly hours: string;
 }
 
+/** A judgement as far as a change is concerned. */
+export interface Judgement extends Pick<JudgedDay, 'windows' | 'sheetVersion'> {
+  readonly hours: readonly Pick<JudgedHour, 'validAt' | 'verdict'>[];
+}
+
 export type Said = 'open' | 'unknown' | 'beyond';
 
 const LETTER: Readonly<Record<Said, string>> = { open: 'o', unknown: 'u', beyond: 'b' };
@@ -24,7 +29,7 @@ export function saidOf(verdict: Verdict): Said {
 }
 
 /** What a reader of this day has read. */
-export function toldOf(day: Pick<JudgedDay, 'hours' | 'sheetVersion'>): Told {
+export function toldOf(day: Pick<Judgement, 'hours' | 'sheetVersion'>): Told {
   return packed(new Map(day.hours.map((hour) => [hour.validAt, saidOf(hour.verdict)])), day.sheetVersion);
 }
 

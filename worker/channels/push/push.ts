@@ -87,7 +87,7 @@ async function post(message: Message, target: PushTarget, { nowMs, timeoutMs, un
 
 /** At most 32 characters (RFC 8030, 5.4): a repeat takes the place of the first, in the service and on the screen. */
 async function topicOf(message: Message): Promise<string> {
-  return base64Url(await sha256(message.id)).slice(0, 32);
+  return base64Url(await sha256(message.thread ?? message.id)).slice(0, 32);
 }
 
 function outcomeOf(response: Response, nowMs: number): SendOutcome | 'too-large' | 'quarrel' {
