@@ -7,6 +7,9 @@ import { blockReason, blockSentence, groupName, ifLostSentence, leftOutSentence,
 import { localDateTime, epochOf } from '../../../lib/time.ts';
 import { html, type Html } from '../html.ts';
 
+/** Blocks that fit on a sheet of A4 in the larger print. */
+const MOST_ROOMY = 8;
+
 export interface PlanViewOptions {
   readonly reader: Reader;
   readonly notices: readonly PlanNotice[];
@@ -15,9 +18,11 @@ export interface PlanViewOptions {
 }
 
 export function planView(plan: DayPlan, { reader, notices, link }: PlanViewOptions): Html {
-  return html`<section class="plan" data-valid-until="${plan.validUntil ?? plan.asOf ?? ''}" aria-label="The plan">
+  const isDense = plan.groups.reduce((sum, { blocks }) => sum + Math.max(1, blocks.length), 0) > MOST_ROOMY;
+  return html`<section class="plan${isDense ? ' dense' : ''}" data-valid-until="${plan.validUntil ?? plan.asOf ?? ''}" aria-label="The plan">
 ${notices.length === 0 ? null : html`<section class="cautions" aria-labelledby="turned-h"><h2 id="turned-h">Turned since this plan was made</h2><ul>${notices.map((notice) => html`<li>${noticeSentence(notice, plan, reader)}</li>`)}</ul></section>`}
 <p class="day">${plan.demo ? html`<span class="tag">Invented weather.</span> ` : null}${planSentence(plan)}</p>
+<p class="hint">Spares of unlike margins are compared in close bands: 0.5 m/s, 30 m, 5°, 15 minutes and their like.</p>
 ${plan.groups.map((group) => groupEntry(group, plan, reader))}
 <p class="plan-next">${nextBestSentence(plan)}</p>
 ${plan.ifLost.length === 0 ? null : html`<details class="plan-lose"><summary>When an hour is lost</summary><ul>${plan.ifLost.map((lost) => html`<li>${ifLostSentence(lost, plan)}</li>`)}</ul></details>`}
@@ -28,7 +33,7 @@ ${link === null ? null : html`<p class="back"><a href="${link}/plan.csv" downloa
 function groupEntry(group: GroupPlan, plan: DayPlan, reader: Reader): Html {
   const day = plan.siteDays.find(({ wingKey, sheetId }) => wingKey === group.wing && sheetId === group.sheet);
   const body = group.leftOut !== null ? html`<p class="plan-none">${leftOutSentence(group, plan, reader)}</p>` : group.blocks.map((block) => blockEntry(block, plan, reader));
-  return html`<article class="entry"><div class="margin"><h2>${groupName(group.name)}</h2><p class="aside">${group.wing}<br>${plainText(day?.sheetName ?? group.sheet)}</p></div><div class="body">${body}</div></article>`;
+  return html`<article class="entry"><div class="margin"><h2>${groupName(group.name)}</h2><p class="aside">${group.wing} <br>${plainText(day?.sheetName ?? group.sheet)}</p></div><div class="body">${body}</div></article>`;
 }
 
 function blockEntry(block: Block, plan: DayPlan, reader: Reader): Html {
