@@ -16,9 +16,12 @@ export interface FailedAttempt {
   readonly random: number;
 }
 
-/** Full jitter: anywhere between at once and the whole wait, so that what failed together does not come back together. */
+/**
+ * Full jitter: anywhere between at once and the whole wait, so that what failed together does not come back together. A
+ * receiver that says when to come back is not given up for being busy, however often: only time ends that.
+ */
 export function nextAttempt({ nowMs, attempts, validUntilMs, afterMs, random }: FailedAttempt): NextAttempt {
-  const waitMs = WAITS_MS[attempts - 1];
+  const waitMs = WAITS_MS[attempts - 1] ?? (afterMs === null ? undefined : 0);
   if (waitMs === undefined) return { never: 'given up' };
   const atMs = nowMs + Math.max(Math.round(waitMs * random), afterMs ?? 0);
   return atMs < validUntilMs ? { atMs } : { never: 'too late' };
