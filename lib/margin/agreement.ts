@@ -33,8 +33,9 @@ export function ensembleHour(rules: readonly Rule[], members: readonly HourView[
   const statuses: Verdict[] = [];
   const spares = new Map<MarginId, { unit: MarginUnit; values: number[] }>();
   // What the first member's fields cannot feed the others' cannot either; what needs no field is no matter of agreement.
+  // A margin that does not apply to the first (its wind blows from no sector) may still apply to another.
   const [first] = members;
-  const fed = first === undefined ? [] : rules.filter((rule) => rule.needs(first).length > 0 && measure(rule, first)?.noVote === false);
+  const fed = first === undefined ? [] : rules.filter((rule) => rule.needs(first).length > 0 && measure(rule, first)?.noVote !== true);
   for (const view of members) {
     const margins = fed.flatMap((rule) => measure(rule, view) ?? []).filter(({ noVote }) => !noVote);
     statuses.push(worstVerdict(margins.map(({ status }) => status)));

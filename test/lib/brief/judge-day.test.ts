@@ -227,6 +227,16 @@ describe('the members of an ensemble', () => {
     for (const id of ['daylight', 'slope', 'arrival', 'thermal', 'rain'] as const) expect(about).not.toContain(id);
   });
 
+  test('are heard on a sector of the site whichever of them blows from it', () => {
+    const site = { ...ALPINE, sectors: [{ fromDeg: 262, toDeg: 320, maxMps: 1, why: 'trees' }] };
+    const members = [250, 251, 252, 285, 286].map((fromDeg) => without(source('member', { wind: [2, fromDeg] }), 'levels').members[0]!.map((hour, i) => ({ ...hour, wind10m: { speedMps: 2 + i / 100, fromDeg } })));
+    const ensembleOf = (order: readonly (readonly Conditions[])[]): Forecast => ({ ...source('many'), kind: 'ensemble', declares: ['wind10m'], members: order });
+    const shareOf = (order: readonly (readonly Conditions[])[], at = site) => marginOf(judgeDay(inputOf({ site: at, sheet: SHEET, forecasts: [source('one'), ensembleOf(order)] })), 'agreement').demand;
+    expect(shareOf(members, { ...ALPINE, sectors: [] as never })).toBe(1);
+    expect(shareOf(members)).toBeCloseTo(0.6, 9);
+    expect(shareOf([...members].reverse())).toBeCloseTo(0.6, 9);
+  });
+
   test('show the median and the spare that nine in ten exceed', () => {
     const spreads = hourAt(agreementOf(2), NOON).ensemble?.spreads ?? [];
     const gust = spreads.find(({ id }) => id === 'gust')!;
