@@ -53,7 +53,7 @@ export interface CheckedHour {
   /** The forecast gust lay below the mean and was raised to it. */
   readonly gustRaised: boolean;
   readonly nearGround: readonly (CheckedWind & { readonly heightAglM: number })[];
-  /** Rising; a level whose height is unknown lies half-way between its neighbours, its values NaN. */
+  /** Rising; a level whose height is unknown lies as high as it could, its values NaN. */
   readonly levels: readonly CheckedLevel[];
   readonly temperature2mC: number;
   readonly dewPoint2mC: number;
