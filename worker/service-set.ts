@@ -6,8 +6,10 @@ import type { LimitSheet } from '../lib/margin/sheet.ts';
 import type { Issue, Result } from '../lib/result.ts';
 import type { Site } from '../lib/site.ts';
 import type { Wing } from '../lib/wing/wing.ts';
-import type { Channel } from './channels/channel.ts';
+import type { ChannelChecks } from '../lib/config/subscription-channels.ts';
+import type { Address, Channel } from './channels/channel.ts';
 import type { Step } from './morning/job.ts';
+import type { Mailer } from './security/mailer.ts';
 import type { Settings } from './settings.ts';
 import type { Source } from './sources/source.ts';
 import type { BreakerStore } from './store/breaker.ts';
@@ -21,14 +23,19 @@ import type { OutboxStore } from './store/outbox.ts';
 import type { OutboxUpkeepStore } from './store/outbox-upkeep.ts';
 import type { PlanStore } from './store/plan.ts';
 import type { PublishedStore } from './store/published.ts';
+import type { RateStore } from './store/rate.ts';
 import type { RunStore } from './store/run.ts';
 import type { RunWorkStore } from './store/run-work.ts';
 import type { SheetStore, StoredSheet } from './store/sheet.ts';
+import type { SheetHistoryStore } from './store/sheet-history.ts';
+import type { SignupStore } from './store/signup.ts';
 import type { SiteStore, StoredSite } from './store/site.ts';
 import type { SourceCacheStore } from './store/source-cache.ts';
 import type { SourceGroundStore } from './store/source-ground.ts';
 import type { SubscriptionStore } from './store/subscription.ts';
+import type { SuppressionStore } from './store/suppression.ts';
 import type { TerminalStore } from './store/terminal.ts';
+import type { TokenStore } from './store/token.ts';
 import type { WindowStateStore } from './store/window-state.ts';
 import type { StoredWing, WingStore } from './store/wing.ts';
 
@@ -45,6 +52,9 @@ export interface Services {
   /** The sources to ask about a site, in the order of config. */
   readonly sourcesFor: (place: Place) => readonly Source[];
   readonly channels: Readonly<Record<string, Channel>>;
+  /** null where no mail is sent. */
+  readonly mailer: Mailer | null;
+  readonly addresses: Addresses;
   readonly read: Readers;
   readonly wingClasses: () => WingClasses;
   /** The limit sheets that ship: known by their id also before, or without, a row of theirs. */
@@ -59,6 +69,14 @@ export interface Clock {
 
 export interface IdSource {
   readonly next: () => string;
+}
+
+/** What may be written down as the target of a channel, and what its owner has to be told. */
+export interface Addresses extends ChannelChecks {
+  /** Whether the target of a browser has keys that can be encrypted for. */
+  readonly hasKeys: (target: string) => Promise<boolean>;
+  /** The signing secret of a webhook as its receiver is given it. */
+  readonly secretOf: (address: Address) => Promise<string | null>;
 }
 
 /** A site with what the table knows besides. */
@@ -96,4 +114,9 @@ export interface Stores {
   readonly windowState: WindowStateStore;
   readonly terminal: TerminalStore;
   readonly log: LogStore;
+  readonly signup: SignupStore;
+  readonly token: TokenStore;
+  readonly rate: RateStore;
+  readonly suppression: SuppressionStore;
+  readonly sheetHistory: SheetHistoryStore;
 }

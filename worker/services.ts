@@ -1,5 +1,9 @@
 import { judgeDay } from '../lib/brief/judge-day.ts';
 import { success, type Issue, type Result } from '../lib/result.ts';
+import { addressesOf } from './channels/addresses.ts';
+import { mailChannel } from './channels/mail.ts';
+import { bindingMailer } from './channels/mail-binding.ts';
+import { smtpMailer } from './channels/mail-smtp.ts';
 import { pushChannel } from './channels/push/push.ts';
 import { storedQuarrels } from './channels/push/quarrels.ts';
 import { vapid, type Authorize } from './channels/push/vapid.ts';
@@ -8,6 +12,7 @@ import { webhookChannel } from './channels/webhook.ts';
 import type { Job, Step } from './morning/job.ts';
 import { ownData, ownReaders } from './own-data.ts';
 import type { Clock, IdSource, Services, Stores } from './service-set.ts';
+import type { Mailer } from './security/mailer.ts';
 import { readSettings, type Env, type Settings } from './settings.ts';
 import { demoSources } from './sources/demo.ts';
 import { liveSources } from './sources/order.ts';
@@ -22,14 +27,19 @@ import { outboxStore } from './store/outbox.ts';
 import { outboxUpkeepStore } from './store/outbox-upkeep.ts';
 import { planStore } from './store/plan.ts';
 import { publishedStore } from './store/published.ts';
+import { rateStore } from './store/rate.ts';
 import { runStore } from './store/run.ts';
 import { runWorkStore } from './store/run-work.ts';
 import { sheetStore } from './store/sheet.ts';
+import { sheetHistoryStore } from './store/sheet-history.ts';
+import { signupStore } from './store/signup.ts';
 import { siteStore } from './store/site.ts';
 import { sourceCacheStore } from './store/source-cache.ts';
 import { sourceGroundStore } from './store/source-ground.ts';
 import { subscriptionStore } from './store/subscription.ts';
+import { suppressionStore } from './store/suppression.ts';
 import { terminalStore } from './store/terminal.ts';
+import { tokenStore } from './store/token.ts';
 import { windowStateStore } from './store/window-state.ts';
 import { wingStore } from './store/wing.ts';
 import { waker } from './wake.ts';
@@ -46,6 +56,7 @@ export interface World {
   readonly clock: Clock;
   readonly ids: IdSource;
   readonly random: () => number;
+  readonly mailer?: Mailer | null;
   /** How long database and queue are waited for. */
   readonly patienceMs?: number;
 }
@@ -63,11 +74,18 @@ export function createServices(env: Env): Result<Services, Issue[]> {
     clock: { nowMs: () => Date.now() },
     ids: { next: () => crypto.randomUUID() },
     random: () => Math.random(),
+    mailer: mailerOf(settings.value, env),
   }));
 }
 
+function mailerOf({ smtp, mailFrom }: Settings, env: Env): Mailer | null {
+  if (mailFrom === null) return null;
+  if (smtp !== null) return smtpMailer(smtp, mailFrom);
+  return env.MAIL === undefined ? null : bindingMailer(env.MAIL, mailFrom);
+}
+
 export function assemble(world: World, instead: Partial<Pick<Services, 'sourcesFor' | 'judge'>> = {}): Services {
-  const { settings, clock, ids, random } = world;
+  const { settings, clock, ids, random, mailer = null } = world;
   const stores = storesOn(database(world.db, { sleep: world.sleep, random, timeoutMs: world.patienceMs ?? PATIENCE_MS }));
   return {
     settings, clock, ids, random, stores,
@@ -78,9 +96,12 @@ export function assemble(world: World, instead: Partial<Pick<Services, 'sourcesF
     wake: waker(world.queues, world.patienceMs ?? PATIENCE_MS),
     sourcesFor: sourcesOf(world, stores),
     judge: judgeDay,
+    mailer,
+    addresses: addressesOf(settings),
     channels: {
       webhook: webhookChannel({ fetch: world.fetch, linkKey: settings.linkKey, local: settings.local, publicUrl: settings.publicUrl }),
       push: pushChannel({ fetch: world.fetch, authorize: authorizer(settings), local: settings.local, publicUrl: settings.publicUrl, quarrels: storedQuarrels(stores) }),
+      ...(mailer === null ? {} : { mail: mailChannel({ mailer, linkKey: settings.linkKey, publicUrl: settings.publicUrl, mailFrom: settings.mailFrom ?? '' }) }),
       ...(settings.local ? { terminal: terminalChannel(stores.terminal) } : {}),
     },
     ...instead,
@@ -132,5 +153,10 @@ function storesOn(db: Database): Stores {
     windowState: windowStateStore(db),
     terminal: terminalStore(db),
     log: logStore(db),
+    signup: signupStore(db),
+    token: tokenStore(db),
+    rate: rateStore(db),
+    suppression: suppressionStore(db),
+    sheetHistory: sheetHistoryStore(db),
   };
 }

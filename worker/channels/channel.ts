@@ -37,6 +37,9 @@ export interface Address {
   readonly state: 'unverified' | 'active' | 'dead';
   readonly secretVersion: number;
   readonly oldestSecretVersion: number;
+  /** What the links in a message are derived from. */
+  readonly subscriptionId?: string;
+  readonly linkVersion?: number;
 }
 
 export type SendOutcome =

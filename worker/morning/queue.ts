@@ -1,3 +1,4 @@
+import { confirmStep } from '../security/confirm.ts';
 import type { Services } from '../service-set.ts';
 import { assessStep } from './assess.ts';
 import { deliverStep } from './deliver.ts';
@@ -19,7 +20,7 @@ function work(services: Services, step: Step): Promise<boolean> {
   switch (step) {
     case 'fetch': return fetchStep(services);
     case 'assess': return assessStep(services);
-    case 'deliver': return deliverStep(services);
+    case 'deliver': return confirmStep(services).then(() => deliverStep(services));
   }
 }
 

@@ -5,10 +5,12 @@ import { planServices } from '../web/plan/plan-data.ts';
 import { api } from './api.ts';
 import { feeds } from './feeds.ts';
 import { health } from './health.ts';
+import { manageApi, managePages } from './manage.ts';
 import { local } from './local.ts';
 import { pages } from './pages.ts';
 import { planApi, planPages } from './plan.ts';
 import { problem } from './problem.ts';
+import { subscriptions } from './subscriptions.ts';
 
 /** The methods that the paths answer; any other is told so. */
 const METHODS: Readonly<Record<string, string>> = {
@@ -19,6 +21,12 @@ const METHODS: Readonly<Record<string, string>> = {
   '/plan': 'GET, HEAD, POST',
   '/plan/:token': 'GET, HEAD, POST',
   '/plan/:token/:file': 'GET, HEAD',
+  '/confirm/:token': 'GET, HEAD, POST',
+  '/manage/:token': 'GET, HEAD, POST',
+  '/subscribe': 'GET, HEAD, POST',
+  '/unsubscribe/:token': 'GET, HEAD, POST',
+  '/api/v1/subscriptions': 'POST',
+  '/api/v1/manage/:token': 'GET, HEAD, PUT, POST, DELETE',
   '/api/v1/assess': 'POST',
   '/api/v1/plan': 'POST',
   '/api/v1/sites': 'GET, HEAD',
@@ -30,10 +38,13 @@ export function app(services: Services): Hono {
   const hono = new Hono();
   hono.get('/healthz', () => health(services));
   hono.route('/api/v1/plan', planApi(planServices(services)));
+  hono.route('/api/v1/subscriptions', subscriptions(services));
+  hono.route('/api/v1/manage', manageApi(services));
   hono.route('/api/v1', api(services));
   hono.route('/feeds', feeds(services));
   if (services.settings.local) hono.route('/local', local(services));
   hono.route('/plan', planPages(planServices(services)));
+  hono.route('/', managePages(services));
   hono.route('/', pages(pageServices(services)));
   for (const [path, allow] of Object.entries(METHODS)) {
     hono.all(path, () => problem('wrong-method', { detail: `answered are ${allow}`, headers: { allow } }));

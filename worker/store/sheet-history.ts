@@ -1,5 +1,6 @@
 import type { SheetChange } from '../../lib/config/sheet-change.ts';
 import type { Database, Statement } from './database.ts';
+import type { StoredSheet } from './sheet.ts';
 
 /** What a version of a sheet changed against the one before it, and whether anything in it loosens. */
 export interface StoredSheetChange {
@@ -26,6 +27,15 @@ export function sheetHistoryStore(db: Database) {
       return {
         sql: 'INSERT OR REPLACE INTO sheet_change (sheet_id, version, against, changes, loosens, stored_at) VALUES (?, ?, ?, ?, ?, ?)',
         values: [change.sheetId, change.version, change.against, JSON.stringify(change.changes), change.changes.some(({ loosens }) => loosens) ? 1 : 0, change.storedAtMs],
+      };
+    },
+    /** Shipped sheets that have no row yet: a brief is held to a row. */
+    putNew(sheets: readonly StoredSheet[], nowMs: number): Statement {
+      return {
+        sql: `INSERT OR IGNORE INTO sheet (id, version, body, stored_at)
+          SELECT value ->> 'id', value ->> 'version', value ->> 'body', ?2 FROM json_each(?1)
+          WHERE NOT EXISTS (SELECT 1 FROM sheet AS s WHERE s.id = value ->> 'id')`,
+        values: [JSON.stringify(sheets), nowMs],
       };
     },
     async of(sheetId: string): Promise<StoredSheetChange[]> {

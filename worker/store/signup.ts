@@ -30,7 +30,8 @@ export function signupStore(db: Database) {
     add(signup: Signup, nowMs: number): Promise<number> {
       return db.write(
         `INSERT INTO signup (owner, id, address, body, mail_at, expires_at, stored_at) VALUES (?1, ?2, ?3, ?4, ?5, ?5 + ${UNCONFIRMED_MS}, ?5)
-          ON CONFLICT (owner) DO UPDATE SET mail_at = COALESCE(mail_at, ?5), attempts = 0, expires_at = ?5 + ${UNCONFIRMED_MS}
+          ON CONFLICT (owner) DO UPDATE SET mail_at = ?5, mailed_at = NULL, attempts = 0, expires_at = ?5 + ${UNCONFIRMED_MS},
+            address = ?3, id = CASE body WHEN '{}' THEN ?2 ELSE id END, body = CASE body WHEN '{}' THEN ?4 ELSE body END
           WHERE mailed_at <= ?5 - ${ASKED_AGAIN_MS}`,
         signup.owner, signup.id, signup.address, signup.body, nowMs,
       );
@@ -57,6 +58,14 @@ export function signupStore(db: Database) {
           mailed_at = CASE WHEN attempts < ${MOST_ATTEMPTS} THEN mailed_at ELSE ?2 END WHERE owner = ?1`,
         values: [owner, nowMs],
       };
+    },
+    /** Nothing is to be confirmed here: only that the address was written to is kept, for its day. */
+    blank(owner: string): Statement {
+      return { sql: `UPDATE signup SET address = '', body = '{}', id = id || '-done' WHERE owner = ? AND id NOT LIKE '%-done'`, values: [owner] };
+    },
+    async waiting(nowMs: number): Promise<boolean> {
+      const rows = await db.read('SELECT 1 FROM signup WHERE mail_at <= ?1 AND (lease_until IS NULL OR lease_until <= ?1) LIMIT 1', nowMs);
+      return rows.length > 0;
     },
     async byId(id: string): Promise<Signup | null> {
       const [row] = await db.read<Signup>('SELECT owner, id, address, body FROM signup WHERE id = ?', id);

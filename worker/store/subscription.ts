@@ -93,6 +93,10 @@ export function subscriptionStore(db: Database) {
     resumeDue(nowMs: number): Statement {
       return { sql: `UPDATE subscription SET state = 'active', resume_at = NULL WHERE state = 'paused' AND resume_at <= ?1 + ${RESUME_AHEAD_MS}`, values: [nowMs] };
     },
+    /** Ends every link that was printed so far. Run twice it raises the version once. */
+    renewLinks(id: string, version: number): Statement {
+      return { sql: 'UPDATE subscription SET link_version = ?2 + 1 WHERE id = ?1 AND link_version = ?2', values: [id, version] };
+    },
     /** Everything that was kept of somebody, at once. Briefs stay: they are of a site and name nobody. */
     erase(id: string): Statement[] {
       return [
