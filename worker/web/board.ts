@@ -34,7 +34,7 @@ function entry(day: JudgedDay, options: { readonly reader: Reader; readonly now:
   }
   const cautions = cautionItems(day.cautions, day, reader);
   const picture = day.hours.length === 0 ? null : html`<div class="small">${columnsPicture(day, reader, { size: SMALL, id })}${hourScale(day)}</div>`;
-  return html`<article class="entry" data-valid-until="${day.validUntil}"><div class="margin">${siteHead(day, reader)}</div><div class="say">
+  return html`<article class="entry" data-valid-until="${day.validUntil}" data-issued-at="${day.issuedAt}"><div class="margin">${siteHead(day, reader)}</div><div class="say">
 ${dayLine(day, reader)}${windowLines(day)}</div>${picture}
 ${cautions.length === 0 ? null : html`<div class="heed"><h3 id="${id}-h">Cautions</h3> <ul class="cautions" aria-labelledby="${id}-h">${cautions}</ul></div>`}
 <div class="notes">${day.localRules === null ? null : html`<p class="rules">${plainText(day.localRules, 300)}</p>`}

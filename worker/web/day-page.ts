@@ -76,7 +76,7 @@ function marginalia(day: JudgedDay): Html {
 function judged(day: JudgedDay, options: DayPageOptions): Html {
   const { reader } = options;
   const hour = chosenHour(day, options.hour);
-  return html`<div class="judged" data-valid-until="${day.validUntil}">
+  return html`<div class="judged" data-valid-until="${day.validUntil}" data-issued-at="${day.issuedAt}">
 ${dayLine(day, reader)}${windowLines(day)}<p class="ages">${tied(provenance(day))}</p>
 ${hour === null ? null : columnsSection(day, hour, reader)}${cautionsSection(day, reader)}
 ${day.localRules === null ? null : html`<p class="rules"><strong>Local rules:</strong> ${plainText(day.localRules, 300)}</p>`}

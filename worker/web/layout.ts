@@ -30,7 +30,8 @@ export function layout(page: Page): string {
   const demo = page.demo ? html`<p class="invented"><strong>Invented weather.</strong> A demonstration, about no real place or day.</p>` : null;
   return `<!doctype html>\n${html`<html lang="en"><head><meta charset="utf-8"><meta name="viewport" content="width=device-width, initial-scale=1">
 <title>${page.title}</title><meta name="description" content="${page.description}"><meta name="color-scheme" content="light dark">
-<link rel="stylesheet" href="/dawnmargin.css"><link rel="icon" href="/icon.svg" type="image/svg+xml"><script src="/expiry.js" defer></script></head>
+<meta name="theme-color" content="#f7f2e6" media="(prefers-color-scheme: light)"><meta name="theme-color" content="#14171c" media="(prefers-color-scheme: dark)">
+<link rel="stylesheet" href="/dawnmargin.css"><link rel="icon" href="/icon.svg" type="image/svg+xml"><link rel="apple-touch-icon" href="/icon-192.png"><link rel="manifest" href="/dawnmargin.webmanifest"><script src="/expiry.js" defer></script></head>
 <body data-expired="${EXPIRED}"><a class="skip" href="#main">To the content</a>${HATCHES}
 <header class="mast"><a class="name" href="/${page.keep}"><svg width="22" height="22" viewBox="0 0 22 22" aria-hidden="true"><path class="slate-fill" d="M3 2h7v7H3z"/><path class="plum-fill" d="M3 9h7v4H3z"/><path class="edge" d="M3 2h7v18H3z"/><path class="line" d="M0 20.5h22M14 2v18"/></svg>Dawnmargin</a></header>
 <main id="main">${demo}${page.body}</main>

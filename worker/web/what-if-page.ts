@@ -23,7 +23,7 @@ function answer(day: JudgedDay, answered: Extract<WhatIf, { kind: 'judged' }>, o
   const causes = tightestFirst(margins.filter(({ id, status }) => status === hour.verdict && hour.causes.includes(id))).slice(0, MOST_CAUSES);
   const vote = day.sources.find((candidate) => candidate.source === source);
   const detail = { workings: hour.margins.map(({ id, working }) => ({ id, terms: working })), sun: null, given: null, glide: null, ladder: null, tow: null };
-  return html`<div data-valid-until="${day.validUntil}"><p class="day">${day.demo ? html`<span class="tag">${INVENTED}.</span> ` : null}${capital(verdictPhrase(hour.verdict))} at ${hourName(validAt, day.timeZone)}, with your numbers. ${causes.map((margin) => `${sentence(causeClause(margin, reader))} `)}</p>
+  return html`<div data-valid-until="${day.validUntil}" data-issued-at="${day.issuedAt}"><p class="day">${day.demo ? html`<span class="tag">${INVENTED}.</span> ` : null}${capital(verdictPhrase(hour.verdict))} at ${hourName(validAt, day.timeZone)}, with your numbers. ${causes.map((margin) => `${sentence(causeClause(margin, reader))} `)}</p>
 <p class="ages">Your numbers where you gave them, ${vote === undefined ? sourceName(source) : votePhrase(vote)} where you did not; one source only, nothing stored, winds higher up changed as much as the wind at 10 m.</p>
 <section><h2>Margins, tightest first</h2><p class="hint">Open a margin for its working.</p>${marginsList({ ...emptyHour(validAt), verdict: hour.verdict, causes: hour.causes, margins }, detail, reader)}</section></div>`;
 }

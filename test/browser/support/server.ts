@@ -5,7 +5,7 @@ import path from 'node:path';
 import type { Hono } from 'hono';
 
 const assets = path.resolve(import.meta.dirname, '../../../worker/assets');
-const TYPES: Readonly<Record<string, string>> = { '.css': 'text/css', '.js': 'text/javascript', '.svg': 'image/svg+xml', '.webmanifest': 'application/manifest+json' };
+const TYPES: Readonly<Record<string, string>> = { '.css': 'text/css', '.js': 'text/javascript', '.svg': 'image/svg+xml', '.webmanifest': 'application/manifest+json', '.html': 'text/html', '.png': 'image/png' };
 
 export interface Served {
   readonly origin: string;

@@ -1,0 +1,118 @@
+// Pushes delivered to the real service worker through the DevTools protocol: old, late, out of order, twice, unreadable.
+import type { Browser, BrowserContext, CDPSession, Page } from 'playwright-core';
+import { afterAll, beforeAll, beforeEach, afterEach, expect, test } from 'vitest';
+import { pages } from '../../worker/routes/pages.ts';
+import { dayOf } from '../support/days.ts';
+import { fixtureServices } from '../support/page-fixtures.ts';
+import { launch } from './support/chromium.ts';
+import { serve, type Served } from './support/server.ts';
+
+let browser: Browser;
+let site: Served;
+let context: BrowserContext;
+let page: Page;
+let cdp: CDPSession;
+let registrationId: string;
+
+const at = (minutes: number) => new Date(Date.now() + minutes * 60_000).toISOString();
+const brief = (part: Record<string, unknown>) => ({ id: 'm1', kind: 'brief', title: 'Beyond a limit all day, Kestrel Edge', body: 'Beyond a limit all day.', url: `${site.origin}/sites/kestrel-edge`, issuedAt: at(-5), validUntil: at(600), thread: 't', ...part });
+
+interface Shown {
+  readonly title: string;
+  readonly body: string;
+  readonly tag: string;
+  readonly silent: boolean | null;
+}
+
+const shown = (): Promise<Shown[]> => page.evaluate(async () => {
+  const registration = await navigator.serviceWorker.ready;
+  return (await registration.getNotifications()).map(({ title, body, tag, silent }) => ({ title, body, tag, silent }));
+});
+
+async function push(data: unknown): Promise<void> {
+  await cdp.send('ServiceWorker.deliverPushMessage', { origin: `${site.origin}/`, registrationId, data: typeof data === 'string' ? data : JSON.stringify(data) });
+}
+
+const settled = (check: (list: Shown[]) => void) => expect.poll(async () => { try { check(await shown()); return 'as expected'; } catch (error) { return String(error); } }, { timeout: 20_000 }).toBe('as expected');
+
+beforeAll(async () => {
+  const hours = dayOf('wwbb');
+  const day = { ...hours, siteId: 'kestrel-edge', demo: false, issuedAt: at(-10), validUntil: at(600) };
+  [browser, site] = await Promise.all([launch(), serve(pages(fixtureServices({ 'kestrel-edge': day }, new Date())))]);
+});
+
+afterAll(async () => {
+  await browser.close();
+  await site.close();
+});
+
+beforeEach(async () => {
+  context = await browser.newContext({ viewport: { width: 390, height: 844 } });
+  await context.grantPermissions(['notifications'], { origin: site.origin });
+  page = await context.newPage();
+  cdp = await context.newCDPSession(page);
+  const seen: string[] = [];
+  cdp.on('ServiceWorker.workerRegistrationUpdated', ({ registrations }) => seen.push(...registrations.map((registration) => registration.registrationId)));
+  await page.goto(`${site.origin}/sites/kestrel-edge`);
+  await cdp.send('ServiceWorker.enable');
+  // Until it is activated in full, the browser drops what is delivered to it.
+  await expect.poll(() => page.evaluate(async () => (await navigator.serviceWorker.ready).active?.state), { timeout: 20_000 }).toBe('activated');
+  await expect.poll(() => seen.length, { timeout: 20_000 }).toBeGreaterThan(0);
+  registrationId = seen[0] ?? '';
+});
+
+afterEach(() => context.close());
+
+test('a push is shown with its times; a newer one of its thread takes its place, and turns the open page into expired', async () => {
+  await push(brief({}));
+  await settled((list) => { expect(list).toHaveLength(1); expect(list[0]?.title).toBe('Beyond a limit all day, Kestrel Edge'); expect(list[0]?.body).toMatch(/^As of .*, until .*\. Beyond a limit all day\.$/); });
+  await push(brief({ id: 'm2', issuedAt: at(-1), title: 'Cannot say all day, Kestrel Edge', body: 'Cannot say.' }));
+  await settled((list) => expect(list.map(({ title }) => title)).toEqual(['Cannot say all day, Kestrel Edge']));
+  await expect.poll(() => page.locator('main').innerText()).toContain('Expired: a newer brief has come');
+  expect(await page.locator('body').innerText()).not.toMatch(/within limits|close to a limit|beyond a limit|cannot say/i);
+  expect(await page.title()).toMatch(/^Expired/);
+});
+
+test('an older one that comes after a newer one is not shown, even when the newer was wiped away', async () => {
+  await push(brief({ id: 'new', issuedAt: at(-1), title: 'Cannot say all day, Kestrel Edge' }));
+  await settled((list) => expect(list).toHaveLength(1));
+  await page.evaluate(async () => { for (const notification of await (await navigator.serviceWorker.ready).getNotifications()) notification.close(); });
+  await settled((list) => expect(list).toHaveLength(0));
+  await push(brief({ id: 'old', issuedAt: at(-50), title: 'Within limits, Kestrel Edge', body: 'Within limits.' }));
+  await settled((list) => expect(list).toMatchObject([{ title: 'Cannot say all day, Kestrel Edge', silent: true }]));
+});
+
+test('a duplicate is one notification, and a quiet one', async () => {
+  const same = brief({});
+  await push(same);
+  await push(same);
+  await settled((list) => expect(list).toMatchObject([{ title: same.title, silent: true }]));
+});
+
+test('one that comes after its time says expired, without a verdict', async () => {
+  await push(brief({ title: 'Within limits, Kestrel Edge', issuedAt: at(-900), validUntil: at(-300) }));
+  await settled((list) => { expect(list).toMatchObject([{ title: 'Expired' }]); expect(list[0]?.body).not.toMatch(/within|close to|beyond/i); });
+});
+
+test('one without times, or that cannot be read, shows no verdict', async () => {
+  await push('not JSON');
+  await push(brief({ thread: 'u', validUntil: null, title: 'Within limits, Kestrel Edge' }));
+  await settled((list) => { expect(list.map(({ title }) => title).sort()).toEqual(['Cannot say: a message came that cannot be read', 'Expired']); });
+});
+
+test('a notification goes at its valid-until with the next event, and the page at its own', async () => {
+  await push(brief({ validUntil: new Date(Date.now() + 2500).toISOString() }));
+  await settled((list) => expect(list).toHaveLength(1));
+  await page.waitForTimeout(2600);
+  await page.evaluate(() => { navigator.serviceWorker.controller?.postMessage('expire'); });
+  await settled((list) => expect(list).toHaveLength(0));
+});
+
+test('without a connection there is a page that says so, and no old verdict', async () => {
+  await expect.poll(() => page.evaluate(() => navigator.serviceWorker.controller !== null)).toBe(true);
+  await context.setOffline(true);
+  await page.goto(`${site.origin}/`).catch(() => undefined);
+  const text = await page.locator('body').innerText();
+  expect(text).toContain('No connection');
+  expect(text).not.toMatch(/within limits|close to a limit|beyond a limit/i);
+});

@@ -1,0 +1,128 @@
+// The service worker: shows a push, never an old one as current; keeps no page, so that it can never show an old verdict.
+const STATE = 'dawnmargin-pushes';
+const SHELL = 'dawnmargin-shell-1';
+const FILES = ['/offline.html', '/dawnmargin.css', '/icon.svg'];
+const EXPIRED = { title: 'Expired', body: 'A brief has passed its time. Look at the board for what holds now.' };
+
+self.addEventListener('install', (event) => {
+  event.waitUntil(caches.open(SHELL).then((cache) => cache.addAll(FILES.map((file) => new Request(file, { cache: 'reload' })))).then(() => self.skipWaiting()));
+});
+
+self.addEventListener('activate', (event) => {
+  event.waitUntil((async () => {
+    for (const name of await caches.keys()) if (name !== SHELL && name !== STATE) await caches.delete(name);
+    await self.clients.claim();
+    await expire();
+  })());
+});
+
+/** Pages come from the network or not at all; without it there is a page that says so. */
+self.addEventListener('fetch', (event) => {
+  const { request } = event;
+  if (request.method !== 'GET') return;
+  if (request.mode === 'navigate') {
+    event.respondWith(fetch(request).catch(async () => (await caches.match('/offline.html')) ?? Response.error()));
+    event.waitUntil(Promise.all([expire(), renew()]));
+  } else if (FILES.includes(new URL(request.url).pathname)) {
+    event.respondWith(fetch(request).catch(async () => (await caches.match(request)) ?? Response.error()));
+  }
+});
+
+// What the newest brief of a thread was, kept beyond its notification: it may have been wiped away before an older one comes.
+const key = (name) => new Request(`/push-state/${encodeURIComponent(name)}`);
+
+async function recall(name) {
+  const kept = await (await caches.open(STATE)).match(key(name));
+  return kept === undefined ? null : kept.json().catch(() => null);
+}
+
+async function keep(name, value) {
+  await (await caches.open(STATE)).put(key(name), new Response(JSON.stringify(value)));
+}
+
+const instant = (text) => (typeof text === 'string' ? Date.parse(text) : NaN);
+/** Without a time until which it holds, nothing holds. */
+const isPast = (brief) => !(instant(brief.validUntil) > Date.now());
+const clock = (text) => new Date(text).toLocaleTimeString([], { hour: '2-digit', minute: '2-digit' });
+
+function read(event) {
+  try {
+    const value = event.data.json();
+    return typeof value === 'object' && value !== null && typeof value.title === 'string' && !Number.isNaN(instant(value.issuedAt)) ? value : null;
+  } catch {
+    return null;
+  }
+}
+
+// One after the other: two that come at once would each find no newer one.
+let line = Promise.resolve();
+
+self.addEventListener('push', (event) => {
+  const push = read(event);
+  line = line.catch(() => undefined).then(() => arrived(push));
+  event.waitUntil(line);
+});
+
+async function arrived(push) {
+  await expire();
+  if (push === null) return show({ ...EXPIRED, tag: 'unreadable', title: 'Cannot say: a message came that cannot be read', silent: true });
+  const tag = push.kind === 'test' ? 'test' : `brief ${push.thread ?? ''}`;
+  const newest = await recall(tag);
+  const isNew = newest === null || instant(push.issuedAt) > instant(newest.issuedAt);
+  const current = isNew ? push : newest;
+  if (isNew) await keep(tag, push);
+  // Each push has to show something; one that is late, old or a repeat shows quietly what holds, or that nothing does.
+  if (isPast(current)) return show({ ...EXPIRED, tag, silent: true, current });
+  await show({ title: current.title, body: `As of ${clock(current.issuedAt)}, until ${clock(current.validUntil)}. ${current.body ?? ''}`, tag, silent: !isNew, current });
+  if (isNew && push.kind !== 'test') for (const page of await self.clients.matchAll({ includeUncontrolled: true })) page.postMessage({ newer: push.issuedAt });
+}
+
+function show({ title, body, tag, silent, current = {} }) {
+  const { url = '/', validUntil = null, issuedAt = null, id = null } = current;
+  return self.registration.showNotification(title, {
+    body, tag, silent, renotify: !silent, icon: '/icon-192.png', badge: '/badge.png', data: { url, validUntil, issuedAt, id },
+    ...(issuedAt === null ? {} : { timestamp: instant(issuedAt) }),
+  });
+}
+
+/** Takes away every notification whose time has passed, and forgets what has long passed. */
+async function expire() {
+  for (const shown of await self.registration.getNotifications()) if (shown.data?.validUntil && isPast(shown.data)) shown.close();
+  const cache = await caches.open(STATE);
+  for (const request of await cache.keys()) {
+    const kept = await (await cache.match(request))?.json().catch(() => null);
+    if (kept?.validUntil && instant(kept.validUntil) < Date.now() - 2 * 86_400_000) await cache.delete(request);
+  }
+}
+
+self.addEventListener('message', (event) => { if (event.data === 'expire') event.waitUntil(expire()); });
+
+self.addEventListener('notificationclick', (event) => {
+  event.notification.close();
+  const asked = new URL(event.notification.data?.url ?? '/', self.location.origin);
+  const url = asked.origin === self.location.origin ? asked.href : self.location.origin;
+  event.waitUntil((async () => {
+    const pages = await self.clients.matchAll({ type: 'window' });
+    const open = pages.find((page) => page.url === url);
+    // An open page may be old: it is loaded anew.
+    if (open !== undefined) await (await open.focus()).navigate(url);
+    else await self.clients.openWindow(url);
+  })());
+});
+
+/** The browser has changed its address with the push service: the new one is told, now or at the next visit. */
+self.addEventListener('pushsubscriptionchange', (event) => event.waitUntil((async () => {
+  const old = event.oldSubscription?.toJSON() ?? null;
+  const options = event.oldSubscription?.options;
+  const fresh = event.newSubscription ?? (options === undefined ? null : await self.registration.pushManager.subscribe({ userVisibleOnly: true, applicationServerKey: options.applicationServerKey }));
+  if (old === null || fresh === null) return;
+  await keep('renew', { old, fresh: fresh.toJSON() });
+  await renew();
+})()));
+
+async function renew() {
+  const waiting = await recall('renew');
+  if (waiting === null) return;
+  const answer = await fetch('/push/renew', { method: 'POST', headers: { 'content-type': 'application/json' }, body: JSON.stringify(waiting) }).catch(() => null);
+  if (answer !== null && answer.status < 500 && answer.status !== 429) await (await caches.open(STATE)).delete(key('renew'));
+}
