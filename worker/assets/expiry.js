@@ -37,5 +37,5 @@
       if (!(Date.parse(part.dataset.issuedAt ?? '') >= newer)) replace(part, 'Expired: a newer brief has come. Load this page again.');
     }
   });
-  addEventListener('load', () => navigator.serviceWorker?.register('/sw.js').catch(() => undefined));
+  addEventListener('load', () => { navigator.serviceWorker?.register('/sw.js').catch(() => undefined); });
 })();
