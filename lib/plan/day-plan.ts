@@ -56,11 +56,20 @@ export interface Block {
   readonly tightest: Tightest | null;
   /** The window it lies in, with its last launch. */
   readonly window: JudgedWindow | null;
-  /** What closes the hour after it; null where nothing does. */
-  readonly endsAt: Closed | null;
+  /** What ends it; null where the judged day does. */
+  readonly endsAt: BlockEnd | null;
   /** Minutes of moving right before it; null for a group's first. */
   readonly movingMin: number | null;
 }
+
+export type BlockEnd =
+  | Closed
+  /** The group has the hours it wished. */
+  | { readonly kind: 'wish' }
+  /** The hour after it is open, but would leave less than every hour that the plan uses. */
+  | { readonly kind: 'less spare'; readonly spare: number }
+  /** The place, the instructors or the group itself are wanted elsewhere. */
+  | { readonly kind: 'elsewhere' };
 
 export type LeftOut =
   /** No site has its least hours at a stretch, whoever else is there: the site that comes nearest, and what closes most of it. */

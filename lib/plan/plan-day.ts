@@ -26,7 +26,7 @@ export function planDay(request: PlanRequest, days: JudgedDays): DayPlan {
     const stays = best.stays[group] ?? [];
     return {
       name, wing, sheet,
-      blocks: stays.map((stay, nth) => blockOf(posed, group, { stay, before: stays[nth - 1] })),
+      blocks: stays.map((_, nth) => blockOf(posed, group, { nth, best })),
       leftOut: stays.length > 0 ? null : leftOutOf(posed, group, placed),
     };
   });

@@ -3,7 +3,7 @@ import { causeClause } from '../../brief/words/causes.ts';
 import { capital, clockTime, counted, hourName, hourSpan, listed, placeName, sentence, verdictPhrase, type Reader } from '../../brief/words/index.ts';
 import { figure } from '../../brief/units-out.ts';
 import { epochOf } from '../../time.ts';
-import type { Block } from '../day-plan.ts';
+import type { Block, BlockEnd } from '../day-plan.ts';
 import { closedClause } from './closed.ts';
 
 export function blockPlace(block: Pick<Block, 'site' | 'siteName'>): string {
@@ -37,8 +37,17 @@ export function blockSentence(block: Block, timeZone: string): string {
 export function blockReason(block: Block, timeZone: string, reader: Reader): string {
   const { tightest, endsAt } = block;
   const least = tightest === null ? 'No margin of these hours has a number' : `Tightest at ${hourName(tightest.validAt, timeZone)}: ${causeClause(tightest.margin, reader)} (${spareWords(block.spare)})`;
-  const end = endsAt === null ? [] : [sentence(`It ends at ${hourName(block.to, timeZone)} because ${closedClause(endsAt, timeZone, reader)}`)];
+  const end = endsAt === null ? [] : [sentence(`It ends at ${hourName(block.to, timeZone)} because ${endClause(endsAt, timeZone, reader)}`)];
   return [sentence(least), ...end].join(' ');
+}
+
+function endClause(end: BlockEnd, timeZone: string, reader: Reader): string {
+  switch (end.kind) {
+    case 'wish': return 'the group has the hours it wished';
+    case 'less spare': return `the hour after it would leave less than any hour of the plan (${spareWords(end.spare)})`;
+    case 'elsewhere': return 'its place, its instructors or the group itself are wanted elsewhere';
+    case 'group hours': case 'site hours': case 'lost': case 'not judged': case 'margin': return closedClause(end, timeZone, reader);
+  }
 }
 
 /** "spare 1.3 close bands": how the spares of unlike margins compare. Rounded down: it never looks larger than it is. */

@@ -101,7 +101,10 @@ describe('which plan is best', () => {
   test('what ends a block, what is next best, what a lost hour changes', () => {
     const result = plan({ groups: [groupOf('A', { wishHours: 2 })] }, { hill: judged('hill', 'wwwwb') });
     expect(spans(result)).toEqual([['hill 04-06']]);
-    expect(result.groups[0]!.blocks[0]!.endsAt).toBeNull();
+    expect(result.groups[0]!.blocks[0]!.endsAt).toEqual({ kind: 'wish' });
+    expect(plan({}, { hill: judged('hill', 'www') }).groups[0]!.blocks[0]!.endsAt).toBeNull();
+    expect(plan({}, { hill: judged('hill', 'wwww', { spares: [2, 2, 1, 1] }) }).groups[0]!.blocks[0]!.endsAt).toEqual({ kind: 'less spare', spare: 2 });
+    expect(plan({ groups: [groupOf('A'), groupOf('B', { minHours: 2, earliestHour: 7 })] }, { hill: judged('hill', 'wwww') }).groups[0]!.blocks[0]!.endsAt).toEqual({ kind: 'elsewhere' });
     expect(result.nextBest).toMatchObject({ objective: { placed: 1, hours: 1 }, changes: [{ group: 'A', blocks: [{ from: at(8), to: at(9) }] }] });
     expect(result.ifLost.map(({ from, objective, changes }) => [from, objective.hours, changes[0]?.blocks.map(({ from: begin }) => begin)])).toEqual([
       [at(6), 2, [at(7)]], [at(7), 2, [at(6), at(8)]],
