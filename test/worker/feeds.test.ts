@@ -4,7 +4,7 @@ import { env } from 'cloudflare:workers';
 import { beforeEach, describe, expect, test, vi } from 'vitest';
 import { app } from '../../worker/routes/app.ts';
 import { linkToken } from '../../worker/secrets.ts';
-import { folded, icalText } from '../../worker/feeds/ical.ts';
+import { folded, icalText } from '../../worker/feeds/ical-text.ts';
 import { xml } from '../../worker/feeds/atom.ts';
 import { LINK_KEY, newHouse, type House } from './support/house.ts';
 import { judgedAs } from './support/stand-ins.ts';

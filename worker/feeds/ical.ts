@@ -2,6 +2,7 @@ import { briefTitle, capital, CLOSING, placeName, siteBlock, type Reader } from 
 import { calendarDayTitle, calendarGoneTitle, calendarWindowTitle, GONE } from '../../lib/brief/words/notices.ts';
 import { shiftDate } from '../../lib/time.ts';
 import type { Feed, FeedDay } from './feed.ts';
+import { folded, icalText } from './ical-text.ts';
 
 /**
  * The feed as a calendar (RFC 5545). A title begins with the time at which it was computed and carries no verdict: a
@@ -62,35 +63,8 @@ function event({ day, revision, issuedAtMs }: FeedDay, feed: Feed, { part, times
   ];
 }
 
-/** TEXT of RFC 5545, 3.3.11; control characters have no place in it. */
-export function icalText(text: string): string {
-  return text
-    .replaceAll(/\r\n?/g, '\n').replaceAll(/[^\P{Cc}\n]/gu, ' ')
-    .replaceAll('\\', '\\\\').replaceAll(';', '\\;').replaceAll(',', '\\,').replaceAll('\n', '\\n');
-}
-
 function property(name: string, text: string): string {
   return `${name}:${icalText(text)}`;
-}
-
-const encoder = new TextEncoder();
-
-/** Lines of at most 75 octets (RFC 5545, 3.1), never cut through a character. */
-export function folded(line: string): string {
-  const parts: string[] = [];
-  let part = '';
-  let octets = 0;
-  for (const character of line) {
-    const size = encoder.encode(character).length;
-    if (octets + size > 75) {
-      parts.push(part);
-      part = ' ';
-      octets = 1;
-    }
-    part += character;
-    octets += size;
-  }
-  return [...parts, part].join('\r\n');
 }
 
 function instant(iso: string): string {

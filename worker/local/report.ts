@@ -1,8 +1,7 @@
 import type { JudgedDay } from '../../lib/brief/day.ts';
-import { briefText, type Reader } from '../../lib/brief/words/index.ts';
+import { briefText } from '../../lib/brief/words/index.ts';
+import { READER } from '../../lib/brief/words/reader.ts';
 import type { Issue } from '../../lib/result.ts';
-
-const READER: Reader = { units: { speed: 'm/s', height: 'm' } };
 
 /** Errors for people: where, what is there, what is wrong, what would be right. */
 export function issueLines(issues: readonly Issue[]): string {

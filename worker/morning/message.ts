@@ -1,5 +1,6 @@
 import type { JudgedDay } from '../../lib/brief/day.ts';
-import { briefText, briefTitle, dayVerdict, type Reader } from '../../lib/brief/words/index.ts';
+import { briefText, briefTitle, dayVerdict } from '../../lib/brief/words/index.ts';
+import { READER } from '../../lib/brief/words/reader.ts';
 import { missedNotice, NOT_COMPUTED } from '../../lib/brief/words/notices.ts';
 import type { DisplayUnits } from '../../lib/brief/units-out.ts';
 import { isoUtc, localDay } from '../../lib/time.ts';
@@ -8,8 +9,7 @@ import type { Place } from '../service-set.ts';
 import type { BriefHead, PairDay } from '../store/brief.ts';
 import type { OutboxRow } from '../store/outbox.ts';
 
-/** Metres a second and metres, as on the pages, for whoever has not chosen. */
-export const READER: Reader = { units: { speed: 'm/s', height: 'm' } };
+export { READER };
 
 /** Which briefs a message is made of, fixed before its first attempt. */
 export interface Content {

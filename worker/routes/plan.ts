@@ -4,12 +4,12 @@
  */
 import { Hono, type Context } from 'hono';
 import { CLOSING, INVENTED } from '../../lib/brief/words/index.ts';
+import { READER } from '../../lib/brief/words/reader.ts';
 import { parsePlanRequest } from '../../lib/config/plan.ts';
 import { planChanges } from '../../lib/plan/changes.ts';
 import { planCsv } from '../../lib/plan/csv.ts';
 import { planDay } from '../../lib/plan/plan-day.ts';
 import { planSentence, planTitle } from '../../lib/plan/words/index.ts';
-import { READER } from '../morning/message.ts';
 import { messagePage } from '../web/message-page.ts';
 import { planCalendar } from '../web/plan/calendar.ts';
 import { jsonOf, typedOf } from '../web/plan/form-data.ts';

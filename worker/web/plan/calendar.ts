@@ -5,7 +5,7 @@
 import { cautionSentences, CLOSING, INVENTED, plainText, provenance, type Reader } from '../../../lib/brief/words/index.ts';
 import type { Block, DayPlan, GroupPlan } from '../../../lib/plan/day-plan.ts';
 import { blockPlace, blockReason, blockSentence, eventTitle } from '../../../lib/plan/words/index.ts';
-import { folded, icalText } from '../../feeds/ical.ts';
+import { folded, icalText } from '../../feeds/ical-text.ts';
 
 export interface CalendarOptions {
   /** Of the plan, stable: the UIDs are made from it. */
