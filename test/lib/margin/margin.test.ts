@@ -30,6 +30,9 @@ test('a spare that is only the rounding of its own sum is none: 0.1 + 0.2 is 0.3
   expect(margin({ demand: 1, limit: 1 - 0.9e-9, sense: 'atMost', band: 0 })).toEqual({ spare: 0, status: 'within' });
   expect(margin({ demand: 1, limit: 1 - 1.1e-9, sense: 'atMost', band: 0 }).status).toBe('beyond');
   expect(margin({ demand: 1, limit: 1 + 1.1e-9, sense: 'atMost', band: 0 }).spare).toBeGreaterThan(0);
+  // Exactly the rounding is a spare, and exactly the rounding short of a band is not close.
+  expect(margin({ demand: 0, limit: 1e-9, sense: 'atMost', band: 0 }).spare).toBe(1e-9);
+  expect(margin({ demand: 3, limit: 3, sense: 'atMost', band: 1e-9 }).status).toBe('within');
   // And a band that is only just not reached is reached.
   expect(margin({ demand: 0, limit: 0.3, sense: 'atMost', band: 0.3 + 0.9e-9 }).status).toBe('within');
   expect(margin({ demand: 0, limit: 0.3, sense: 'atMost', band: 0.3 + 1.1e-9 }).status).toBe('close');
