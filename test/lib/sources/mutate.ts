@@ -57,7 +57,7 @@ export const mutations: Readonly<Record<string, Mutation>> = {
   'a null column': (spoilt, random) => void valueColumn(spoilt, random).fill(null),
   'a null hour': (spoilt, random) => {
     const row = Math.floor(random() * (spoilt.location.hourly?.['time']?.length ?? 0));
-    for (const name of valueNames(spoilt)) spoilt.location.hourly[name]![row] = null;
+    for (const name of valueNames(spoilt)) spoilt.location.hourly[name]!.fill(null, row, row + 1);
   },
   'a sentinel cell': (spoilt, random) => {
     const column = valueColumn(spoilt, random);
