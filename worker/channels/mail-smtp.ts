@@ -29,6 +29,27 @@ export function smtpMailer(server: MailServer, from: string): Mailer {
   };
 }
 
+const MOST_REPLY = 10_000;
+
+/**
+ * In place of the library's own reader, which on a connection that has ended reads on for ever, so busily that no timer of
+ * the isolate ever rings.
+ */
+async function readReply(this: { readonly reader: ReadableStreamDefaultReader<Uint8Array> }): Promise<string> {
+  const decoder = new TextDecoder();
+  let reply = '';
+  for (;;) {
+    const { value, done } = await this.reader.read();
+    if (done) throw new Error('the connection has ended');
+    reply += decoder.decode(value, { stream: true });
+    const lastLine = reply.split('\n').at(-2) ?? '';
+    if (reply.endsWith('\n') && !/^\d+-/.test(lastLine)) return reply;
+    if (reply.length > MOST_REPLY) throw new Error('the reply has no end');
+  }
+}
+
+Object.assign(WorkerMailer.prototype, { read: readReply });
+
 function optionsOf({ host, port, secure, credentials }: MailServer, timeoutMs: number): WorkerMailerOptions {
   return {
     host, port, secure, startTls: false, logLevel: LogLevel.NONE, socketTimeoutMs: timeoutMs, responseTimeoutMs: timeoutMs,

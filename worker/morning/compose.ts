@@ -1,4 +1,5 @@
 import type { Message } from '../channels/channel.ts';
+import { loosenedNotes } from '../security/loosened.ts';
 import type { Services } from '../service-set.ts';
 import type { BriefHead, BriefKey } from '../store/brief.ts';
 import type { StoredChannel } from '../store/channel.ts';
@@ -27,6 +28,7 @@ export async function compose(services: Services, rows: readonly OutboxRow[]): P
   const nowMs = clock.nowMs();
   const channels = new Map((await stores.channel.some(rows.map((row) => row.channelId))).map((channel) => [channel.id, channel]));
   const pairs = await stores.subscription.pairsOf([...new Set(rows.map((row) => row.subscriptionId))]);
+  const loosened = await loosenedNotes(services, pairs);
   const units = await stores.subscription.unitsOf([...new Set(rows.map((row) => row.subscriptionId))]);
   const places = await placesOf(services, [...new Set(pairs.map((pair) => pair.siteId))]);
   const contents = new Map<string, Content>();
@@ -53,7 +55,7 @@ export async function compose(services: Services, rows: readonly OutboxRow[]): P
   for (const row of rows) {
     const channel = channels.get(row.channelId);
     const content = contents.get(row.id);
-    const message = content === undefined ? null : messageOf({ row, content, heads: row.content === null ? heads : exactHeads, places, units: units.get(row.subscriptionId) });
+    const message = content === undefined ? null : messageOf({ row, content, heads: row.content === null ? heads : exactHeads, places, units: units.get(row.subscriptionId), notes: loosened.get(row.subscriptionId) });
     if (channel === undefined || channel.state === 'dead' || message === null) orphans.push(row);
     else composed.push({ row, channel, message });
   }

@@ -1,5 +1,5 @@
 import type { JudgedDay } from '../../lib/brief/day.ts';
-import { briefText, briefTitle, dayVerdict } from '../../lib/brief/words/index.ts';
+import { briefText, briefTitle, CLOSING, dayVerdict } from '../../lib/brief/words/index.ts';
 import { READER } from '../../lib/brief/words/reader.ts';
 import { missedNotice, NOT_COMPUTED } from '../../lib/brief/words/notices.ts';
 import type { DisplayUnits } from '../../lib/brief/units-out.ts';
@@ -37,10 +37,12 @@ export interface MessageParts {
   readonly places: ReadonlyMap<string, Place>;
   /** Those that the subscriber chose. */
   readonly units?: DisplayUnits | undefined;
+  /** What else its subscriber has to be told with the next brief. */
+  readonly notes?: readonly string[] | undefined;
 }
 
 /** A message for all sites of a subscriber; null when none of them is kept any more. */
-export function briefMessage({ row, content, heads, places, units }: MessageParts): Message | null {
+export function briefMessage({ row, content, heads, places, units, notes = [] }: MessageParts): Message | null {
   const days: JudgedDay[] = [];
   const runs: (number | null)[] = [];
   for (const pair of content.briefs) {
@@ -56,7 +58,7 @@ export function briefMessage({ row, content, heads, places, units }: MessagePart
     id: row.id,
     kind: row.kind,
     title: briefTitle(days),
-    text: briefText(days, units === undefined ? READER : { units }),
+    text: withNotes(briefText(days, units === undefined ? READER : { units }), notes),
     issuedAtMs: content.issuedAtMs,
     dataRunAtMs: known.length > 0 && known.length === runs.length ? Math.min(...known) : null,
     validUntilMs: Math.min(...days.map((day) => Date.parse(day.validUntil))),
@@ -64,6 +66,12 @@ export function briefMessage({ row, content, heads, places, units }: MessagePart
     demo: days.some((day) => day.demo),
     days: days.map((day) => ({ siteId: day.siteId, localDate: day.localDate, verdict: dayVerdict(day), windows: day.windows })),
   };
+}
+
+/** Between the sites and the closing notice: a note takes nothing from what stands before it. */
+function withNotes(text: string, notes: readonly string[]): string {
+  const end = text.lastIndexOf(CLOSING);
+  return notes.length === 0 || end < 0 ? text : `${text.slice(0, end)}${notes.join('\n')}\n\n${text.slice(end)}`;
 }
 
 /** The brief that says that there is none. */

@@ -7,6 +7,8 @@ import { feeds } from './feeds.ts';
 import { health } from './health.ts';
 import { manageApi, managePages } from './manage.ts';
 import { local } from './local.ts';
+import { bounce } from './bounces.ts';
+import { operator } from './operator.ts';
 import { pages } from './pages.ts';
 import { planApi, planPages } from './plan.ts';
 import { problem } from './problem.ts';
@@ -26,6 +28,13 @@ const METHODS: Readonly<Record<string, string>> = {
   '/subscribe': 'GET, HEAD, POST',
   '/unsubscribe/:token': 'GET, HEAD, POST',
   '/api/v1/subscriptions': 'POST',
+  '/api/v1/bounces': 'POST',
+  '/api/v1/operator/sites': 'GET, HEAD, PUT',
+  '/api/v1/operator/sheets': 'GET, HEAD',
+  '/api/v1/operator/sheets/:id': 'GET, HEAD, PUT',
+  '/api/v1/operator/published': 'GET, HEAD, PUT',
+  '/api/v1/operator/forget': 'POST',
+  '/api/v1/operator/bounce-secret': 'GET, HEAD',
   '/api/v1/manage/:token': 'GET, HEAD, PUT, POST, DELETE',
   '/api/v1/assess': 'POST',
   '/api/v1/plan': 'POST',
@@ -38,6 +47,8 @@ export function app(services: Services): Hono {
   const hono = new Hono();
   hono.get('/healthz', () => health(services));
   hono.route('/api/v1/plan', planApi(planServices(services)));
+  hono.post('/api/v1/bounces', (c) => bounce(services, c.req.raw));
+  hono.route('/api/v1/operator', operator(services));
   hono.route('/api/v1/subscriptions', subscriptions(services));
   hono.route('/api/v1/manage', manageApi(services));
   hono.route('/api/v1', api(services));

@@ -23,7 +23,7 @@ export async function formOf(request: Request): Promise<FormData | null> {
   }
 }
 
-async function sitesAndSheets({ stores, read, shippedSheets }: Services): Promise<{ readonly sites: Site[]; readonly sheets: LimitSheet[] }> {
+export async function sitesAndSheets({ stores, read, shippedSheets }: Services): Promise<{ readonly sites: Site[]; readonly sheets: LimitSheet[] }> {
   const [rows, sheetRows] = await Promise.all([stores.site.all(), stores.sheet.newest()]);
   const stored = sheetRows.flatMap((row) => { const sheet = read.sheet(row); return sheet.ok ? [sheet.value] : []; });
   const known = new Set(sheetRows.map(({ id }) => id));

@@ -48,7 +48,8 @@ function coding(byte: number): string {
 
 /** What the answer of a mail service means (RFC 5321, 4.2): 5xx of a recipient ends the channel, of a message only that message. */
 export function outcomeOfReply(reply: string): SendOutcome {
-  const code = /\b([245]\d\d)\b/.exec(reply)?.[1] ?? '';
+  // An address in the reply may hold digits of its own.
+  const code = /\b([245]\d\d)\b/.exec(reply.replace(/<[^>]*>/g, ''))?.[1] ?? '';
   const isOfRecipient = /RCPT TO/i.test(reply);
   if (code.startsWith('5') && isOfRecipient && code !== '552') return { state: 'gone', reason: `the mail service answered ${code} for the address` };
   if (code.startsWith('5') && /body|DATA/i.test(reply)) return { state: 'refused', reason: `the mail service answered ${code} to the message` };

@@ -60,6 +60,32 @@ export function channelStore(db: Database) {
     verify(id: string): Statement {
       return { sql: `UPDATE channel SET state = 'active' WHERE id = ? AND state = 'unverified'`, values: [id] };
     },
+    /** To which channel a message went. */
+    async ofMessage(messageId: string): Promise<{ readonly id: string; readonly target: string } | null> {
+      const [row] = await db.read<{ id: string; target: string }>('SELECT c.id, c.target FROM outbox AS o JOIN channel AS c ON c.id = o.channel_id WHERE o.id = ?', messageId);
+      return row ?? null;
+    },
+    /** What came back goes to the channel of the next rank; who has none is paused, where it can be seen, and not dropped in silence. */
+    afterBounce(messageId: string, nowMs: number): Statement[] {
+      return [
+        {
+          sql: `INSERT INTO outbox (id, subscription_id, channel_id, due_local_date, kind, seq, format, due_at, ready_by, valid_until,
+              state, next_attempt_at, content, created_at)
+            SELECT 'msg_' || lower(hex(randomblob(16))), o.subscription_id, c.id, o.due_local_date, o.kind, o.seq, o.format, o.due_at,
+              o.ready_by, o.valid_until, 'pending', ?2, o.content, ?2
+            FROM outbox AS o JOIN channel AS c ON c.subscription_id = o.subscription_id AND c.state <> 'dead'
+              AND c.rank = (SELECT MIN(rank) FROM channel WHERE subscription_id = o.subscription_id AND state <> 'dead')
+            WHERE o.id = ?1 AND o.valid_until > ?2
+            ON CONFLICT (subscription_id, channel_id, due_local_date, kind, seq) DO NOTHING`,
+          values: [messageId, nowMs],
+        },
+        {
+          sql: `UPDATE subscription SET state = 'paused' WHERE state = 'active' AND id = (SELECT subscription_id FROM outbox WHERE id = ?1)
+            AND NOT EXISTS (SELECT 1 FROM channel WHERE subscription_id = subscription.id AND state <> 'dead')`,
+          values: [messageId],
+        },
+      ];
+    },
     /** Nothing is sent there again; its subscription stays. */
     end(id: string, reason: string): Statement {
       return { sql: `UPDATE channel SET state = 'dead', reason = ? WHERE id = ?`, values: [reason, id] };
