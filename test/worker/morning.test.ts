@@ -196,6 +196,30 @@ describe('when something fails', () => {
     expect(await house.outbox()).toMatchObject([{ state: 'sent', attempts: 4 }]);
   });
 
+  test('two messages pinned to different revisions of one brief each repeat their own', async () => {
+    let isDown = true;
+    let rules = 'the first';
+    const house = await newHouse({
+      nowIso: six, judge: (input) => ({ ...judgedAs(input, 'within'), localRules: rules }), answer: () => new Response(null, isDown ? { status: 503, headers: { 'retry-after': '7200' } } : { status: 200 }),
+    });
+    await house.seed([{ ...ana, sites: ['north'] }, { ...ana, id: 'ben', sites: ['north'], urls: [hook('ben')], deliverMinute: 420, dueIso: '2027-05-14T05:00:00Z' }]);
+    await house.minute();
+    rules = 'the second';
+    await env.DB.prepare(`UPDATE run SET finished_at = 0 WHERE step = 'fetch'`).run();
+    house.nowMs = Date.parse('2027-05-14T05:00:00Z');
+    await house.minute();
+    isDown = false;
+    house.nowMs = Date.parse('2027-05-14T07:30:00Z');
+    await house.minute();
+    const bodies = (name: string): string[] => house.posts.filter((post) => post.url === hook(name)).map((post) => post.body);
+    for (const name of ['ana', 'ben']) {
+      expect(bodies(name)).toHaveLength(2);
+      expect(new Set(bodies(name)).size).toBe(1);
+    }
+    expect(bodies('ana')[0]).toContain('the first');
+    expect(bodies('ben')[0]).toContain('the second');
+  });
+
   test.each([
     ['seven failures', 500, {}, 'dead', /^given up after 7 attempts; last: the receiver answered 500$/],
     ['410', 410, {}, 'dead', /410/],

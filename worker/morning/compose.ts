@@ -34,11 +34,15 @@ export async function compose(services: Services, rows: readonly OutboxRow[]): P
   const contents = new Map<string, Content>();
   for (const row of rows) if (row.content !== null) contents.set(row.id, JSON.parse(row.content) as Content);
 
+  const dateOf = remembered((siteId: string, dueAtMs: number): string | null => {
+    const place = places.get(siteId);
+    return place === undefined ? null : judgedDate(place.site, dueAtMs);
+  });
   const open = rows.filter((row) => !contents.has(row.id)).map((row) => ({
     row,
     pairDays: pairs.filter((pair) => pair.subscriptionId === row.subscriptionId).flatMap(({ siteId, wingKey, sheetId }) => {
-      const place = places.get(siteId);
-      return place === undefined ? [] : [{ siteId, wingKey, sheetId, localDate: judgedDate(place.site, row.dueAtMs) }];
+      const localDate = dateOf(siteId, row.dueAtMs);
+      return localDate === null ? [] : [{ siteId, wingKey, sheetId, localDate }];
     }),
   }));
   const wanted = new Map(open.flatMap(({ pairDays }) => pairDays).map((pairDay) => [pairDayKey(pairDay), pairDay]));
@@ -51,11 +55,20 @@ export async function compose(services: Services, rows: readonly OutboxRow[]): P
 
   const composed: Composed[] = [];
   const orphans: OutboxRow[] = [];
-  const exactHeads = byKey(exact);
+  // Hundreds of subscribers read the same words: each set of them is made once.
+  const words = new Map<string, Message | null>();
+  const worded = (parts: MessageParts): Message | null => {
+    if (parts.row.kind !== 'brief') return messageOf(parts);
+    const key = JSON.stringify([parts.content, parts.units]);
+    const known = words.get(key);
+    const message = known === undefined ? messageOf(parts) : known;
+    words.set(key, message);
+    return message === null ? null : { ...message, id: parts.row.id, ...threadOf(parts.row) };
+  };
   for (const row of rows) {
     const channel = channels.get(row.channelId);
     const content = contents.get(row.id);
-    const message = content === undefined ? null : messageOf({ row, content, heads: row.content === null ? heads : exactHeads, places, units: units.get(row.subscriptionId), notes: loosened.get(row.subscriptionId) });
+    const message = content === undefined ? null : worded({ row, content, heads: row.content === null ? heads : pinnedHeads(content, exact), places, units: units.get(row.subscriptionId), notes: loosened.get(row.subscriptionId) });
     if (channel === undefined || channel.state === 'dead' || message === null) orphans.push(row);
     else composed.push({ row, channel, message });
   }
@@ -66,8 +79,29 @@ function byKey(heads: readonly BriefHead[]): ReadonlyMap<string, BriefHead> {
   return new Map(heads.map((head) => [pairDayKey(head), head]));
 }
 
+/** The very revisions that a message was made of at its first attempt, and not those that another one was. */
+function pinnedHeads(content: Content, heads: readonly BriefHead[]): ReadonlyMap<string, BriefHead> {
+  const isPinned = (head: BriefHead): boolean =>
+    content.briefs.some((brief) => brief.revision === head.revision && brief.sheetVersion === head.sheetVersion && pairDayKey(brief) === pairDayKey(head));
+  return byKey(heads.filter(isPinned));
+}
+
 function messageOf(parts: MessageParts): Message | null {
   const message = noticeMessage(parts);
-  // A test is of no day; everything else of a subscriber's day takes the place of what came before.
-  return message === null || parts.row.kind === 'test' ? message : { ...message, thread: `${parts.row.subscriptionId}|${parts.row.dueLocalDate}` };
+  return message === null ? null : { ...message, ...threadOf(parts.row) };
+}
+
+/** A test is of no day; everything else of a subscriber's day takes the place of what came before. */
+function threadOf(row: OutboxRow): Pick<Message, 'thread'> {
+  return row.kind === 'test' ? {} : { thread: `${row.subscriptionId}|${row.dueLocalDate}` };
+}
+
+function remembered<Value>(work: (siteId: string, atMs: number) => Value): (siteId: string, atMs: number) => Value {
+  const known = new Map<string, Value>();
+  return (siteId, atMs) => {
+    const key = `${atMs} ${siteId}`;
+    const value = known.has(key) ? (known.get(key) as Value) : work(siteId, atMs);
+    known.set(key, value);
+    return value;
+  };
 }

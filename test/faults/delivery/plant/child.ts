@@ -1,11 +1,16 @@
 // The process that gets killed: the deployed worker in the local runtime, with its database on disk and real queues.
 // node child.ts STATE_DIR SCRIPT PORT TOKEN
+//
+// With PLANT_CONSUMERS=none nothing is taken from the queues by itself. Then a line on its input drives the worker as the
+// platform would: `fetch`, `assess`, or `deliver N` for N consumers side by side until nothing is left; `done MS` is the answer.
 import { readdirSync, readFileSync } from 'node:fs';
 import path from 'node:path';
+import { createInterface } from 'node:readline';
 import { convertV4MiniflareOptions, Miniflare } from 'miniflare';
 import { root } from '../../../support/run-tool.ts';
 
 const [stateDir = '', script = '', port = '', token = ''] = process.argv.slice(2);
+const isDriven = process.env['PLANT_CONSUMERS'] === 'none';
 const consumer = { maxBatchSize: 1, maxBatchTimeout: 0, maxRetries: 3, deadLetterQueue: 'dead' };
 
 const miniflare = new Miniflare({
@@ -14,7 +19,7 @@ const miniflare = new Miniflare({
     compatibilityDate: '2026-11-01',
     d1Databases: { DB: 'dawnmargin' },
     queueProducers: { FETCH_QUEUE: 'fetch', ASSESS_QUEUE: 'assess', DELIVER_QUEUE: 'deliver', DEAD_QUEUE: 'dead' },
-    queueConsumers: { fetch: consumer, assess: consumer, deliver: consumer, dead: { maxBatchSize: 10, maxBatchTimeout: 1 } },
+    ...(isDriven ? {} : { queueConsumers: { fetch: consumer, assess: consumer, deliver: consumer, dead: { maxBatchSize: 10, maxBatchTimeout: 1 } } }),
     bindings: {
       LOCAL: '1', LOCAL_TOKEN: token, LINK_KEY: 'a-link-key-for-tests-only-0123456789', PUBLIC_URL: `http://127.0.0.1:${port}`,
       ...(process.env['VAPID_PUBLIC_KEY'] === undefined ? {} : { VAPID_PUBLIC_KEY: process.env['VAPID_PUBLIC_KEY'], VAPID_PRIVATE_KEY: process.env['VAPID_PRIVATE_KEY'] ?? '' }),
@@ -35,4 +40,24 @@ if (tables?.n === 0) {
     await db.batch(text.split(';').filter((statement) => statement.trim() !== '').map((statement) => db.prepare(statement)));
   }
 }
+async function left(step: string): Promise<number> {
+  const table = step === 'deliver' ? `outbox WHERE state = 'pending'` : `run WHERE state = 'wanted' AND step = '${step}'`;
+  return (await db.prepare(`SELECT COUNT(*) AS n FROM ${table}`).first<{ n: number }>())?.n ?? 0;
+}
+
+async function consume(step: string): Promise<void> {
+  const worker = await miniflare.getWorker();
+  for (let call = 0; (await left(step)) > 0; call += 1) {
+    await worker.queue(step, [{ id: `${step}-${call}`, timestamp: new Date(), attempts: 1, body: { v: 1, step } }]);
+  }
+}
+
+createInterface({ input: process.stdin }).on('line', (line) => {
+  const [step = '', side = '1'] = line.split(' ');
+  const begunMs = Date.now();
+  Promise.all(Array.from({ length: Number(side) }, () => consume(step))).then(
+    () => console.log(`done ${Date.now() - begunMs}`),
+    (error: unknown) => console.log(`failed ${String(error)}`),
+  );
+});
 console.log('ready');

@@ -1,6 +1,7 @@
 // A Dawnmargin in a process of its own that a test may kill and start again on the same folder.
 import { spawn } from 'node:child_process';
 import path from 'node:path';
+import { createInterface } from 'node:readline';
 import { root } from '../../../support/run-tool.ts';
 import type { Bundle } from './bundle.ts';
 
@@ -10,6 +11,8 @@ export interface Plant {
   readonly origin: string;
   post(where: 'begin' | 'seed' | 'morning' | 'sweep', body?: unknown): Promise<void>;
   progress(): Promise<{ readonly work: { readonly fetch: number; readonly assess: number }; readonly outbox: Readonly<Record<string, number>> }>;
+  /** Only where nothing is taken from the queues by itself: does all of a step's work, and says how many ms it took. */
+  drive(step: 'fetch' | 'assess' | 'deliver', sideBySide?: number): Promise<number>;
   /** SIGKILL to it and to the runtime under it. */
   kill(): Promise<void>;
 }
@@ -23,7 +26,7 @@ export interface PlantSetup {
 
 export async function startPlant({ bundle, stateDir, port, env = {} }: PlantSetup): Promise<Plant> {
   const child = spawn(path.join(root, 'node_modules/node/bin/node'), [path.join(import.meta.dirname, 'child.ts'), stateDir, bundle.script, String(port), TOKEN], {
-    cwd: root, env: { ...process.env, ...env }, stdio: ['ignore', 'pipe', 'pipe'], detached: true,
+    cwd: root, env: { ...process.env, ...env }, stdio: ['pipe', 'pipe', 'pipe'], detached: true,
   });
   let output = '';
   const ended = new Promise<void>((resolve) => { child.once('exit', () => resolve()); });
@@ -36,6 +39,8 @@ export async function startPlant({ bundle, stateDir, port, env = {} }: PlantSetu
     child.stderr.on('data', keep);
     child.once('exit', () => reject(new Error(`the plant did not start:\n${output}`)));
   });
+  const answers: ((line: string) => void)[] = [];
+  createInterface({ input: child.stdout }).on('line', (line) => { if (/^(done|failed) /.test(line)) answers.shift()?.(line); });
   const origin = `http://127.0.0.1:${port}`;
   const headers = { authorization: `Bearer ${TOKEN}`, 'content-type': 'application/json' };
   return {
@@ -48,6 +53,14 @@ export async function startPlant({ bundle, stateDir, port, env = {} }: PlantSetu
     async progress() {
       const response = await fetch(`${origin}/local/progress`, { headers });
       return (await response.json()) as Awaited<ReturnType<Plant['progress']>>;
+    },
+    async drive(step, sideBySide = 1) {
+      const answer = new Promise<string>((resolve) => { answers.push(resolve); });
+      child.stdin.write(`${step} ${sideBySide}\n`);
+      const line = await Promise.race([answer, ended.then(() => `failed: the plant has ended\n${output}`)]);
+      const ms = /^done (\d+)$/.exec(line)?.[1];
+      if (ms === undefined) throw new Error(`${step}: ${line}`);
+      return Number(ms);
     },
     async kill() {
       try {

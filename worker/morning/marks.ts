@@ -1,0 +1,43 @@
+import type { Database, Statement } from '../store/database.ts';
+
+interface Waiting {
+  readonly statements: readonly Statement[];
+  readonly resolve: () => void;
+  readonly reject: (error: unknown) => void;
+}
+
+/**
+ * Marks what has been sent, each piece as soon as it can be: while one write is under way, what has been sent meanwhile
+ * waits and is written together. Whoever marks waits until it is written, so that no more is ever unmarked than is sent
+ * side by side.
+ */
+export function marker(db: Pick<Database, 'together'>): (statements: readonly Statement[]) => Promise<void> {
+  let waiting: Waiting[] = [];
+  let isWriting = false;
+
+  async function write(group: readonly Waiting[]): Promise<void> {
+    try {
+      await db.together(group.flatMap(({ statements }) => statements));
+      for (const { resolve } of group) resolve();
+    } catch (error) {
+      // One bad mark must not take its neighbours with it.
+      if (group.length === 1) group[0]?.reject(error);
+      else for (const one of group) await write([one]);
+    }
+  }
+
+  async function writeAll(): Promise<void> {
+    isWriting = true;
+    while (waiting.length > 0) {
+      const group = waiting;
+      waiting = [];
+      await write(group);
+    }
+    isWriting = false;
+  }
+
+  return (statements) => new Promise((resolve, reject) => {
+    waiting.push({ statements, resolve, reject });
+    if (!isWriting) void writeAll();
+  });
+}
