@@ -59,7 +59,7 @@ export async function compose(services: Services, rows: readonly OutboxRow[]): P
   const words = new Map<string, Message | null>();
   const worded = (parts: MessageParts): Message | null => {
     if (parts.row.kind !== 'brief') return messageOf(parts);
-    const key = JSON.stringify([parts.content, parts.units]);
+    const key = JSON.stringify([parts.content, parts.units, parts.notes]);
     const known = words.get(key);
     const message = known === undefined ? messageOf(parts) : known;
     words.set(key, message);
