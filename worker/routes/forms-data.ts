@@ -6,7 +6,8 @@ import { managed } from '../security/manage.ts';
 import type { SubscriptionDetail } from '../store/subscription.ts';
 import { secretLinks } from '../security/letter.ts';
 import { readUpTo } from './body.ts';
-import { managePage, subscribePage } from './forms.ts';
+import { subscribePage } from '../web/subscribe-page.ts';
+import { managePage } from './forms.ts';
 
 const MAX_FORM_BYTES = 8 * 1024;
 
@@ -39,8 +40,8 @@ export async function viewOf(services: Services, detail: SubscriptionDetail, sai
   return managePage({ kept: await managed(services, detail), ...(await sitesAndSheets(services)), feed, said });
 }
 
-export async function subscribeView(services: Services, problems: readonly Issue[]): Promise<string> {
-  return subscribePage({ ...(await sitesAndSheets(services)), problems });
+export async function subscribeView(services: Services, problems: readonly Issue[], typed: FormData | null): Promise<string> {
+  return subscribePage({ ...(await sitesAndSheets(services)), problems, typed });
 }
 
 export async function kindsOf({ stores, read }: Services): Promise<ReadonlyMap<string, Site['kind']>> {

@@ -1,9 +1,6 @@
-/** Small pages of a subscription: a question with a button, its own page, the form to subscribe. They work without scripts. */
-import { HEIGHT_UNITS, SPEED_UNITS } from '../../lib/brief/units-out.ts';
+/** Small pages of a subscription: a question with a button, its own page. They work without scripts. */
 import { dateName, placeName } from '../../lib/brief/words/index.ts';
-import { WING_CLASSES } from '../../lib/config/wing.ts';
 import type { LimitSheet } from '../../lib/margin/sheet.ts';
-import type { Issue } from '../../lib/result.ts';
 import type { Site } from '../../lib/site.ts';
 import type { managed } from '../security/manage.ts';
 import { html, type Html, type Piece } from '../web/html.ts';
@@ -21,8 +18,6 @@ export function askPage(title: string, { text, button }: { readonly text: string
 function select(name: string, label: string, options: readonly { readonly id: string; readonly name: string }[], chosen?: string): Html {
   return html`<label>${label} <select name="${name}">${options.map(({ id, name: text }) => html`<option value="${id}"${id === chosen ? html` selected` : null}>${text}</option>`)}</select></label>`;
 }
-
-const plain = (words: readonly string[]) => words.map((word) => ({ id: word, name: word }));
 
 function action(name: string, label: string, more: Piece = null): Html {
   return html`<form class="choose" method="post"><input type="hidden" name="action" value="${name}">${more}<button type="submit">${label}</button></form>`;
@@ -50,27 +45,4 @@ ${action('test', 'Send a test')}<p><a href="${feed}">The same as a feed</a>. Its
 <h2>Pause</h2>${kept.state === 'active' ? action('pause', 'Pause', html`<label>First brief again on (empty: until you resume) <input type="date" name="until"></label>`) : action('resume', 'Resume')}
 <h2>Links</h2><p>If others have seen these links, new ones end the old.</p>${action('renew-links', 'Make new links')}
 <h2>End</h2><p>Everything that is kept about you is erased at once.</p>${action('end', 'End the subscription')}`);
-}
-
-export interface SubscribeView {
-  readonly sites: readonly Site[];
-  readonly sheets: readonly LimitSheet[];
-  readonly problems: readonly Issue[];
-}
-
-export function subscribePage({ sites, sheets, problems }: SubscribeView): string {
-  const kinds = new Set(sites.map(({ kind }) => kind));
-  const sheetOf = (kind: Site['kind'], label: string, usual: string): Piece => (kinds.has(kind) ? select(`sheet-${kind}`, label, sheets.filter((sheet) => sheet.kind === kind), usual) : null);
-  return page('Subscribe to the morning brief', html`${problemList(problems)}<form class="choose" method="post">
-<fieldset><legend>Sites</legend>${sites.map((site) => html`<label><input type="checkbox" name="site" value="${site.id}"> ${placeName(site)}</label> `)}</fieldset>
-${select('wing', 'Wing', plain(WING_CLASSES), 'EN B')} <label>All-up mass, kg (if you like) <input name="mass" inputmode="decimal"></label>
-${sheetOf('launch', 'Limit sheet at launches', 'descent-new')} ${sheetOf('strip', 'Limit sheet on tow', 'solo-tow')}
-<label>Brief at <input type="time" name="at" value="05:30" required></label> <label>Time zone <input name="zone" value="${sites[0]?.timeZone ?? 'Europe/Vienna'}" required></label>
-${select('speed', 'Speeds in', plain(SPEED_UNITS))} ${select('height', 'Heights in', plain(HEIGHT_UNITS))}
-<label>Mail address <input type="email" name="address" autocomplete="email" required></label><button type="submit">Subscribe</button></form>
-<p>Nothing is sent before you confirm it by the link of a mail. Each brief has a link that ends it.</p>`);
-}
-
-export function problemList(problems: readonly Issue[]): Piece {
-  return problems.length === 0 ? null : html`<ul>${problems.map(({ path, problem, allowed }) => html`<li>${path}: ${problem}. Allowed: ${allowed}</li>`)}</ul>`;
 }

@@ -109,7 +109,7 @@ export function managePages(services: Services): Hono {
     return changed(services, detail, form ?? new FormData());
   });
 
-  app.get('/subscribe', async () => shown(await subscribeView(services, [])));
+  app.get('/subscribe', async () => shown(await subscribeView(services, [], null)));
   app.post('/subscribe', async (c) => {
     const form = await formOf(c.req.raw);
     if (form === null) return shown(page('This was not understood', null), 400);
@@ -117,7 +117,7 @@ export function managePages(services: Services): Hono {
     const response = await subscribe(services, requestOf(form, await kindsOf(services)));
     if (response.status === 202) return shown(page('Please look into your mail', 'A mail with a link goes to the address, at most one a day. Nothing else is sent before you confirm it.'), 202);
     const { problems = [] } = (await response.json()) as { readonly problems?: readonly Issue[] };
-    return shown(await subscribeView(services, problems), response.status);
+    return shown(await subscribeView(services, problems, form), response.status);
   });
   return app;
 }

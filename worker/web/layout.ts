@@ -33,7 +33,7 @@ export function layout(page: Page): string {
 <meta name="theme-color" content="#f7f2e6" media="(prefers-color-scheme: light)"><meta name="theme-color" content="#14171c" media="(prefers-color-scheme: dark)">
 <link rel="stylesheet" href="/dawnmargin.css"><link rel="icon" href="/icon.svg" type="image/svg+xml"><link rel="apple-touch-icon" href="/icon-192.png"><link rel="manifest" href="/dawnmargin.webmanifest"><script src="/expiry.js" defer></script></head>
 <body data-expired="${EXPIRED}"><a class="skip" href="#main">To the content</a>${HATCHES}
-<header class="mast"><a class="name" href="/${page.keep}"><svg width="22" height="22" viewBox="0 0 22 22" aria-hidden="true"><path class="slate-fill" d="M3 2h7v7H3z"/><path class="plum-fill" d="M3 9h7v4H3z"/><path class="edge" d="M3 2h7v18H3z"/><path class="line" d="M0 20.5h22M14 2v18"/></svg>Dawnmargin</a></header>
+<header class="mast"><a class="name" href="/${page.keep}"><svg width="22" height="22" viewBox="0 0 22 22" aria-hidden="true"><path class="slate-fill" d="M3 2h7v7H3z"/><path class="plum-fill" d="M3 9h7v4H3z"/><path class="edge" d="M3 2h7v18H3z"/><path class="line" d="M0 20.5h22M14 2v18"/></svg>Dawnmargin</a><nav aria-label="Pages"><a href="/${page.keep}">Board</a><a href="/plan">Training day</a><a href="/subscribe">Subscribe</a></nav></header>
 <main id="main">${demo}${page.body}</main>
 <footer class="foot"><p>${CLOSING}</p>${creditLinks(page)}${page.demo ? html`<p>Invented weather.</p>` : null}</footer></body></html>`.toString()}\n`;
 }
