@@ -12,6 +12,7 @@ import type { Step } from './morning/job.ts';
 import type { Mailer } from './security/mailer.ts';
 import type { Settings } from './settings.ts';
 import type { Source } from './sources/source.ts';
+import type { AbsenceStore } from './store/absence.ts';
 import type { BreakerStore } from './store/breaker.ts';
 import type { BriefStore } from './store/brief.ts';
 import type { ChannelStore } from './store/channel.ts';
@@ -61,6 +62,10 @@ export interface Services {
   readonly shippedSheets: () => readonly LimitSheet[];
   readonly thresholds: () => CautionThresholds;
   readonly judge: (input: DayInput) => JudgedDay;
+  /** What the judge gets wrong of what is known; nothing when it may be trusted. */
+  readonly selfTest: () => readonly string[];
+  /** Tells the watchdog outside that all is well; false when it could not be told. */
+  readonly heartbeat: () => Promise<boolean>;
 }
 
 export interface Clock {
@@ -112,6 +117,7 @@ export interface Stores {
   readonly breaker: BreakerStore;
   readonly sourceCache: SourceCacheStore;
   readonly windowState: WindowStateStore;
+  readonly absence: AbsenceStore;
   readonly terminal: TerminalStore;
   readonly log: LogStore;
   readonly signup: SignupStore;

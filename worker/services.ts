@@ -9,13 +9,16 @@ import { storedQuarrels } from './channels/push/quarrels.ts';
 import { vapid, type Authorize } from './channels/push/vapid.ts';
 import { terminalChannel } from './channels/terminal.ts';
 import { webhookChannel } from './channels/webhook.ts';
+import { heart } from './morning/heartbeat.ts';
 import type { Job, Step } from './morning/job.ts';
+import { selfTester } from './morning/self-test.ts';
 import { ownData, ownReaders } from './own-data.ts';
 import type { Clock, IdSource, Services, Stores } from './service-set.ts';
 import type { Mailer } from './security/mailer.ts';
 import { readSettings, type Env, type Settings } from './settings.ts';
 import { demoSources } from './sources/demo.ts';
 import { liveSources } from './sources/order.ts';
+import { absenceStore } from './store/absence.ts';
 import { breakerStore } from './store/breaker.ts';
 import { briefStore } from './store/brief.ts';
 import { channelStore } from './store/channel.ts';
@@ -84,7 +87,7 @@ function mailerOf({ smtp, mailFrom }: Settings, env: Env): Mailer | null {
   return env.MAIL === undefined ? null : bindingMailer(env.MAIL, mailFrom);
 }
 
-export function assemble(world: World, instead: Partial<Pick<Services, 'sourcesFor' | 'judge'>> = {}): Services {
+export function assemble(world: World, instead: Partial<Pick<Services, 'sourcesFor' | 'judge' | 'selfTest'>> = {}): Services {
   const { settings, clock, ids, random, mailer = null } = world;
   const stores = storesOn(database(world.db, { sleep: world.sleep, random, timeoutMs: world.patienceMs ?? PATIENCE_MS }));
   return {
@@ -96,6 +99,9 @@ export function assemble(world: World, instead: Partial<Pick<Services, 'sourcesF
     wake: waker(world.queues, world.patienceMs ?? PATIENCE_MS),
     sourcesFor: sourcesOf(world, stores),
     judge: judgeDay,
+    // A stand-in for the judge stands in a test and not before subscribers: it is not asked what it knows.
+    selfTest: instead.judge === undefined ? selfTester(judgeDay, ownData.thresholds) : () => [],
+    heartbeat: heart(settings.heartbeatUrl, world.fetch),
     mailer,
     addresses: addressesOf(settings),
     channels: {
@@ -151,6 +157,7 @@ function storesOn(db: Database): Stores {
     breaker: breakerStore(db),
     sourceCache: sourceCacheStore(db),
     windowState: windowStateStore(db),
+    absence: absenceStore(db),
     terminal: terminalStore(db),
     log: logStore(db),
     signup: signupStore(db),

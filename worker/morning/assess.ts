@@ -12,6 +12,7 @@ import type { AssessRun } from '../store/run-work.ts';
 import { answersFor, type DayAnswers } from './answers.ts';
 import { digestOf } from './digest.ts';
 import { placesOf } from './places.ts';
+import { isJudgeTrusted } from './self-test.ts';
 import { ASSESS_CHUNK, SEND_CHUNK } from './sizes.ts';
 import { LEASE_MS, REFETCH_AFTER_MS } from './times.ts';
 
@@ -21,6 +22,11 @@ export async function assessStep(services: Services): Promise<boolean> {
   const runs = await stores.runWork.claimAssessments({ nowMs: clock.nowMs(), leaseMs: LEASE_MS, by: services.ids.next(), limit: ASSESS_CHUNK });
   const [first] = runs;
   if (first === undefined) return false;
+  if (!(await isJudgeTrusted(services))) {
+    const back = stores.runWork.release(runs.map((run) => run.key));
+    await stores.db.write(back.sql, ...back.values);
+    return false;
+  }
   const place = (await placesOf(services, [first.siteId])).get(first.siteId);
   if (place === undefined) await putOff(services, runs, 'the site is gone or cannot be read');
   else await assessSiteDay(services, { runs, place, localDate: first.localDate });

@@ -26,6 +26,7 @@ export function isRecheckDue(nowMs: number, lastRecheckMs: number): boolean {
 export async function planRecheck(services: Services, nowMs: number, patience: Patience): Promise<void> {
   const { stores } = services;
   const told = await stores.windowState.toldPairDays(nowMs);
+  if (told.length === 0) return stores.meta.set('last-recheck', String(nowMs)).then(() => undefined);
   const newest = new Map((await stores.windowState.newestTwo(told)).toReversed().map((brief) => [keyOf(brief), brief]));
   const wanted = told.filter((pairDay) => {
     const brief = newest.get(keyOf(pairDay));

@@ -1,12 +1,17 @@
 import { MINUTE_MS } from '../../lib/time.ts';
 import type { Services } from '../service-set.ts';
-import { SCHEMA_VERSION } from '../store/meta.ts';
+import { SCHEMA_VERSION, type MetaKey } from '../store/meta.ts';
+import { planAbsent } from './absent.ts';
 import { BOARD_MINUTE, planBoard } from './board.ts';
 import { planDue } from './due.ts';
+import { beat } from './heartbeat.ts';
 import { noticeChanges } from './notices.ts';
 import { isRecheckDue, planRecheck } from './recheck.ts';
+import { checkClock, isJudgeTrusted } from './self-test.ts';
+import { sideStep } from './side-step.ts';
 import { sweep, tidy } from './sweep.ts';
 import { USUAL_PATIENCE, type Patience } from './times.ts';
+import { planWeeklyTest } from './weekly-test.ts';
 
 /** Ticks further apart than this mean that the platform did not call us. */
 const GAP_MS = 5 * MINUTE_MS;
@@ -29,10 +34,18 @@ export async function tick(services: Services, scheduledAtMs: number, patience: 
   }
   await planDue(services, nowMs, patience);
   if (new Date(scheduledAtMs).getUTCMinutes() === BOARD_MINUTE) await planBoard(services, nowMs);
-  if (isRecheckDue(nowMs, Number(meta.get('last-recheck') ?? 0))) await planRecheck(services, nowMs, patience);
-  if (Number(meta.get('last-assess') ?? 0) >= Number(meta.get('last-notice') ?? 0) - MINUTE_MS) await noticeChanges(services, nowMs, Number(meta.get('last-notice') ?? 0));
+  const lastMs = (key: MetaKey): number => Number(meta.get(key) ?? 0);
+  await sideStep(services, 'self-test', async () => {
+    await checkClock(services, meta.get('clock-fault') ?? '');
+    if (nowMs - lastMs('last-self-test') > 10 * MINUTE_MS) await isJudgeTrusted(services);
+  });
+  if (isRecheckDue(nowMs, lastMs('last-recheck'))) await sideStep(services, 'recheck', () => planRecheck(services, nowMs, patience));
+  if (lastMs('last-assess') >= lastMs('last-notice') - MINUTE_MS) await sideStep(services, 'notice', () => noticeChanges(services, nowMs, lastMs('last-notice')));
+  await sideStep(services, 'absent', () => planAbsent(services, nowMs, (meta.get('judge-fault') ?? '') !== ''));
+  await sideStep(services, 'weekly-test', () => planWeeklyTest(services, nowMs, lastMs('last-weekly-test')));
   await sweep(services, nowMs);
   await tidy(services, nowMs, Number(meta.get('last-tidy') ?? 0));
+  await sideStep(services, 'heartbeat', () => beat(services, nowMs, meta));
   const done = stores.meta.setting('last-tick', String(nowMs));
   await stores.db.write(done.sql, ...done.values);
 }

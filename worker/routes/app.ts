@@ -12,6 +12,7 @@ import { operator } from './operator.ts';
 import { pages } from './pages.ts';
 import { planApi, planPages } from './plan.ts';
 import { problem } from './problem.ts';
+import { status } from './status.ts';
 import { subscriptions } from './subscriptions.ts';
 
 /** The methods that the paths answer; any other is told so. */
@@ -19,6 +20,7 @@ const METHODS: Readonly<Record<string, string>> = {
   '/': 'GET, HEAD',
   '/sites/:id': 'GET, HEAD',
   '/healthz': 'GET, HEAD',
+  '/status': 'GET, HEAD',
   '/feeds/:file': 'GET, HEAD',
   '/plan': 'GET, HEAD, POST',
   '/plan/:token': 'GET, HEAD, POST',
@@ -46,6 +48,7 @@ const METHODS: Readonly<Record<string, string>> = {
 export function app(services: Services): Hono {
   const hono = new Hono();
   hono.get('/healthz', () => health(services));
+  hono.route('/status', status(services));
   hono.route('/api/v1/plan', planApi(planServices(services)));
   hono.post('/api/v1/bounces', (c) => bounce(services, c.req.raw));
   hono.route('/api/v1/operator', operator(services));

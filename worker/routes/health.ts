@@ -1,4 +1,5 @@
 import { HOUR_MS } from '../../lib/time.ts';
+import { imbalances } from '../morning/heartbeat.ts';
 import type { Services } from '../service-set.ts';
 import { SCHEMA_VERSION, type MetaKey } from '../store/meta.ts';
 import { json, problem } from './problem.ts';
@@ -6,7 +7,10 @@ import { json, problem } from './problem.ts';
 /** A cron that has not come for so long is worth a look. */
 const QUIET_MS = 5 * 60_000;
 
-const STEPS = ['tick', 'fetch', 'assess', 'deliver', 'sweep'] as const;
+const STEPS = ['tick', 'fetch', 'assess', 'deliver', 'sweep', 'recheck', 'notice', 'absent', 'self-test', 'weekly-test', 'balance', 'heartbeat'] as const;
+
+/** The watchdog is told every five minutes; so long without it is worth a look. */
+const UNHEARD_MS = 15 * 60_000;
 
 /** How this service is: 200 with the state of every step, 503 only when the database or its schema cannot be used. */
 export async function health(services: Services): Promise<Response> {
@@ -21,7 +25,7 @@ export async function health(services: Services): Promise<Response> {
   if (Number(meta.get('schema')) !== SCHEMA_VERSION) {
     return problem('unusable', { detail: `the database has schema ${meta.get('schema') ?? 'none'}, this code needs ${SCHEMA_VERSION}: apply the migrations` });
   }
-  const [outbox, work, ages, errors] = await Promise.all([stores.outboxUpkeep.counts(), stores.run.openCounts(), stores.forecast.ages(), stores.log.newest(10)]);
+  const [outbox, work, ages, errors, books] = await Promise.all([stores.outboxUpkeep.counts(), stores.run.openCounts(), stores.forecast.ages(), stores.log.newest(10), stores.absence.books(nowMs)]);
   const lastAt = (step: (typeof STEPS)[number]): number | null => {
     const key: MetaKey = `last-${step}`;
     return meta.has(key) ? Number(meta.get(key)) : null;
@@ -29,6 +33,8 @@ export async function health(services: Services): Promise<Response> {
   const tickMs = lastAt('tick');
   const warnings = [
     ...(tickMs === null || nowMs - tickMs > QUIET_MS ? ['no tick for more than five minutes: briefs are not being made'] : []),
+    ...imbalances(books, { judge: meta.get('judge-fault') ?? '', clock: meta.get('clock-fault') ?? '' }),
+    ...(services.settings.heartbeatUrl !== null && nowMs - (lastAt('heartbeat') ?? 0) > UNHEARD_MS ? ['the watchdog outside has not been told for more than fifteen minutes'] : []),
     ...(services.settings.linkKey === null ? ['LINK_KEY is not set: no webhook can be signed'] : []),
     ...(work.failed > 0 ? [`${work.failed} pieces of work were given up`] : []),
     ...(outbox.dead > 0 ? [`${outbox.dead} messages could not be delivered`] : []),
