@@ -114,7 +114,8 @@ function thunder(view: HourView): 'signalled' | 'none' | 'unknown' {
 const storm: Rule = {
   id: 'storm', unit: 'J/kg', sense: 'atMost',
   limit: ({ sheet }) => sheet.limits.maxCapeJkg ?? 0,
-  needs: (view) => (view.setup.sheet.limits.maxCapeJkg === undefined ? ['weatherCode'] : ['weatherCode', 'capeJkg']),
+  // A signalled thunderstorm needs no CAPE: a source that gives none has its vote in this.
+  needs: (view) => (view.setup.sheet.limits.maxCapeJkg === undefined || thunder(view) === 'signalled' ? ['weatherCode'] : ['weatherCode', 'capeJkg']),
   demand(view): Demand {
     const signal = thunder(view);
     if (signal === 'signalled') return 'no solution';

@@ -77,7 +77,7 @@ export function createOpenMeteo(entry: OpenMeteoSource, host: Host, key: string 
       else if (run.value === null && !entry.trustWithoutRunTime) give(sites, { kind: 'run-missing' });
       if (!run.ok || (run.value === null && !entry.trustWithoutRunTime)) return answers;
 
-      const ask: Ask = { ...entry, fromMs: epochOf(request.fromUtc), toMs: epochOf(request.toUtc) };
+      const ask: Ask = { ...entry, declares: [...entry.declares, ...entry.mayGive], fromMs: epochOf(request.fromUtc), toMs: epochOf(request.toUtc) };
       const locations = await locationsOf(sites, ask);
       const isAnswered = [...locations.values()].some((location) => location.ok);
       const hasPressure = isAnswered && entry.kind === 'deterministic' && entry.declares.includes('referencePressureHpa');
@@ -116,7 +116,8 @@ export function forecastOf(entry: OpenMeteoSource, site: Site, parts: ForecastPa
   const members = toMembers(location, ask);
   if (!members.ok) return members;
   const hasStep = site.pressureStep !== null && entry.declares.includes('referencePressureHpa');
-  const declares: readonly ConditionField[] = entry.declares.filter((field) => field !== 'referencePressureHpa' || hasStep);
+  const given = entry.mayGive.filter((field) => members.value.some((hours) => hours.some((hour) => hour[field] !== null && hour[field] !== undefined)));
+  const declares: readonly ConditionField[] = [...entry.declares, ...given].filter((field) => field !== 'referencePressureHpa' || hasStep);
   return success({
     source: entry.id,
     kind: entry.kind,

@@ -38,12 +38,14 @@ export type HourlyField = keyof typeof HOURLY_FIELDS;
 
 export interface Wanted {
   readonly declares: readonly ConditionField[];
+  readonly mayGive?: readonly ConditionField[];
   readonly nearGroundM: readonly number[];
   readonly levelsHpa: readonly number[];
 }
 
 /** Every column to ask for, with the unit it must have. */
-export function columnsFor({ declares, nearGroundM, levelsHpa }: Wanted): ReadonlyMap<string, UnitWord> {
+export function columnsFor({ declares: surely, mayGive = [], nearGroundM, levelsHpa }: Wanted): ReadonlyMap<string, UnitWord> {
+  const declares = [...surely, ...mayGive];
   const columns = new Map<string, UnitWord>();
   const wind = (place: string) => columns.set(`wind_speed_${place}`, 'm/s').set(`wind_direction_${place}`, '°');
   if (declares.includes('wind10m')) wind('10m');
