@@ -138,7 +138,9 @@ describe('what is missing, by name', () => {
     expect(missing('cloudBase', { ...spoilt(850, { temperatureC: null }) })).toEqual(['levels 850 hPa.temperatureC']);
     expect(missing('cloudBase', spoilt(850, { relativeHumidityPct: 130 }))).toEqual(['levels 850 hPa.relativeHumidityPct']);
     expect(missing('upperWind', { levels: null })).toEqual(['levels']);
-    // A level under the ground of the model is missed by nobody.
+    // A level under the ground of the model, or just on it, is missed by nobody.
+    const onGround = { levels: hourAt(12).levels!.map((level) => (level.pressureHpa === 900 ? { ...level, altitudeM: ALPINE_GROUND_M, speedMps: null } : level.pressureHpa === 800 ? { ...level, speedMps: null } : level)) };
+    expect(missing('upperWind', onGround)).toEqual(['levels 800 hPa.speedMps']);
     const both = { levels: hourAt(12).levels!.map((level) => (level.pressureHpa === 800 || level.pressureHpa === 1000 ? { ...level, speedMps: null } : level)) };
     expect(missing('upperWind', both)).toEqual(['levels 800 hPa.speedMps']);
   });
@@ -197,6 +199,8 @@ describe('the working', () => {
 
   test('lists only numbers', () => {
     for (const rule of LAUNCH_RULES) for (const { value } of workingOf(rule, viewOf({}))) expect(Number.isFinite(value)).toBe(true);
+    const doubtful = { ...ruleOf('visibility'), terms: () => [{ term: 'known', value: 1, unit: 'm', origin: 'here' }, { term: 'not known', value: NaN, unit: 'm', origin: 'nowhere' }] };
+    expect(workingOf(doubtful, viewOf({})).map(({ term }) => term)).toEqual(['known']);
     // By night a thermal of nothing, without the depth that it did not need.
     const terms = working('thermal', { hours: [hourAt(12, { shortwaveWm2: 0, mixedLayerM: null, temperature2mC: null })] });
     expect(terms.map(({ term }) => term)).toEqual(['heat flux', 'limit of the sheet', 'thermal strength w*']);

@@ -18,7 +18,7 @@ const MODULES = [
 /** Those that tell within a second. */
 const QUICK = [
   'test/properties/verdict-laws.test.ts', 'test/properties/unit-laws.test.ts', 'test/lib/forecast/ages.test.ts', 'test/lib/forecast/frame.test.ts',
-  'test/lib/margin/margin.test.ts', 'test/lib/margin/verdict.test.ts', 'test/lib/margin/judge-member.test.ts', 'test/lib/margin/range-gate.test.ts',
+  'test/lib/margin/margin.test.ts', 'test/lib/margin/verdict.test.ts', 'test/lib/margin/agreement.test.ts', 'test/lib/margin/judge-member.test.ts', 'test/lib/margin/range-gate.test.ts',
   'test/lib/margin/frame-gate.test.ts',
 ];
 
