@@ -23,6 +23,7 @@ const STEPS: readonly Step[] = [
   { name: 'laws', what: 'the laws on 5,000 cases each', ...vitest('test/properties/air-laws', 'test/properties/unit-laws', 'test/properties/wing-laws', 'test/properties/verdict-laws', 'test/properties/hour-laws', 'test/properties/day-laws'), env: { LAW_RUNS: '5000', LAW_SEED: seed } },
   { name: 'second-opinion', what: 'two implementations on 3,000 random sites', ...vitest('test/properties/second-opinion'), env: { SECOND_OPINION_CASES: '3000', SECOND_OPINION_SEED: seed } },
   { name: 'payloads', what: 'a million spoilt answers of services, none of which may read as within', ...vitest('test/lib/sources/mutated-payloads', 'test/lib/sources/mutated-surface'), env: { DAWNMARGIN_PROVE: '1' } },
+  { name: 'year', what: '366 mornings in twelve zones while one call in ten fails, nobody left in silence', script: 'test/prove/year.ts' },
   { name: 'words', what: 'every prefix of the messages of a quarter of a million days', ...vitest('test/lib/words/prefix-safe'), env: { DAWNMARGIN_PROVE: '1' } },
 ];
 
