@@ -1,0 +1,62 @@
+// The OpenAPI 3.1 description, made from the schemas that read requests. It is served as a file, so it costs the worker nothing.
+import * as z from 'zod';
+import { forgetSchema, pairsSchema } from '../../lib/config/operator.ts';
+import { preferencesSchema, subscriptionSchema } from '../../lib/config/subscription.ts';
+
+type Json = Readonly<Record<string, unknown>>;
+
+function schemaOf(schema: z.core.$ZodType): Json {
+  const { $schema: _, ...rest } = z.toJSONSchema(schema, { io: 'input', unrepresentable: 'any' }) as Json;
+  return rest;
+}
+
+const ref = (name: string): Json => ({ $ref: `#/components/schemas/${name}` });
+const answer = (description: string, schema: Json = { type: 'object' }, type = 'application/json'): Json => ({ description, content: { [type]: { schema } } });
+const problem = (description: string): Json => answer(description, ref('Problem'), 'application/problem+json');
+const body = (schema: Json): Json => ({ required: true, content: { 'application/json': { schema } } });
+const parameter = (name: string, place: 'path' | 'query' | 'header', description: string): Json => ({ name, in: place, required: place !== 'query', description, schema: { type: 'string' } });
+
+const WRONG = { 400: problem('Everything that is wrong, each with its path'), 413: problem('Too large'), 415: problem('Not JSON') };
+const TOKEN = [parameter('token', 'path', 'the secret of a manage link')];
+const NO_TOKEN = { 404: problem('No such token; the same answer whatever is wrong with it') };
+const OPERATOR = { 401: problem('No valid token, or a page of another origin'), 429: problem('Too many wrong tokens') };
+const IF_MATCH = parameter('if-match', 'header', 'the ETag that was read');
+const STALE = { 412: problem('Changed since it was read'), 428: problem('If-Match is missing') };
+const operator = (summary: string, rest: Json): Json => ({ summary, security: [{ operator: [] }], ...rest, responses: { ...(rest['responses'] as Json), ...OPERATOR } });
+
+export function openapi(): Json {
+  return {
+    openapi: '3.1.0',
+    info: { title: 'Dawnmargin', version: '1', description: 'Margins of launches and tow strips, computed from forecasts, not observed. Local rules, site rules, instructor or tow master and the sky itself decide.', license: { name: 'MIT', identifier: 'MIT' } },
+    paths: {
+      '/api/v1/assess': { post: { summary: 'Judge hours that the caller gives; nothing is stored', requestBody: body(ref('AssessRequest')), responses: { 200: answer('Hours with margins and their working'), ...WRONG, 429: problem('More than 300 a minute') } } },
+      '/api/v1/sites': { get: { summary: 'The sites, as GeoJSON', responses: { 200: answer('A FeatureCollection', { type: 'object' }, 'application/geo+json') } } },
+      '/api/v1/sites/{id}/days/{date}': { get: { summary: 'The judged day of a site', parameters: [parameter('id', 'path', 'id of the site'), parameter('date', 'path', 'yyyy-mm-dd at the site'), parameter('wing', 'query', 'key of a wing'), parameter('sheet', 'query', 'id of a limit sheet')], responses: { 200: answer('The day, with its sentence and the notice'), 400: problem('Not a date, a wing or a sheet'), 404: problem('No such site') } } },
+      '/api/v1/subscriptions': { post: { summary: 'Ask to be told; nothing is sent before the channel has said yes', requestBody: body(ref('Subscription')), responses: { 202: answer('Accepted: the same answer whatever an address is to this service'), ...WRONG, 429: problem('Too many from one network today') } } },
+      '/api/v1/manage/{token}': {
+        parameters: TOKEN,
+        get: { summary: 'What is kept', responses: { 200: answer('Wishes and channels'), ...NO_TOKEN } },
+        put: { summary: 'Change the wishes; channels stay', requestBody: body(ref('Preferences')), responses: { 200: answer('What is kept now'), ...WRONG, ...NO_TOKEN } },
+        post: { summary: 'Pause, resume, test, make new links or end', requestBody: body({ type: 'object', required: ['action'], properties: { action: { enum: ['pause', 'resume', 'test', 'renew-links', 'end'] }, until: { type: ['string', 'null'], format: 'date' } }, additionalProperties: false }), responses: { 200: answer('Done'), ...WRONG, ...NO_TOKEN, 429: problem('More than ten tests a day') } },
+        delete: { summary: 'End it and erase everything that is kept', responses: { 200: answer('Ended'), ...NO_TOKEN } },
+      },
+      '/unsubscribe/{token}': { parameters: [parameter('token', 'path', 'the secret of an unsubscribe link')], post: { summary: 'One-click unsubscribe (RFC 8058)', requestBody: { required: true, content: { 'application/x-www-form-urlencoded': { schema: { type: 'object', properties: { 'List-Unsubscribe': { const: 'One-Click' } } } } } }, responses: { 200: answer('Ended', { type: 'string' }, 'text/html'), 400: answer('Not understood', { type: 'string' }, 'text/html'), 404: answer('No such token', { type: 'string' }, 'text/html') } } },
+      '/api/v1/bounces': { post: { summary: 'What the mail service reports, signed by Standard Webhooks', requestBody: body({ type: 'object', required: ['messageId', 'type'], properties: { messageId: { type: 'string' }, type: { enum: ['hard', 'soft', 'complaint'] } } }), responses: { 200: answer('Noted'), 400: problem('Not a report'), 401: problem('Not signed, or too old'), 413: problem('Too large') } } },
+      '/api/v1/operator/sites': { get: operator('All sites with their ETag', { responses: { 200: answer('A FeatureCollection', { type: 'object' }, 'application/geo+json') } }), put: operator('Replace all sites', { parameters: [IF_MATCH], requestBody: body({ type: 'object' }), responses: { 200: answer('The sites now', { type: 'object' }, 'application/geo+json'), ...WRONG, ...STALE } }) },
+      '/api/v1/operator/sheets': { get: operator('All limit sheets', { responses: { 200: answer('The newest versions', { type: 'array', items: { type: 'object' } }) } }) },
+      '/api/v1/operator/sheets/{id}': { parameters: [parameter('id', 'path', 'id of the sheet')], get: operator('A sheet and what its versions changed', { responses: { 200: answer('Sheet and history'), 404: problem('No such sheet') } }), put: operator('A new version; what loosens is told with the next brief', { parameters: [{ ...IF_MATCH, required: false }], requestBody: body({ type: 'object' }), responses: { 200: answer('Version and changes'), ...WRONG, ...STALE } }) },
+      '/api/v1/operator/published': { get: operator('The pairs on the board', { responses: { 200: answer('Pairs', ref('Pairs')) } }), put: operator('Replace the pairs on the board', { requestBody: body(ref('Pairs')), responses: { 200: answer('Pairs', ref('Pairs')), ...WRONG } }) },
+      '/api/v1/operator/forget': { post: operator('Erase a person', { requestBody: body(ref('Forget')), responses: { 200: answer('The same whether or not there was somebody'), ...WRONG } }) },
+      '/api/v1/operator/bounce-secret': { get: operator('The secret that bounces are signed with', { responses: { 200: answer('The secret') } }) },
+      '/healthz': { get: { summary: 'How this service is', responses: { 200: answer('The state of each step'), 503: problem('The database cannot be used') } } },
+    },
+    components: {
+      securitySchemes: { operator: { type: 'http', scheme: 'bearer' } },
+      schemas: {
+        Subscription: schemaOf(subscriptionSchema()), Preferences: schemaOf(preferencesSchema()), Pairs: schemaOf(pairsSchema()), Forget: schemaOf(forgetSchema()),
+        AssessRequest: { type: 'object', required: ['site', 'wing', 'sheet', 'hours'], properties: { site: { type: 'object' }, wing: { type: 'object' }, sheet: { type: 'object' }, hours: { type: 'array', items: { type: 'object' } }, declares: { type: 'array', items: { type: 'string' } }, now: { type: ['string', 'null'], format: 'date-time' } }, additionalProperties: false },
+        Problem: { type: 'object', required: ['type', 'title', 'status'], properties: { type: { type: 'string', format: 'uri' }, title: { type: 'string' }, status: { type: 'integer' }, detail: { type: 'string' }, problems: { type: 'array', items: { type: 'object', required: ['path', 'value', 'problem', 'allowed'], properties: { path: { type: 'string' }, value: { type: 'string' }, problem: { type: 'string' }, allowed: { type: 'string' } } } } } },
+      },
+    },
+  };
+}
