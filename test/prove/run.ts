@@ -25,6 +25,7 @@ const STEPS: readonly Step[] = [
   { name: 'payloads', what: 'a million spoilt answers of services, none of which may read as within', ...vitest('test/lib/sources/mutated-payloads', 'test/lib/sources/mutated-surface'), env: { DAWNMARGIN_PROVE: '1' } },
   { name: 'year', what: '366 mornings in twelve zones while one call in ten fails, nobody left in silence', script: 'test/prove/year.ts' },
   { name: 'words', what: 'every prefix of the messages of a quarter of a million days', ...vitest('test/lib/words/prefix-safe'), env: { DAWNMARGIN_PROVE: '1' } },
+  { name: 'lighthouse', what: 'board and day page, four scores of at least 98 each; on an idle machine', script: 'test/prove/lighthouse.ts' },
 ];
 
 const wanted = process.argv.slice(2);
