@@ -14,8 +14,8 @@ export const ZONES: readonly (readonly [timeZone: string, lonDeg: number, latDeg
 
 const DELIVER = { hour: 6, minute: 0 };
 /** Ticks of a morning, minutes after its time, and of every hour: those in which something is due. */
-const MORNING = [0, 1, 2, 3, 5, 8, 10, 11, 13, 20, 30, 31, 45];
-const HOURLY = [10, 11, 12];
+const MORNING = [0, 1, 2, 3, 5, 8, 10, 11, 20, 30];
+const HOURLY = [10, 11];
 
 export interface YearReport {
   readonly days: number;

@@ -16,6 +16,9 @@ export interface Books {
 /** How long after its last moment to be made a brief is given up, and after which nothing may be waiting. */
 export const DEADLINE_MS = 20 * 60_000;
 
+/** Messages are open for hours, not days: older ones need no look, and reading them all would cost more every day. */
+const LOOKED_AT_MS = 48 * 3_600_000;
+
 export function absenceStore(db: Database) {
   const IDLE = `o.state = 'pending' AND (o.lease_until IS NULL OR o.lease_until <= ?1)`;
   return {
@@ -44,7 +47,7 @@ export function absenceStore(db: Database) {
           COALESCE(SUM(${IDLE} AND o.next_attempt_at <= ?1 - ${DEADLINE_MS} AND o.ready_by <= ?1 - ${DEADLINE_MS} AND o.valid_until > ?1), 0) AS stuck,
           COALESCE(SUM(${IDLE} AND o.valid_until <= ?1 - 300000), 0) AS overdue,
           COALESCE(SUM((o.state <> 'pending') <> (o.settled_at IS NOT NULL) OR (o.state <> 'pending' AND o.reason IS NULL)), 0) AS unaccounted
-          FROM outbox AS o WHERE o.state = 'pending' OR o.due_at > ?1 - 172800000`,
+          FROM outbox AS o WHERE o.due_at > ?1 - ${LOOKED_AT_MS}`,
         nowMs,
       );
       return row ?? { unplanned: 0, stuck: 0, overdue: 0, unaccounted: 0 };
