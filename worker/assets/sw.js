@@ -124,5 +124,6 @@ async function renew() {
   const waiting = await recall('renew');
   if (waiting === null) return;
   const answer = await fetch('/push/renew', { method: 'POST', headers: { 'content-type': 'application/json' }, body: JSON.stringify(waiting) }).catch(() => null);
-  if (answer !== null && answer.status < 500 && answer.status !== 429) await (await caches.open(STATE)).delete(key('renew'));
+  // Kept until somebody has taken it, or says that there is nobody to renew.
+  if (answer !== null && (answer.ok || answer.status === 410)) await (await caches.open(STATE)).delete(key('renew'));
 }
