@@ -3,7 +3,7 @@
 import { describe, expect, test } from 'vitest';
 import type { Conditions, Level } from '../../../lib/forecast/conditions.ts';
 import { checkHour, plausible, PLAUSIBLE, type PlausibleKey } from '../../../lib/forecast/ranges.ts';
-import { geometricM, pressureAltitudeM, standardAir } from '../../../lib/air/standard-atmosphere.ts';
+import { geometricM, geopotentialM, pressureAltitudeM, standardAir } from '../../../lib/air/standard-atmosphere.ts';
 
 /** Data shapes, "Plausible ranges". */
 const PAGE: Readonly<Record<PlausibleKey, readonly [number, number]>> = {
@@ -102,6 +102,9 @@ describe('dew point and pressure', () => {
     expect(checked({ surfacePressureHpa: standardHpa + 60.02 }).surfacePressureHpa).toBeNaN();
     expect(checked({ surfacePressureHpa: standardHpa - 60.02 }).surfacePressureHpa).toBeNaN();
     expect(checked({ surfacePressureHpa: '900' }).surfacePressureHpa).toBeNaN();
+    // Exactly 60 is allowed, at a ground where adding it leaves no rounding.
+    const exact = [0, 100, 500, 800, 1000, 1500].map((gridElevationM) => ({ gridElevationM, hpa: standardAir(geopotentialM(gridElevationM)).pressurePa / 100 })).find(({ hpa }) => hpa + 60 - hpa === 60)!;
+    expect(checked({ gridElevationM: exact.gridElevationM, surfacePressureHpa: exact.hpa + 60 }).surfacePressureHpa).toBe(exact.hpa + 60);
     // Out of range however near the standard: no ground is that high.
     expect(checked({ gridElevationM: 8900, surfacePressureHpa: 390 }).surfacePressureHpa).toBeNaN();
     expect(checked({ gridElevationM: 9001, surfacePressureHpa: 900 })).toMatchObject({ gridElevationM: NaN, surfacePressureHpa: NaN });
@@ -178,5 +181,7 @@ describe('pressure levels', () => {
   test('one too high loses against every level it stands above', () => {
     const high = [level(900, { altitudeM: standardM(900) + 890 }), level(850), level(800), level(700)];
     expect(levelsOf(high).map(({ speedMps }) => speedMps)).toEqual([NaN, NaN, 6, 6]);
+    const higher = [level(900, { altitudeM: 1880 }), level(850), level(800, { altitudeM: 1800 }), level(700)];
+    expect(levelsOf(higher).map(({ speedMps }) => speedMps)).toEqual([NaN, NaN, NaN, 6]);
   });
 });
