@@ -68,3 +68,214 @@ describe('a whole life', () => {
     expect(house.letters.length).toBe(before + 2);
   });
 });
+
+describe('what a stranger can learn or change', () => {
+  test('T9 C16 C17 new, pending, confirmed and suppressed get the same answer; one row, one mail', async () => {
+    const answers: string[] = [];
+    const post = async (): Promise<void> => {
+      const response = await house.ask('POST', POST, wish());
+      answers.push(`${response.status} ${JSON.stringify([...response.headers])} ${await response.text()}`);
+    };
+    await Promise.all([post(), post(), post()]);
+    expect(await count('signup')).toBe(1);
+    await house.answerAll();
+    await post();
+    await house.answerAll();
+    expect(house.letters.length).toBe(1);
+    await house.form(house.pathIn('confirm'), { confirm: '1' });
+    await post();
+    await house.answerAll();
+    expect(house.letters.at(-1)!.subject).toBe('This address has a subscription already');
+    await post();
+    await house.answerAll();
+    expect(house.letters.length).toBe(2);
+    const { stores } = house.services();
+    const { owner } = (await env.DB.prepare('SELECT owner FROM subscription').first<{ owner: string }>())!;
+    await stores.db.together([...stores.subscription.erase((await stores.subscription.idOfOwner(owner))!), stores.suppression.add(owner, 'bounced', house.nowMs)]);
+    await post();
+    await house.answerAll();
+    expect(house.letters.length).toBe(2);
+    expect(new Set(answers).size).toBe(1);
+    expect(answers[0]).toContain('202');
+  });
+
+  test('T8 sixty sign-ups for one mailbox in any spelling: one mail', async () => {
+    house.isLocal = false;
+    for (let index = 0; index < 60; index += 1) {
+      const address = index % 2 === 0 ? 'ANA@Mail.Example.ORG' : 'ana@mail.example.org';
+      const response = await house.ask('POST', POST, wish({ channels: [{ kind: 'mail', address }] }), { 'cf-connecting-ip': `198.51.${index % 250}.7` });
+      if (response.status !== 202) throw new Error(`${index}: ${response.status}`);
+    }
+    await house.answerAll();
+    expect(house.letters.length).toBe(1);
+    expect(house.letters[0]!.text).not.toMatch(/ana/i);
+  }, 60_000);
+
+  test('C54 T10 the hundred and first from one network is told to wait', async () => {
+    house.isLocal = false;
+    const statuses: number[] = [];
+    for (let index = 0; index < 103; index += 1) statuses.push((await house.ask('POST', POST, {}, { 'cf-connecting-ip': index % 2 === 0 ? '2001:db8:1:2::1' : '2001:db8:1:2:ffff::9' })).status);
+    expect(new Set(statuses.slice(0, 100))).toEqual(new Set([400]));
+    expect(statuses.slice(100)).toEqual([429, 429, 429]);
+    expect(await everyRow()).not.toContain('2001:db8');
+  }, 60_000);
+
+  test('T11 looking at a link changes nothing', async () => {
+    await house.ask('POST', POST, wish());
+    await house.answerAll();
+    const confirm = house.pathIn('confirm');
+    const look = async (path: string): Promise<void> => {
+      const before = await everyRow();
+      for (const method of ['GET', 'HEAD', 'OPTIONS', 'PROPFIND']) await house.ask(method, path, undefined, { purpose: 'prefetch' });
+      expect(await everyRow()).toBe(before);
+    };
+    await look(confirm);
+    const manage = (await house.form(confirm, { confirm: '1' })).headers.get('location')!;
+    house.nowMs = Date.parse('2027-05-14T04:00:00Z');
+    await house.minute();
+    for (const path of [manage, house.pathIn('unsubscribe'), `/api/v1${manage}`]) await look(path);
+  });
+
+  test('T12 C55 a token is for one purpose, once, for 48 hours, and every other gets one answer', async () => {
+    const manage = await subscribed();
+    const used = house.pathIn('confirm');
+    const secret = manage.split('/').at(-1)!;
+    const bodies = new Set<string>();
+    const wrong = ['x', secret.slice(0, -1), `${secret}x`, 'x'.repeat(10_000), '%00', '%C3%A4', secret.replace('.1.', '.2.'), used.split('/').at(-1)!, ' '];
+    for (const token of wrong) for (const kind of ['confirm', 'manage', 'unsubscribe']) {
+      for (const response of [await house.ask('GET', `/${kind}/${token}`), await house.form(`/${kind}/${token}`, { confirm: '1', action: 'end', 'List-Unsubscribe': 'One-Click' })]) {
+        expect(response.status).toBe(404);
+        bodies.add(await response.text());
+      }
+    }
+    expect((await house.form(`/unsubscribe/${secret}`, { confirm: '1' })).status).toBe(404);
+    expect((await house.ask('GET', `/feeds/${secret}.atom`)).status).toBe(404);
+    expect(bodies.size).toBe(1);
+    expect(await count('subscription')).toBe(1);
+  });
+
+  test('T12 unconfirmed after 48 hours: forgotten, with its token', async () => {
+    await house.ask('POST', POST, wish());
+    await house.answerAll();
+    house.nowMs += 48 * 3_600_000 + 1;
+    expect((await house.form(house.pathIn('confirm'), { confirm: '1' })).status).toBe(404);
+    await house.minute();
+    expect(await everyRow()).not.toMatch(/ana@/);
+    expect([await count('signup'), await count('token')]).toEqual([0, 0]);
+  });
+
+  test('T13 C56 nobody leaves for another; one click needs the words of RFC 8058', async () => {
+    await subscribed();
+    house.nowMs = Date.parse('2027-05-14T04:00:00Z');
+    await house.minute();
+    const leave = house.pathIn('unsubscribe');
+    expect((await house.form('/unsubscribe/ana@mail.example.org', { 'List-Unsubscribe': 'One-Click' })).status).toBe(404);
+    for (const body of ['', 'List-Unsubscribe=Other', '{"List-Unsubscribe":"One-Click"}']) {
+      expect((await house.hono().request(leave, { method: 'POST', body, headers: { 'content-type': 'application/x-www-form-urlencoded' } })).status).toBe(400);
+    }
+    expect((await house.ask('GET', leave)).status).toBe(200);
+    expect(await count('subscription')).toBe(1);
+    const form = new FormData();
+    form.set('List-Unsubscribe', 'One-Click');
+    expect((await house.hono().request(leave, { method: 'POST', body: form, headers: { cookie: 'a=b' } })).status).toBe(200);
+    expect(await count('subscription')).toBe(0);
+  });
+
+  test('T35 C4 more than may be given is refused, and nothing is stored', async () => {
+    const manage = `/api/v1${await subscribed()}`;
+    const before = await everyRow();
+    for (const extra of [{ confirmed: true }, { admin: true }, { id: 'x' }, { owner: 'x' }, { state: 'active' }]) {
+      expect((await house.ask('POST', POST, wish(extra))).status).toBe(400);
+      expect((await house.ask('PUT', manage, { ...wish(extra), channels: undefined })).status).toBe(400);
+      expect((await house.ask('POST', manage, { action: 'pause', ...extra })).status).toBe(400);
+    }
+    expect(await everyRow()).toBe(before);
+  });
+
+  test.each([
+    ['C1 nothing', '', 'application/json', 400], ['C1 text', JSON.stringify(wish()), 'text/plain', 415], ['C1 a form', 'a=b', 'application/x-www-form-urlencoded', 415], ['C2 8 KiB and a byte', `"${'x'.repeat(8191)}"`, 'application/json', 413],
+    ['C3 deep', `${'['.repeat(30)}${']'.repeat(30)}`, 'application/json', 400], ['C3 twice', '{"sites":[],"sites":[]}', 'application/json', 400], ['C3 proto', '{"__proto__":{"x":1}}', 'application/json', 400],
+  ])('%s', async (_, body, type, status) => {
+    expect((await house.ask('POST', POST, body, { 'content-type': type })).status).toBe(status);
+    expect(await count('signup')).toBe(0);
+  });
+
+  test.each(['GET', 'PUT', 'DELETE', 'PATCH'])('C5 %s is told which method there is', async (method) => {
+    const response = await house.ask(method, POST);
+    expect([response.status, response.headers.get('allow')]).toEqual([405, 'POST']);
+  });
+
+  test('T22 T25 secret pages are not kept, framed, indexed or told to others; logs hold no secret', async () => {
+    const manage = await subscribed();
+    const { headers } = await house.ask('GET', manage);
+    expect(Object.fromEntries(headers)).toMatchObject({ 'cache-control': 'no-store', 'referrer-policy': 'no-referrer', 'x-robots-tag': 'noindex', 'x-content-type-options': 'nosniff' });
+    expect(headers.get('content-security-policy')).toContain("frame-ancestors 'none'");
+    expect(headers.get('set-cookie')).toBeNull();
+    const page = await (await house.ask('GET', manage)).text();
+    expect(page).not.toContain('ana@');
+    expect(JSON.stringify((await env.DB.prepare('SELECT * FROM log').all()).results)).not.toMatch(/ana|manage|confirm/);
+  });
+});
+
+describe('a webhook instead of mail', () => {
+  const hook = wish({ channels: [{ kind: 'webhook', url: 'http://127.0.0.1:9/hook' }] });
+  const echo = (body: string) => new Response(JSON.stringify({ challenge: (JSON.parse(body) as { data: { challenge: string } }).data.challenge }));
+
+  test('T17 C48 a receiver that never answers the challenge gets no brief, and is forgotten', async () => {
+    expect((await house.ask('POST', POST, hook)).status).toBe(202);
+    house.nowMs = Date.parse('2027-05-14T04:00:00Z');
+    await house.minutes(30);
+    expect(house.posts.length).toBeGreaterThan(0);
+    expect(house.posts.every(({ id }) => id.startsWith('chl_'))).toBe(true);
+    house.nowMs += 72 * 3_600_000;
+    await house.minute();
+    expect(await count('subscription')).toBe(0);
+  });
+
+  test('one that answers is verified by a test, signed with the secret it was given, and told', async () => {
+    const made = (await (await house.ask('POST', POST, hook)).json()) as { links: { manage: string }; webhookSecret: string };
+    expect(made.webhookSecret).toMatch(/^whsec_/);
+    house.options = { ...house.options, answer: (post) => (post.id.startsWith('chl_') ? echo(post.body) : new Response(null, { status: 204 })) };
+    const manage = `/api/v1${new URL(made.links.manage).pathname}`;
+    expect(await (await house.ask('POST', manage, { action: 'test' })).json()).toMatchObject({ tests: [{ kind: 'webhook', reached: true }] });
+    expect(await (await house.ask('GET', manage)).json()).toMatchObject({ channels: [{ state: 'active' }] });
+    const renewed = (await (await house.ask('POST', manage, { action: 'renew-links' })).json()) as { links: { manage: string } };
+    expect((await house.ask('GET', manage)).status).toBe(404);
+    expect((await house.ask('DELETE', `/api/v1${new URL(renewed.links.manage).pathname}`)).status).toBe(200);
+    expect(await count('channel')).toBe(0);
+  });
+});
+
+const ZONES = ['Europe/Vienna', 'Europe/London', 'America/New_York', 'America/Los_Angeles', 'America/St_Johns', 'America/Santiago', 'Africa/Casablanca', 'Asia/Kathmandu', 'Asia/Tokyo', 'Australia/Lord_Howe', 'Australia/Adelaide', 'Pacific/Auckland'];
+
+test('twelve zones, both clock changes: one brief a wanted day, none in quiet hours, then no trace', async () => {
+  // Not one zone changes its clocks on all of these days; each does on some, or never.
+  const spans = ['2027-03-13T00:00:00Z', '2027-03-27T00:00:00Z', '2027-04-03T00:00:00Z', '2027-09-04T00:00:00Z', '2027-09-25T00:00:00Z', '2027-10-02T00:00:00Z', '2027-10-30T00:00:00Z', '2027-11-06T00:00:00Z'];
+  const isWhole = process.env['PROVE'] !== undefined;
+  const stepMinutes = isWhole ? 15 : 30;
+  for (const from of isWhole ? spans : [spans[1]!, spans[6]!]) {
+    house = await newPostHouse({ nowIso: from });
+    for (const [at, timeZone] of ZONES.entries()) {
+      const address = `p${at}@mail.example.org`;
+      await house.ask('POST', POST, wish({ deliver: { at: '02:30', timeZone }, channels: [{ kind: 'mail', address, ...(at % 3 === 0 ? { quiet: { from: '22:00', to: '04:15' } } : {}) }] }));
+      await house.answerAll();
+      await house.form(house.pathIn('confirm', address), { confirm: '1' });
+    }
+    house.letters = [];
+    const times: { to: string; atMs: number }[] = [];
+    house.mailOutcome = (letter) => { times.push({ to: letter.to, atMs: house.nowMs }); return { state: 'sent' }; };
+    for (let minutes = 0; minutes < 72 * 60; minutes += stepMinutes) {
+      await house.minute();
+      house.nowMs += stepMinutes * 60_000;
+    }
+    for (const [at, timeZone] of ZONES.entries()) {
+      const local = times.filter(({ to }) => to.startsWith(`p${at}@`)).map(({ atMs }) => new Intl.DateTimeFormat('sv', { timeZone, dateStyle: 'short', timeStyle: 'short' }).format(atMs));
+      expect(new Set(local.map((text) => text.slice(0, 10))).size, `${timeZone} ${from} ${local}`).toBe(local.length);
+      expect(local.length, `${timeZone} ${from} ${local}`).toBe(3);
+      for (const text of local) expect(text.slice(11) >= (at % 3 === 0 ? '04:15' : '02:30') && text.slice(11) < '05:00', `${timeZone} ${text}`).toBe(true);
+      const leave = new URL(house.letters.findLast(({ to }) => to.startsWith(`p${at}@`))!.headers['List-Unsubscribe']!.slice(1, -1)).pathname;
+      expect((await house.form(leave, { 'List-Unsubscribe': 'One-Click' })).status).toBe(200);
+    }
+    expect(await everyRow()).not.toContain('@mail.example.org');
+  }
+}, 300_000);

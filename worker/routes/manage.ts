@@ -73,6 +73,8 @@ function nothing(): Response {
 export function managePages(services: Services): Hono {
   const app = new Hono();
 
+  for (const kind of ['confirm', 'manage', 'unsubscribe']) app.all(`/${kind}/`, () => nothing());
+
   app.get('/confirm/:token', async (c) => {
     const isOpen = (await services.stores.token.subject(c.req.param('token'), 'confirm', services.clock.nowMs())) !== null;
     return isOpen ? shown(askPage('Confirm the subscription', { text: 'From then on a brief is sent to the address at which you read this link.', button: 'Confirm' })) : nothing();
