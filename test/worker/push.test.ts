@@ -3,6 +3,7 @@ import type { Message } from '../../worker/channels/channel.ts';
 import { areKeys, encrypt, fresh, MOST_PLAIN_BYTES } from '../../worker/channels/push/encrypt.ts';
 import { endpointProblem, readTarget } from '../../worker/channels/push/endpoint.ts';
 import { MOST_BYTES, pushPayload } from '../../worker/channels/push/payload.ts';
+import { pushChannel } from '../../worker/channels/push/push.ts';
 import { vapid } from '../../worker/channels/push/vapid.ts';
 import { base64Url, base64UrlBytes } from '../../worker/secrets.ts';
 
@@ -126,4 +127,17 @@ describe('the payload', () => {
   test('has a small form', () => {
     expect(pushPayload({ ...message, title: 'x'.repeat(5000) }, { origin: 'https://brief.example.org', minimal: true }).length).toBeLessThan(500);
   });
+});
+
+test('T24: nothing goes to an endpoint whose browser has not shown that it asked', async () => {
+  let asked = 0;
+  const channel = pushChannel({
+    fetch: () => { asked += 1; return Promise.resolve(new Response(null, { status: 201 })); },
+    local: true, publicUrl: 'http://127.0.0.1:8787', authorize: () => Promise.resolve('vapid t=x, k=y'),
+    quarrels: { untilMs: () => Promise.resolve(null), begin: () => Promise.resolve() },
+  } as unknown as Parameters<typeof pushChannel>[0]);
+  const address = { id: 'someone', target: '{}', state: 'unverified' as const, secretVersion: 1, oldestSecretVersion: 1 };
+  const outcome = await channel.send({} as Message, address, { number: 1, nowMs: 0, timeoutMs: 1000, untilMs: 1000 });
+  expect(outcome).toEqual({ state: 'refused', reason: 'this browser has not confirmed that it wants to be told' });
+  expect(asked).toBe(0);
 });

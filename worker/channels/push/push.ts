@@ -33,6 +33,8 @@ export function pushChannel(options: PushOptions): Channel {
     // A push service is one host for thousands of browsers, and takes them side by side.
     lane: (address) => address.id,
     async send(message, address, attempt) {
+      // Anyone can send us someone's endpoint; nothing goes there before that browser has shown that it asked.
+      if (address.state !== 'active') return { state: 'refused', reason: 'this browser has not confirmed that it wants to be told' };
       const target = targetOf(address);
       if ('problem' in target) return { state: 'gone', reason: `the push subscription is refused: ${target.problem}` };
       if (message.demo && !isLoopbackEndpoint(target.endpoint)) return { state: 'refused', reason: 'invented weather stays on this machine' };
