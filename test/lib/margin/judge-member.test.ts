@@ -96,6 +96,10 @@ describe('a margin that does not apply', () => {
     expect(marginOf('sector', { site })).toBeNull();
   });
 
+  test('neither is one that the sheet has no limit for', () => {
+    expect(marginOf('arrival', { sheet: 'ground-handling' })).toBeNull();
+  });
+
   test('one that it does blow from is held to its own limit', () => {
     expect(marginOf('sector', { site: { ...site, sectors: [{ ...site.sectors[0]!, fromDeg: 200 }] } })).toMatchObject({ limit: 2, unit: 'm/s', noVote: false });
   });

@@ -52,7 +52,10 @@ async function consume(step: string): Promise<void> {
   }
 }
 
-createInterface({ input: process.stdin }).on('line', (line) => {
+const input = createInterface({ input: process.stdin });
+// Whoever started us is gone.
+input.on('close', () => void miniflare.dispose().finally(() => process.exit()));
+input.on('line', (line) => {
   const [step = '', side = '1'] = line.split(' ');
   const begunMs = Date.now();
   Promise.all(Array.from({ length: Number(side) }, () => consume(step))).then(
