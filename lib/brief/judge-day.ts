@@ -43,9 +43,14 @@ export function judgeDay(input: DayInput): JudgedDay {
     hours: judged,
     sources: poll.votes,
     cautions: cautionsOf({ input, setup, poll, hours: judged, windows, legalDay: day }),
-    notJudged: agreementJudged ? notJudged : [...notJudged, { id: 'agreement', why: input.sheet.limits.minAgreement === undefined ? 'the sheet has no minAgreement' : 'no ensemble has a vote' }],
+    notJudged: agreementJudged ? notJudged : [...notJudged, { id: 'agreement', why: whyNoAgreement(input, poll) }],
     localRules: input.site.localRules,
   };
+}
+
+function whyNoAgreement({ sheet }: DayInput, poll: Poll): string {
+  if (sheet.limits.minAgreement === undefined) return 'the sheet has no minAgreement';
+  return poll.ensembles.length === 0 ? 'no ensemble has a vote' : 'the ensemble gives nothing that is judged here';
 }
 
 interface HourInput {
