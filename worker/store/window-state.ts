@@ -69,9 +69,9 @@ export function windowStateStore(db: Database) {
         nowMs,
       );
     },
-    /** Pair-days with a revision issued since then, and not over. */
+    /** Pair-days with a revision issued since then, and not over. Left to itself, the search for distinct ones reads every brief there is. */
     freshPairDays(sinceMs: number, nowMs: number): Promise<PairDay[]> {
-      return db.read<PairDay>(`SELECT DISTINCT ${PAIR} FROM brief AS b WHERE b.issued_at > ? AND b.valid_until > ?`, sinceMs, nowMs);
+      return db.read<PairDay>(`SELECT DISTINCT ${PAIR} FROM brief AS b INDEXED BY brief_by_issue WHERE b.issued_at > ? AND b.valid_until > ?`, sinceMs, nowMs);
     },
     /** The newest two revisions of these pair-days, the newest first. */
     async newestTwo(pairDays: readonly PairDay[]): Promise<SlimBrief[]> {
