@@ -80,7 +80,7 @@ test('"what if" answers what the API answers for the same numbers', async () => 
   await page.fill('input[name=gust]', '25');
   await page.locator('form[action$="/what-if"] button').click();
   const text = await page.locator('.day').first().innerText();
-  expect(text).toMatch(/^Invented weather\. Beyond a limit at \d+ h, with your numbers\./);
+  expect(text).toMatch(/^Invented weather\.\s+Beyond a limit at \d+ h, with your numbers\./);
   expect(await page.locator('.margins > li').count()).toBeGreaterThan(10);
   await close();
 });
