@@ -1,7 +1,6 @@
 /**
  * What the judge has to say of the self-test's weather. Verdicts follow from the sheet by eye: the case says which single
- * thing is wrong. Spares are frozen from the judge itself, so they guard against change and prove nothing else; that an
- * independent computation finds the same is shown by the tests.
+ * thing is wrong. Spares are frozen from the judge itself, so they guard against change and prove nothing else.
  */
 import type { Conditions, Forecast } from '../../forecast/conditions.ts';
 import type { MarginId } from '../../margin/ids.ts';
