@@ -20,6 +20,8 @@ export interface Source {
   /** Stable id that appears in briefs and tables: `open-meteo:icon_d2`. */
   readonly id: string;
   readonly kind: 'deterministic' | 'ensemble';
+  /** The origin it is asked at: what hangs for one source of a host hangs for all. */
+  readonly host?: string;
   /** How many sites may be asked in one go, where the service answers so much for each that fewer fit into a message. */
   readonly maxSites?: number;
   /** What one site costs of the service's quota, where it counts. */

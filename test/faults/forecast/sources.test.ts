@@ -161,11 +161,10 @@ describe('F27: a service that fails half-way', () => {
 
   test('a dead host is not asked for every site', async () => {
     server.behave('met-norway', 'hang');
-    const startedMs = performance.now();
     const answers = await met().ask('met-norway:locationforecast', ...norway);
     expect([...answers.values()].every((answer) => !answer.ok && answer.error.kind === 'timeout')).toBe(true);
-    expect(server.asked).toHaveLength(4);
-    expect(performance.now() - startedMs).toBeLessThan(2500);
+    // Two tries for the first place, which take all the time that a source has.
+    expect(server.asked).toHaveLength(2);
   });
 
   test('F13: after a 429 nothing more is asked, until its time has passed', async () => {

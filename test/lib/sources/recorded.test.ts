@@ -11,8 +11,9 @@ import type { PlainSource } from '../../../lib/config/source-order.ts';
 import { epochOf } from '../../../lib/time.ts';
 import { success } from '../../../lib/result.ts';
 import { chosenHours } from '../../../worker/sources/hours.ts';
-import { toMetForecast, type MetForecast } from '../../../worker/sources/met-norway/to-forecast.ts';
-import { toNwsForecast, type NwsForecast } from '../../../worker/sources/nws/to-forecast.ts';
+import { toMetForecast } from '../../../worker/sources/met-norway/to-forecast.ts';
+import { toNwsForecast } from '../../../worker/sources/nws/to-forecast.ts';
+import type { PlaceForecast } from '../../../worker/sources/one-by-one.ts';
 import { forecastOf } from '../../../worker/sources/open-meteo/open-meteo.ts';
 import { readAnswer } from '../../../worker/sources/open-meteo/read-answer.ts';
 import { readJson } from '../../../worker/sources/read-json.ts';
@@ -26,7 +27,7 @@ const json = (file: string) => readJson(readFileSync(path.join(folder, file), 'u
 const plain = (id: string) => order.sources.find((entry) => entry.id === id) as PlainSource;
 
 /** A day of a surface source, as its adapter hands it over. */
-function forecast(id: string, read: MetForecast | NwsForecast, day: { fromUtc: string; toUtc: string }): Forecast {
+function forecast(id: string, read: PlaceForecast, day: { fromUtc: string; toUtc: string }): Forecast {
   const entry = plain(id);
   const chosen = chosenHours(read.hours, { ...day, declares: entry.declares });
   if (!chosen.ok) throw new Error(`the recording does not hold ${day.fromUtc}`);

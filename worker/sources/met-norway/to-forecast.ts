@@ -5,20 +5,13 @@
  * north only. Pure.
  */
 import { weatherCodeOf } from './symbols.ts';
+import type { PlaceForecast } from '../one-by-one.ts';
 import { directionOf, fieldOf, fieldsOf, instantOf, largerOf, listOf, numberOf } from '../values.ts';
 import type { ConditionField, Conditions } from '../../../lib/forecast/conditions.ts';
 import type { SourceFailure } from '../../../lib/forecast/failure.ts';
 import { timesFault } from '../../../lib/forecast/instants.ts';
 import { failure, success, type Result } from '../../../lib/result.ts';
 import { HOUR_MS, isoUtc } from '../../../lib/time.ts';
-
-/** What is kept of an answer: every hour it has, and where and when it is from. */
-export interface MetForecast {
-  readonly runAt: string | null;
-  readonly latDeg: number | null;
-  readonly lonDeg: number | null;
-  readonly hours: readonly Conditions[];
-}
 
 const gust = { name: 'wind_speed_of_gust', unit: 'm/s' };
 
@@ -45,7 +38,7 @@ interface Entry {
   readonly hour: unknown;
 }
 
-export function toMetForecast(json: unknown): Result<MetForecast, SourceFailure> {
+export function toMetForecast(json: unknown): Result<PlaceForecast, SourceFailure> {
   const properties = fieldOf(json, 'properties');
   const series = listOf(fieldOf(properties, 'timeseries'));
   const coordinates = listOf(fieldOf(fieldOf(json, 'geometry'), 'coordinates'));

@@ -5,19 +5,12 @@
  */
 import { intervalsOf, lengthM, numbersOf, valueAt, type Numbers, type Quantity } from './layers.ts';
 import { weatherCodeOf } from './weather.ts';
+import type { PlaceForecast } from '../one-by-one.ts';
 import { directionOf, fieldOf, instantOf, largerOf, listOf, numberOf } from '../values.ts';
 import type { Conditions } from '../../../lib/forecast/conditions.ts';
 import type { SourceFailure } from '../../../lib/forecast/failure.ts';
 import { failure, success, type Result } from '../../../lib/result.ts';
 import { HOUR_MS, hourlyInstants, isoUtc } from '../../../lib/time.ts';
-
-export interface NwsForecast {
-  readonly runAt: string | null;
-  /** The middle of the grid cell. */
-  readonly latDeg: number | null;
-  readonly lonDeg: number | null;
-  readonly hours: readonly Conditions[];
-}
 
 const LONGEST_MS = 96 * HOUR_MS;
 
@@ -28,7 +21,7 @@ const layers = {
 
 type Layer = keyof typeof layers;
 
-export function toNwsForecast(json: unknown): Result<NwsForecast, SourceFailure> {
+export function toNwsForecast(json: unknown): Result<PlaceForecast, SourceFailure> {
   const properties = fieldOf(json, 'properties');
   const wind = intervalsOf(fieldOf(properties, 'windSpeed'));
   if (wind === null) return failure({ kind: 'shape', path: '$.properties.windSpeed' });

@@ -63,6 +63,7 @@ export function createOpenMeteo(entry: OpenMeteoSource, host: Host, key: string 
   return {
     id: entry.id,
     kind: entry.kind,
+    host: host.origin,
     covers,
     weightPerSite,
     async fetch(request: SourceRequest) {
