@@ -34,14 +34,21 @@ export function minuteOf(time: string): number {
   return Number(time.slice(0, 2)) * 60 + Number(time.slice(3));
 }
 
+export function text(most: number, form: string): z.ZodMiniString {
+  return z.string({ error: () => form }).check(z.maxLength(most, { error: () => form }));
+}
+
+/** Where a browser is reached, and its keys, as `PushSubscription.toJSON()` has them. */
+export function pushFields() {
+  return { endpoint: text(2048, 'the endpoint that the browser gave'), keys: fields({ p256dh: text(200, 'base64url'), auth: text(100, 'base64url') }) };
+}
+
 export function channelSchema() {
-  const text = (most: number, form: string) => z.string({ error: () => form }).check(z.maxLength(most, { error: () => form }));
   const quiet = z.optional(fields({ from: clock(), to: clock() }));
-  const keys = fields({ p256dh: text(200, 'base64url'), auth: text(100, 'base64url') });
   return z.discriminatedUnion('kind', [
     fields({ kind: oneOf(['mail']), address: text(254, 'a mail address, at most 254 characters'), quiet }),
     fields({ kind: oneOf(['webhook']), url: text(2048, 'an https address, at most 2048 characters'), quiet }),
-    fields({ kind: oneOf(['push']), endpoint: text(2048, 'the endpoint that the browser gave'), keys, quiet }),
+    fields({ kind: oneOf(['push']), ...pushFields(), quiet }),
   ], { error: () => CHANNEL_FORM });
 }
 

@@ -1,6 +1,7 @@
 // The OpenAPI 3.1 description, made from the schemas that read requests. It is served as a file, so it costs the worker nothing.
 import * as z from 'zod';
 import { forgetSchema, pairsSchema } from '../../lib/config/operator.ts';
+import { echoSchema, renewalSchema } from '../../lib/config/push-renewal.ts';
 import { preferencesSchema, subscriptionSchema } from '../../lib/config/subscription.ts';
 
 type Json = Readonly<Record<string, unknown>>;
@@ -22,6 +23,7 @@ const NO_TOKEN = { 404: problem('No such token; the same answer whatever is wron
 const OPERATOR = { 401: problem('No valid token, or a page of another origin'), 429: problem('Too many wrong tokens') };
 const IF_MATCH = parameter('if-match', 'header', 'the ETag that was read');
 const STALE = { 412: problem('Changed since it was read'), 428: problem('If-Match is missing') };
+const state = (...states: readonly string[]): Json => ({ type: 'object', required: ['state'], properties: { state: { enum: states } } });
 const operator = (summary: string, rest: Json): Json => ({ summary, security: [{ operator: [] }], ...rest, responses: { ...(rest['responses'] as Json), ...OPERATOR } });
 
 export function openapi(): Json {
@@ -33,6 +35,9 @@ export function openapi(): Json {
       '/api/v1/sites': { get: { summary: 'The sites, as GeoJSON', responses: { 200: answer('A FeatureCollection', { type: 'object' }, 'application/geo+json') } } },
       '/api/v1/sites/{id}/days/{date}': { get: { summary: 'The judged day of a site', parameters: [parameter('id', 'path', 'id of the site'), parameter('date', 'path', 'yyyy-mm-dd at the site'), parameter('wing', 'query', 'key of a wing'), parameter('sheet', 'query', 'id of a limit sheet')], responses: { 200: answer('The day, with its sentence and the notice'), 400: problem('Not a date, a wing or a sheet'), 404: problem('No such site') } } },
       '/api/v1/subscriptions': { post: { summary: 'Ask to be told; nothing is sent before the channel has said yes', requestBody: body(ref('Subscription')), responses: { 202: answer('Accepted: the same answer whatever an address is to this service'), ...WRONG, 429: problem('Too many from one network today') } } },
+      '/api/v1/subscriptions/confirm-push': { post: { summary: 'A browser echoes the nonce of the push {"kind": "confirm", "nonce"} that it was sent after a sign-up or a move; from then on it is told', requestBody: body(ref('PushEcho')), responses: { 200: answer('Confirmed', state('active')), ...WRONG, 404: problem('No nonce, or one that was used or is older than 48 hours') } } },
+      '/api/v1/push/renew': { post: { summary: 'A browser, known by its old address with its secret or by a manage link, has another address; asked at each visit it costs nothing', requestBody: body(ref('PushRenewal')), responses: { 200: answer('active: nothing has changed; unverified: a nonce is on its way to the new address', state('active', 'unverified')), ...WRONG, 410: problem('Nobody is told by that browser') } } },
+      '/api/v1/push/key': { get: { summary: 'The key for pushManager.subscribe', responses: { 200: answer('applicationServerKey, base64url', { type: 'object', required: ['publicKey'], properties: { publicKey: { type: 'string' } } }), 404: problem('This service sends no push') } } },
       '/api/v1/manage/{token}': {
         parameters: TOKEN,
         get: { summary: 'What is kept', responses: { 200: answer('Wishes and channels'), ...NO_TOKEN } },
@@ -54,6 +59,7 @@ export function openapi(): Json {
       securitySchemes: { operator: { type: 'http', scheme: 'bearer' } },
       schemas: {
         Subscription: schemaOf(subscriptionSchema()), Preferences: schemaOf(preferencesSchema()), Pairs: schemaOf(pairsSchema()), Forget: schemaOf(forgetSchema()),
+        PushEcho: schemaOf(echoSchema()), PushRenewal: schemaOf(renewalSchema()),
         AssessRequest: { type: 'object', required: ['site', 'wing', 'sheet', 'hours'], properties: { site: { type: 'object' }, wing: { type: 'object' }, sheet: { type: 'object' }, hours: { type: 'array', items: { type: 'object' } }, declares: { type: 'array', items: { type: 'string' } }, now: { type: ['string', 'null'], format: 'date-time' } }, additionalProperties: false },
         Problem: { type: 'object', required: ['type', 'title', 'status'], properties: { type: { type: 'string', format: 'uri' }, title: { type: 'string' }, status: { type: 'integer' }, detail: { type: 'string' }, problems: { type: 'array', items: { type: 'object', required: ['path', 'value', 'problem', 'allowed'], properties: { path: { type: 'string' }, value: { type: 'string' }, problem: { type: 'string' }, allowed: { type: 'string' } } } } } },
       },

@@ -20,6 +20,8 @@ export interface Message {
   /** Holds invented weather. */
   readonly demo: boolean;
   readonly days: readonly MessageDay[];
+  /** Asks a browser to show that it wants to be told, by sending this back. */
+  readonly nonce?: string;
 }
 
 export interface MessageDay {

@@ -1,7 +1,7 @@
 import type { Issue } from '../../lib/result.ts';
 
 /** Errors of the API as problem details (RFC 9457). `problems` lists everything that is wrong with a request, each with its path. */
-export type ProblemKind = 'bad-input' | 'not-found' | 'wrong-method' | 'too-large' | 'wrong-type' | 'too-many' | 'not-allowed' | 'stale' | 'unconditional' | 'fault' | 'unusable';
+export type ProblemKind = 'bad-input' | 'not-found' | 'gone' | 'wrong-method' | 'too-large' | 'wrong-type' | 'too-many' | 'not-allowed' | 'stale' | 'unconditional' | 'fault' | 'unusable';
 
 interface ProblemForm {
   readonly status: number;
@@ -12,6 +12,7 @@ const FORMS: Readonly<Record<ProblemKind, ProblemForm>> = {
   'bad-input': { status: 400, title: 'The request has errors' },
   'not-allowed': { status: 401, title: 'A valid token is needed' },
   'not-found': { status: 404, title: 'There is nothing here' },
+  gone: { status: 410, title: 'There is nothing here any more' },
   'wrong-method': { status: 405, title: 'This method is not answered here' },
   stale: { status: 412, title: 'Somebody else has changed it' },
   unconditional: { status: 428, title: 'The request must say what it replaces' },

@@ -25,6 +25,12 @@ const COLUMNS = `c.id, c.subscription_id AS subscriptionId, c.rank, c.kind, c.ta
   c.oldest_secret_version AS oldestSecretVersion, COALESCE(s.link_version, 1) AS linkVersion, COALESCE(s.time_zone, 'UTC') AS timeZone,
   c.quiet_from AS quietFrom, c.quiet_to AS quietTo FROM channel AS c LEFT JOIN subscription AS s ON s.id = c.subscription_id`;
 
+/** A browser that is to be sent a nonce: leased to one sender. */
+export interface ChannelToAsk extends Pick<StoredChannel, 'id' | 'target' | 'secretVersion' | 'oldestSecretVersion'> {}
+
+/** A browser that did not answer is asked no more by itself. */
+const ASKED_FOR_MS = 48 * 3_600_000;
+
 export interface NewChannel extends Pick<StoredChannel, 'id' | 'subscriptionId' | 'rank' | 'kind' | 'target' | 'state'> {
   readonly quiet?: { readonly from: number; readonly to: number } | null;
 }
@@ -45,9 +51,9 @@ export function channelStore(db: Database) {
     /** New ones are added as given; one that exists keeps its state and secrets and takes the rest. */
     put(channels: readonly NewChannel[], nowMs: number): Statement {
       return {
-        sql: `INSERT INTO channel (id, subscription_id, rank, kind, target, state, quiet_from, quiet_to, stored_at)
+        sql: `INSERT INTO channel (id, subscription_id, rank, kind, target, state, quiet_from, quiet_to, stored_at, ask_at)
           SELECT value ->> 'id', value ->> 'subscriptionId', value ->> 'rank', value ->> 'kind', value ->> 'target', value ->> 'state',
-            value ->> '$.quiet.from', value ->> '$.quiet.to', ?2
+            value ->> '$.quiet.from', value ->> '$.quiet.to', ?2, CASE WHEN value ->> 'kind' = 'push' AND value ->> 'state' = 'unverified' THEN ?2 END
           FROM json_each(?1) WHERE true
           ON CONFLICT (id) DO UPDATE SET rank = excluded.rank, kind = excluded.kind, target = excluded.target`,
         values: [JSON.stringify(channels), nowMs],
@@ -58,7 +64,34 @@ export function channelStore(db: Database) {
     },
     /** It has shown that it wants to be told. */
     verify(id: string): Statement {
-      return { sql: `UPDATE channel SET state = 'active' WHERE id = ? AND state = 'unverified'`, values: [id] };
+      return { sql: `UPDATE channel SET state = 'active', ask_at = NULL WHERE id = ? AND state = 'unverified'`, values: [id] };
+    },
+    /** Leases browsers that are to be sent a nonce; one that could not be sent is tried again ten minutes later. */
+    claimAsks(nowMs: number, limit: number): Promise<ChannelToAsk[]> {
+      return db.take<ChannelToAsk>(
+        `UPDATE channel SET ask_at = CASE WHEN ?1 < stored_at + ${ASKED_FOR_MS} THEN ?1 + 600000 END
+          WHERE id IN (SELECT id FROM channel WHERE ask_at <= ?1 ORDER BY ask_at LIMIT ?2) AND state = 'unverified'
+          RETURNING id, target, secret_version AS secretVersion, oldest_secret_version AS oldestSecretVersion`,
+        nowMs, limit,
+      );
+    },
+    /** Somebody asked for it: it is to be sent a nonce, or (null) none any more. */
+    askAt(id: string, atMs: number | null): Statement {
+      return { sql: `UPDATE channel SET ask_at = ?2 WHERE id = ?1 AND state = 'unverified'`, values: [id, atMs] };
+    },
+    async asksWaiting(nowMs: number): Promise<boolean> {
+      return (await db.read('SELECT 1 FROM channel WHERE ask_at <= ? LIMIT 1', nowMs)).length > 0;
+    },
+    ofBrowser(endpoint: string): Promise<StoredChannel[]> {
+      return db.read<StoredChannel>(`SELECT ${COLUMNS} WHERE c.kind = 'push' AND c.target ->> 'endpoint' = ? ORDER BY c.id LIMIT 20`, endpoint);
+    },
+    /** A browser has another address: it has to show again that it asked. */
+    moveTo(id: string, target: string, nowMs: number): Statement {
+      return { sql: `UPDATE channel SET target = ?2, state = 'unverified', reason = NULL, ask_at = ?3, stored_at = ?3 WHERE id = ?1 AND kind = 'push'`, values: [id, target, nowMs] };
+    },
+    /** The keys that a browser has just shown are its keys, wherever else it is told. */
+    rekey(target: string): Statement {
+      return { sql: `UPDATE channel SET target = ?1 WHERE kind = 'push' AND target ->> 'endpoint' = ?1 ->> 'endpoint' AND target <> ?1`, values: [target] };
     },
     /** To which channel a message went. */
     async ofMessage(messageId: string): Promise<{ readonly id: string; readonly target: string } | null> {

@@ -3,7 +3,7 @@ import type { Database, Statement } from './database.ts';
 
 /** Random, single use, bound to a purpose; only the hash is kept. */
 export interface NewToken {
-  readonly purpose: 'confirm';
+  readonly purpose: 'confirm' | 'push';
   readonly subject: string;
   readonly expiresAtMs: number;
 }

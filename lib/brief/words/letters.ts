@@ -30,6 +30,11 @@ export function testLetter({ service }: { readonly service: string }): LetterWor
   return { title: 'Test: this channel reaches you', text: `A test of ${service}, asked for on the page of your subscription. It says nothing about any day.\n\n${CLOSING}\n` };
 }
 
+/** A push that a browser answers by itself: it shows that the browser asked. */
+export function askBrowserWords({ service }: { readonly service: string }): LetterWords {
+  return { title: `Confirming the morning brief of ${service}`, text: 'This browser answers by itself; there is nothing to do. No brief is sent to it before.' };
+}
+
 /** Under every brief by mail. */
 export function letterFoot({ manage, unsubscribe, feed }: { readonly manage: string; readonly unsubscribe: string; readonly feed: string }): string {
   return `Change, pause or test: ${manage}\nEnd it: ${unsubscribe}\nThe same as a feed: ${feed}`;

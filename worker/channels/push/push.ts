@@ -27,6 +27,9 @@ export interface Quarrels {
 
 const QUARREL_MS = 10 * 60_000;
 
+/** A browser that has just moved answers within seconds: a brief waits a few minutes for it. */
+const MOST_WAITS = 4;
+
 export function pushChannel(options: PushOptions): Channel {
   const targetOf = (address: Address): PushTarget | { readonly problem: string } => readTarget(address.target, { local: options.local });
   return {
@@ -34,7 +37,10 @@ export function pushChannel(options: PushOptions): Channel {
     lane: (address) => address.id,
     async send(message, address, attempt) {
       // Anyone can send us someone's endpoint; nothing goes there before that browser has shown that it asked.
-      if (address.state !== 'active') return { state: 'refused', reason: 'this browser has not confirmed that it wants to be told' };
+      if (address.state !== 'active' && message.nonce === undefined) {
+        const reason = 'this browser has not confirmed that it wants to be told';
+        return attempt.number < MOST_WAITS ? { state: 'retry', reason, afterMs: null } : { state: 'refused', reason };
+      }
       const target = targetOf(address);
       if ('problem' in target) return { state: 'gone', reason: `the push subscription is refused: ${target.problem}` };
       if (message.demo && !isLoopbackEndpoint(target.endpoint)) return { state: 'refused', reason: 'invented weather stays on this machine' };

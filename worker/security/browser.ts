@@ -1,0 +1,89 @@
+/**
+ * Browsers that are told by push. Anyone can hand us somebody's endpoint, so a browser shows by the echo of a nonce, sent to
+ * it encrypted, that it asked; and only who knows the old address with its secret, or a manage link, moves it to another.
+ */
+import { askBrowserWords } from '../../lib/brief/words/letters.ts';
+import type { Renewal } from '../../lib/config/push-renewal.ts';
+import { issue } from '../../lib/config/check.ts';
+import { success, failure, type Issue, type Result } from '../../lib/result.ts';
+import { HOUR_MS } from '../../lib/time.ts';
+import { SEND_TIMEOUT_MS } from '../morning/times.ts';
+import { sameText, sha256Hex } from '../secrets.ts';
+import type { Services } from '../service-set.ts';
+import type { ChannelToAsk, StoredChannel } from '../store/channel.ts';
+import { UNCONFIRMED_MS } from '../store/signup.ts';
+import { newToken } from '../store/token.ts';
+import { subscriptionOf } from './manage.ts';
+
+type Desk = Omit<Services, 'sourcesFor' | 'channels' | 'mailer' | 'selfTest' | 'heartbeat'>;
+
+const AT_ONCE = 5;
+/** Whoever asks: so many of them reach one browser a day, so that nobody is pestered through us. */
+const ASKS = { most: 5, withinMs: 24 * HOUR_MS };
+
+/** Sends the nonces that are to be sent. */
+export async function askBrowsers(services: Services): Promise<void> {
+  const asks = await services.stores.channel.claimAsks(services.clock.nowMs(), AT_ONCE);
+  await Promise.all(asks.map((channel) => ask(services, channel)));
+}
+
+async function ask(services: Services, channel: ChannelToAsk): Promise<void> {
+  const { stores, clock, settings, channels } = services;
+  const nowMs = clock.nowMs();
+  const { endpoint } = JSON.parse(channel.target) as { readonly endpoint: string };
+  const isOver = (await stores.rate.take(`ask ${(await sha256Hex(endpoint)).slice(0, 32)}`, ASKS, nowMs)) > 0;
+  const nonce = newToken();
+  if (!isOver) await stores.token.put(nonce, { purpose: 'push', subject: channel.id, expiresAtMs: nowMs + UNCONFIRMED_MS });
+  const message = {
+    id: `ask-${(await sha256Hex(nonce)).slice(0, 32)}`, kind: 'test' as const, thread: `ask ${channel.id}`, ...askBrowserWords({ service: new URL(settings.publicUrl).host }), nonce,
+    issuedAtMs: nowMs, dataRunAtMs: null, validUntilMs: nowMs + UNCONFIRMED_MS, urgent: false, demo: false, days: [],
+  };
+  const outcome = isOver ? null : await channels['push']?.send(message, { ...channel, state: 'unverified' }, { number: 1, nowMs, timeoutMs: SEND_TIMEOUT_MS, untilMs: message.validUntilMs });
+  if (outcome?.state === 'gone') await stores.db.together([stores.channel.end(channel.id, outcome.reason)]);
+  else if (outcome?.state !== 'retry') await stores.db.together([stores.channel.askAt(channel.id, null)]);
+}
+
+/** A browser sends back what it was sent; false for anything that is no nonce, or one no more. */
+export async function confirmBrowser({ stores, clock }: Pick<Services, 'stores' | 'clock'>, nonce: string): Promise<boolean> {
+  const id = await stores.token.subject(nonce, 'push', clock.nowMs());
+  const [channel] = id === null ? [] : await stores.channel.some([id]);
+  if (channel === undefined) return false;
+  await stores.db.together([stores.channel.verify(channel.id), stores.channel.rekey(channel.target), stores.token.drop(channel.id)]);
+  return true;
+}
+
+/** What became of a renewal: the state of the channel, or null where nobody is told by that browser. */
+export async function renewBrowser(services: Desk, renewal: Renewal): Promise<Result<'active' | 'unverified' | null, Issue[]>> {
+  const { stores, clock, addresses } = services;
+  const [fresh, old] = [renewal.fresh, renewal.old ?? null].map((given) => (given === null ? null : addresses.push({ endpoint: given.endpoint, ...given.keys })));
+  const problems = [['fresh', fresh] as const, ['old', old] as const].flatMap(([name, read]) => (read != null && 'problem' in read
+    ? [issue([name], 'not shown', { problem: read.problem, allowed: 'a subscription as the browser gave it' })] : []));
+  if (fresh == null || 'problem' in fresh || (old != null && 'problem' in old)) return failure(problems);
+  if (!(await addresses.hasKeys(fresh.is))) return failure([issue(['fresh', 'keys'], 'not shown', { problem: 'these are no keys of a browser', allowed: 'p256dh: a point of P-256, auth: 16 bytes, in base64url' })]);
+  const told = await channelsOf(services, renewal.token ?? null, old?.is ?? null);
+  const nowMs = clock.nowMs();
+  const moved = told.filter(({ target, state }) => target !== fresh.is || state === 'dead');
+  await stores.db.together([
+    ...moved.flatMap(({ id }) => [stores.token.drop(id), stores.channel.moveTo(id, fresh.is, nowMs)]),
+    ...told.filter((channel) => !moved.includes(channel)).map(({ id }) => stores.channel.askAt(id, nowMs)),
+  ]);
+  if (told.length === 0) return success(null);
+  const isKnown = moved.length === 0 && told.every(({ state }) => state === 'active');
+  if (!isKnown) await services.wake('deliver', 1);
+  return success(isKnown ? 'active' : 'unverified');
+}
+
+/** The channels of a browser: by its old address with its secret, or those of a subscription by its manage link. */
+async function channelsOf(services: Desk, token: string | null, old: string | null): Promise<StoredChannel[]> {
+  const was = old === null ? null : JSON.parse(old) as { readonly endpoint: string; readonly auth: string };
+  if (token !== null) {
+    const detail = await subscriptionOf(services, 'manage', token);
+    const browsers = detail === null ? [] : (await services.stores.channel.ofSubscription(detail.id)).filter(({ kind }) => kind === 'push');
+    const named = browsers.filter(({ target }) => was !== null && (JSON.parse(target) as { readonly endpoint: string }).endpoint === was.endpoint);
+    return named.length > 0 || browsers.length > 1 ? named : browsers;
+  }
+  if (was === null) return [];
+  const found = await services.stores.channel.ofBrowser(was.endpoint);
+  const known = await Promise.all(found.map(({ target }) => sameText((JSON.parse(target) as { readonly auth: string }).auth, was.auth)));
+  return found.filter((_, index) => known[index]);
+}
