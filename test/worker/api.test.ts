@@ -1,6 +1,7 @@
 import { env } from 'cloudflare:workers';
 import { beforeAll, describe, expect, test, vi } from 'vitest';
 import { app } from '../../worker/routes/app.ts';
+import { SCHEMA_VERSION } from '../../worker/store/meta.ts';
 import type { Hono } from 'hono';
 import { newHouse, type House } from './support/house.ts';
 import { launchFeature } from './support/stand-ins.ts';
@@ -144,7 +145,7 @@ describe('/healthz', () => {
     const services = house.services();
     await env.DB.prepare(`UPDATE meta SET value = '99' WHERE key = 'schema'`).run();
     expect((await app(services).request('/healthz')).status).toBe(503);
-    await env.DB.prepare(`UPDATE meta SET value = '1' WHERE key = 'schema'`).run();
+    await env.DB.prepare(`UPDATE meta SET value = ? WHERE key = 'schema'`).bind(String(SCHEMA_VERSION)).run();
     house.options = { ...house.options, around: () => ({ prepare: () => { throw new Error('Network connection lost.'); }, batch: () => Promise.reject(new Error('Network connection lost.')) }) };
     expect((await app(house.services()).request('/healthz')).status).toBe(503);
     const { around: _, ...rest } = house.options;

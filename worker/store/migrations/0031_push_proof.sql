@@ -8,4 +8,4 @@ CREATE INDEX channel_of_browser ON channel (target ->> 'endpoint') WHERE kind = 
 
 UPDATE channel SET ask_at = stored_at WHERE kind = 'push' AND state = 'unverified';
 
-UPDATE meta SET value = '30' WHERE key = 'schema';
+UPDATE meta SET value = '31' WHERE key = 'schema';
