@@ -38,11 +38,14 @@ export default defineConfig({
         root,
         plugins: [
           cloudflareTest(async () => ({
+            main: path.join(root, 'worker/whole.ts'),
             wrangler: { configPath: path.join(root, 'wrangler.toml') },
             miniflare: {
               bindings: { TEST_MIGRATIONS: await readD1Migrations(path.join(root, 'worker/store/migrations')) },
               // A closed world: a worker test that wants an answer from outside replaces fetch itself.
               outboundService: (request: Request) => new Response(`blocked ${request.url}`, { status: 599 }),
+              // Both workers are one here.
+              serviceBindings: { DESK: () => new Response('there is no desk of its own here', { status: 599 }) },
             },
           })),
         ],

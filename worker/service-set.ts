@@ -40,8 +40,8 @@ import type { TokenStore } from './store/token.ts';
 import type { WindowStateStore } from './store/window-state.ts';
 import type { StoredWing, WingStore } from './store/wing.ts';
 
-/** What one invocation works with. Nothing in the worker reaches the world, the clock or chance but through this. */
-export interface Services {
+/** What one invocation of the desk works with. Nothing in either worker reaches the world, the clock or chance but through this. */
+export interface DeskServices {
   readonly settings: Settings;
   readonly clock: Clock;
   readonly ids: IdSource;
@@ -50,8 +50,8 @@ export interface Services {
   readonly stores: Stores;
   /** Sends wake-up calls. Never fails: a call that cannot be sent is made up for by the sweep. */
   readonly wake: (step: Step, calls: number) => Promise<void>;
-  /** The sources to ask about a site, in the order of config. */
-  readonly sourcesFor: (place: Place) => readonly Source[];
+  /** The names of the sources of a site, in the order of config; the desk reads what they said, and asks none. */
+  readonly sourceNames: (place: Place) => readonly Pick<Source, 'id' | 'kind'>[];
   readonly channels: Readonly<Record<string, Channel>>;
   /** null where no mail is sent. */
   readonly mailer: Mailer | null;
@@ -62,6 +62,12 @@ export interface Services {
   readonly shippedSheets: () => readonly LimitSheet[];
   readonly thresholds: () => CautionThresholds;
   readonly judge: (input: DayInput) => JudgedDay;
+}
+
+/** What the morning works with besides: only there are providers asked. */
+export interface Services extends DeskServices {
+  /** The sources to ask about a site, in the order of config. */
+  readonly sourcesFor: (place: Place) => readonly Source[];
   /** What the judge gets wrong of what is known; nothing when it may be trusted. */
   readonly selfTest: () => readonly string[];
   /** Tells the watchdog outside that all is well; false when it could not be told. */

@@ -8,6 +8,8 @@ import type { MailBinding } from './security/mailer.ts';
 export interface Env {
   readonly DB: D1Database;
   readonly ASSETS?: Fetcher;
+  /** The worker of the desk, where it is one of its own. */
+  readonly DESK?: Fetcher;
   readonly FETCH_QUEUE: Queue<Job>;
   readonly ASSESS_QUEUE: Queue<Job>;
   readonly DELIVER_QUEUE: Queue<Job>;

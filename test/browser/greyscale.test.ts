@@ -2,9 +2,8 @@
 import type { Browser, Page } from 'playwright-core';
 import { afterAll, beforeAll, expect, test } from 'vitest';
 import type { Verdict } from '../../lib/margin/ids.ts';
-import { pages } from '../../worker/routes/pages.ts';
 import { columnOf, dayOf } from '../support/days.ts';
-import { fixtureServices } from '../support/page-fixtures.ts';
+import { fixturePages, fixtureServices } from '../support/page-fixtures.ts';
 import { launch, open } from './support/chromium.ts';
 import { serve, type Served } from './support/server.ts';
 
@@ -16,7 +15,7 @@ let site: Served;
 beforeAll(async () => {
   const plain = dayOf('wcbu', { siteId: 'four' });
   const day = { ...plain, hours: plain.hours.map((hour) => ({ ...hour, airspeed: columnOf(4) })) };
-  [browser, site] = await Promise.all([launch(), serve(pages(fixtureServices({ four: day })))]);
+  [browser, site] = await Promise.all([launch(), serve(fixturePages(fixtureServices({ four: day })))]);
 });
 
 afterAll(async () => {

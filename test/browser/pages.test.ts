@@ -6,8 +6,7 @@ import AxeBuilder from '@axe-core/playwright';
 import type { Browser } from 'playwright-core';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import { CLOSING } from '../../lib/brief/words/index.ts';
-import { pages } from '../../worker/routes/pages.ts';
-import { DAYS, fixtureServices } from '../support/page-fixtures.ts';
+import { DAYS, fixturePages, fixtureServices } from '../support/page-fixtures.ts';
 import { launch, open } from './support/chromium.ts';
 import { serve, type Served } from './support/server.ts';
 
@@ -15,7 +14,7 @@ let browser: Browser;
 let site: Served;
 
 beforeAll(async () => {
-  [browser, site] = await Promise.all([launch(), serve(pages(fixtureServices()))]);
+  [browser, site] = await Promise.all([launch(), serve(fixturePages(fixtureServices()))]);
 });
 
 afterAll(async () => {
@@ -71,7 +70,7 @@ test('first view at most 14 kB and whole page at most 60 kB, gzip', async () => 
 test('hostile names run nothing and move nothing', async () => {
   const name = '</title><img src=x onerror=alert(1)>\u202E<svg onload=alert(2)>';
   const day = { ...DAYS['kestrel-edge']!, siteName: name, wingName: name, sheetName: name, localRules: name };
-  const hostile = await serve(pages(fixtureServices({ 'kestrel-edge': day })));
+  const hostile = await serve(fixturePages(fixtureServices({ 'kestrel-edge': day })));
   for (const where of ['/', '/sites/kestrel-edge', `/sites/kestrel-edge/what-if?wind=${encodeURIComponent(name)}`]) {
     const { page, complaints, close } = await open(browser, hostile.origin + where, { width: 390 });
     expect(complaints.filter((text) => !text.includes('400'))).toEqual([]);

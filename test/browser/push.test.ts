@@ -1,9 +1,8 @@
 // Pushes delivered to the real service worker through the DevTools protocol: old, late, out of order, twice, unreadable.
 import type { Browser, BrowserContext, CDPSession, Page } from 'playwright-core';
 import { afterAll, beforeAll, beforeEach, afterEach, expect, test } from 'vitest';
-import { pages } from '../../worker/routes/pages.ts';
 import { dayOf } from '../support/days.ts';
-import { fixtureServices } from '../support/page-fixtures.ts';
+import { fixturePages, fixtureServices } from '../support/page-fixtures.ts';
 import { launch } from './support/chromium.ts';
 import { serve, type Served } from './support/server.ts';
 
@@ -38,7 +37,7 @@ const settled = (check: (list: Shown[]) => void) => expect.poll(async () => { tr
 beforeAll(async () => {
   const hours = dayOf('wwbb');
   const day = { ...hours, siteId: 'kestrel-edge', demo: false, issuedAt: at(-10), validUntil: at(600) };
-  [browser, site] = await Promise.all([launch(), serve(pages(fixtureServices({ 'kestrel-edge': day }, new Date())))]);
+  [browser, site] = await Promise.all([launch(), serve(fixturePages(fixtureServices({ 'kestrel-edge': day }, new Date())))]);
 });
 
 afterAll(async () => {

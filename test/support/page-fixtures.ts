@@ -1,8 +1,11 @@
 // Services of the pages made of plain data: every state a page can be in, none of it from a database.
+import type { Hono } from 'hono/tiny';
 import type { JudgedDay, JudgedHour } from '../../lib/brief/day.ts';
 import type { AssessedHour } from '../../lib/brief/judge-hours.ts';
 import { chosenHour } from '../../worker/web/chosen-hour.ts';
-import type { HourDetail, PageServices } from '../../worker/web/page-services.ts';
+import { pages } from '../../worker/routes/pages.ts';
+import { whatIf } from '../../worker/routes/what-if.ts';
+import type { HourDetail, PageServices, WhatIfServices } from '../../worker/web/page-services.ts';
 import { columnOf, dayOf, fullHour, voteOf } from './days.ts';
 
 /** In the morning of the day that test/support/days.ts speaks of. */
@@ -72,7 +75,7 @@ function assessed(hour: JudgedHour): AssessedHour {
   return { validAt: hour.validAt, verdict: hour.verdict, causes: hour.causes, margins: hour.margins.map((margin) => ({ ...margin, working: [] })), advice: { speedToFlyMps: hour.speedToFlyMps } };
 }
 
-export function fixtureServices(days: Readonly<Record<string, JudgedDay>> = DAYS, now: Date = MORNING): PageServices {
+export function fixtureServices(days: Readonly<Record<string, JudgedDay>> = DAYS, now: Date = MORNING): PageServices & WhatIfServices {
   return {
     now: () => now,
     board: () => Promise.resolve(Object.values(days).map((day) => ({ siteId: day.siteId, siteName: day.siteName, kind: day.kind, timeZone: day.timeZone, days: [day] }))),
@@ -90,4 +93,11 @@ export function fixtureServices(days: Readonly<Record<string, JudgedDay>> = DAYS
       return Promise.resolve({ kind: 'day', day, detail: () => detailFor(day.kind), choices: { wings: named(['EN A', 'EN B', 'tandem']), sheets: named([day.sheetId, 'first-hops']) } });
     },
   };
+}
+
+/** The pages that are read and the one that judges anew, as one app. */
+export function fixturePages(services: PageServices & WhatIfServices): Hono {
+  const app = pages(services);
+  app.get('/sites/:id/what-if', (c) => whatIf(services, c));
+  return app;
 }

@@ -1,6 +1,6 @@
 // What a worker test finds in `env` and `exports` of cloudflare:workers, besides what worker/ declares itself.
 import type { D1Migration } from 'cloudflare:test';
-import type * as mainModule from '../../worker/index.ts';
+import type * as mainModule from '../../worker/whole.ts';
 
 declare global {
   namespace Cloudflare {

@@ -2,14 +2,13 @@
 import { describe, expect, test } from 'vitest';
 import type { JudgedDay } from '../../lib/brief/day.ts';
 import { CLOSING, EXPIRED, failureSentence } from '../../lib/brief/words/index.ts';
-import { pages } from '../../worker/routes/pages.ts';
 import { dayOf, voteOf } from '../support/days.ts';
-import { DAYS, fixtureServices, MORNING } from '../support/page-fixtures.ts';
+import { DAYS, fixturePages, fixtureServices, MORNING } from '../support/page-fixtures.ts';
 
 const VERDICTS = /within limits|close to a limit|beyond a limit|cannot say/i;
 
 async function get(path: string, days: Readonly<Record<string, JudgedDay>> = DAYS, now: Date = MORNING): Promise<{ status: number; markup: string; headers: Headers }> {
-  const response = await pages(fixtureServices(days, now)).request(path);
+  const response = await fixturePages(fixtureServices(days, now)).request(path);
   return { status: response.status, markup: await response.text(), headers: response.headers };
 }
 
@@ -80,7 +79,7 @@ test('a source of live weather is credited with its link and licence, and nothin
 test('a site without a brief reads as cannot say, and the title says no more than the page', async () => {
   const services = { ...fixtureServices(one(DAYS['sallow-bank']!)) };
   const board = async () => [...(await fixtureServices(one(DAYS['sallow-bank']!)).board()), { siteId: 'late', siteName: 'Late Hill', kind: 'launch' as const, timeZone: 'Europe/Vienna', days: [] }];
-  const markup = await (await pages({ ...services, board }).request('/')).text();
+  const markup = await (await fixturePages({ ...services, board }).request('/')).text();
   expect(markup).toMatch(/<title>Invented weather: cannot say at 1 site; within limits at 1/);
   expect(text(markup)).toContain('Late Hill Cannot say: no brief has been made for this morning yet.');
 });

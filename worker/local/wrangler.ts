@@ -65,13 +65,13 @@ export interface DevOptions {
   readonly variables: Readonly<Record<string, string>>;
 }
 
-/** Starts the worker. Variables travel in a file that only its owner can read, never on a command line. */
+/** Starts the one worker that is both. Variables travel in a file that only its owner can read, never on a command line. */
 export function dev({ folder, port, variables }: DevOptions): Running {
   const file = path.join(folder, 'worker.env');
   const lines = Object.entries(variables).map(([name, value]) => `${name}=${JSON.stringify(value)}`);
   writeFileSync(file, `${lines.join('\n')}\n`, { mode: 0o600 });
   return wrangler(
-    ['dev', '--local', '--ip', '127.0.0.1', '--port', String(port), '--inspector-port', '0', '--persist-to', folder, '--env-file', file,
+    ['dev', 'worker/whole.ts', '--local', '--ip', '127.0.0.1', '--port', String(port), '--inspector-port', '0', '--persist-to', folder, '--env-file', file,
       '--log-level', 'warn', '--show-interactive-dev-session', 'false'],
     folder,
   );

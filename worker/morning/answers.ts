@@ -1,7 +1,7 @@
 import type { DayInput } from '../../lib/brief/day-input.ts';
 import type { Forecast } from '../../lib/forecast/conditions.ts';
 import { failure, success } from '../../lib/result.ts';
-import type { Place, Services } from '../service-set.ts';
+import type { DeskServices, Place } from '../service-set.ts';
 import type { FetchOutcome, StoredAnswer } from '../store/forecast.ts';
 
 /** What the sources of a site said about a day, in the order of config, and from where on it is a caution. */
@@ -10,11 +10,11 @@ export interface DayAnswers extends Pick<DayInput, 'answers' | 'storedGroundM' |
   readonly fingerprint: readonly string[];
 }
 
-export async function answersFor(services: Services, place: Place, localDate: string): Promise<DayAnswers> {
+export async function answersFor(services: DeskServices, place: Place, localDate: string): Promise<DayAnswers> {
   const { stores } = services;
   const stored = new Map((await stores.forecast.answers(place.site.id, localDate)).map((answer) => [answer.source, answer]));
   const storedGroundM = await stores.sourceGround.ofSite(place.site.id);
-  const answers = services.sourcesFor(place).map(({ id, kind }) => ({ source: id, kind, outcome: read(stored.get(id)) }));
+  const answers = services.sourceNames(place).map(({ id, kind }) => ({ source: id, kind, outcome: read(stored.get(id)) }));
   const fingerprint = [...stored.values()].map(({ source, outcome, finishedAtMs }) => `${source} ${finishedAtMs} ${outcome}`).sort();
   return { answers, storedGroundM, fingerprint, demo: place.demo, thresholds: services.thresholds() };
 }

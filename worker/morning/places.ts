@@ -1,8 +1,8 @@
-import type { Place, Services } from '../service-set.ts';
+import type { Place, DeskServices } from '../service-set.ts';
 import type { LogEntry } from '../store/log.ts';
 
 /** The sites that there are and that can be read; what is wrong with the others is logged, and holds up nobody. */
-export async function placesOf(services: Services, siteIds: readonly string[]): Promise<ReadonlyMap<string, Place>> {
+export async function placesOf(services: DeskServices, siteIds: readonly string[]): Promise<ReadonlyMap<string, Place>> {
   const rows = await services.stores.site.some(siteIds);
   const places = new Map<string, Place>();
   const unreadable: LogEntry[] = [];

@@ -1,14 +1,14 @@
 /** What the mail service reports of letters it took: signed like a webhook (Standard Webhooks), or it is not listened to. */
 import { base64, derivedKey, hmacSha256, sameText } from '../secrets.ts';
 import { ownerOf } from '../security/owner.ts';
-import type { Services } from '../service-set.ts';
+import type { DeskServices } from '../service-set.ts';
 import { readUpTo } from './body.ts';
 import { json, problem } from './problem.ts';
 
 const MAX_BODY_BYTES = 8 * 1024;
 const MOST_OFF_S = 300;
 
-export async function bounce(services: Services, request: Request): Promise<Response> {
+export async function bounce(services: DeskServices, request: Request): Promise<Response> {
   const { settings, clock, stores } = services;
   const bytes = await readUpTo(request.body, MAX_BODY_BYTES);
   if (bytes === null) return problem('too-large');

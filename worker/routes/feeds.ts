@@ -1,4 +1,4 @@
-import { Hono } from 'hono';
+import { Hono } from 'hono/tiny';
 import { atomFeed } from '../feeds/atom.ts';
 import { readFeed } from '../feeds/feed.ts';
 import { icalFeed } from '../feeds/ical.ts';

@@ -1,5 +1,5 @@
 import type { Issue } from '../../lib/result.ts';
-import type { Services } from '../service-set.ts';
+import type { DeskServices } from '../service-set.ts';
 import type { LimitSheet } from '../../lib/margin/sheet.ts';
 import type { Site } from '../../lib/site.ts';
 import { managed } from '../security/manage.ts';
@@ -24,7 +24,7 @@ export async function formOf(request: Request): Promise<FormData | null> {
   }
 }
 
-export async function sitesAndSheets({ stores, read, shippedSheets }: Services): Promise<{ readonly sites: Site[]; readonly sheets: LimitSheet[] }> {
+export async function sitesAndSheets({ stores, read, shippedSheets }: DeskServices): Promise<{ readonly sites: Site[]; readonly sheets: LimitSheet[] }> {
   const [rows, sheetRows] = await Promise.all([stores.site.all(), stores.sheet.newest()]);
   const stored = sheetRows.flatMap((row) => { const sheet = read.sheet(row); return sheet.ok ? [sheet.value] : []; });
   const known = new Set(sheetRows.map(({ id }) => id));
@@ -34,17 +34,17 @@ export async function sitesAndSheets({ stores, read, shippedSheets }: Services):
   };
 }
 
-export async function viewOf(services: Services, detail: SubscriptionDetail, said: readonly string[]): Promise<string> {
+export async function viewOf(services: DeskServices, detail: SubscriptionDetail, said: readonly string[]): Promise<string> {
   const { settings } = services;
   const { feed } = await secretLinks({ publicUrl: settings.publicUrl, linkKey: settings.linkKey ?? '' }, detail.id, detail.linkVersion);
   return managePage({ kept: await managed(services, detail), ...(await sitesAndSheets(services)), feed, said });
 }
 
-export async function subscribeView(services: Services, problems: readonly Issue[], typed: FormData | null): Promise<string> {
+export async function subscribeView(services: DeskServices, problems: readonly Issue[], typed: FormData | null): Promise<string> {
   return subscribePage({ ...(await sitesAndSheets(services)), problems, typed });
 }
 
-export async function kindsOf({ stores, read }: Services): Promise<ReadonlyMap<string, Site['kind']>> {
+export async function kindsOf({ stores, read }: DeskServices): Promise<ReadonlyMap<string, Site['kind']>> {
   return new Map((await stores.site.all()).flatMap((row) => { const place = read.site(row); return place.ok ? [[row.id, place.value.site.kind] as const] : []; }));
 }
 

@@ -1,4 +1,4 @@
-import { Hono } from 'hono';
+import { Hono } from 'hono/tiny';
 import type { Issue } from '../../lib/result.ts';
 import { sweep } from '../morning/sweep.ts';
 import { tick } from '../morning/tick.ts';

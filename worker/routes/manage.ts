@@ -1,10 +1,11 @@
 /** Secret links: /api/v1/manage/{token} for programs, and the pages for people. GET looks, and never changes anything. */
-import { Hono, type Context } from 'hono';
+import type { Context } from 'hono';
+import { Hono } from 'hono/tiny';
 import type { Issue } from '../../lib/result.ts';
 import { secretLinks } from '../security/letter.ts';
 import { confirm } from '../security/confirm.ts';
 import { act, ACTIONS, change, managed, preferencesJson, subscriptionOf, type Acted, type Action } from '../security/manage.ts';
-import type { Services } from '../service-set.ts';
+import type { DeskServices } from '../service-set.ts';
 import type { SubscriptionDetail } from '../store/subscription.ts';
 import { jsonBody } from './body.ts';
 import { askPage, page } from './forms.ts';
@@ -15,7 +16,7 @@ import { subscribe, overRate } from './subscriptions.ts';
 
 const MAX_BODY_BYTES = 8 * 1024;
 
-export function manageApi(services: Services): Hono {
+export function manageApi(services: DeskServices): Hono {
   const app = new Hono();
   const found = (c: Context) => subscriptionOf(services, 'manage', c.req.param('token') ?? '');
 
@@ -48,14 +49,14 @@ export function manageApi(services: Services): Hono {
   return app;
 }
 
-async function answerOf(services: Services, detail: SubscriptionDetail, acted: Acted): Promise<Response> {
+async function answerOf(services: DeskServices, detail: SubscriptionDetail, acted: Acted): Promise<Response> {
   if (acted.state === 'wrong') return problem('bad-input', { problems: acted.problems });
   if (acted.state === 'too-many') return problem('too-many', { detail: 'ten tests a day are sent' });
   const links = acted.linkVersion === undefined ? {} : { links: await linksOf(services, detail, acted.linkVersion) };
   return json({ state: acted.state, ...(acted.tests === undefined ? {} : { tests: acted.tests }), ...links });
 }
 
-function linksOf({ settings }: Services, { id, linkVersion }: Pick<SubscriptionDetail, 'id' | 'linkVersion'>, version = linkVersion) {
+function linksOf({ settings }: DeskServices, { id, linkVersion }: Pick<SubscriptionDetail, 'id' | 'linkVersion'>, version = linkVersion) {
   return secretLinks({ publicUrl: settings.publicUrl, linkKey: settings.linkKey ?? '' }, id, version);
 }
 
@@ -70,7 +71,7 @@ function nothing(): Response {
   return shown(page('There is nothing here', null), 404);
 }
 
-export function managePages(services: Services): Hono {
+export function managePages(services: DeskServices): Hono {
   const app = new Hono();
 
   for (const kind of ['confirm', 'manage', 'unsubscribe']) app.all(`/${kind}/`, () => nothing());
@@ -124,7 +125,7 @@ export function managePages(services: Services): Hono {
   return app;
 }
 
-async function changed(services: Services, detail: SubscriptionDetail, form: FormData): Promise<Response> {
+async function changed(services: DeskServices, detail: SubscriptionDetail, form: FormData): Promise<Response> {
   const asked = form.get('action');
   if (asked === 'change') {
     const kept = await preferencesJson(services, detail);

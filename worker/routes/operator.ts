@@ -1,5 +1,5 @@
 /** What the operator may do: sites, sheets, the pairs on the board, and forgetting a person. */
-import { Hono } from 'hono';
+import { Hono } from 'hono/tiny';
 import { check, issue } from '../../lib/config/check.ts';
 import { forgetSchema, parsePairs } from '../../lib/config/operator.ts';
 import { parseSheet } from '../../lib/config/sheet.ts';
@@ -9,7 +9,7 @@ import { mailAddress } from '../security/mail-address.ts';
 import { operatorRefusal } from '../security/operator.ts';
 import { ownerOf } from '../security/owner.ts';
 import { base64, derivedKey, sha256Hex } from '../secrets.ts';
-import type { Services } from '../service-set.ts';
+import type { DeskServices } from '../service-set.ts';
 import type { StoredSite } from '../store/site.ts';
 import { jsonBody } from './body.ts';
 import { sitesAndSheets } from './forms-data.ts';
@@ -17,7 +17,7 @@ import { json, problem } from './problem.ts';
 
 const MAX_BODY_BYTES = 256 * 1024;
 
-export function operator(services: Services): Hono {
+export function operator(services: DeskServices): Hono {
   const { stores, clock } = services;
   const app = new Hono();
 

@@ -1,13 +1,12 @@
 /** The pages: the board and the day of a site. GET only, nothing stored, no cookie, no script needed. */
-import { Hono, type Context } from 'hono';
+import type { Context } from 'hono';
+import { Hono } from 'hono/tiny';
 import { boardPage } from '../web/board.ts';
 import { dayPage } from '../web/day-page.ts';
 import { CONTENT_SECURITY_POLICY } from '../web/layout.ts';
 import { messagePage } from '../web/message-page.ts';
-import { readOwnNumbers } from '../web/own-numbers.ts';
 import type { DayAnswer, PageServices } from '../web/page-services.ts';
 import { unitsFrom } from '../web/units-query.ts';
-import { whatIfPage } from '../web/what-if-page.ts';
 
 /** A verdict must be asked for anew each time; nothing of a page may be framed, sniffed or told to others. */
 export const PAGE_HEADERS: Readonly<Record<string, string>> = {
@@ -19,17 +18,17 @@ export const PAGE_HEADERS: Readonly<Record<string, string>> = {
   'permissions-policy': 'geolocation=(), camera=(), microphone=()',
 };
 
-function answer(c: Context, page: string, status: 200 | 400 | 404 = 200): Response {
+export function answer(c: Context, page: string, status: 200 | 400 | 404 = 200): Response {
   return c.html(page, status, { ...PAGE_HEADERS });
 }
 
 /** An empty choice of a form is no choice. */
-function asked(c: Context, name: string): string | null {
+export function asked(c: Context, name: string): string | null {
   const value = c.req.query(name);
   return value === undefined || value === '' ? null : value;
 }
 
-function notFound(c: Context, found: Extract<DayAnswer, { kind: 'no-site' | 'bad-query' }>): Response {
+export function notFound(c: Context, found: Extract<DayAnswer, { kind: 'no-site' | 'bad-query' }>): Response {
   return found.kind === 'no-site'
     ? answer(c, messagePage({ title: 'No such site', sentences: ['Nothing is known of a site with this name.'] }), 404)
     : answer(c, messagePage({ title: 'This cannot be judged', sentences: found.problems }), 400);
@@ -46,18 +45,6 @@ export function pages(services: PageServices): Hono {
     return answer(c, dayPage(found.day, {
       reader: { units: unitsFrom(c.req.query()) }, now: services.now(), hour: asked(c, 'hour'), detail: found.detail, choices: found.choices,
     }));
-  });
-
-  app.get('/sites/:id/what-if', async (c) => {
-    const typed = c.req.query();
-    const units = unitsFrom(typed);
-    const { numbers, problems } = readOwnNumbers(typed, units);
-    const found = await services.whatIf({
-      siteId: c.req.param('id'), date: asked(c, 'date'), wing: asked(c, 'wing'), sheet: asked(c, 'sheet'), hour: asked(c, 'hour'), numbers, problems,
-    });
-    if (found.kind !== 'answer') return notFound(c, found);
-    const page = whatIfPage(found.day, found.answer, { reader: { units }, now: services.now(), hour: found.hour, given: found.given, typed });
-    return answer(c, page, found.answer.kind === 'judged' ? 200 : 400);
   });
 
   return app;

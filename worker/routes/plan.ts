@@ -2,7 +2,8 @@
  * The training day: its pages and its API. GET reads and changes nothing; POST of the page keeps a plan behind a link of
  * its own and leads there; POST of the API answers and keeps nothing.
  */
-import { Hono, type Context } from 'hono';
+import type { Context } from 'hono';
+import { Hono } from 'hono/tiny';
 import { CLOSING, INVENTED } from '../../lib/brief/words/index.ts';
 import { READER } from '../../lib/brief/words/reader.ts';
 import { parsePlanRequest } from '../../lib/config/plan.ts';

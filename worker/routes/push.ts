@@ -8,7 +8,7 @@ import { json, problem } from './problem.ts';
 
 const MAX_BODY_BYTES = 8 * 1024;
 
-type Desk = Omit<Services, 'sourcesFor' | 'channels' | 'mailer' | 'selfTest' | 'heartbeat'>;
+type Desk = Parameters<typeof renewBrowser>[0];
 
 /**
  * Asked by pages and the service worker. After a sign-up or a move the browser gets a push

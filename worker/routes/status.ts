@@ -1,4 +1,4 @@
-import { Hono } from 'hono';
+import { Hono } from 'hono/tiny';
 import type { Services } from '../service-set.ts';
 import { statusPage, type Status } from '../web/status-page.ts';
 import { health } from './health.ts';

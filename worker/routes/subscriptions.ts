@@ -1,4 +1,4 @@
-import { Hono } from 'hono';
+import { Hono } from 'hono/tiny';
 import type { SubscriptionRequest } from '../../lib/config/subscription.ts';
 import type { Issue } from '../../lib/result.ts';
 import { HOUR_MS } from '../../lib/time.ts';
@@ -6,10 +6,11 @@ import { secretLinks } from '../security/letter.ts';
 import { callerKey, ownerOf } from '../security/owner.ts';
 import { channelRows } from '../security/confirm.ts';
 import { preferenceRows, readSubscription } from '../security/subscribe.ts';
-import type { Services } from '../service-set.ts';
+import type { DeskServices } from '../service-set.ts';
 import { newToken } from '../store/token.ts';
 import { jsonBody } from './body.ts';
 import { json, problem } from './problem.ts';
+import { confirmPush } from './push.ts';
 
 /** POST /api/v1/subscriptions: no account, and no answer from which somebody could learn who subscribes. */
 const MAX_BODY_BYTES = 8 * 1024;
@@ -23,7 +24,7 @@ const ACCEPTED = {
   detail: 'Nothing is sent before it is confirmed: a mail with a link, valid for 48 hours, goes to the address, at most one a day.',
 };
 
-export function subscriptions(services: Services): Hono {
+export function subscriptions(services: DeskServices): Hono {
   const app = new Hono();
   app.post('/', async (c) => {
     const waitS = await overRate(services, c.req.raw);
@@ -31,15 +32,16 @@ export function subscriptions(services: Services): Hono {
     const body = await jsonBody(c.req.raw, MAX_BODY_BYTES);
     return body.ok ? subscribe(services, body.value) : body.error;
   });
+  app.post('/confirm-push', (c) => confirmPush(services, c.req.raw));
   return app;
 }
 
-export async function overRate({ settings, stores, clock }: Services, request: Request): Promise<number> {
+export async function overRate({ settings, stores, clock }: DeskServices, request: Request): Promise<number> {
   if (settings.linkKey === null || (settings.local && request.headers.get('cf-connecting-ip') === null)) return 0;
   return stores.rate.take(`signup ${await callerKey(settings.linkKey, request)}`, SIGNUPS, clock.nowMs());
 }
 
-export async function subscribe(services: Services, value: unknown): Promise<Response> {
+export async function subscribe(services: DeskServices, value: unknown): Promise<Response> {
   const { stores, clock, settings, mailer } = services;
   const { linkKey } = settings;
   if (linkKey === null) return problem('unusable', { detail: 'this service has no LINK_KEY and takes no subscriptions' });
@@ -58,11 +60,14 @@ export async function subscribe(services: Services, value: unknown): Promise<Res
     return json({ ...ACCEPTED, ...said }, { status: 202 });
   }
   await stores.db.together([...(await preferenceRows(services, id, request.value)), channelRows(services, id, request.value, false)]);
+  await services.wake('deliver', 1);
   const [first] = await stores.channel.ofSubscription(id);
   const secret = first?.kind === 'webhook' ? await services.addresses.secretOf(first) : null;
   return json({
     status: 'accepted',
-    detail: 'The receiver has to answer a challenge before its first brief; a test asked for through the manage link sends it at once.',
+    detail: first?.kind === 'push'
+      ? 'The browser is sent a push with a nonce, and is told once it has echoed it to /api/v1/subscriptions/confirm-push.'
+      : 'The receiver has to answer a challenge before its first brief; a test asked for through the manage link sends it at once.',
     links: await secretLinks({ publicUrl: settings.publicUrl, linkKey }, id, 1),
     ...(secret === null ? {} : { webhookSecret: secret }),
     ...said,
@@ -74,11 +79,12 @@ function shown({ channels, wing, ...rest }: SubscriptionRequest): unknown {
   return { ...rest, wing, channels: channels.map(({ kind, target, quiet }) => ({ kind, quiet, ...(JSON.parse(target) as object), p256dh: undefined, auth: undefined, host: undefined })) };
 }
 
-async function channelProblems({ stores, settings, addresses }: Services, { channels }: SubscriptionRequest): Promise<Issue[]> {
+async function channelProblems({ stores, settings, addresses }: DeskServices, { channels }: SubscriptionRequest): Promise<Issue[]> {
   const problems: Issue[] = [];
   for (const [index, { kind, target }] of channels.entries()) {
     const path = `$.channels[${index}]`;
     if (kind === 'push') {
+      if (settings.vapid === null) problems.push({ path: `${path}.kind`, value: '"push"', problem: 'this service sends no push', allowed: '"mail" or "webhook"' });
       if (!(await addresses.hasKeys(target))) problems.push({ path: `${path}.keys`, value: 'not shown', problem: 'these are no keys of a browser', allowed: 'p256dh: a point of P-256, auth: 16 bytes, in base64url' });
     }
     if (kind === 'webhook' && !settings.local) {

@@ -15,7 +15,7 @@ import { UNCONFIRMED_MS } from '../store/signup.ts';
 import { newToken } from '../store/token.ts';
 import { subscriptionOf } from './manage.ts';
 
-type Desk = Omit<Services, 'sourcesFor' | 'channels' | 'mailer' | 'selfTest' | 'heartbeat'>;
+type Desk = Parameters<typeof subscriptionOf>[0];
 
 const AT_ONCE = 5;
 /** Whoever asks: so many of them reach one browser a day, so that nobody is pestered through us. */

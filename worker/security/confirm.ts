@@ -2,10 +2,11 @@ import { placeName } from '../../lib/brief/words/index.ts';
 import { confirmLetter, knownLetter } from '../../lib/brief/words/letters.ts';
 import type { SubscriptionRequest } from '../../lib/config/subscription.ts';
 import { HOUR_MS } from '../../lib/time.ts';
+import { askBrowsers } from './browser.ts';
 import { letterOf, secretLinks } from './letter.ts';
 import type { Mailer } from './mailer.ts';
 import { SEND_TIMEOUT_MS } from '../morning/times.ts';
-import type { Services } from '../service-set.ts';
+import type { DeskServices, Services } from '../service-set.ts';
 import { UNCONFIRMED_MS, type SignupToMail } from '../store/signup.ts';
 import { newToken } from '../store/token.ts';
 import { preferenceRows } from './subscribe.ts';
@@ -14,9 +15,10 @@ const AT_ONCE = 5;
 /** Of all sign-ups together, so that a flood uses up neither quota nor reputation of the mail service. */
 const MAILS = { most: 300, withinMs: HOUR_MS };
 
-/** Sends the mails that ask for a yes. What an address has with us is looked at here and not where it could be answered for. */
+/** Sends the pushes and mails that ask for a yes. What an address has with us is looked at here and not where it could be answered for. */
 export async function confirmStep(services: Services): Promise<void> {
   const { stores, mailer, settings, clock } = services;
+  await askBrowsers(services);
   if (mailer === null || settings.linkKey === null) return;
   for (const signup of await stores.signup.claim(clock.nowMs(), AT_ONCE)) {
     const isSent = signup.isSuppressed === 1 || (await ask(services, mailer, settings.linkKey, signup));
@@ -53,7 +55,7 @@ async function hand(mailer: Mailer, letter: Parameters<Mailer['send']>[0]): Prom
 }
 
 /** Makes a subscription of a sign-up; null when the token is none. Used twice side by side it makes one. */
-export async function confirm(services: Services, token: string): Promise<{ readonly id: string; readonly version: number } | null> {
+export async function confirm(services: DeskServices, token: string): Promise<{ readonly id: string; readonly version: number } | null> {
   const { stores, clock } = services;
   const id = await stores.token.subject(token, 'confirm', clock.nowMs());
   const signup = id === null ? null : await stores.signup.byId(id);
@@ -69,7 +71,7 @@ export async function confirm(services: Services, token: string): Promise<{ read
 }
 
 /** A mail address is confirmed by the link it was sent; a webhook and a browser have yet to answer. */
-export function channelRows({ stores, clock }: Services, subscriptionId: string, request: SubscriptionRequest, isMailConfirmed: boolean) {
+export function channelRows({ stores, clock }: DeskServices, subscriptionId: string, request: SubscriptionRequest, isMailConfirmed: boolean) {
   return stores.channel.put(
     request.channels.map(({ kind, target, quiet }, rank) => ({
       id: `${subscriptionId}-${rank}`, subscriptionId, rank, kind, target, quiet,

@@ -1,12 +1,12 @@
 import { loosenedSentence } from '../../lib/brief/words/letters.ts';
 import { plainText } from '../../lib/brief/words/index.ts';
-import type { Services } from '../service-set.ts';
+import type { DeskServices } from '../service-set.ts';
 import type { Pair } from '../store/published.ts';
 
 /** Every brief of the day and a half after a sheet was loosened says so to those who are held to it. */
 const TOLD_FOR_MS = 36 * 3_600_000;
 
-export async function loosenedNotes({ stores, read, clock }: Services, pairs: readonly (Pair & { readonly subscriptionId: string })[]): Promise<ReadonlyMap<string, readonly string[]>> {
+export async function loosenedNotes({ stores, read, clock }: DeskServices, pairs: readonly (Pair & { readonly subscriptionId: string })[]): Promise<ReadonlyMap<string, readonly string[]>> {
   const sheetIds = [...new Set(pairs.map(({ sheetId }) => sheetId))];
   const changes = await stores.sheetHistory.loosened(sheetIds, clock.nowMs() - TOLD_FOR_MS);
   if (changes.length === 0) return new Map();

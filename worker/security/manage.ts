@@ -6,7 +6,7 @@ import type { Issue } from '../../lib/result.ts';
 import type { Message } from '../channels/channel.ts';
 import { followingDueMs, SEND_TIMEOUT_MS } from '../morning/times.ts';
 import { readLinkToken, type Purpose } from '../secrets.ts';
-import type { Services } from '../service-set.ts';
+import type { DeskServices } from '../service-set.ts';
 import type { SubscriptionDetail } from '../store/subscription.ts';
 import { pauseRows, preferenceRows, readPreferences } from './subscribe.ts';
 
@@ -17,7 +17,7 @@ export type Action = (typeof ACTIONS)[number];
 const TESTS = { most: 10, withinMs: 24 * 3_600_000 };
 
 /** null for a token that is none, of another purpose, revoked, or of a subscription that is gone. */
-export async function subscriptionOf({ settings, stores }: Services, purpose: Purpose, token: string): Promise<SubscriptionDetail | null> {
+export async function subscriptionOf({ settings, stores }: DeskServices, purpose: Purpose, token: string): Promise<SubscriptionDetail | null> {
   const named = settings.linkKey === null ? null : await readLinkToken(settings.linkKey, purpose, token);
   const detail = named === null ? null : await stores.subscription.detail(named.id);
   return detail !== null && detail.linkVersion === named?.version ? detail : null;
@@ -33,7 +33,7 @@ export type Acted =
   | { readonly state: 'done' | 'ended' | 'too-many'; readonly tests?: readonly TestResult[]; readonly linkVersion?: number }
   | { readonly state: 'wrong'; readonly problems: readonly Issue[] };
 
-export async function act(services: Services, detail: SubscriptionDetail, { action, until }: { readonly action: Action; readonly until: unknown }): Promise<Acted> {
+export async function act(services: DeskServices, detail: SubscriptionDetail, { action, until }: { readonly action: Action; readonly until: unknown }): Promise<Acted> {
   const { stores, clock } = services;
   const { id } = detail;
   const nowMs = clock.nowMs();
@@ -65,8 +65,8 @@ export async function act(services: Services, detail: SubscriptionDetail, { acti
 }
 
 /** Sends a test to each channel now; a receiver that has yet to show that it wants to be told is challenged by it. */
-async function testChannels(services: Services, { id }: SubscriptionDetail): Promise<TestResult[]> {
-  const { stores, channels, clock, settings, ids } = services;
+async function testChannels(services: DeskServices, { id }: SubscriptionDetail): Promise<TestResult[]> {
+  const { stores, channels, clock, settings, ids, wake } = services;
   const nowMs = clock.nowMs();
   const message: Message = {
     id: `test_${ids.next()}`, kind: 'test' as Message['kind'], ...testLetter({ service: new URL(settings.publicUrl).host }),
@@ -76,6 +76,12 @@ async function testChannels(services: Services, { id }: SubscriptionDetail): Pro
   for (const channel of await stores.channel.ofSubscription(id)) {
     if (channel.state === 'dead') {
       results.push({ kind: channel.kind, reached: false, reason: 'this channel has ended' });
+      continue;
+    }
+    if (channel.kind === 'push' && channel.state === 'unverified') {
+      await stores.db.together([stores.channel.askAt(channel.id, nowMs)]);
+      await wake('deliver', 1);
+      results.push({ kind: channel.kind, reached: false, reason: 'this browser has not confirmed yet; it is asked once more' });
       continue;
     }
     const outcome = await channels[channel.kind]?.send(message, channel, { number: 1, nowMs, timeoutMs: SEND_TIMEOUT_MS, untilMs: message.validUntilMs });
@@ -94,7 +100,7 @@ export interface PreferencesJson {
   readonly pauseUntil: string | null;
 }
 
-export async function preferencesJson({ stores }: Services, detail: SubscriptionDetail): Promise<PreferencesJson> {
+export async function preferencesJson({ stores }: DeskServices, detail: SubscriptionDetail): Promise<PreferencesJson> {
   const pairs = await stores.subscription.pairsOf([detail.id]);
   const [wing] = await stores.wing.some([pairs[0]?.wingKey ?? '']);
   const two = (value: number): string => String(value).padStart(2, '0');
@@ -107,7 +113,7 @@ export async function preferencesJson({ stores }: Services, detail: Subscription
   };
 }
 
-export async function change(services: Services, detail: SubscriptionDetail, json: unknown): Promise<readonly Issue[]> {
+export async function change(services: DeskServices, detail: SubscriptionDetail, json: unknown): Promise<readonly Issue[]> {
   const preferences = await readPreferences(services, json);
   if (!preferences.ok) return preferences.error;
   const pausedUntilMs = detail.state === 'paused' && preferences.value.pauseUntil === null ? detail.resumeAtMs : null;
@@ -117,7 +123,7 @@ export async function change(services: Services, detail: SubscriptionDetail, jso
 }
 
 /** Everything that is shown to its own subscriber. */
-export async function managed(services: Services, detail: SubscriptionDetail) {
+export async function managed(services: DeskServices, detail: SubscriptionDetail) {
   const channels = await services.stores.channel.ofSubscription(detail.id);
   return {
     state: detail.state,

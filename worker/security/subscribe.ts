@@ -5,12 +5,12 @@ import type { Issue, Result } from '../../lib/result.ts';
 import { instantOfLocal } from '../../lib/time.ts';
 import { followingDueMs } from '../morning/times.ts';
 import { sha256Hex } from '../secrets.ts';
-import type { Services } from '../service-set.ts';
+import type { DeskServices } from '../service-set.ts';
 import type { Statement } from '../store/database.ts';
 import type { NewSubscription } from '../store/subscription.ts';
 
 /** What a request may name: only the sites and sheets that it does name are read. */
-async function contextOf(services: Services, json: unknown): Promise<SubscriptionContext> {
+async function contextOf(services: DeskServices, json: unknown): Promise<SubscriptionContext> {
   const { stores, read } = services;
   const named = valueAt(json, ['sites']);
   const items: readonly unknown[] = Array.isArray(named) ? named.slice(0, 50) : [];
@@ -22,16 +22,16 @@ async function contextOf(services: Services, json: unknown): Promise<Subscriptio
   return { sites, sheets: [...stored, ...services.shippedSheets().filter(({ id }) => !known.has(id))], wingClasses: services.wingClasses(), ...services.addresses };
 }
 
-export async function readSubscription(services: Services, json: unknown): Promise<Result<SubscriptionRequest, Issue[]>> {
+export async function readSubscription(services: DeskServices, json: unknown): Promise<Result<SubscriptionRequest, Issue[]>> {
   return parseSubscription(json, await contextOf(services, json));
 }
 
-export async function readPreferences(services: Services, json: unknown): Promise<Result<Preferences, Issue[]>> {
+export async function readPreferences(services: DeskServices, json: unknown): Promise<Result<Preferences, Issue[]>> {
   return parsePreferences(json, await contextOf(services, json));
 }
 
 /** Rows for what somebody prefers: their wing, sites, hour and units. One that exists keeps its state and links. */
-export async function preferenceRows(services: Services, id: string, preferences: Preferences, owner: string | null = null): Promise<Statement[]> {
+export async function preferenceRows(services: DeskServices, id: string, preferences: Preferences, owner: string | null = null): Promise<Statement[]> {
   const nowMs = services.clock.nowMs();
   const { timeZone, deliverMinute, days, units, sites, wing, wingClass } = preferences;
   const body = JSON.stringify(wingClass === null ? wing : { class: wingClass });
@@ -56,7 +56,7 @@ function sheetJson({ limits, parameters, ...sheet }: LimitSheet): unknown {
 }
 
 /** Nothing until the first morning on or after a date. */
-export function pauseRows(services: Services, id: string, group: { readonly timeZone: string; readonly deliverMinute: number; readonly days: number }, date: string): Statement[] {
+export function pauseRows(services: DeskServices, id: string, group: { readonly timeZone: string; readonly deliverMinute: number; readonly days: number }, date: string): Statement[] {
   const firstMs = instantOfLocal(date, { hour: 0, minute: 0 }, group.timeZone);
   const nextDueAtMs = followingDueMs(group, Math.max(firstMs - 1, services.clock.nowMs()));
   return services.stores.subscription.pause(id, { resumeAtMs: nextDueAtMs, nextDueAtMs });

@@ -6,12 +6,10 @@ import { answersFor } from '../morning/answers.ts';
 import { dayInput } from '../morning/assess.ts';
 import { placesOf } from '../morning/places.ts';
 import { judgedDate } from '../morning/times.ts';
-import type { Place, Services } from '../service-set.ts';
+import type { Place, DeskServices } from '../service-set.ts';
 import type { Pair } from '../store/published.ts';
 import { hourDetail } from './hour-detail.ts';
-import { chosenHour } from './chosen-hour.ts';
-import type { BoardSite, Choices, DayAnswer, DayQuery, PageServices, WhatIfAnswer, WhatIfQuery } from './page-services.ts';
-import { judgeWhatIf } from './what-if-data.ts';
+import type { BoardSite, Choices, DayAnswer, DayQuery, PageServices } from './page-services.ts';
 
 const FALLBACK_WING = 'EN B';
 const FALLBACK_SHEET = { launch: 'descent-new', strip: 'solo-tow' } as const;
@@ -32,7 +30,7 @@ function wingJson(body: string): unknown {
   }
 }
 
-async function boardSites(services: Services): Promise<BoardSite[]> {
+async function boardSites(services: DeskServices): Promise<BoardSite[]> {
   const pairs = await services.stores.published.all();
   const places = await placesOf(services, [...new Set(pairs.map(({ siteId }) => siteId))]);
   const nowMs = services.clock.nowMs();
@@ -57,7 +55,7 @@ interface Chosen {
 }
 
 /** The wing and the sheet that were asked for, else the pair that the operator publishes for the site. */
-async function chosenPair(services: Services, place: Place, query: DayQuery): Promise<Chosen> {
+async function chosenPair(services: DeskServices, place: Place, query: DayQuery): Promise<Chosen> {
   const { site } = place;
   const [published, wings, sheets] = await Promise.all([services.stores.published.all(), services.stores.wing.all(), services.stores.sheet.newest()]);
   const own = published.find(({ siteId }) => siteId === site.id);
@@ -95,7 +93,7 @@ interface FoundDay {
 
 type NotFound = Extract<DayAnswer, { kind: 'no-site' | 'bad-query' }>;
 
-async function findDay(services: Services, query: DayQuery): Promise<FoundDay | NotFound> {
+export async function findDay(services: DeskServices, query: DayQuery): Promise<FoundDay | NotFound> {
   const place = (await placesOf(services, [query.siteId])).get(query.siteId);
   if (place === undefined) return { kind: 'no-site' };
   const chosen = await chosenPair(services, place, query);
@@ -108,26 +106,15 @@ async function findDay(services: Services, query: DayQuery): Promise<FoundDay | 
   return { kind: 'found', day, input, chosen };
 }
 
-async function siteDay(services: Services, query: DayQuery): Promise<DayAnswer> {
+async function siteDay(services: DeskServices, query: DayQuery): Promise<DayAnswer> {
   const found = await findDay(services, query);
   return found.kind === 'found' ? { kind: 'day', day: found.day, detail: hourDetail(found.input), choices: found.chosen.choices } : found;
 }
 
-async function whatIf(services: Services, query: WhatIfQuery): Promise<WhatIfAnswer> {
-  const found = await findDay(services, query);
-  if (found.kind !== 'found') return found;
-  const { day, input, chosen } = found;
-  const hour = chosenHour(day, query.hour);
-  if (hour === null) return { kind: 'bad-query', problems: ['There is no judged hour on this day.'] };
-  const answer = query.problems.length > 0 ? { kind: 'problems' as const, problems: query.problems } : judgeWhatIf(services, input, { validAt: hour.validAt, numbers: query.numbers, wing: chosen.wing });
-  return { kind: 'answer', day, hour: hour.validAt, given: hourDetail(input)(hour).given ?? {}, answer };
-}
-
-export function pageServices(services: Services): PageServices {
+export function pageServices(services: DeskServices): PageServices {
   return {
     now: () => new Date(services.clock.nowMs()),
     board: () => boardSites(services),
     day: (query) => siteDay(services, query),
-    whatIf: (query) => whatIf(services, query),
   };
 }

@@ -135,5 +135,10 @@ export interface PageServices {
   now(): Date;
   board(): Promise<readonly BoardSite[]>;
   day(query: DayQuery): Promise<DayAnswer>;
+}
+
+/** The same for the page on which a reader's own numbers are judged. */
+export interface WhatIfServices {
+  now(): Date;
   whatIf(query: WhatIfQuery): Promise<WhatIfAnswer>;
 }

@@ -10,13 +10,13 @@ import { placesOf } from '../../morning/places.ts';
 import { judgedDate } from '../../morning/times.ts';
 import { limiter } from '../../routes/limiter.ts';
 import { linkToken, readLinkToken } from '../../secrets.ts';
-import type { Services } from '../../service-set.ts';
+import type { DeskServices } from '../../service-set.ts';
 import type { PlanServices } from './plan-services.ts';
 
 /** A plan costs far more than a page. */
 const perMinute = limiter(30);
 
-export function planServices(services: Services): PlanServices {
+export function planServices(services: DeskServices): PlanServices {
   const { stores, clock, settings } = services;
   return {
     now: () => new Date(clock.nowMs()),
@@ -44,7 +44,7 @@ export function planServices(services: Services): PlanServices {
   };
 }
 
-async function known(services: Services): Promise<PlanContext> {
+async function known(services: DeskServices): Promise<PlanContext> {
   const [sites, sheets] = await Promise.all([services.stores.site.all(), services.stores.sheet.newest()]);
   return {
     sites: sites.flatMap((row) => { const place = services.read.site(row); return place.ok ? [place.value.site] : []; }),
@@ -53,7 +53,7 @@ async function known(services: Services): Promise<PlanContext> {
   };
 }
 
-async function judgedDays(services: Services, request: PlanRequest): Promise<JudgedDays> {
+async function judgedDays(services: DeskServices, request: PlanRequest): Promise<JudgedDays> {
   const pairs = pairsOf(request);
   const localDate = request.date;
   const stored = await services.stores.brief.bodies(pairs.map(({ site, wing, sheet }) => ({ siteId: site, localDate, wingKey: wing, sheetId: sheet })));

@@ -1,0 +1,97 @@
+import { judgeDay } from '../lib/brief/judge-day.ts';
+import { sourcesFor } from '../lib/config/source-order.ts';
+import { success, type Issue, type Result } from '../lib/result.ts';
+import { addressesOf } from './channels/addresses.ts';
+import { mailChannel } from './channels/mail.ts';
+import { bindingMailer } from './channels/mail-binding.ts';
+import { smtpMailer } from './channels/mail-smtp.ts';
+import { pushChannel } from './channels/push/push.ts';
+import { storedQuarrels } from './channels/push/quarrels.ts';
+import { vapid, type Authorize } from './channels/push/vapid.ts';
+import { terminalChannel } from './channels/terminal.ts';
+import { webhookChannel } from './channels/webhook.ts';
+import type { Job, Step } from './morning/job.ts';
+import { ownData, ownReaders } from './own-data.ts';
+import type { Mailer } from './security/mailer.ts';
+import type { Clock, DeskServices, IdSource } from './service-set.ts';
+import { readSettings, type Env, type Settings } from './settings.ts';
+import { withCompanions } from './sources/order.ts';
+import { database, type D1 } from './store/database.ts';
+import { storesOn } from './store/stores.ts';
+import { waker } from './wake.ts';
+
+const PATIENCE_MS = 10_000;
+
+/** What of the world the services are made from. */
+export interface World {
+  readonly settings: Settings;
+  readonly db: D1;
+  readonly queues: Readonly<Record<Step, Pick<Queue<Job>, 'sendBatch'>>>;
+  readonly fetch: (url: string, init: RequestInit) => Promise<Response>;
+  readonly sleep: (ms: number) => Promise<void>;
+  readonly clock: Clock;
+  readonly ids: IdSource;
+  readonly random: () => number;
+  readonly mailer?: Mailer | null;
+  /** How long database and queue are waited for. */
+  readonly patienceMs?: number;
+}
+
+/** The world of one invocation, or every setting that is wrong. */
+export function worldOf(env: Env): Result<World, Issue[]> {
+  const settings = readSettings(env);
+  if (!settings.ok) return settings;
+  return success({
+    settings: settings.value,
+    db: env.DB,
+    queues: { fetch: env.FETCH_QUEUE, assess: env.ASSESS_QUEUE, deliver: env.DELIVER_QUEUE },
+    fetch: (url, init) => fetch(url, init),
+    sleep: (ms) => new Promise((resolve) => setTimeout(resolve, ms)),
+    clock: { nowMs: () => Date.now() },
+    ids: { next: () => crypto.randomUUID() },
+    random: () => Math.random(),
+    mailer: mailerOf(settings.value, env),
+  });
+}
+
+function mailerOf({ smtp, mailFrom }: Settings, env: Env): Mailer | null {
+  if (mailFrom === null) return null;
+  if (smtp !== null) return smtpMailer(smtp, mailFrom);
+  return env.MAIL === undefined ? null : bindingMailer(env.MAIL, mailFrom);
+}
+
+export function deskServices(world: World): DeskServices {
+  const { settings, clock, ids, random, mailer = null } = world;
+  const patienceMs = world.patienceMs ?? PATIENCE_MS;
+  const stores = storesOn(database(world.db, { sleep: world.sleep, random, timeoutMs: patienceMs }));
+  return {
+    settings, clock, ids, random, stores,
+    read: ownReaders,
+    wingClasses: ownData.wingClasses,
+    shippedSheets: ownData.sheets,
+    thresholds: ownData.thresholds,
+    wake: waker(world.queues, patienceMs),
+    sourceNames: ({ site, demo }) => (demo ? ownData.demo().sources : withCompanions(sourcesFor(ownData.sources(), site))),
+    judge: judgeDay,
+    mailer,
+    addresses: addressesOf(settings),
+    channels: {
+      webhook: webhookChannel({ fetch: world.fetch, linkKey: settings.linkKey, local: settings.local, publicUrl: settings.publicUrl }),
+      push: pushChannel({ fetch: world.fetch, authorize: authorizer(settings), local: settings.local, publicUrl: settings.publicUrl, quarrels: storedQuarrels(stores) }),
+      ...(mailer === null ? {} : { mail: mailChannel({ mailer, linkKey: settings.linkKey, publicUrl: settings.publicUrl, mailFrom: settings.mailFrom ?? '' }) }),
+      ...(settings.local ? { terminal: terminalChannel(stores.terminal) } : {}),
+    },
+  };
+}
+
+/** Kept for the life of an isolate: a token is signed once for each origin and hour. */
+const authorizers = new Map<string, Authorize>();
+
+function authorizer({ vapid: keys, contact, publicUrl }: Settings): Authorize | null {
+  if (keys === null) return null;
+  const subject = contact === null ? publicUrl : contact.includes(':') ? contact : `mailto:${contact}`;
+  const name = `${keys.publicKey} ${subject}`;
+  const found = authorizers.get(name) ?? vapid(keys, subject);
+  authorizers.set(name, found);
+  return found;
+}
