@@ -14,7 +14,9 @@ const TIDY_EVERY_MS = 24 * HOUR_MS;
  */
 export async function sweep(services: Services, nowMs: number): Promise<void> {
   const { stores } = services;
+  const silent = await stores.subscription.neverVerified(nowMs - UNCONFIRMED_MS);
   await stores.db.together([
+    ...silent.flatMap((id) => stores.subscription.erase(id)),
     ...stores.outboxUpkeep.closeOverdue(nowMs),
     stores.runWork.giveUp(nowMs),
     stores.subscription.resumeDue(nowMs),
@@ -26,7 +28,7 @@ export async function sweep(services: Services, nowMs: number): Promise<void> {
   const messages = await stores.outbox.readyCount(nowMs);
   if (work.fetch > 0) await services.wake('fetch', 1);
   await services.wake('assess', Math.min(MOST_CALLS, work.assessJobs));
-  if (services.mailer !== null && messages === 0 && (await stores.signup.waiting(nowMs))) await services.wake('deliver', 1);
+  if (messages === 0 && ((services.mailer !== null && (await stores.signup.waiting(nowMs))) || (await stores.channel.asksWaiting(nowMs)))) await services.wake('deliver', 1);
   await services.wake('deliver', Math.min(MOST_CALLS, Math.ceil(messages / SEND_CHUNK)));
 }
 
@@ -34,9 +36,7 @@ export async function sweep(services: Services, nowMs: number): Promise<void> {
 export async function tidy(services: Services, nowMs: number, lastTidyMs: number): Promise<void> {
   if (nowMs - lastTidyMs < TIDY_EVERY_MS) return;
   const { stores } = services;
-  const silent = await stores.subscription.neverVerified(nowMs - UNCONFIRMED_MS);
   await stores.db.together([
-    ...silent.flatMap((id) => stores.subscription.erase(id)),
     stores.forecast.dropOld(nowMs),
     stores.brief.dropOld(nowMs),
     stores.outboxUpkeep.dropOld(nowMs),

@@ -111,11 +111,12 @@ export function subscriptionStore(db: Database) {
       const [row] = await db.read<{ id: string }>('SELECT id FROM subscription WHERE owner = ?', owner);
       return row?.id ?? null;
     },
-    /** Those none of whose channels ever showed that it wants to be told. */
+    /** Those none of whose channels ever showed that it wants to be told. Who was told once is not forgotten for having moved. */
     async neverVerified(beforeMs: number): Promise<string[]> {
       const rows = await db.read<{ id: string }>(
-        `SELECT id FROM subscription AS s WHERE stored_at < ? AND EXISTS (SELECT 1 FROM channel WHERE subscription_id = s.id)
-          AND NOT EXISTS (SELECT 1 FROM channel WHERE subscription_id = s.id AND state <> 'unverified') LIMIT 50`,
+        `SELECT DISTINCT c.subscription_id AS id FROM channel AS c JOIN subscription AS s ON s.id = c.subscription_id
+          WHERE c.state = 'unverified' AND s.stored_at < ? AND NOT EXISTS (SELECT 1 FROM channel AS o
+            WHERE o.subscription_id = s.id AND (o.state <> 'unverified' OR o.reached_at IS NOT NULL)) LIMIT 20`,
         beforeMs,
       );
       return rows.map(({ id }) => id);

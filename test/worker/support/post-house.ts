@@ -3,8 +3,12 @@ import { applyD1Migrations, reset } from 'cloudflare:test';
 import { env } from 'cloudflare:workers';
 import type { Hono } from 'hono';
 import type { SendOutcome } from '../../../worker/channels/channel.ts';
+import { pushChannel } from '../../../worker/channels/push/push.ts';
+import { storedQuarrels } from '../../../worker/channels/push/quarrels.ts';
+import { vapid } from '../../../worker/channels/push/vapid.ts';
 import { mailChannel } from '../../../worker/channels/mail.ts';
 import type { Letter } from '../../../worker/security/mailer.ts';
+import { base64Url } from '../../../worker/secrets.ts';
 import { app } from '../../../worker/routes/app.ts';
 import type { Services } from '../../../worker/service-set.ts';
 import { House, LINK_KEY, type HouseOptions } from './house.ts';
@@ -16,6 +20,16 @@ export class PostHouse extends House {
   mailOutcome: (letter: Letter) => SendOutcome = () => ({ state: 'sent' });
   isLocal = true;
   operatorHash: string | null = null;
+  vapid: { readonly publicKey: string; readonly privateKey: string } | null = null;
+  pushes: { readonly url: string; readonly body: Uint8Array; readonly headers: Headers }[] = [];
+  pushStatus = 201;
+
+  /** From now on this house sends pushes: their bytes are kept. */
+  async withPush(): Promise<void> {
+    const pair = (await crypto.subtle.generateKey({ name: 'ECDSA', namedCurve: 'P-256' }, true, ['sign', 'verify'])) as CryptoKeyPair;
+    const { d = '' } = (await crypto.subtle.exportKey('jwk', pair.privateKey)) as JsonWebKey;
+    this.vapid = { publicKey: base64Url(new Uint8Array((await crypto.subtle.exportKey('raw', pair.publicKey)) as ArrayBuffer)), privateKey: d };
+  }
 
   override services(): Services {
     const services = super.services();
@@ -27,8 +41,15 @@ export class PostHouse extends House {
         return Promise.resolve(outcome);
       },
     };
-    const settings = { ...services.settings, local: this.isLocal, mailFrom: 'brief@dawnmargin.example.org', operatorTokenSha256: this.operatorHash };
-    return { ...services, settings, mailer, channels: { ...services.channels, mail: mailChannel({ mailer, linkKey: LINK_KEY, publicUrl: settings.publicUrl, mailFrom: settings.mailFrom }) } };
+    const settings = { ...services.settings, local: this.isLocal, vapid: this.vapid, mailFrom: 'brief@dawnmargin.example.org', operatorTokenSha256: this.operatorHash };
+    const push = pushChannel({
+      fetch: (url, init) => {
+        this.pushes.push({ url, body: init.body as Uint8Array, headers: new Headers(init.headers) });
+        return Promise.resolve(new Response(null, { status: this.pushStatus }));
+      },
+      authorize: this.vapid === null ? null : vapid(this.vapid, 'mailto:ops@example.org'), local: this.isLocal, publicUrl: settings.publicUrl, quarrels: storedQuarrels(services.stores),
+    });
+    return { ...services, settings, mailer, channels: { ...services.channels, push, mail: mailChannel({ mailer, linkKey: LINK_KEY, publicUrl: settings.publicUrl, mailFrom: settings.mailFrom }) } };
   }
 
   hono(): Hono {

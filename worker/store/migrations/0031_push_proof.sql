@@ -4,6 +4,7 @@
 ALTER TABLE channel ADD COLUMN ask_at INTEGER;
 
 CREATE INDEX channel_to_ask ON channel (ask_at) WHERE ask_at IS NOT NULL;
+CREATE INDEX channel_unverified ON channel (subscription_id) WHERE state = 'unverified';
 CREATE INDEX channel_of_browser ON channel (target ->> 'endpoint') WHERE kind = 'push';
 
 UPDATE channel SET ask_at = stored_at WHERE kind = 'push' AND state = 'unverified';
