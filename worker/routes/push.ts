@@ -2,13 +2,11 @@ import { Hono } from 'hono/tiny';
 import { check } from '../../lib/config/check.ts';
 import { echoSchema, renewalSchema } from '../../lib/config/push-renewal.ts';
 import { confirmBrowser, renewBrowser } from '../security/browser.ts';
-import type { Services } from '../service-set.ts';
+import type { DeskServices } from '../service-set.ts';
 import { jsonBody } from './body.ts';
 import { json, problem } from './problem.ts';
 
 const MAX_BODY_BYTES = 8 * 1024;
-
-type Desk = Parameters<typeof renewBrowser>[0];
 
 /**
  * Asked by pages and the service worker. After a sign-up or a move the browser gets a push
@@ -19,7 +17,7 @@ type Desk = Parameters<typeof renewBrowser>[0];
  * nobody is told by that browser: whoever waits may forget it.
  * GET /api/v1/push/key: 200 `{"publicKey"}` for `pushManager.subscribe`, 404 where no push is sent.
  */
-export function pushApi(services: Desk): Hono {
+export function pushApi(services: DeskServices): Hono {
   const app = new Hono();
   app.get('/key', () => {
     const { vapid } = services.settings;
@@ -38,7 +36,7 @@ export function pushApi(services: Desk): Hono {
 }
 
 /** POST /api/v1/subscriptions/confirm-push. */
-export async function confirmPush(services: Pick<Services, 'stores' | 'clock'>, request: Request): Promise<Response> {
+export async function confirmPush(services: Pick<DeskServices, 'stores' | 'clock'>, request: Request): Promise<Response> {
   const body = await jsonBody(request, MAX_BODY_BYTES);
   if (!body.ok) return body.error;
   const echo = check(echoSchema(), body.value, []);

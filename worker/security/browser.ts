@@ -9,13 +9,11 @@ import { success, failure, type Issue, type Result } from '../../lib/result.ts';
 import { HOUR_MS } from '../../lib/time.ts';
 import { SEND_TIMEOUT_MS } from '../morning/times.ts';
 import { sameText, sha256Hex } from '../secrets.ts';
-import type { Services } from '../service-set.ts';
+import type { DeskServices, Services } from '../service-set.ts';
 import type { ChannelToAsk, StoredChannel } from '../store/channel.ts';
 import { UNCONFIRMED_MS } from '../store/signup.ts';
 import { newToken } from '../store/token.ts';
 import { subscriptionOf } from './manage.ts';
-
-type Desk = Parameters<typeof subscriptionOf>[0];
 
 const AT_ONCE = 5;
 /** Whoever asks: so many of them reach one browser a day, so that nobody is pestered through us. */
@@ -44,7 +42,7 @@ async function ask(services: Services, channel: ChannelToAsk): Promise<void> {
 }
 
 /** A browser sends back what it was sent; false for anything that is no nonce, or one no more. */
-export async function confirmBrowser({ stores, clock }: Pick<Services, 'stores' | 'clock'>, nonce: string): Promise<boolean> {
+export async function confirmBrowser({ stores, clock }: Pick<DeskServices, 'stores' | 'clock'>, nonce: string): Promise<boolean> {
   const id = await stores.token.subject(nonce, 'push', clock.nowMs());
   const [channel] = id === null ? [] : await stores.channel.some([id]);
   if (channel === undefined) return false;
@@ -53,7 +51,7 @@ export async function confirmBrowser({ stores, clock }: Pick<Services, 'stores' 
 }
 
 /** What became of a renewal: the state of the channel, or null where nobody is told by that browser. */
-export async function renewBrowser(services: Desk, renewal: Renewal): Promise<Result<'active' | 'unverified' | null, Issue[]>> {
+export async function renewBrowser(services: DeskServices, renewal: Renewal): Promise<Result<'active' | 'unverified' | null, Issue[]>> {
   const { stores, clock, addresses } = services;
   const [fresh, old] = [renewal.fresh, renewal.old ?? null].map((given) => (given === null ? null : addresses.push({ endpoint: given.endpoint, ...given.keys })));
   const problems = [['fresh', fresh] as const, ['old', old] as const].flatMap(([name, read]) => (read != null && 'problem' in read
@@ -74,7 +72,7 @@ export async function renewBrowser(services: Desk, renewal: Renewal): Promise<Re
 }
 
 /** The channels of a browser: by its old address with its secret, or those of a subscription by its manage link. */
-async function channelsOf(services: Desk, token: string | null, old: string | null): Promise<StoredChannel[]> {
+async function channelsOf(services: DeskServices, token: string | null, old: string | null): Promise<StoredChannel[]> {
   const was = old === null ? null : JSON.parse(old) as { readonly endpoint: string; readonly auth: string };
   if (token !== null) {
     const detail = await subscriptionOf(services, 'manage', token);
