@@ -61,8 +61,8 @@ afterAll(async () => {
 
 const ask = (url: string, init: { method?: string; headers?: Record<string, string>; body?: string } = {}) => runtime.dispatchFetch(`https://dawnmargin.example${url}`, init);
 
-test.each([[0, 'morning'], [1, 'desk']] as const)('worker %i, of the %s, stays under 150 kB of gzip', (which) => {
-  expect(gzipSync(built[which] ?? '', { level: 9 }).length / 1000).toBeLessThan(MOST_KB);
+test('each of the two stays under 150 kB of gzip', () => {
+  expect(built.map((code) => gzipSync(code, { level: 9 }).length / 1000).filter((weightKb) => weightKb > MOST_KB)).toEqual([]);
 });
 
 test('each path is answered by the worker that knows it', () => {

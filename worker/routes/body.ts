@@ -5,7 +5,7 @@ import { problem } from './problem.ts';
 /** The JSON of a request, read strictly and only up to a size; or the answer that says what is wrong with it. */
 export async function jsonBody(request: Request, maxBytes: number): Promise<Result<unknown, Response>> {
   const type = request.headers.get('content-type') ?? '';
-  if (!/^application\/json\s*(;|$)/i.test(type)) return { ok: false, error: problem('wrong-type', { detail: 'content-type must be application/json (or application/geo+json)' }) };
+  if (!/^application\/(?:geo\+)?json\s*(;|$)/i.test(type)) return { ok: false, error: problem('wrong-type', { detail: 'content-type must be application/json (or application/geo+json)' }) };
   const tooLarge = (): Result<never, Response> => ({ ok: false, error: problem('too-large', { detail: `at most ${maxBytes} bytes are read` }) });
   if (Number(request.headers.get('content-length') ?? 0) > maxBytes) return tooLarge();
   const bytes = await readUpTo(request.body, maxBytes);
