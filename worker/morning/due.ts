@@ -1,4 +1,4 @@
-import { localDate } from '../../lib/time.ts';
+import { HOUR_MS, localDate } from '../../lib/time.ts';
 import type { Services } from '../service-set.ts';
 import type { PlannedGroup } from '../store/outbox.ts';
 import type { DueGroup } from '../store/subscription.ts';
@@ -12,35 +12,57 @@ export interface Planned {
   readonly assessments: number;
 }
 
+/** Mornings that nobody came for are owned up to one by one for so long; of a longer silence the first is, too. */
+const OWNED_UP_MS = 7 * 24 * HOUR_MS;
+
 /**
  * First step of a morning: everyone whose minute has come gets a row in the outbox, what their briefs need and what the
  * board shows of the same sites becomes rows of work, and their next morning is set, all in one transaction. Run twice, or
- * hours late, it plans nothing twice.
+ * hours late, it plans nothing twice; run days late, it leaves no morning out.
  */
 export async function planDue(services: Services, nowMs: number, patience: Patience = USUAL_PATIENCE): Promise<Planned> {
   const { stores } = services;
   const groups = await stores.subscription.dueGroups(nowMs);
   if (groups.length === 0) return { groups: 0, fetches: 0, assessments: 0 };
-  const pairs = await stores.subscription.duePairs(nowMs);
+  const mornings = groups.map((group) => ({ group, ...morningsOf(group, nowMs) }));
+  const pairs = (await stores.subscription.duePairs(nowMs)).flatMap(({ timeZone, deliverMinute, nextDueAtMs, days, ...pair }) => {
+    const key = groupKey({ timeZone, deliverMinute, nextDueAtMs, days });
+    const own = mornings.find(({ group }) => groupKey(group) === key);
+    return own === undefined ? [] : [{ ...pair, dueAtMs: own.newestMs }];
+  });
   const places = await placesOf(services, [...new Set(pairs.map((pair) => pair.siteId))]);
   const published = await stores.published.all();
   const shown = pairs.flatMap((pair) => published.filter(({ siteId }) => siteId === pair.siteId).map((other) => ({ ...other, dueAtMs: pair.dueAtMs })));
   const assessments = wantedAssessments(places, [...pairs, ...shown], patience);
   const fetches = await wantedFetches(services, { places, assessments, nowMs });
-  const following = groups.map((group) => ({ ...group, followingAtMs: followingDueMs(group, nowMs) }));
   await stores.db.together([
     stores.run.wantFetches(fetches),
     stores.run.wantAssessments(assessments),
-    stores.outbox.plan(groups.map((group) => plannedGroup(group, nowMs, patience)), nowMs),
-    stores.subscription.advance(following),
+    stores.outbox.plan(mornings.flatMap(({ group, comeMs }) => comeMs.map((dueAtMs) => plannedMorning({ group, dueAtMs, nowMs, patience }))), nowMs),
+    stores.subscription.advance(mornings.map(({ group, followingAtMs }) => ({ ...group, followingAtMs }))),
   ]);
   return { groups: groups.length, fetches: fetches.length, assessments: assessments.length };
 }
 
+function groupKey({ timeZone, deliverMinute, nextDueAtMs, days }: DueGroup): string {
+  return `${timeZone} ${deliverMinute} ${nextDueAtMs} ${days}`;
+}
+
+/** The mornings of a group that have come, and the first that has not. */
+function morningsOf(group: DueGroup, nowMs: number): { readonly comeMs: readonly number[]; readonly newestMs: number; readonly followingAtMs: number } {
+  const comeMs = [group.nextDueAtMs];
+  let newestMs = group.nextDueAtMs;
+  for (let atMs = Math.max(newestMs, nowMs - OWNED_UP_MS); ; atMs = newestMs) {
+    const followingAtMs = followingDueMs(group, atMs);
+    if (followingAtMs > nowMs) return { comeMs, newestMs, followingAtMs };
+    newestMs = followingAtMs;
+    comeMs.push(newestMs);
+  }
+}
+
 /** A morning that is found too late to be of use is owned up to instead. */
-function plannedGroup(group: DueGroup, nowMs: number, patience: Patience): PlannedGroup {
-  const isMissed = nowMs >= group.nextDueAtMs + DELIVER_WITHIN_MS;
-  const dueAtMs = group.nextDueAtMs;
+function plannedMorning({ group, dueAtMs, nowMs, patience }: { readonly group: DueGroup; readonly dueAtMs: number; readonly nowMs: number; readonly patience: Patience }): PlannedGroup {
+  const isMissed = nowMs >= dueAtMs + DELIVER_WITHIN_MS;
   return {
     ...group,
     kind: isMissed ? 'missed' : 'brief',

@@ -3,6 +3,7 @@ import type { Services } from '../service-set.ts';
 import { SCHEMA_VERSION, type MetaKey } from '../store/meta.ts';
 import { planAbsent } from './absent.ts';
 import { BOARD_MINUTE, planBoard } from './board.ts';
+import { setBack } from './clock-back.ts';
 import { planDue } from './due.ts';
 import { beat } from './heartbeat.ts';
 import { noticeChanges } from './notices.ts';
@@ -18,7 +19,8 @@ const GAP_MS = 5 * MINUTE_MS;
 
 /**
  * Once a minute. The run's key comes from the scheduled time, so that a tick that is called twice works once; a tick that
- * never came is made up for by the next, because what is due is found by its time and not by the tick.
+ * never came is made up for by the next, because what is due is found by its time and not by the tick. A clock that was
+ * ahead is set back before anything else.
  */
 export async function tick(services: Services, scheduledAtMs: number, patience: Patience = USUAL_PATIENCE): Promise<void> {
   const { stores, clock } = services;
@@ -27,6 +29,7 @@ export async function tick(services: Services, scheduledAtMs: number, patience: 
     throw new Error(`the database has schema ${meta.get('schema') ?? 'none'}, this code needs ${SCHEMA_VERSION}: apply the migrations`);
   }
   const nowMs = clock.nowMs();
+  if (await setBack(services, nowMs, Number(meta.get('last-tick') ?? 0))) return tick(services, scheduledAtMs, patience);
   if (!(await stores.run.beginTick(scheduledAtMs, nowMs))) return;
   const lastTickMs = Number(meta.get('last-tick') ?? nowMs);
   if (nowMs - lastTickMs > GAP_MS) {

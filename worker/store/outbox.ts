@@ -12,6 +12,8 @@ export const OUTBOX_FORMAT = 1;
 export interface PlannedGroup {
   readonly timeZone: string;
   readonly deliverMinute: number;
+  /** The days of the week of its subscribers; of all where none are given. */
+  readonly days?: number;
   readonly nextDueAtMs: number;
   readonly kind: MessageKind;
   readonly dueLocalDate: string;
@@ -62,7 +64,7 @@ export function outboxStore(db: Database) {
             g.value ->> 'dueAtMs', g.value ->> 'readyByMs', g.value ->> 'validUntilMs', 'pending', g.value ->> 'dueAtMs', ?2
           FROM json_each(?1) AS g
           JOIN subscription AS s ON s.state = 'active' AND s.next_due_at = g.value ->> 'nextDueAtMs'
-            AND s.time_zone = g.value ->> 'timeZone' AND s.deliver_minute = g.value ->> 'deliverMinute'
+            AND s.time_zone = g.value ->> 'timeZone' AND s.deliver_minute = g.value ->> 'deliverMinute' AND s.days = COALESCE(g.value ->> 'days', s.days)
           JOIN channel AS c ON c.subscription_id = s.id AND c.state <> 'dead'
             AND c.rank = (SELECT MIN(rank) FROM channel WHERE subscription_id = s.id AND state <> 'dead')
           WHERE true

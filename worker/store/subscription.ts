@@ -51,12 +51,13 @@ export function subscriptionStore(db: Database) {
         nowMs,
       );
     },
-    /** What the subscribers who are due by then want a brief for, and when they are due. */
-    duePairs(nowMs: number): Promise<(Pair & { readonly dueAtMs: number })[]> {
+    /** What the subscribers who are due by then want a brief for, and to which group they belong. */
+    duePairs(nowMs: number): Promise<(Pair & DueGroup)[]> {
       return db.read(
-        `SELECT DISTINCT p.site_id AS siteId, p.wing_key AS wingKey, p.sheet_id AS sheetId, s.next_due_at AS dueAtMs
+        `SELECT DISTINCT p.site_id AS siteId, p.wing_key AS wingKey, p.sheet_id AS sheetId, s.time_zone AS timeZone, s.deliver_minute AS deliverMinute,
+            s.next_due_at AS nextDueAtMs, s.days
           FROM subscription AS s JOIN subscription_site AS p ON p.subscription_id = s.id
-          WHERE s.state = 'active' AND s.next_due_at <= ? ORDER BY 1, 2, 3, 4`,
+          WHERE s.state = 'active' AND s.next_due_at <= ? ORDER BY 1, 2, 3, 6, 4, 5, 7`,
         nowMs,
       );
     },
