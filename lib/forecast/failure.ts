@@ -26,3 +26,33 @@ export type SourceFailure =
   | { readonly kind: 'withheld' }
   | { readonly kind: 'not-covered' }
   | { readonly kind: 'not-fetched' };
+
+/** Failures that say something about the host. A refusal is about what was asked; the host is well. */
+export function isOfTheHost(failed: SourceFailure): boolean {
+  switch (failed.kind) {
+    case 'unreachable':
+    case 'timeout':
+    case 'too-large':
+    case 'redirected':
+    case 'rate-limited':
+    case 'server-error':
+    case 'breaker-open':
+    case 'not-json':
+    case 'content-type':
+      return true;
+    case 'refused':
+    case 'shape':
+    case 'unit':
+    case 'times':
+    case 'run-missing':
+    case 'run-old':
+    case 'run-future':
+    case 'place':
+    case 'ground':
+    case 'constant':
+    case 'withheld':
+    case 'not-covered':
+    case 'not-fetched':
+      return false;
+  }
+}

@@ -6,7 +6,7 @@ import type { Plan } from './plan.ts';
 const POLL_MS = 100;
 const SWEEP_EVERY_MS = 2000;
 /** The morning itself takes seconds; with services that hang, what is there by then is what is said. */
-const MOST_MS = 40_000;
+const MOST_MS = 55_000;
 
 /** Runs this morning now and waits until every brief is computed and every message has been tried. */
 export async function runMorning(client: Client, plan: Plan): Promise<readonly JudgedDay[]> {

@@ -2,16 +2,16 @@ import { isoUtc } from '../../lib/time.ts';
 import { failure } from '../../lib/result.ts';
 import type { Place, Services } from '../service-set.ts';
 import type { Source, SourceAnswer } from '../sources/source.ts';
-import { runKeyOf, type FetchOutcome } from '../store/forecast.ts';
 import type { FetchRun } from '../store/run-work.ts';
+import { endedFetch, failureEntries } from './fetch-ended.ts';
 import { placesOf } from './places.ts';
 import { ASSESS_CHUNK, FETCH_CHUNK } from './sizes.ts';
 import { instantsAround, LEASE_MS } from './times.ts';
 
 /**
  * Second step: takes open fetches of one source, asks it once for all their sites, and stores what it said, forecast or
- * failure. A source is asked once a morning; whether its silence matters is decided by whoever judges. True when there
- * was something to do.
+ * failure. A source is asked once a morning, and once more when it asked for a pause that ends in time; whether its
+ * silence matters is decided by whoever judges. True when there was something to do.
  */
 export async function fetchStep(services: Services): Promise<boolean> {
   const { stores, clock } = services;
@@ -29,9 +29,11 @@ export async function fetchStep(services: Services): Promise<boolean> {
     surplus,
     ...stores.forecast.put(given, nowMs),
     stores.sourceGround.keepFirst(given.flatMap(({ siteId, forecast }) => groundOf(forecast.members).map((groundM) => ({ siteId, source: forecast.source, groundM }))), nowMs),
-    stores.runWork.finishFetches(runs.map((run) => ({ key: run.key, outcome: outcomeOf(answers.get(run.siteId)) })), nowMs),
+    stores.runWork.finishFetches(runs.map((run) => endedFetch(run, answers.get(run.siteId), nowMs)), nowMs),
+    ...behindOf(services, asked, answers).map((sources) => stores.runWork.putBehind(sources, nowMs)),
     stores.meta.setting('last-fetch', String(nowMs)),
   ]);
+  await stores.log.write(failureEntries(runs[0]?.source ?? '', answers), nowMs);
   const ready = await stores.run.ready(nowMs, ASSESS_CHUNK, runs.map((run) => run.siteId));
   await services.wake('assess', ready.assessJobs);
   if (ready.fetch > 0 || claimed.length > runs.length) await services.wake('fetch', 1);
@@ -71,9 +73,13 @@ function askedOf(source: Source, places: readonly Place[], { fromMs, toMs }: { f
   return source.fetch({ sites: places.map(({ site }) => site), fromUtc: isoUtc(fromMs), toUtc: isoUtc(toMs) });
 }
 
-function outcomeOf(answer: SourceAnswer | undefined): FetchOutcome {
-  if (answer === undefined) return { ok: false, error: { kind: 'not-covered' } };
-  return answer.ok ? { ok: true, runAt: runKeyOf(answer.value) } : { ok: false, error: answer.error };
+/** After a hang: all sources of that host, so that the others have their turn before the time is up. */
+function behindOf(services: Services, asked: readonly Asked[], answers: ReadonlyMap<string, SourceAnswer>): string[][] {
+  const [first] = asked;
+  const hasHung = [...answers.values()].some((answer) => !answer.ok && answer.error.kind === 'timeout');
+  if (first === undefined || !hasHung) return [];
+  const sources = asked.flatMap(({ place }) => services.sourcesFor(place)).filter(({ id, host }) => id === first.source.id || (host !== undefined && host === first.source.host));
+  return [[...new Set(sources.map(({ id }) => id))]];
 }
 
 /** The model's ground, from the first hour that has it. */

@@ -13,8 +13,8 @@ export interface Patience {
 }
 
 export const USUAL_PATIENCE: Patience = { assessWithinMs: 4 * MINUTE_MS, readyWithinMs: 10 * MINUTE_MS };
-/** Somebody sits and watches. */
-export const SHORT_PATIENCE: Patience = { assessWithinMs: 20_000, readyWithinMs: 25_000 };
+/** Somebody sits and watches. Two hosts that hang for ten seconds each still leave time to ask all others. */
+export const SHORT_PATIENCE: Patience = { assessWithinMs: 35_000, readyWithinMs: 40_000 };
 
 /** A brief that could not be handed over within six hours is of no use for the morning it was made for. */
 export const DELIVER_WITHIN_MS = 6 * HOUR_MS;

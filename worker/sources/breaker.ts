@@ -3,7 +3,7 @@
  * each probe that fails doubles the wait, up to ten minutes. A host that says 429 is left alone at least until its next
  * full minute. Pure: state and time in, state out.
  */
-import type { SourceFailure } from '../../lib/forecast/failure.ts';
+import { isOfTheHost, type SourceFailure } from '../../lib/forecast/failure.ts';
 
 export interface BreakerState {
   /** Failures of the last minute, epoch ms. */
@@ -56,36 +56,6 @@ function afterRateLimit(state: BreakerState, retryAfterS: number | null, nowMs: 
   const waitMs = state.probeMs === null ? CLOSED.waitMs : Math.min(state.waitMs * 2, LONGEST_WAIT_MS);
   const askedMs = Math.min((retryAfterS ?? 0) * 1000, LONGEST_RATE_LIMIT_MS);
   return { ...opened(state, nowMs, waitMs), openUntilMs: nowMs + Math.max(nextMinuteMs, askedMs, state.probeMs === null ? 0 : waitMs) };
-}
-
-/** Failures that say something about the host. A refusal is about what was asked; the host is well. */
-export function isOfTheHost(failed: SourceFailure): boolean {
-  switch (failed.kind) {
-    case 'unreachable':
-    case 'timeout':
-    case 'too-large':
-    case 'redirected':
-    case 'rate-limited':
-    case 'server-error':
-    case 'breaker-open':
-    case 'not-json':
-    case 'content-type':
-      return true;
-    case 'refused':
-    case 'shape':
-    case 'unit':
-    case 'times':
-    case 'run-missing':
-    case 'run-old':
-    case 'run-future':
-    case 'place':
-    case 'ground':
-    case 'constant':
-    case 'withheld':
-    case 'not-covered':
-    case 'not-fetched':
-      return false;
-  }
 }
 
 /** The state as it is stored; anything that is not one is a closed breaker. */

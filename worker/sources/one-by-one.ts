@@ -2,14 +2,13 @@
  * Services that answer for one place at a time and want to know who asks: their places are asked in turn, and no longer
  * once the host has shown that it does not answer, so that a dead host costs a morning seconds and not its whole list.
  */
-import { isOfTheHost } from './breaker.ts';
 import type { CachedAnswer, SourceCache } from './caching.ts';
 import { chosenHours } from './hours.ts';
 import type { Report, Source, SourceAnswer, SourceRequest } from './source.ts';
 import { userAgent } from './who-asks.ts';
 import { coversPlace, type PlainSource } from '../../lib/config/source-order.ts';
 import type { Conditions } from '../../lib/forecast/conditions.ts';
-import type { SourceFailure } from '../../lib/forecast/failure.ts';
+import { isOfTheHost, type SourceFailure } from '../../lib/forecast/failure.ts';
 import { gridDistanceM } from '../../lib/forecast/place.ts';
 import { failure, success, type Result } from '../../lib/result.ts';
 import type { Site } from '../../lib/site.ts';

@@ -14,6 +14,16 @@ export interface FetchRun {
   readonly attempts: number;
 }
 
+/** How a fetch came out, and what is to become of it. */
+export interface EndedFetch {
+  readonly key: string;
+  readonly outcome: FetchOutcome;
+  /** When the service may be asked again; null when asking again would help nothing. */
+  readonly askAgainMs?: number | null;
+  /** Whether an earlier forecast of this day stands. */
+  readonly keepsLast?: boolean;
+}
+
 /** The assessment of one pair-day. */
 export interface AssessRun extends PairDay {
   readonly key: string;
@@ -65,12 +75,33 @@ export function runWorkStore(db: Database) {
         values: [JSON.stringify(keys)],
       };
     },
-    finishFetches(ended: readonly { readonly key: string; readonly outcome: FetchOutcome }[], nowMs: number): Statement {
-      const list = ended.map(({ key, outcome }) => ({ key, outcome: JSON.stringify(outcome) }));
+    /**
+     * Ends fetches with what came of them. One that is told when to ask again stays wanted until then, if somebody still
+     * waits for it by then; what came of it stands meanwhile. One that failed on the way leaves in place what an earlier
+     * fetch of the same day has brought: its age speaks for itself.
+     */
+    finishFetches(ended: readonly EndedFetch[], nowMs: number): Statement {
+      const list = ended.map(({ key, outcome, askAgainMs = null, keepsLast = false }) => ({ key, outcome: JSON.stringify(outcome), askAgainMs, keepsLast }));
+      const isAwaited = `(j.again IS NOT NULL AND EXISTS (SELECT 1 FROM run AS a WHERE a.step = 'assess' AND a.state = 'wanted'
+        AND a.site_id = run.site_id AND a.local_date = run.local_date AND a.start_by > j.again))`;
+      const stands = `(j.keeps AND run.outcome ->> 'ok' = 1)`;
       return {
-        sql: `UPDATE run SET state = 'done', outcome = j.outcome, finished_at = ?2, lease_until = NULL, lease_by = NULL
-          FROM (SELECT value ->> 'key' AS key, value ->> 'outcome' AS outcome FROM json_each(?1)) AS j WHERE run.key = j.key`,
+        sql: `UPDATE run SET outcome = CASE WHEN ${stands} THEN run.outcome ELSE j.outcome END,
+            finished_at = CASE WHEN ${stands} THEN finished_at ELSE ?2 END,
+            state = CASE WHEN ${isAwaited} THEN 'wanted' ELSE 'done' END,
+            attempts = CASE WHEN ${isAwaited} THEN attempts - 1 ELSE attempts END,
+            next_attempt_at = COALESCE(j.again, next_attempt_at), lease_until = NULL, lease_by = NULL
+          FROM (SELECT value ->> 'key' AS key, value ->> 'outcome' AS outcome, value ->> 'askAgainMs' AS again, value ->> 'keepsLast' AS keeps
+            FROM json_each(?1)) AS j WHERE run.key = j.key`,
         values: [JSON.stringify(list), nowMs],
+      };
+    },
+    /** Puts open fetches of some sources behind all others: their host has just shown that it costs more time than it gives. */
+    putBehind(sources: readonly string[], nowMs: number): Statement {
+      return {
+        sql: `UPDATE run SET start_by = MAX(start_by, ?2) WHERE step = 'fetch' AND state = 'wanted' AND lease_until IS NULL
+          AND source IN (SELECT value FROM json_each(?1))`,
+        values: [JSON.stringify(sources), nowMs],
       };
     },
     finishAssessments(keys: readonly string[], nowMs: number): Statement {

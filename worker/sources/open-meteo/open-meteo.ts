@@ -8,13 +8,12 @@ import { fetchReferencePressures, type ReferencePressures } from './reference-pr
 import { olderRun, runAtOf } from './run-time.ts';
 import { toMembers, type Ask } from './to-hours.ts';
 import { columnsFor } from './variables.ts';
-import { isOfTheHost } from '../breaker.ts';
 import type { Host } from '../host.ts';
 import { requestWeight } from '../quota.ts';
 import type { Source, SourceAnswer, SourceRequest } from '../source.ts';
 import { coversPlace, type OpenMeteoSource } from '../../../lib/config/source-order.ts';
 import type { ConditionField, Forecast } from '../../../lib/forecast/conditions.ts';
-import type { SourceFailure } from '../../../lib/forecast/failure.ts';
+import { isOfTheHost, type SourceFailure } from '../../../lib/forecast/failure.ts';
 import { gridDistanceM } from '../../../lib/forecast/place.ts';
 import { failure, success, type Result } from '../../../lib/result.ts';
 import type { Site } from '../../../lib/site.ts';
