@@ -22,6 +22,8 @@ export interface AbsentContent extends Content {
 /** Of a test: when the channel was last reached. */
 export interface TestContent extends Content {
   readonly reachedAtMs: number | null;
+  /** By its subscriber; left out by the test of the week. */
+  readonly asked?: boolean;
 }
 
 /** Every message that is not a brief, in words; null when none of its sites is kept any more. */
@@ -30,7 +32,7 @@ export function noticeMessage(parts: MessageParts): Message | null {
   switch (row.kind) {
     case 'brief': return briefMessage(parts);
     case 'change': return changeMessage(parts);
-    case 'test': return { ...plain(parts), ...testNotice({ atMs: content.issuedAtMs, reachedAtMs: (content as TestContent).reachedAtMs }) };
+    case 'test': return { ...plain(parts), ...testNotice({ atMs: content.issuedAtMs, reachedAtMs: (content as TestContent).reachedAtMs, asked: (content as TestContent).asked === true }) };
     case 'missed': {
       const { reason } = content as Partial<AbsentContent>;
       const demo = content.briefs.some((brief) => parts.places.get(brief.siteId)?.demo === true);

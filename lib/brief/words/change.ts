@@ -80,10 +80,12 @@ export function absentNotice({ date, reason, demo }: { readonly date: string; re
 }
 
 /** Once a week, to every way of reaching somebody: that it works can only be seen by using it. */
-export function testNotice({ atMs, reachedAtMs }: { readonly atMs: number; readonly reachedAtMs: number | null }): { readonly title: string; readonly text: string } {
+export function testNotice({ atMs, reachedAtMs, asked = false }: { readonly atMs: number; readonly reachedAtMs: number | null; /** On the page of the subscription, not by the week. */ readonly asked?: boolean }): { readonly title: string; readonly text: string } {
   const last = reachedAtMs === null ? 'Nothing has been handed over on this way so far.' : `Something was last handed over on this way ${ageName(atMs - reachedAtMs)} before.`;
   return {
     title: 'Test: cannot say anything about any day',
-    text: `This is the weekly test of this way of reaching you. It says nothing about any site or day. ${last} If you see no such message for more than a week, this way no longer reaches you.\n\n${CLOSING}\n`,
+    text: asked
+      ? `This is a test that was asked for on the page of your subscription. It says nothing about any site or day. ${last}\n\n${CLOSING}\n`
+      : `This is the weekly test of this way of reaching you. It says nothing about any site or day. ${last} If you see no such message for more than a week, this way no longer reaches you.\n\n${CLOSING}\n`,
   };
 }

@@ -13,10 +13,10 @@ export function pushPayload(message: Message, { origin, minimal = false }: { rea
   const [only] = message.days;
   const path = message.days.length === 1 && only !== undefined ? `/sites/${encodeURIComponent(only.siteId)}` : '/';
   const fixed = {
-    id: message.id, kind: message.nonce === undefined ? message.kind : 'confirm', nonce: message.nonce, title: message.title, url: `${origin}${path}`,
+    id: message.id, thread: message.thread, kind: message.nonce === undefined ? message.kind : 'confirm', nonce: message.nonce, title: message.title, url: `${origin}${path}`,
     issuedAt: new Date(message.issuedAtMs).toISOString(), validUntil: new Date(message.validUntilMs).toISOString(), inventedWeather: message.demo,
   };
-  if (minimal) return encoder.encode(JSON.stringify({ id: fixed.id, kind: fixed.kind, nonce: fixed.nonce, title: cut(fixed.title, 120), url: fixed.url, issuedAt: fixed.issuedAt, validUntil: fixed.validUntil }));
+  if (minimal) return encoder.encode(JSON.stringify({ id: fixed.id, thread: fixed.thread, kind: fixed.kind, nonce: fixed.nonce, title: cut(fixed.title, 120), url: fixed.url, issuedAt: fixed.issuedAt, validUntil: fixed.validUntil }));
   let length = message.text.length;
   for (;;) {
     const bytes = encoder.encode(JSON.stringify({ ...fixed, title: cut(fixed.title, 400), body: cut(message.text, length) }));
