@@ -66,6 +66,7 @@ self.addEventListener('push', (event) => {
 async function arrived(push) {
   await expire();
   if (push === null) return show({ ...EXPIRED, tag: 'unreadable', title: 'Cannot say: a message came that cannot be read', silent: true });
+  if (push.kind === 'confirm') return confirm(push);
   const tag = push.kind === 'test' ? 'test' : `brief ${push.thread ?? ''}`;
   const newest = await recall(tag);
   const isNew = newest === null || instant(push.issuedAt) > instant(newest.issuedAt);
@@ -74,7 +75,32 @@ async function arrived(push) {
   // Each push has to show something; one that is late, old or a repeat shows quietly what holds, or that nothing does.
   if (isPast(current)) return show({ ...EXPIRED, tag, silent: true, current });
   await show({ title: current.title, body: `As of ${clock(current.issuedAt)}, until ${clock(current.validUntil)}. ${current.body ?? ''}`, tag, silent: !isNew, current });
-  if (isNew && push.kind !== 'test') for (const page of await self.clients.matchAll({ includeUncontrolled: true })) page.postMessage({ newer: push.issuedAt });
+  if (isNew) await report(push);
+  if (isNew && push.kind !== 'test') await tell({ newer: push.issuedAt });
+}
+
+async function tell(message) {
+  for (const page of await self.clients.matchAll({ includeUncontrolled: true })) page.postMessage(message);
+}
+
+const post = (path, body) => fetch(path, { method: 'POST', headers: { 'content-type': 'application/json' }, body: JSON.stringify(body) }).catch(() => null);
+
+/** What a push service has taken is seen by nobody yet; only who showed it can say so. */
+async function report({ id }) {
+  if (typeof id !== 'string' || !id.startsWith('msg_')) return;
+  if ((await post('/api/v1/push/shown', { id }))?.ok) await tell({ shown: id });
+}
+
+/** This browser asked to be told: what it was sent goes back, and shows that the address is its own. */
+async function confirm({ nonce, validUntil, issuedAt }) {
+  const answer = isPast({ validUntil }) ? null : await post('/api/v1/subscriptions/confirm-push', { nonce });
+  const subscription = await self.registration.pushManager.getSubscription().catch(() => null);
+  if (answer?.ok && subscription !== null) await keep('told', { at: Date.now(), ...subscription.toJSON() });
+  const words = answer?.ok
+    ? { title: 'This browser is told from now on', body: 'It has answered by itself.' }
+    : { title: 'Not confirmed: this browser is not told', body: 'The page of your subscription can ask it again.' };
+  await show({ ...words, tag: 'confirm', silent: true, current: { issuedAt, validUntil } });
+  if (answer?.ok) await tell({ confirmed: true });
 }
 
 function show({ title, body, tag, silent, current = {} }) {
@@ -120,10 +146,36 @@ self.addEventListener('pushsubscriptionchange', (event) => event.waitUntil((asyn
   await renew();
 })()));
 
+/** At a visit: the address of this browser as it is now, where it was told under another one, or under another key. */
 async function renew() {
+  await moved().catch(() => undefined);
   const waiting = await recall('renew');
   if (waiting === null) return;
-  const answer = await fetch('/push/renew', { method: 'POST', headers: { 'content-type': 'application/json' }, body: JSON.stringify(waiting) }).catch(() => null);
+  const answer = await post('/api/v1/push/renew', waiting);
   // Kept until somebody has taken it, or says that there is nobody to renew.
-  if (answer !== null && (answer.ok || answer.status === 410)) await (await caches.open(STATE)).delete(key('renew'));
+  if (answer === null || !(answer.ok || answer.status === 410)) return;
+  const cache = await caches.open(STATE);
+  await cache.delete(key('renew'));
+  if (answer.ok) await keep('told', { at: Date.now(), ...waiting.fresh });
+  else await cache.delete(key('told'));
+}
+
+const LOOKED_AT_MS = 86_400_000;
+
+async function moved() {
+  const told = await recall('told');
+  if (told === null || Date.now() - told.at < LOOKED_AT_MS || Notification.permission !== 'granted') return;
+  const answer = await fetch('/api/v1/push/key');
+  if (!answer.ok) return;
+  const { publicKey } = await answer.json();
+  const wanted = Uint8Array.from(atob(publicKey.replaceAll('-', '+').replaceAll('_', '/')), (character) => character.charCodeAt(0));
+  let now = await self.registration.pushManager.getSubscription();
+  const its = new Uint8Array(now?.options.applicationServerKey ?? []);
+  if (now !== null && its.length > 0 && its.join() !== wanted.join()) {
+    await now.unsubscribe();
+    now = null;
+  }
+  const fresh = (now ?? await self.registration.pushManager.subscribe({ userVisibleOnly: true, applicationServerKey: wanted })).toJSON();
+  const old = { endpoint: told.endpoint, keys: told.keys };
+  if ((await recall('renew')) === null) await keep('renew', { old, fresh });
 }

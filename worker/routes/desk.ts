@@ -5,10 +5,12 @@ import { planServices } from '../web/plan/plan-data.ts';
 import { assess } from './assess.ts';
 import { bounce } from './bounces.ts';
 import { closing } from './closing.ts';
-import { manageApi, managePages } from './manage.ts';
+import { manageApi } from './manage.ts';
 import { operator } from './operator.ts';
 import { planApi, planPages } from './plan.ts';
 import { pushApi } from './push.ts';
+import { pushShown } from './shown.ts';
+import { subscriberPages } from './subscriber-pages.ts';
 import { subscriptions } from './subscriptions.ts';
 import { whatIf } from './what-if.ts';
 
@@ -19,11 +21,13 @@ export const DESK_METHODS: Readonly<Record<string, string>> = {
   '/confirm/:token': 'GET, HEAD, POST',
   '/manage/:token': 'GET, HEAD, POST',
   '/subscribe': 'GET, HEAD, POST',
+  '/subscribe/sent': 'GET, HEAD',
   '/unsubscribe/:token': 'GET, HEAD, POST',
   '/api/v1/subscriptions': 'POST',
   '/api/v1/subscriptions/confirm-push': 'POST',
   '/api/v1/push/renew': 'POST',
   '/api/v1/push/key': 'GET, HEAD',
+  '/api/v1/push/shown': 'POST',
   '/api/v1/bounces': 'POST',
   '/api/v1/operator/sites': 'GET, HEAD, PUT',
   '/api/v1/operator/sheets': 'GET, HEAD',
@@ -42,11 +46,12 @@ export function deskRoutes(hono: Hono, services: DeskServices): void {
   hono.post('/api/v1/bounces', (c) => bounce(services, c.req.raw));
   hono.route('/api/v1/operator', operator(services));
   hono.route('/api/v1/subscriptions', subscriptions(services));
+  hono.post('/api/v1/push/shown', (c) => pushShown(services, c));
   hono.route('/api/v1/push', pushApi(services));
   hono.route('/api/v1/manage', manageApi(services));
   hono.get('/sites/:id/what-if', (c) => whatIf(whatIfServices(services), c));
   hono.route('/plan', planPages(planServices(services)));
-  hono.route('/', managePages(services));
+  hono.route('/', subscriberPages(services));
 }
 
 /** The desk: where people hand something in, from a subscription to a training day. */

@@ -61,7 +61,7 @@ export class PostHouse extends House {
     return this.hono().request(path, { method, ...json, headers: { ...(body === undefined ? {} : { 'content-type': 'application/json' }), ...headers } });
   }
 
-  form(path: string, fields: Readonly<Record<string, string>>, headers: Record<string, string> = {}): Promise<Response> {
+  form(path: string, fields: Readonly<Record<string, string>> | string[][], headers: Record<string, string> = {}): Promise<Response> {
     return Promise.resolve(this.hono().request(path, { method: 'POST', body: new URLSearchParams(fields).toString(), headers: { 'content-type': 'application/x-www-form-urlencoded', ...headers } }));
   }
 

@@ -1,0 +1,47 @@
+/** Puts together what the page of a subscription shows. It reads and changes nothing. */
+import { managed, preferencesJson } from '../security/manage.ts';
+import { secretLinks } from '../security/letter.ts';
+import type { DeskServices } from '../service-set.ts';
+import { deliveriesOf, reachedOf } from '../store/deliveries.ts';
+import type { SubscriptionDetail } from '../store/subscription.ts';
+import { managePage } from '../web/manage/manage-page.ts';
+import type { ManageView } from '../web/manage/view.ts';
+import { sitesAndSheets } from './forms-data.ts';
+
+const LOG_MS = 14 * 24 * 3_600_000;
+
+/** What the page says after something was done: named in the address, so that nobody's words come from it. */
+const SAID: Readonly<Record<string, string>> = {
+  changed: 'Changed. From the next brief on this counts.',
+  paused: 'Paused.',
+  resumed: 'Resumed.',
+  test: 'A test is on its way. What became of it stands below; load the page again to see it.',
+  asked: 'This browser is asked whether it wants to be told; it answers by itself.',
+  quiet: 'Quiet hours are kept from now on.',
+  loud: 'There are no quiet hours on this way any more.',
+  order: 'The order is changed.',
+  removed: 'This way is taken away.',
+  'new-links': 'These are the new links; those before lead nowhere now.',
+  welcome: 'Accepted. Keep the address of this page: it is the only way to it, and as secret as a key.',
+};
+
+export async function manageMarkup(services: DeskServices, detail: SubscriptionDetail, { said = null, refused = null }: { readonly said?: string | null; readonly refused?: ManageView['refused'] }): Promise<string> {
+  const { settings, stores, clock } = services;
+  const nowMs = clock.nowMs();
+  const [known, rows, about, deliveries, kept, { channels: seen }] = await Promise.all([
+    sitesAndSheets(services), stores.channel.ofSubscription(detail.id), reachedOf(stores.db, detail.id),
+    deliveriesOf(stores.db, detail.id, nowMs - LOG_MS), preferencesJson(services, detail), managed(services, detail),
+  ]);
+  const links = await secretLinks({ publicUrl: settings.publicUrl, linkKey: settings.linkKey ?? '' }, detail.id, detail.linkVersion);
+  const none = { reachedAtMs: null, shownAtMs: null, reason: null };
+  return managePage({
+    ...known, kept, deliveries, refused, nowMs,
+    state: detail.state,
+    nextBriefAtMs: detail.state === 'active' ? detail.nextDueAtMs : null,
+    channels: rows.map(({ id, kind, state, quietFrom, quietTo }, nth) => ({ id, kind, state, quietFrom, quietTo, to: seen[nth]?.to ?? '', ...(about.get(id) ?? none) })),
+    feed: links.feed,
+    path: new URL(links.manage).pathname,
+    pushKey: settings.vapid?.publicKey ?? null,
+    said: said === null ? null : (SAID[said] ?? null),
+  });
+}

@@ -1,0 +1,63 @@
+/** The ways to reach a subscriber, in their order: a test of each, when it was last reached, its quiet hours, its place. */
+import { problemWords } from '../form-fields.ts';
+import { html, type Html, type Piece } from '../html.ts';
+import { textIn } from '../forms/wishes.ts';
+import type { ChannelView, ManageView } from './view.ts';
+import { channelTitle, outcomeWords, reachedWords } from './words.ts';
+
+const TEST_TOLD_MS = 24 * 3_600_000;
+
+export function hidden(name: string, value: string): Html {
+  return html`<input type="hidden" name="${name}" value="${value}">`;
+}
+
+/** One button with what it is about. */
+export function act(view: Pick<ManageView, 'path'>, action: string, label: string, more: { readonly channel?: string; readonly fields?: Piece; readonly about?: string } = {}): Html {
+  const at = more.channel === undefined ? '' : `#${more.channel}`;
+  return html`<form class="act" method="post" action="${view.path}${at}">${hidden('action', action)}${more.channel === undefined ? null : hidden('channel', more.channel)}${more.fields ?? null}<button type="submit"${more.about === undefined ? null : html` aria-label="${label}: ${more.about}"`}>${label}</button></form>`;
+}
+
+export function minuteClock(minute: number): string {
+  const two = (value: number): string => String(value).padStart(2, '0');
+  return `${two(Math.floor(minute / 60))}:${two(minute % 60)}`;
+}
+
+function quietForm(channel: ChannelView, view: ManageView): Html {
+  const refused = view.refused?.action === 'quiet' && view.refused.form.get('channel') === channel.id ? view.refused : null;
+  const [from, to] = refused !== null ? [textIn(refused.form, 'from'), textIn(refused.form, 'to')]
+    : channel.quietFrom === null || channel.quietTo === null ? ['', ''] : [minuteClock(channel.quietFrom), minuteClock(channel.quietTo)];
+  const wrong = `${channel.id}-quiet-wrong`;
+  const said = refused === null ? null : html` aria-describedby="${wrong}" aria-invalid="true"`;
+  const fields = html`<label>Quiet from <input type="time" name="from" value="${from}"${said}></label><label>to <input type="time" name="to" value="${to}"${said}></label>`;
+  return html`${act(view, 'quiet', 'Keep quiet then', { channel: channel.id, fields, about: channel.to })}${refused === null ? null : html`<p class="wrong" id="${wrong}">${problemWords(refused.problems)}</p>`}`;
+}
+
+function lastTest(channel: ChannelView, { deliveries, kept, nowMs }: ManageView): Piece {
+  const test = deliveries.find(({ kind, channelId, createdAtMs }) => kind === 'test' && channelId === channel.id && createdAtMs > nowMs - TEST_TOLD_MS);
+  if (test === undefined) return null;
+  const isOpen = test.state === 'pending' || (test.state === 'sent' && channel.kind === 'push' && test.shownAtMs === null);
+  return html`<p class="outcome"${isOpen ? html` data-open="1"` : null}>Last test: ${outcomeWords(test, channel.kind === 'push', kept.deliver.timeZone)}.</p>`;
+}
+
+function entry(channel: ChannelView, nth: number, view: ManageView): Html {
+  const live = view.channels.filter(({ state }) => state !== 'dead').length;
+  const about = `${channelTitle(channel)} ${channel.to}`;
+  const isDead = channel.state === 'dead';
+  return html`<li class="way" id="${channel.id}"><h3>${nth + 1}. ${channelTitle(channel)}, ${channel.to}</h3>
+<div data-live="reached-${nth}"><p>${reachedWords(channel, { timeZone: view.kept.deliver.timeZone, nowMs: view.nowMs })}</p>${lastTest(channel, view)}</div>
+<div class="acts">${isDead ? null : act(view, 'test', 'Send a test', { channel: channel.id, about })}${nth === 0 ? null : act(view, 'raise', 'Try this way earlier', { channel: channel.id, about })}${isDead || live > 1 ? act(view, 'remove', 'Take it away', { channel: channel.id, about }) : null}</div>
+${isDead ? null : quietForm(channel, view)}</li>`;
+}
+
+/** Shown by the script of the page where this browser can be told; without scripts nothing is offered that would not work. */
+function addBrowser(view: ManageView): Piece {
+  if (view.pushKey === null || view.channels.length >= 4) return null;
+  return html`<form class="act" method="post" action="${view.path}" data-browser="${view.pushKey}" hidden>${hidden('action', 'add-browser')}${hidden('endpoint', '')}${hidden('p256dh', '')}${hidden('auth', '')}<button type="button">Tell this browser too</button><p class="hint" role="status"></p></form>`;
+}
+
+export function channelsPart(view: ManageView): Html {
+  const refused = view.refused !== null && ['test', 'add-browser', 'remove', 'raise'].includes(view.refused.action) ? view.refused : null;
+  return html`${refused === null ? null : html`<p class="wrong">${problemWords(refused.problems)}</p>`}
+<p class="hint">A message goes the first way; the next is taken when that has ended. A test goes now, and counts as shown only when the browser says so. Quiet hours hold a message back until they end, unless it is of no use by then; empty both to have none.</p>
+<ol class="ways">${view.channels.map((channel, nth) => entry(channel, nth, view))}</ol>${addBrowser(view)}`;
+}
