@@ -27,7 +27,9 @@ export function webhookUrl(text: string, rules: WebhookRules): { readonly url: s
   if (host.startsWith('[') || /^[\d.]+$/.test(host)) return { problem: 'an IP address instead of a name' };
   if (!host.includes('.')) return { problem: 'a name without a domain' };
   if (NOT_PUBLIC.some((suffix) => host === suffix || host.endsWith(`.${suffix}`))) return { problem: 'a name that is not public' };
-  if (host === rules.ownHost || host.endsWith(`.${rules.ownHost}`)) return { problem: 'an address of this service itself' };
+  // Every name that the platform gives to an account ends in the account's own.
+  const own = /[^.]+\.workers\.dev$/.exec(rules.ownHost)?.[0] ?? rules.ownHost;
+  if (host === own || host.endsWith(`.${own}`)) return { problem: 'an address of this service itself' };
   url.hostname = host;
   return { url: url.href };
 }

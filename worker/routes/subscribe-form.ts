@@ -57,7 +57,7 @@ export async function subscribeForm(services: DeskServices, form: FormData, requ
 
 async function send(services: DeskServices, form: FormData, request: Request, show: (step: Step, problems: readonly Issue[], status: number) => Response): Promise<Response> {
   if ((await overRate(services, request)) > 0) return shown(page('Too many subscriptions today', 'Please try again tomorrow.'), 429);
-  const response = await subscribe(services, requestOf(form), c.req.raw);
+  const response = await subscribe(services, requestOf(form), request);
   const answer = (await response.json()) as { readonly problems?: readonly Issue[]; readonly detail?: string; readonly links?: { readonly manage: string } };
   if (response.status === 202) return seeOther(answer.links === undefined ? '/subscribe/sent' : `${new URL(answer.links.manage).pathname}?said=welcome`);
   const problems = answer.problems ?? [{ path: '$', value: '', problem: answer.detail ?? 'this service takes no subscriptions at the moment', allowed: 'another try later' }];

@@ -1,9 +1,9 @@
 import { Hono } from 'hono/tiny';
 import type { SubscriptionRequest } from '../../lib/config/subscription.ts';
-import type { Issue } from '../../lib/result.ts';
 import { HOUR_MS } from '../../lib/time.ts';
 import { secretLinks } from '../security/letter.ts';
 import { callerKey, ownerOf } from '../security/owner.ts';
+import { channelProblems } from '../security/channel-limits.ts';
 import { channelRows } from '../security/confirm.ts';
 import { preferenceRows, readSubscription } from '../security/subscribe.ts';
 import type { DeskServices } from '../service-set.ts';
@@ -15,8 +15,6 @@ import { confirmPush } from './push.ts';
 /** POST /api/v1/subscriptions: no account, and no answer from which somebody could learn who subscribes. */
 const MAX_BODY_BYTES = 8 * 1024;
 const SIGNUPS = { most: 100, withinMs: 24 * HOUR_MS };
-/** Receivers at one host that have not answered yet. */
-const MOST_UNVERIFIED = 3;
 
 /** Said of every address, whatever it is to us. */
 const ACCEPTED = {
@@ -30,7 +28,7 @@ export function subscriptions(services: DeskServices): Hono {
     const waitS = await overRate(services, c.req.raw);
     if (waitS > 0) return problem('too-many', { detail: `${SIGNUPS.most} subscriptions a day are taken from one network`, headers: { 'retry-after': String(waitS) } });
     const body = await jsonBody(c.req.raw, MAX_BODY_BYTES);
-    return body.ok ? subscribe(services, body.value) : body.error;
+    return body.ok ? subscribe(services, body.value, c.req.raw) : body.error;
   });
   app.post('/confirm-push', (c) => confirmPush(services, c.req.raw));
   return app;
@@ -41,19 +39,18 @@ export async function overRate({ settings, stores, clock }: DeskServices, reques
   return stores.rate.take(`signup ${await callerKey(settings.linkKey, request)}`, SIGNUPS, clock.nowMs());
 }
 
-export async function subscribe(services: DeskServices, value: unknown): Promise<Response> {
-  const { stores, clock, settings, mailer } = services;
+export async function subscribe(services: DeskServices, value: unknown, caller: Request): Promise<Response> {
+  const { stores, clock, settings } = services;
   const { linkKey } = settings;
   if (linkKey === null) return problem('unusable', { detail: 'this service has no LINK_KEY and takes no subscriptions' });
   const request = await readSubscription(services, value);
   if (!request.ok) return problem('bad-input', { problems: request.error });
-  const problems = await channelProblems(services, request.value);
+  const problems = await channelProblems(services, request.value, caller);
   if (problems.length > 0) return problem('bad-input', { problems });
   const id = newToken().replaceAll(/[^A-Za-z0-9]/g, 'x').slice(0, 24);
   const mail = request.value.channels.find(({ kind }) => kind === 'mail');
   const said = { request: shown(request.value) };
   if (mail !== undefined) {
-    if (mailer === null) return problem('bad-input', { problems: [{ path: '$.channels', value: 'mail', problem: 'this service sends no mail', allowed: '"webhook" or "push"' }] });
     const { address } = JSON.parse(mail.target) as { readonly address: string };
     await stores.signup.add({ owner: await ownerOf(linkKey, address), id, address, body: JSON.stringify(request.value) }, clock.nowMs());
     await services.wake('deliver', 1);
@@ -77,20 +74,4 @@ export async function subscribe(services: DeskServices, value: unknown): Promise
 /** What was understood, so that a slip can be seen: an address in its one spelling, the days and the hour. */
 function shown({ channels, wing, ...rest }: SubscriptionRequest): unknown {
   return { ...rest, wing, channels: channels.map(({ kind, target, quiet }) => ({ kind, quiet, ...(JSON.parse(target) as object), p256dh: undefined, auth: undefined, host: undefined })) };
-}
-
-async function channelProblems({ stores, settings, addresses }: DeskServices, { channels }: SubscriptionRequest): Promise<Issue[]> {
-  const problems: Issue[] = [];
-  for (const [index, { kind, target }] of channels.entries()) {
-    const path = `$.channels[${index}]`;
-    if (kind === 'push') {
-      if (settings.vapid === null) problems.push({ path: `${path}.kind`, value: '"push"', problem: 'this service sends no push', allowed: '"mail" or "webhook"' });
-      if (!(await addresses.hasKeys(target))) problems.push({ path: `${path}.keys`, value: 'not shown', problem: 'these are no keys of a browser', allowed: 'p256dh: a point of P-256, auth: 16 bytes, in base64url' });
-    }
-    if (kind === 'webhook' && !settings.local) {
-      const { host } = JSON.parse(target) as { readonly host: string };
-      if ((await stores.channel.unverifiedAt(host)) >= MOST_UNVERIFIED) problems.push({ path: `${path}.url`, value: JSON.stringify(host), problem: `${MOST_UNVERIFIED} receivers at this host have not answered their challenge yet`, allowed: 'a host whose receivers answer' });
-    }
-  }
-  return problems;
 }

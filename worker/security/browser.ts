@@ -53,16 +53,20 @@ export async function confirmBrowser({ stores, clock }: Pick<DeskServices, 'stor
 /** What became of a renewal: the state of the channel, or null where nobody is told by that browser. */
 export async function renewBrowser(services: DeskServices, renewal: Renewal): Promise<Result<'active' | 'unverified' | null, Issue[]>> {
   const { stores, clock, addresses } = services;
-  const [fresh, old] = [renewal.fresh, renewal.old ?? null].map((given) => (given === null ? null : addresses.push({ endpoint: given.endpoint, ...given.keys })));
-  const problems = [['fresh', fresh] as const, ['old', old] as const].flatMap(([name, read]) => (read != null && 'problem' in read
-    ? [issue([name], 'not shown', { problem: read.problem, allowed: 'a subscription as the browser gave it' })] : []));
-  if (fresh == null || 'problem' in fresh || (old != null && 'problem' in old)) return failure(problems);
-  if (!(await addresses.hasKeys(fresh.is))) return failure([issue(['fresh', 'keys'], 'not shown', { problem: 'these are no keys of a browser', allowed: 'p256dh: a point of P-256, auth: 16 bytes, in base64url' })]);
-  const told = await channelsOf(services, renewal.token ?? null, old?.is ?? null);
+  const read = (name: 'fresh' | 'old'): { readonly is: string | null } | { readonly problem: Issue } => {
+    const given = renewal[name] ?? null;
+    const checked = given === null ? { is: null } : addresses.push({ endpoint: given.endpoint, ...given.keys });
+    return 'is' in checked ? checked : { problem: issue([name], 'not shown', { problem: checked.problem, allowed: 'a subscription as the browser gave it' }) };
+  };
+  const [fresh, old] = [read('fresh'), read('old')];
+  if ('problem' in fresh || 'problem' in old || fresh.is === null) return failure([fresh, old].flatMap((one) => ('problem' in one ? [one.problem] : [])));
+  const { is: target } = fresh;
+  if (!(await addresses.hasKeys(target))) return failure([issue(['fresh', 'keys'], 'not shown', { problem: 'these are no keys of a browser', allowed: 'p256dh: a point of P-256, auth: 16 bytes, in base64url' })]);
+  const told = await channelsOf(services, renewal.token ?? null, old.is);
   const nowMs = clock.nowMs();
-  const moved = told.filter(({ target, state }) => target !== fresh.is || state === 'dead');
+  const moved = told.filter((channel) => channel.target !== target || channel.state === 'dead');
   await stores.db.together([
-    ...moved.flatMap(({ id }) => [stores.token.drop(id), stores.channel.moveTo(id, fresh.is, nowMs)]),
+    ...moved.flatMap(({ id }) => [stores.token.drop(id), stores.channel.moveTo(id, target, nowMs)]),
     ...told.filter((channel) => !moved.includes(channel)).map(({ id }) => stores.channel.askAt(id, nowMs)),
   ]);
   if (told.length === 0) return success(null);

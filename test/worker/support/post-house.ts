@@ -3,6 +3,7 @@ import { applyD1Migrations, reset } from 'cloudflare:test';
 import { env } from 'cloudflare:workers';
 import type { Hono } from 'hono';
 import type { SendOutcome } from '../../../worker/channels/channel.ts';
+import { addressesOf } from '../../../worker/channels/addresses.ts';
 import { pushChannel } from '../../../worker/channels/push/push.ts';
 import { storedQuarrels } from '../../../worker/channels/push/quarrels.ts';
 import { vapid } from '../../../worker/channels/push/vapid.ts';
@@ -19,6 +20,7 @@ export class PostHouse extends House {
   letters: Letter[] = [];
   mailOutcome: (letter: Letter) => SendOutcome = () => ({ state: 'sent' });
   isLocal = true;
+  publicUrl = 'http://127.0.0.1:8787';
   operatorHash: string | null = null;
   vapid: { readonly publicKey: string; readonly privateKey: string } | null = null;
   pushes: { readonly url: string; readonly body: Uint8Array; readonly headers: Headers }[] = [];
@@ -41,7 +43,7 @@ export class PostHouse extends House {
         return Promise.resolve(outcome);
       },
     };
-    const settings = { ...services.settings, local: this.isLocal, vapid: this.vapid, mailFrom: 'brief@dawnmargin.example.org', operatorTokenSha256: this.operatorHash };
+    const settings = { ...services.settings, local: this.isLocal, publicUrl: this.publicUrl, vapid: this.vapid, mailFrom: 'brief@dawnmargin.example.org', operatorTokenSha256: this.operatorHash };
     const push = pushChannel({
       fetch: (url, init) => {
         this.pushes.push({ url, body: init.body as Uint8Array, headers: new Headers(init.headers) });
@@ -49,7 +51,7 @@ export class PostHouse extends House {
       },
       authorize: this.vapid === null ? null : vapid(this.vapid, 'mailto:ops@example.org'), local: this.isLocal, publicUrl: settings.publicUrl, quarrels: storedQuarrels(services.stores),
     });
-    return { ...services, settings, mailer, channels: { ...services.channels, push, mail: mailChannel({ mailer, linkKey: LINK_KEY, publicUrl: settings.publicUrl, mailFrom: settings.mailFrom }) } };
+    return { ...services, settings, mailer, addresses: addressesOf(settings), channels: { ...services.channels, push, mail: mailChannel({ mailer, linkKey: LINK_KEY, publicUrl: settings.publicUrl, mailFrom: settings.mailFrom }) } };
   }
 
   hono(): Hono {
