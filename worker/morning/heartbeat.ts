@@ -14,7 +14,7 @@ export function imbalances(books: Books, faults: { readonly judge: string; reado
     ...said(books.overdue, 'messages are open after their time'),
     ...said(books.unaccounted, 'messages ended without a reason'),
     ...(faults.judge === '' ? [] : [`the judge failed its self-test: ${faults.judge}`]),
-    ...(faults.clock === '' ? [] : [`the rules of time differ for ${faults.clock}: hours there may be wrong, trust UTC`]),
+    ...(faults.clock === '' ? [] : [`the rules of time differ for ${faults.clock}: every time is said in UTC`]),
   ];
 }
 

@@ -17,9 +17,9 @@ export const KNOWN: readonly (readonly [utc: string, timeZone: string, local: st
   ['2026-07-15T03:00:00Z', 'America/Sao_Paulo', '2026-07-15 00:00'],
 ];
 
-/** The zones that this runtime reads differently. */
+/** The zones that this runtime reads differently, each once. While there is one, no zone is trusted: `../words/clock.ts`. */
 export function clockFaults(known: typeof KNOWN = KNOWN): string[] {
-  return known.flatMap(([utc, timeZone, local]) => {
+  const faults = known.flatMap(([utc, timeZone, local]) => {
     try {
       const at = Date.parse(utc);
       return `${localDate(at, timeZone)} ${localClock(at, timeZone)}` === local ? [] : [timeZone];
@@ -27,4 +27,5 @@ export function clockFaults(known: typeof KNOWN = KNOWN): string[] {
       return [timeZone];
     }
   });
+  return [...new Set(faults)];
 }

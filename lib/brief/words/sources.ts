@@ -1,7 +1,7 @@
 /** Forecast sources by name, their votes with ages, and whom to thank. */
 import type { JudgedDay, SourceVote } from '../day.ts';
 import type { Verdict } from '../../margin/ids.ts';
-import { momentName } from './clock.ts';
+import { clockNote, momentName } from './clock.ts';
 import { counted, listed, plainText, sentence } from './plain.ts';
 import { restrictiveness } from './verdicts.ts';
 
@@ -75,10 +75,12 @@ export function voteSentence(vote: SourceVote, day: Pick<JudgedDay, 'timeZone' |
 export function provenance(day: Pick<JudgedDay, 'sources' | 'issuedAt' | 'timeZone' | 'localDate'>): string {
   const voted = day.sources.filter((source) => source.state === 'voted');
   const silent = day.sources.filter((source) => source.state === 'no vote');
+  const note = clockNote();
   const parts = [
     ...(silent.length === 0 ? [] : [`without a vote: ${votesPhrase(silent)}`]),
     voted.length === 0 ? 'no source voted' : `from ${votesPhrase(voted)}`,
     `computed ${momentName(day.issuedAt, day)}`,
+    ...(note === null ? [] : [note]),
   ];
   return sentence(parts.join('; '));
 }

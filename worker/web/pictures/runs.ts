@@ -34,10 +34,10 @@ export function hourLinks(day: JudgedDay, options: { readonly chosen: string; re
     const name = hourName(hour.validAt, day.timeZone);
     const label = `${name}, ${verdictPhrase(hour.verdict)}`;
     const current = hour.validAt === options.chosen ? html` aria-current="true"` : null;
-    return html`<li><a href="${options.href(hour)}" aria-label="${label}"${current}>${name.replace(/ h$/, '')}</a></li>`;
+    return html`<li><a href="${options.href(hour)}" aria-label="${label}"${current}>${name.replace(/ h( UTC)?$/, '')}</a></li>`;
   })}</ol>`;
 }
 
 export function hourScale(day: JudgedDay): Html {
-  return html`<ol class="hours" aria-hidden="true">${day.hours.map((hour) => html`<li>${hourName(hour.validAt, day.timeZone).replace(/ h$/, '')}</li>`)}</ol>`;
+  return html`<ol class="hours" aria-hidden="true">${day.hours.map((hour) => html`<li>${hourName(hour.validAt, day.timeZone).replace(/ h( UTC)?$/, '')}</li>`)}</ol>`;
 }
