@@ -71,7 +71,7 @@ export function deskServices(world: World): DeskServices {
     shippedSheets: ownData.sheets,
     thresholds: ownData.thresholds,
     wake: waker(world.queues, patienceMs),
-    sourceNames: ({ site, demo }) => (demo ? ownData.demo().sources : withCompanions(sourcesFor(ownData.sources(), site))),
+    sourceNames: ({ site, demo }) => (demo && !settings.rehearsal ? ownData.demo().sources : withCompanions(sourcesFor(ownData.sources(), site))),
     judge: judgeDay,
     mailer,
     addresses: addressesOf(settings),

@@ -28,12 +28,12 @@ export function assemble(world: World, instead: Partial<Pick<Services, 'sourcesF
   };
 }
 
-/** Invented weather for the places of the demo, and for nobody else. */
+/** Invented weather for the places of the demo, and for nobody else; in a rehearsal they are asked of stand-ins of the real services. */
 function sourcesOf({ settings, fetch, clock }: World, stores: Stores): Services['sourcesFor'] {
   const live = liveSources(ownData.sources(), settings, {
     fetch, now: clock.nowMs, local: settings.local, cache: stores.sourceCache, breakers: stores.breaker,
     report: ({ source, notice }) => console.warn(`${source}: ${notice}`),
   });
   const demo = demoSources(ownData.demo(), clock.nowMs);
-  return (place) => (place.demo ? demo : live(place.site));
+  return (place) => (place.demo && !settings.rehearsal ? demo : live(place.site));
 }

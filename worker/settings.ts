@@ -15,6 +15,8 @@ export interface Env {
   readonly DELIVER_QUEUE: Queue<Job>;
   readonly PUBLIC_URL?: string;
   readonly LOCAL?: string;
+  /** With LOCAL=1: the services are stand-ins on this machine, so that what they say is invented. */
+  readonly REHEARSAL?: string;
   /** Guards /local/*; made anew by each start of the local command. */
   readonly LOCAL_TOKEN?: string;
   readonly OPEN_METEO_URL?: string;
@@ -38,6 +40,8 @@ export interface Settings {
   /** Origin under which people reach this service. */
   readonly publicUrl: string;
   readonly local: boolean;
+  /** The places of the demo are asked of services that are stand-ins. */
+  readonly rehearsal: boolean;
   readonly localToken: string | null;
   readonly openMeteoUrl: string;
   readonly openMeteoEnsembleUrl: string;
@@ -68,6 +72,8 @@ export function readSettings(env: Partial<Record<keyof Env, unknown>>): Result<S
   };
   const local = text('LOCAL') === '1';
   if (text('LOCAL') !== null && !local) wrong('LOCAL', 'a text', 'LOCAL is a switch', '1, or left out');
+  const rehearsal = text('REHEARSAL') === '1';
+  if (text('REHEARSAL') !== null && !(rehearsal && local)) wrong('REHEARSAL', 'a text', 'REHEARSAL is a switch for this machine alone', '1 together with LOCAL=1, or left out');
 
   const origin = (name: keyof Env, fallback: string): string => {
     const value = text(name);
@@ -106,6 +112,7 @@ export function readSettings(env: Partial<Record<keyof Env, unknown>>): Result<S
   const settings: Settings = {
     publicUrl: origin('PUBLIC_URL', 'http://127.0.0.1:8787'),
     local,
+    rehearsal,
     localToken: secret('LOCAL_TOKEN', /^[A-Za-z0-9_-]{32,}$/, '32 or more characters of base64url'),
     openMeteoUrl: origin('OPEN_METEO_URL', 'https://api.open-meteo.com'),
     openMeteoEnsembleUrl: origin('OPEN_METEO_ENSEMBLE_URL', 'https://ensemble-api.open-meteo.com'),

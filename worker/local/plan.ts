@@ -1,4 +1,5 @@
 import { existsSync, readFileSync } from 'node:fs';
+import path from 'node:path';
 import { parseJsonStrict } from '../../lib/config/json.ts';
 import { publishedPairs } from '../../lib/config/published.ts';
 import { parseSheet } from '../../lib/config/sheet.ts';
@@ -11,6 +12,7 @@ import type { Seed, SeedSubscription } from '../routes/seed.ts';
 import type { Pair } from '../store/published.ts';
 import type { StartOptions } from './arguments.ts';
 import { byId, type OwnConfig } from './own-config.ts';
+import { root } from './wrangler.ts';
 
 /** What a run is about, worked out before anything is started or stored. */
 export interface Plan {
@@ -19,6 +21,9 @@ export interface Plan {
   readonly pairs: readonly Pair[];
   readonly seed: Seed;
 }
+
+/** A place for each of the services. */
+const REHEARSAL_SITES = path.join(root, 'config/rehearsal.json');
 
 const BOUNDS = { maxBytes: 16 * 1024 * 1024, maxDepth: 12 };
 
@@ -50,13 +55,13 @@ export function planRun(options: StartOptions, own: OwnConfig, nowMs: number): R
       sheets: [...sheets].map(([id, body]) => ({ id, version: versions.get(id) ?? 1, body: JSON.stringify(body) })),
       wings: WING_CLASSES.map((key) => ({ key, name: key, body: JSON.stringify({ class: key }) })),
       published: sites.flatMap(pairsOf),
-      subscriptions: subscriptionsOf(own, pairs),
+      subscriptions: subscriptionsOf(own, pairs, options.rehearse),
     },
   });
 }
 
 /** Where nobody is enabled in config/subscribers.json, this terminal still is told. */
-function subscriptionsOf(own: OwnConfig, pairs: readonly Pair[]): SeedSubscription[] {
+function subscriptionsOf(own: OwnConfig, pairs: readonly Pair[], isRehearsal: boolean): SeedSubscription[] {
   const known = new Set(pairs.map((pair) => pair.siteId));
   return own.config.subscribers.map(({ id, timeZone, deliverMinute, sites, channels }) => {
     const ownPairs = pairs.filter((pair) => sites.includes(pair.siteId));
@@ -65,7 +70,8 @@ function subscriptionsOf(own: OwnConfig, pairs: readonly Pair[]): SeedSubscripti
     return {
       id, timeZone, deliverMinute,
       pairs: isForAll ? pairs : ownPairs,
-      channels: channels.map((channel, rank) => ({ id: `${id}-${rank}`, rank, kind: channel.kind, target: JSON.stringify(channel.kind === 'webhook' ? { url: channel.url } : {}) })),
+      // A rehearsal is nobody's business but this terminal's.
+      channels: channels.filter((channel) => !isRehearsal || channel.kind === 'terminal').map((channel, rank) => ({ id: `${id}-${rank}`, rank, kind: channel.kind, target: JSON.stringify(channel.kind === 'webhook' ? { url: channel.url } : {}) })),
     };
   });
 }
@@ -76,11 +82,12 @@ interface ChosenSites {
 }
 
 function chooseSites(options: StartOptions, own: OwnConfig, nowMs: number): Result<ChosenSites, Issue[]> {
-  if (options.sitesFile !== null) {
-    const json = readJsonFile(options.sitesFile, '--sites');
+  const file = options.sitesFile ?? (options.rehearse ? REHEARSAL_SITES : null);
+  if (file !== null) {
+    const json = readJsonFile(file, '--sites');
     if (!json.ok) return json;
     const sites = parseSites(json.value, { nowMs });
-    if (!sites.ok) return failure(sites.error.map((issue) => ({ ...issue, path: `${options.sitesFile}: ${issue.path}` })));
+    if (!sites.ok) return failure(sites.error.map((issue) => ({ ...issue, path: `${file}: ${issue.path}` })));
     return success({ sites: sites.value, features: byId((json.value as { readonly features: readonly unknown[] }).features) });
   }
   const invented = new Set(own.config.demo.sites.map(({ site }) => site));

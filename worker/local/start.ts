@@ -7,6 +7,7 @@ import { runMorning } from './morning.ts';
 import { readOwnConfig } from './own-config.ts';
 import { planRun } from './plan.ts';
 import { isFree, readPort } from './port.ts';
+import { REHEARSAL_NOTICE, startStandIns, type StandIns } from './rehearsal.ts';
 import { isJudged, issueLines, morningText } from './report.ts';
 import { keepServing } from './serve.ts';
 import { closeState, openState } from './state.ts';
@@ -29,26 +30,30 @@ async function main(): Promise<number> {
   if (!own.ok) throw new Refusal(issueLines(own.error));
   const plan = planRun(options, own.value, nowMs);
   if (!plan.ok) throw new Refusal(issueLines(plan.error));
-  const given = Object.fromEntries(SETTINGS.flatMap((name) => { const value = process.env[name]; return value === undefined || value === '' ? [] : [[name, value]]; }));
+  const given = options.rehearse ? {} : Object.fromEntries(SETTINGS.flatMap((name) => { const value = process.env[name]; return value === undefined || value === '' ? [] : [[name, value]]; }));
   const settings = readSettings({ ...given, LOCAL: '1' });
   if (!settings.ok) throw new Refusal(issueLines(settings.error));
   if (!(await isFree(port))) throw new Refusal(`  port ${port} of 127.0.0.1 is taken: stop what is using it, or set PORT to another`);
   const kind = options.live ? 'live' : 'demo';
-  const state = openState(path.resolve(process.env['STATE_DIR'] || `.data/${kind}`), kind);
+  const folder = options.rehearse ? 'rehearsal' : kind;
+  const state = openState(path.resolve(process.env['STATE_DIR'] || `.data/${folder}`), kind);
   if ('problem' in state) throw new Refusal(`  ${state.problem}`);
 
   const origin = `http://127.0.0.1:${port}`;
   const localToken = randomBytes(32).toString('base64url');
   let worker: Running | null = null;
+  let standIns: StandIns | null = null;
   const shutDown = async (): Promise<void> => {
     if (worker !== null) await stop(worker);
+    standIns?.stop();
     closeState(state);
   };
   const ending = endOfUse();
   try {
     if (state.newOperatorToken !== null) console.log(`Operator token, shown this once: ${state.newOperatorToken}\n`);
     await migrate(state.folder);
-    worker = dev({ folder: state.folder, port, variables: { PUBLIC_URL: origin, ...given, ...state.secrets, LOCAL: '1', LOCAL_TOKEN: localToken } });
+    if (options.rehearse) standIns = await startStandIns();
+    worker = dev({ folder: state.folder, port, variables: { PUBLIC_URL: origin, ...given, ...standIns?.variables, ...state.secrets, LOCAL: '1', LOCAL_TOKEN: localToken } });
     const client = clientOf(origin, localToken);
     await ready(client, worker);
     await client.begin();
@@ -58,7 +63,9 @@ async function main(): Promise<number> {
     const begunMs = Date.now();
     const days = await Promise.race([runMorning(client, plan.value), ending.then(() => null)]);
     if (days === null) return 0;
+    if (options.rehearse) console.log(`${REHEARSAL_NOTICE}\n`);
     console.log(morningText(days));
+    if (options.rehearse) console.log(`${REHEARSAL_NOTICE}\n`);
     console.log(`This morning took ${((Date.now() - begunMs) / 1000).toFixed(1)} s.`);
     for (const message of await client.terminalAfter(lines.seen)) {
       lines.seen = message.line;
