@@ -35,3 +35,8 @@ function isSilent({ kind }: SourceFailure): boolean {
 function isForPeople({ kind }: SourceFailure): boolean {
   return kind === 'refused' || kind === 'redirected' || kind === 'content-type' || kind === 'unit' || kind === 'shape' || kind === 'ground' || kind === 'place';
 }
+
+/** A ground that jumped costs its source the vote until somebody has looked at it. */
+export function groundEntry({ siteId, source, byM }: { readonly siteId: string; readonly source: string; readonly byM: number }): LogEntry {
+  return { level: 'error', step: 'fetch', event: 'ground-moved', detail: { source, site: siteId, byM } };
+}

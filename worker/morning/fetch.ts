@@ -1,9 +1,10 @@
+import { MAX_GROUND_CHANGE_M } from '../../lib/forecast/place.ts';
 import { isoUtc } from '../../lib/time.ts';
 import { failure } from '../../lib/result.ts';
 import type { Place, Services } from '../service-set.ts';
 import type { Source, SourceAnswer } from '../sources/source.ts';
 import type { FetchRun } from '../store/run-work.ts';
-import { endedFetch, failureEntries } from './fetch-ended.ts';
+import { endedFetch, failureEntries, groundEntry } from './fetch-ended.ts';
 import { placesOf } from './places.ts';
 import { ASSESS_CHUNK, FETCH_CHUNK } from './sizes.ts';
 import { instantsAround, LEASE_MS } from './times.ts';
@@ -25,15 +26,17 @@ export async function fetchStep(services: Services): Promise<boolean> {
   const answers = await answersOf(services, asked.filter(({ run }) => runs.includes(run)));
   const nowMs = clock.nowMs();
   const given = [...answers].flatMap(([siteId, answer]) => (answer.ok ? [{ siteId, forecast: answer.value }] : []));
+  const grounds = given.flatMap(({ siteId, forecast }) => groundOf(forecast.members).map((groundM) => ({ siteId, source: forecast.source, groundM })));
   await stores.db.together([
     surplus,
     ...stores.forecast.put(given, nowMs),
-    stores.sourceGround.keepFirst(given.flatMap(({ siteId, forecast }) => groundOf(forecast.members).map((groundM) => ({ siteId, source: forecast.source, groundM }))), nowMs),
+    stores.sourceGround.keep(grounds, MAX_GROUND_CHANGE_M, nowMs),
     stores.runWork.finishFetches(runs.map((run) => endedFetch(run, answers.get(run.siteId), nowMs)), nowMs),
     ...behindOf(services, asked, answers).map((sources) => stores.runWork.putBehind(sources, nowMs)),
     stores.meta.setting('last-fetch', String(nowMs)),
   ]);
-  await stores.log.write(failureEntries(runs[0]?.source ?? '', answers), nowMs);
+  const moved = grounds.length === 0 ? [] : await stores.sourceGround.moved(grounds, MAX_GROUND_CHANGE_M);
+  await stores.log.write([...failureEntries(runs[0]?.source ?? '', answers), ...moved.map(groundEntry)], nowMs);
   const ready = await stores.run.ready(nowMs, ASSESS_CHUNK, runs.map((run) => run.siteId));
   await services.wake('assess', ready.assessJobs);
   if (ready.fetch > 0 || claimed.length > runs.length) await services.wake('fetch', 1);

@@ -31,10 +31,13 @@ export function siteStore(db: Database) {
       const sql = `SELECT ${COLUMNS} FROM site WHERE retired_at IS NULL AND id IN (SELECT value FROM json_each(?)) ORDER BY id`;
       return (await db.read<Row>(sql, JSON.stringify(ids))).map(stored);
     },
-    /** These are the sites from now on; others are retired, their briefs stay. */
+    /** These are the sites from now on; others are retired, their briefs stay. What was fetched for one that is another now is of another place. */
     replaceAll(sites: readonly Omit<StoredSite, 'storedAtMs'>[], nowMs: number): Statement[] {
       const list = JSON.stringify(sites.map((site) => ({ ...site, demo: site.demo ? 1 : 0 })));
+      const changed = `(SELECT s.id FROM site AS s JOIN json_each(?1) AS j ON j.value ->> 'id' = s.id WHERE s.feature <> j.value ->> 'feature')`;
       return [
+        { sql: `DELETE FROM source_ground WHERE site_id IN ${changed}`, values: [list] },
+        { sql: `UPDATE run SET outcome = NULL, finished_at = 0 WHERE step = 'fetch' AND state <> 'wanted' AND site_id IN ${changed}`, values: [list] },
         {
           sql: `INSERT INTO site (id, feature, demo, stored_at)
             SELECT value ->> 'id', value ->> 'feature', value ->> 'demo', ?2 FROM json_each(?1) WHERE true
