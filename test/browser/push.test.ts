@@ -1,43 +1,27 @@
 // Pushes delivered to the real service worker through the DevTools protocol: old, late, out of order, twice, unreadable.
-import type { Browser, BrowserContext, CDPSession, Page } from 'playwright-core';
+import type { Browser, BrowserContext, Page } from 'playwright-core';
 import { afterAll, beforeAll, beforeEach, afterEach, expect, test } from 'vitest';
+import { pages } from '../../worker/routes/pages.ts';
 import { dayOf } from '../support/days.ts';
-import { fixturePages, fixtureServices } from '../support/page-fixtures.ts';
+import { fixtureServices } from '../support/page-fixtures.ts';
 import { launch } from './support/chromium.ts';
+import { toldBrowser, type ToldBrowser } from './support/push.ts';
 import { serve, type Served } from './support/server.ts';
 
 let browser: Browser;
 let site: Served;
 let context: BrowserContext;
 let page: Page;
-let cdp: CDPSession;
-let registrationId: string;
+let push: ToldBrowser['deliver'];
+let settled: ToldBrowser['settled'];
 
 const at = (minutes: number) => new Date(Date.now() + minutes * 60_000).toISOString();
 const brief = (part: Record<string, unknown>) => ({ id: 'm1', kind: 'brief', title: 'Beyond a limit all day, Kestrel Edge', body: 'Beyond a limit all day.', url: `${site.origin}/sites/kestrel-edge`, issuedAt: at(-5), validUntil: at(600), thread: 't', ...part });
 
-interface Shown {
-  readonly title: string;
-  readonly body: string;
-  readonly tag: string;
-  readonly silent: boolean | null;
-}
-
-const shown = (): Promise<Shown[]> => page.evaluate(async () => {
-  const registration = await navigator.serviceWorker.ready;
-  return (await registration.getNotifications()).map(({ title, body, tag, silent }) => ({ title, body, tag, silent }));
-});
-
-async function push(data: unknown): Promise<void> {
-  await cdp.send('ServiceWorker.deliverPushMessage', { origin: `${site.origin}/`, registrationId, data: typeof data === 'string' ? data : JSON.stringify(data) });
-}
-
-const settled = (check: (list: Shown[]) => void) => expect.poll(async () => { try { check(await shown()); return 'as expected'; } catch (error) { return String(error); } }, { timeout: 20_000 }).toBe('as expected');
-
 beforeAll(async () => {
   const hours = dayOf('wwbb');
   const day = { ...hours, siteId: 'kestrel-edge', demo: false, issuedAt: at(-10), validUntil: at(600) };
-  [browser, site] = await Promise.all([launch(), serve(fixturePages(fixtureServices({ 'kestrel-edge': day }, new Date())))]);
+  [browser, site] = await Promise.all([launch(), serve(pages(fixtureServices({ 'kestrel-edge': day }, new Date())))]);
 });
 
 afterAll(async () => {
@@ -46,18 +30,7 @@ afterAll(async () => {
 });
 
 beforeEach(async () => {
-  context = await browser.newContext({ viewport: { width: 390, height: 844 } });
-  await context.grantPermissions(['notifications'], { origin: site.origin });
-  page = await context.newPage();
-  cdp = await context.newCDPSession(page);
-  const seen: string[] = [];
-  cdp.on('ServiceWorker.workerRegistrationUpdated', ({ registrations }) => seen.push(...registrations.map((registration) => registration.registrationId)));
-  await page.goto(`${site.origin}/sites/kestrel-edge`);
-  await cdp.send('ServiceWorker.enable');
-  // Until it is activated in full, the browser drops what is delivered to it.
-  await expect.poll(() => page.evaluate(async () => (await navigator.serviceWorker.ready).active?.state), { timeout: 20_000 }).toBe('activated');
-  await expect.poll(() => seen.length, { timeout: 20_000 }).toBeGreaterThan(0);
-  registrationId = seen[0] ?? '';
+  ({ context, page, deliver: push, settled } = await toldBrowser(browser, `${site.origin}/sites/kestrel-edge`));
 });
 
 afterEach(() => context.close());

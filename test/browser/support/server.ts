@@ -12,7 +12,11 @@ export interface Served {
   close(): Promise<void>;
 }
 
-export async function serve(app: Hono): Promise<Served> {
+/** Headers of a browser that pages go by. */
+const PASSED = ['content-type', 'accept', 'cookie', 'origin', 'authorization', 'sec-fetch-site', 'if-match'] as const;
+
+/** `after`: what is to happen once an answer was given. */
+export async function serve(app: Pick<Hono, 'request'>, { port = 0, after }: { readonly port?: number; readonly after?: () => Promise<void> } = {}): Promise<Served> {
   const server: Server = createServer((request, response) => {
     void (async () => {
       const url = new URL(request.url ?? '/', 'http://127.0.0.1');
@@ -24,13 +28,14 @@ export async function serve(app: Hono): Promise<Served> {
       const chunks: Buffer[] = [];
       for await (const chunk of request) chunks.push(chunk as Buffer);
       const body = chunks.length === 0 ? null : new Uint8Array(Buffer.concat(chunks));
-      const headers = { 'content-type': request.headers['content-type'] ?? '', accept: request.headers.accept ?? '' };
+      const headers = Object.fromEntries(PASSED.flatMap((name) => { const value = request.headers[name]; return typeof value === 'string' ? [[name, value]] : []; }));
       const answer = await app.request(url.pathname + url.search, { method: request.method ?? 'GET', headers, body });
       response.writeHead(answer.status, Object.fromEntries(answer.headers)).end(await answer.text());
+      await after?.();
     })();
   });
-  await new Promise<void>((resolve) => server.listen(0, '127.0.0.1', resolve));
+  await new Promise<void>((resolve) => server.listen(port, '127.0.0.1', resolve));
   const address = server.address();
   if (address === null || typeof address === 'string') throw new Error('the server has no port');
-  return { origin: `http://127.0.0.1:${address.port}`, close: () => new Promise((resolve) => server.close(() => resolve())) };
+  return { origin: `http://127.0.0.1:${address.port}`, close: () => new Promise((resolve) => { server.closeAllConnections(); server.close(() => resolve()); }) };
 }

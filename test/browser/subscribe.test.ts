@@ -1,0 +1,131 @@
+// Subscribing in the real browser: three steps with and without scripts, what was typed kept, and this browser itself told by
+// push, from the press of the button to the test that it showed. What goes to it is decrypted by http_ece on the way.
+import type { Browser, Page } from 'playwright-core';
+import { afterAll, beforeAll, expect, test } from 'vitest';
+import { launch, open } from './support/chromium.ts';
+import { startHouse, type DeskHouse } from './support/house.ts';
+import { expectInOrder, expectKeyboard, LOOKS, lookName } from './support/journey.ts';
+import { toldBrowser } from './support/push.ts';
+
+let browser: Browser;
+let house: DeskHouse;
+
+beforeAll(async () => {
+  [browser, house] = await Promise.all([launch(), startHouse({ sites: true })]);
+});
+
+afterAll(async () => {
+  await browser.close();
+  await house.close();
+});
+
+const on = (page: Page, name: string) => page.getByRole('button', { name, exact: true }).click();
+const step = (page: Page) => page.locator('.steps-line [aria-current]').innerText();
+
+test.each(LOOKS.map((look) => [lookName(look), look] as const))('by mail in three steps, at %s: nothing that was typed is lost, and the mail confirms what was looked over', async (name, look) => {
+  const address = `ana.${look.width}.${look.scripts}@example.org`;
+  const { page, complaints, close } = await open(browser, `${house.origin}/subscribe`, look);
+  await page.selectOption('#wing', 'EN A');
+  await page.fill('#mass', 'ninety');
+  await on(page, 'On: when, and how');
+  // Nothing is chosen and the mass is no number: both are said beside their fields, and stand as they were typed.
+  expect(await step(page)).toContain('Where');
+  expect(await page.locator('#sites-wrong').innerText()).toContain('Too few');
+  expect(await page.locator('#mass-wrong').innerText()).toMatch(/a text where a number is needed/i);
+  expect(await page.inputValue('#mass')).toBe('ninety');
+  expect(await page.inputValue('#wing')).toBe('EN A');
+  await expectInOrder(page, look);
+  await page.getByLabel('Wennet Meadow', { exact: true }).check();
+  await page.getByLabel('Limit sheet at Wennet Meadow').selectOption('first-hops');
+  await page.fill('#mass', '92,5');
+  await on(page, 'On: when, and how');
+  expect(await step(page)).toContain('When');
+  await page.fill('#zone', 'Europe/Nowhere');
+  await page.fill('#at', '05:45');
+  await page.getByLabel('Sunday').uncheck();
+  await page.selectOption('#speed', 'kt');
+  await on(page, 'On: look over');
+  expect(await page.locator('#zone-wrong').innerText()).not.toBe('');
+  expect(await page.locator('#address-wrong').innerText()).toContain('There is no way to reach you; allowed: a mail address');
+  expect(await page.inputValue('#zone')).toBe('Europe/Nowhere');
+  expect(await page.getByLabel('Sunday').isChecked()).toBe(false);
+  await page.fill('#zone', 'Europe/Vienna');
+  await page.fill('#address', address);
+  await expectInOrder(page, look);
+  // Back and forth: what the first step holds is still there.
+  await on(page, 'Back');
+  expect(await page.inputValue('#mass')).toBe('92,5');
+  expect(await page.getByLabel('Limit sheet at Wennet Meadow').inputValue()).toBe('first-hops');
+  await on(page, 'On: when, and how');
+  expect(await page.inputValue('#address')).toBe(address);
+  await on(page, 'On: look over');
+  expect(await page.locator('.gist').innerText()).toMatch(new RegExp(`^A brief for Wennet Meadow \\(First hops\\), on Monday, .* and Saturday at 5:45 in Europe/Vienna, for an EN A wing at 92.5 kg; speeds in kt, heights in m\\.\\s+By mail to ${address}\\.$`));
+  await on(page, 'Subscribe');
+  expect(new URL(page.url()).pathname).toBe('/subscribe/sent');
+  await expect.poll(() => house.letters.some(({ to }) => to === address)).toBe(true);
+  const link = /\/confirm\/\S+/.exec(house.letters.find(({ to }) => to === address)?.text ?? '')?.[0] ?? '';
+  await page.goto(house.origin + link);
+  await on(page, 'Confirm');
+  expect(new URL(page.url()).pathname).toMatch(/^\/manage\//);
+  const [kept] = house.ask<{ days: number; minute: number; unit: string; sheet: string }>(
+    `SELECT s.days, s.deliver_minute AS minute, s.speed_unit AS unit, p.sheet_id AS sheet FROM subscription AS s JOIN subscription_site AS p ON p.subscription_id = s.id
+      JOIN channel AS c ON c.subscription_id = s.id WHERE c.target ->> 'address' = ?`, address);
+  expect(kept).toEqual({ days: 63, minute: 345, unit: 'kt', sheet: 'first-hops' });
+  expect(complaints.filter((text) => !text.includes('400'))).toEqual([]);
+  await close();
+});
+
+test('the three steps by keyboard alone', async () => {
+  const { page, close } = await open(browser, `${house.origin}/subscribe`, { width: 1280 });
+  await expectKeyboard(page);
+  await page.getByLabel('Tivvern Strip', { exact: true }).focus();
+  await page.keyboard.press('Space');
+  // The return key goes on, never back.
+  await page.locator('#mass').focus();
+  await page.keyboard.press('Enter');
+  await expect.poll(() => step(page)).toContain('When');
+  await page.locator('#address').focus();
+  await page.keyboard.type('keys@example.org');
+  await page.keyboard.press('Enter');
+  await expect.poll(() => step(page)).toContain('Look over');
+  await close();
+});
+
+test('this browser is told: asked on a press, confirmed by the echo of its nonce, and a test counts as shown when it showed it', async () => {
+  const device = house.sink.newBrowser();
+  const before = house.sink.pushed.length;
+  const { page, context, deliver, settled } = await toldBrowser(browser, `${house.origin}/subscribe`, { address: device.target });
+  await page.getByLabel('Wennet Meadow', { exact: true }).check();
+  await on(page, 'On: when, and how');
+  expect(await page.inputValue('[name=endpoint]')).toBe('');
+  await on(page, 'Tell this browser');
+  await expect.poll(() => page.locator('.browser [role=status]').innerText()).toBe('This browser is chosen.');
+  await on(page, 'On: look over');
+  expect(await page.locator('.gist').innerText()).toContain('By this browser.');
+  await on(page, 'Subscribe');
+  expect(await page.locator('.said').innerText()).toContain('Keep the address of this page');
+  expect(await page.locator('.way').innerText()).toContain('has not confirmed yet');
+  // The nonce, as the push service got it.
+  await expect.poll(() => house.sink.pushed.length).toBe(before + 1);
+  const asked = house.sink.decrypt(house.sink.pushed[before]!) as { kind: string; nonce: string };
+  expect(asked).toMatchObject({ kind: 'confirm', nonce: expect.stringMatching(/^[\w-]{32}$/) as string });
+  await deliver({ ...asked, nonce: 'somebody-elses-nonce-0000000000000' });
+  await settled((list) => expect(list.map(({ title }) => title)).toEqual(['Not confirmed: this browser is not told']));
+  await deliver(asked);
+  await settled((list) => expect(list.map(({ title }) => title)).toEqual(['This browser is told from now on']));
+  // The page that stands open says so by itself.
+  await expect.poll(() => page.locator('.way').innerText()).not.toContain('has not confirmed yet');
+  expect(house.ask('SELECT state FROM channel WHERE target ->> \'endpoint\' = ?', device.target.endpoint)).toEqual([{ state: 'active' }]);
+  // A test: taken is not shown.
+  await page.getByRole('button', { name: /^Send a test/ }).click();
+  await expect.poll(() => house.sink.pushed.length).toBe(before + 2);
+  await page.reload();
+  expect(await page.locator('.outcome').innerText()).toMatch(/^Last test: accepted at \d+:\d\d, not shown so far\.$/);
+  const test = house.sink.decrypt(house.sink.pushed[before + 1]!) as { kind: string; title: string };
+  expect(test).toMatchObject({ kind: 'test', title: 'Test: cannot say anything about any day' });
+  await deliver(test);
+  await settled((list) => expect(list.map(({ title }) => title)).toContain(test.title));
+  await expect.poll(() => page.locator('.outcome').innerText()).toMatch(/^Last test: shown at \d+:\d\d\.$/);
+  await expect.poll(() => page.locator('#log table').innerText()).toMatch(/test\s+Browser, 127\.0\.0\.1:\d+\s+shown at/);
+  await context.close();
+});

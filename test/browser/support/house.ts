@@ -1,0 +1,26 @@
+// The house of test/support/desk-house.ts as a browser test knows it: what only the worker knows stays there.
+/// <reference path="../../support/http-ece.d.ts" />
+import type { PushSink } from '../../support/sinks/push-sink.ts';
+
+export const OPERATOR_TOKEN = 'an-operator-token-for-tests-only-0123456789';
+
+export interface DeskHouse {
+  readonly origin: string;
+  readonly sink: PushSink;
+  readonly letters: readonly { readonly to: string; readonly text: string }[];
+  /** Rows of a test's own question. */
+  ask<Row>(sql: string, ...values: (string | number | null)[]): Row[];
+  /** Does everything that somebody was woken for, until nobody is. */
+  settle(): Promise<void>;
+  close(): Promise<void>;
+}
+
+interface HouseModule {
+  startHouse(options: { readonly sites: boolean }): Promise<DeskHouse>;
+}
+
+/** `sites`: those of the demo; else a blank database, but for its tables. */
+export async function startHouse(options: { readonly sites: boolean }): Promise<DeskHouse> {
+  const house = (await import(new URL('../../support/desk-house.ts', import.meta.url).pathname)) as HouseModule;
+  return house.startHouse(options);
+}
