@@ -11,7 +11,7 @@ export interface Received {
 }
 
 /** What happens to a message: a status, or nothing at all, or the end of the connection after it was read. */
-export type Behaviour = number | 'silence' | 'reset' | { readonly status: number; readonly headers?: Record<string, string>; readonly afterMs?: number };
+export type Behaviour = number | 'silence' | 'reset' | { readonly status: number; readonly headers?: Record<string, string>; readonly body?: string; readonly afterMs?: number };
 
 export interface WebhookSink {
   readonly origin: string;
@@ -60,6 +60,6 @@ function answer(response: ServerResponse, as: Behaviour): void {
     response.destroy();
     return;
   }
-  const { status, headers = {}, afterMs = 0 } = typeof as === 'number' ? { status: as } : as;
-  setTimeout(() => response.writeHead(status, headers).end(), afterMs);
+  const { status, headers = {}, body = '', afterMs = 0 } = typeof as === 'number' ? { status: as } : as;
+  setTimeout(() => response.writeHead(status, headers).end(body), afterMs);
 }

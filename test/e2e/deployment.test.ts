@@ -1,6 +1,6 @@
-// As it is deployed: the worker of the morning and the worker of the desk, each built as wrangler builds it, bound to each
-// other in the local runtime. (On one machine both are one worker: every other test drives that.)
-import { createHash } from 'node:crypto';
+// The way of README, "Running it for real", walked from nothing to the first brief: the worker of the morning and the worker
+// of the desk, each built as wrangler builds it, bound to each other in the local runtime, tables made by the migrations,
+// secrets made as the deploy command makes them. (On one machine both are one worker: every other test drives that.)
 import { mkdtempSync, readdirSync, readFileSync, rmSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import path from 'node:path';
@@ -10,17 +10,23 @@ import { afterAll, beforeAll, expect, test } from 'vitest';
 import { isForDesk } from '../../worker/routes/desk-paths.ts';
 import { DESK_METHODS } from '../../worker/routes/desk.ts';
 import { FRONT_METHODS } from '../../worker/routes/front.ts';
+import { secretsIn } from '../../worker/local/state.ts';
 import { wrangler } from '../../worker/local/wrangler.ts';
+import { startForecastServer, type ForecastServer } from '../support/forecast-server/server.ts';
+import { startWebhookSink, type Behaviour, type WebhookSink } from '../support/sinks/webhook-sink.ts';
 import { root } from '../support/run-tool.ts';
 
 /** The most that a worker may weigh, kB of gzip. */
 const MOST_KB = 150;
 
-const TOKEN = 'an-operator-token-for-tests-only-01';
+const LOCAL_TOKEN = 'a-token-of-this-start-for-tests-only-01';
 
 const folder = mkdtempSync(path.join(tmpdir(), 'dawnmargin-two-'));
 let built: readonly string[];
 let runtime: Miniflare;
+let services: ForecastServer;
+let hook: WebhookSink;
+let token: string;
 let db: Awaited<ReturnType<Miniflare['getD1Database']>>;
 
 async function bundle(name: string, config: string): Promise<string> {
@@ -33,16 +39,25 @@ async function bundle(name: string, config: string): Promise<string> {
 
 beforeAll(async () => {
   built = [await bundle('morning', 'wrangler.toml'), await bundle('desk', 'worker/desk.toml')];
+  [services, hook] = [await startForecastServer(), await startWebhookSink()];
+  hook.behave(({ body }) => echo(body));
+  const { secrets, newOperatorToken } = secretsIn(folder);
+  token = newOperatorToken ?? '';
   const shared = {
     compatibilityDate: '2026-11-01',
     d1Databases: { DB: 'dawnmargin' },
     queueProducers: { FETCH_QUEUE: 'fetch', ASSESS_QUEUE: 'assess', DELIVER_QUEUE: 'deliver' },
-    bindings: { LINK_KEY: 'a-link-key-for-tests-only-0123456789', PUBLIC_URL: 'https://dawnmargin.example', OPERATOR_TOKEN_SHA256: createHash('sha256').update(TOKEN).digest('hex') },
+    // Loopback addresses are spoken to with LOCAL=1 only; a house in the open has PUBLIC_URL and CONTACT of its own.
+    bindings: {
+      ...secrets, PUBLIC_URL: 'https://dawnmargin.example', CONTACT: 'rehearsal@dawnmargin.example', LOCAL: '1', LOCAL_TOKEN, REHEARSAL: '1',
+      OPEN_METEO_URL: services.origin, OPEN_METEO_ENSEMBLE_URL: services.origin, MET_NORWAY_URL: services.origin, NWS_URL: services.origin,
+    },
   };
+  const consumer = { maxBatchSize: 1, maxBatchTimeout: 0 };
   const module = (contents: string | undefined) => [{ type: 'ESModule' as const, path: 'index.js', contents: contents ?? '' }];
   runtime = new Miniflare(convertV4MiniflareOptions({
     workers: [
-      { ...shared, name: 'dawnmargin', modules: module(built[0]), serviceBindings: { DESK: 'dawnmargin-desk' } },
+      { ...shared, name: 'dawnmargin', queueConsumers: { fetch: consumer, assess: consumer, deliver: consumer }, modules: module(built[0]), serviceBindings: { DESK: 'dawnmargin-desk' } },
       { ...shared, name: 'dawnmargin-desk', modules: module(built[1]) },
     ],
   }));
@@ -56,8 +71,15 @@ beforeAll(async () => {
 });
 afterAll(async () => {
   await runtime.dispose();
+  await Promise.all([services.close(), hook.close()]);
   rmSync(folder, { recursive: true, force: true });
 });
+
+/** What a receiver that wants to be told answers to its first message. */
+function echo(body: string): Behaviour {
+  const { data } = JSON.parse(body) as { data?: { challenge?: string } };
+  return data?.challenge === undefined ? 204 : { status: 200, body: JSON.stringify({ challenge: data.challenge }) };
+}
 
 const ask = (url: string, init: { method?: string; headers?: Record<string, string>; body?: string } = {}) => runtime.dispatchFetch(`https://dawnmargin.example${url}`, init);
 
@@ -93,12 +115,34 @@ test('a method that a path does not answer is told so by either', async () => {
   expect((await ask('/api/v1/assess')).headers.get('allow')).toBe('POST');
 });
 
+const json = { 'content-type': 'application/json' };
+
 test('launches that an operator enters at the desk are read from the worker of the morning', async () => {
-  const sites = readFileSync(path.join(root, 'config/sites.json'), 'utf8');
-  const bearer = { authorization: `Bearer ${TOKEN}` };
+  const sites = JSON.parse(readFileSync(path.join(root, 'config/rehearsal.json'), 'utf8')) as unknown;
+  const bearer = { authorization: `Bearer ${token}` };
   const etag = (await ask('/api/v1/operator/sites', { headers: bearer })).headers.get('etag') ?? '';
-  const entered = await ask('/api/v1/operator/sites', { method: 'PUT', headers: { ...bearer, 'content-type': 'application/geo+json', 'if-match': etag }, body: sites });
+  const entered = await ask('/api/v1/operator/sites', { method: 'PUT', headers: { ...bearer, 'content-type': 'application/geo+json', 'if-match': etag }, body: JSON.stringify(sites) });
   expect([entered.status, await entered.text()]).toEqual([200, expect.any(String)]);
-  const idsIn = (json: unknown): string[] => (json as { features: { id: string }[] }).features.map(({ id }) => id).sort();
-  expect(idsIn(await (await ask('/api/v1/sites')).json())).toEqual(idsIn(JSON.parse(sites)));
+  const idsIn = (collection: unknown): string[] => (collection as { features: { id: string }[] }).features.map(({ id }) => id).sort();
+  expect(idsIn(await (await ask('/api/v1/sites')).json())).toEqual(idsIn(sites));
+});
+
+test('a subscriber who echoes the challenge is sent the first brief, made of what the services gave', async () => {
+  const [site] = ((await (await ask('/api/v1/sites')).json()) as { features: { id: string }[] }).features;
+  const wish = { sites: [{ id: site?.id }], wing: { class: 'EN B' }, deliver: { at: '06:00', timeZone: 'Europe/Vienna' }, channels: [{ kind: 'webhook', url: `${hook.origin}/brief` }] };
+  const made = await ask('/api/v1/subscriptions', { method: 'POST', headers: json, body: JSON.stringify(wish) });
+  expect([made.status, await made.text()]).toEqual([202, expect.any(String)]);
+  const morning = await ask('/local/morning', { method: 'POST', headers: { authorization: `Bearer ${LOCAL_TOKEN}` } });
+  expect(morning.status).toBe(200);
+  await hook.has(2, 60_000);
+  const brief = hook.received.map(({ body }) => body).find((body) => !body.includes('challenge')) ?? '';
+  expect(brief).toContain(site?.id);
+  expect(brief).toMatch(/within limits|close to a limit|beyond a limit|cannot say/);
+  expect(brief).toContain('Computed from forecasts, not observed');
+  expect(brief).not.toMatch(/NaN|undefined|\[object/);
+});
+
+test('the books balance after it', async () => {
+  const { outbox } = (await (await ask('/healthz')).json()) as { outbox: Record<string, number> };
+  expect(outbox).toMatchObject({ pending: 0, dead: 0, expired: 0 });
 });
