@@ -56,10 +56,10 @@ export interface JudgedHour {
   readonly bySource: readonly { readonly source: string; readonly verdict: Verdict }[];
   readonly airspeed: AirspeedColumn | null;
   readonly speedToFlyMps: number | null;
-  /** Mean wind where the wing is launched, least and most over the sources with a vote, and each one's direction; null when none says. */
-  readonly wind: { readonly leastMps: number; readonly mostMps: number; readonly bySource: readonly { readonly source: string; readonly meanMps: number; readonly gustMps: number | null; readonly fromDeg: number | null }[] } | null;
-  /** What the ensemble's members say: the margins they agree about, median and adverse decile of each spare. */
-  readonly ensemble: { readonly about: readonly MarginId[]; readonly spreads: readonly MemberSpread[] } | null;
+  /** Mean wind where the wing is launched, least and most over the sources with a vote, each one's direction, and whether its hour is interpolated; null when none says. */
+  readonly wind: { readonly leastMps: number; readonly mostMps: number; readonly bySource: readonly { readonly source: string; readonly meanMps: number; readonly gustMps: number | null; readonly fromDeg: number | null; readonly interpolated?: true }[] } | null;
+  /** What the ensemble's members say: the margins they agree about, median and adverse decile of each spare; `between` where the hour is interpolated between the ensemble's own steps. */
+  readonly ensemble: { readonly about: readonly MarginId[]; readonly spreads: readonly MemberSpread[]; readonly between?: { readonly stepHours: number } } | null;
   /** Strips: the recommended heading (direction of tow) and why. */
   readonly heading: { readonly headingDeg: number; readonly reason: HeadingReason; readonly releaseM: number | null; readonly lineDriftM: number | null } | null;
 }
@@ -102,4 +102,6 @@ export interface SourceVote {
   readonly members: number;
   readonly declares: readonly ConditionField[];
   readonly gridElevationM: number | null;
+  /** How far apart the model's own steps are, where that is more than an hour. */
+  readonly stepHours?: number;
 }

@@ -1,3 +1,5 @@
+import type { Forecast } from '../forecast/conditions.ts';
+import { isInterpolated } from '../forecast/steps.ts';
 import { adviceMps, flightTimeS } from '../margin/advice.ts';
 import { ensembleHour } from '../margin/agreement.ts';
 import type { HourView } from '../margin/hour-view.ts';
@@ -63,7 +65,7 @@ interface HourInput {
 function judgeHour({ setup, rules, poll, validAtMs }: HourInput): { readonly hour: JudgedHour; readonly windowHour: Omit<WindowHour, 'verdict'> } {
   const voters = poll.deterministic.flatMap((voter) => {
     const view = voter.members[0]?.get(validAtMs);
-    return view === undefined ? [] : [{ source: voter.source, view, speaks: speaks(voter) }];
+    return view === undefined ? [] : [{ source: voter.source, view, speaks: speaks(voter), interpolated: isInterpolated(voter.forecast, isoUtc(validAtMs)) }];
   });
   const ballots = voters.map(({ source, view }) => ({ source, margins: rules.map((rule) => measure(rule, view)) }));
   const margins = rules.flatMap((rule, i): CombinedMargin[] => {
@@ -113,21 +115,25 @@ function withoutVote(rule: Rule, setup: Setup): CombinedMargin {
 function ensembleOf({ setup, rules, poll, validAtMs }: HourInput): { readonly agreement: CombinedMargin | null; readonly shown: JudgedHour['ensemble'] } {
   const results = poll.ensembles.map((voter) => {
     const members = voter.members.flatMap((views) => views.get(validAtMs) ?? []);
-    return { source: voter.source, ...ensembleHour(rules, members, setup.sheet.limits.minAgreement) };
+    return { voter, source: voter.source, ...ensembleHour(rules, members, setup.sheet.limits.minAgreement) };
   });
   const combined = combine(results.flatMap(({ source, agreement }) => (agreement === null ? [] : [{ source, margin: agreement }])));
   const first = results[0];
   return {
     agreement: combined === null ? null : shown(combined.margin, combined.source),
-    shown: first === undefined || first.about.length === 0 ? null : { about: first.about, spreads: first.spreads },
+    shown: first === undefined || first.about.length === 0 ? null : { about: first.about, spreads: first.spreads, ...between(first.voter.forecast, isoUtc(validAtMs)) },
   };
 }
 
-function windOf(voters: readonly { readonly source: string; readonly view: HourView }[]): JudgedHour['wind'] {
-  const bySource = voters.flatMap(({ source, view }) => {
+function between(forecast: Forecast, validAt: string): { readonly between?: { readonly stepHours: number } } {
+  return forecast.stepHours !== undefined && isInterpolated(forecast, validAt) ? { between: { stepHours: forecast.stepHours } } : {};
+}
+
+function windOf(voters: readonly { readonly source: string; readonly view: HourView; readonly interpolated: boolean }[]): JudgedHour['wind'] {
+  const bySource = voters.flatMap(({ source, view, interpolated }) => {
     const [strongest] = [...view.winds].sort((a, b) => b.meanMps - a.meanMps);
     if (strongest === undefined || Number.isNaN(strongest.meanMps)) return [];
-    return [{ source, meanMps: strongest.meanMps, gustMps: Number.isNaN(strongest.gustMps) ? null : strongest.gustMps, fromDeg: Number.isNaN(strongest.fromDeg) ? null : strongest.fromDeg }];
+    return [{ source, meanMps: strongest.meanMps, gustMps: Number.isNaN(strongest.gustMps) ? null : strongest.gustMps, fromDeg: Number.isNaN(strongest.fromDeg) ? null : strongest.fromDeg, ...(interpolated ? { interpolated } : {}) }];
   });
   if (bySource.length === 0) return null;
   const means = bySource.map(({ meanMps }) => meanMps);

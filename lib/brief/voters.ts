@@ -49,6 +49,7 @@ export function pollSources(input: DayInput, setup: Setup, judgedMs: readonly nu
       runAgeHours: forecast === null ? null : runAgeHours(forecast.runAt, input.issuedAt),
       members: forecast?.members.length ?? 0, declares: forecast?.declares ?? [],
       gridElevationM: forecast?.members[0]?.[0]?.gridElevationM ?? null,
+      ...(forecast?.stepHours === undefined ? {} : { stepHours: forecast.stepHours }),
     };
   });
   const borrow = borrowing(trusted);

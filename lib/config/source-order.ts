@@ -43,6 +43,8 @@ export interface OpenMeteoSource extends SourceCommon {
   readonly levelsHpa: readonly number[];
   /** Columns of an ensemble, 1 for a deterministic model. */
   readonly members: number;
+  /** How far apart the model's own steps are; the service interpolates between them. */
+  readonly stepHours: number;
   /** Asked for, and declared only where an answer has it: what the documentation of the model leaves open. */
   readonly mayGive: readonly ConditionField[];
   /** A model that knows the depth of the mixed layer, for one that does not. */
@@ -90,6 +92,7 @@ const openMeteoSchema = once(() =>
     nearGroundM: list(wholeNumber({ min: 20, max: 300, unit: "m above the model's ground" }), { min: 0, max: 8 }),
     levelsHpa: list(wholeNumber({ min: 300, max: 1000, unit: 'hPa' }), { min: 0, max: 40 }),
     members: z._default(wholeNumber({ min: 1, max: 100, unit: 'columns' }), 1),
+    stepHours: z._default(wholeNumber({ min: 1, max: 6, unit: 'h' }), 1),
     mayGive: z._default(list(oneOf(CONDITION_FIELDS), { min: 0, max: CONDITION_FIELDS.length }), []),
     mixedLayerFrom: z._default(z.nullable(fields({ model: name(), runTimeNames: list(name(), { min: 1, max: 4 }) })), null),
   }),

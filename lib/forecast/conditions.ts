@@ -72,6 +72,8 @@ export interface Forecast {
   /** The fields this source can give at all. A declared field that is missing is unknown; an undeclared one has no vote. */
   readonly declares: readonly ConditionField[];
   readonly members: readonly (readonly Conditions[])[];
+  /** How far apart the model's own steps are, where that is more than an hour: hours between them are interpolated by the service. */
+  readonly stepHours?: number;
   /** Distance from the site to the grid point that answered, where the service says it. */
   readonly gridDistanceM: number | null;
   /** Invented weather: set by the demo source only, and never removed. */

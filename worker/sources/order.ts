@@ -84,7 +84,7 @@ function companionOf(entry: SourceEntry): OpenMeteoSource | null {
   const { model, runTimeNames } = entry.mixedLayerFrom;
   return {
     ...entry, id: `open-meteo-mixed-layer:${model}`, kind: 'deterministic', regions: [], declares: ['mixedLayerM'], model, runTimeNames,
-    nearGroundM: [], levelsHpa: [], members: 1, mayGive: [], mixedLayerFrom: null,
+    nearGroundM: [], levelsHpa: [], members: 1, stepHours: 1, mayGive: [], mixedLayerFrom: null,
   };
 }
 

@@ -1,13 +1,13 @@
 /** Who says so: every source with its vote, run and age, how they differ in the chosen hour, and what nobody judged. */
 import type { JudgedDay, JudgedHour } from '../../lib/brief/day.ts';
-import { disagreement, hourName, notJudgedGroups, notJudgedSentence, spreadRow, voteSentence, windBySource, type Reader } from '../../lib/brief/words/index.ts';
+import { disagreement, hourName, membersCaption, notJudgedGroups, notJudgedSentence, spreadRow, voteSentence, windBySource, type Reader } from '../../lib/brief/words/index.ts';
 import { html, type Html, type Piece } from './html.ts';
 
 /** Spares over the members of an ensemble: the middle one, and the one that nine in ten exceed. */
 function members(hour: JudgedHour, at: string, reader: Reader): Piece {
   if (hour.ensemble === null || hour.ensemble.spreads.length === 0) return null;
   const rows = hour.ensemble.spreads.map((spread) => spreadRow(spread, reader));
-  return html`<details class="numbers"><summary>What the ensemble’s members leave at ${at}</summary><div class="scroll" tabindex="0" role="region" aria-label="Members"><table>
+  return html`<details class="numbers"><summary>${membersCaption(hour.ensemble, at)}</summary><div class="scroll" tabindex="0" role="region" aria-label="Members"><table>
 <thead><tr><th scope="col">Margin</th><th scope="col">Middle member spares</th><th scope="col">Nine in ten spare more than</th></tr></thead>
 <tbody>${rows.map((row) => html`<tr><th scope="row">${row.name}</th><td class="n">${row.median}</td><td class="n">${row.adverse}</td></tr>`)}</tbody></table></div></details>`;
 }

@@ -15,7 +15,7 @@ export { notJudgedGroups, notJudgedSentence, type NotJudgedGroup } from './not-j
 export { capital, counted, listed, placeName, plainText, sentence } from './plain.ts';
 export type { Language, Reader } from './reader.ts';
 export { credits, disagreement, provenance, sourceName, votePhrase, votesPhrase, voteSentence } from './sources.ts';
-export { spreadRow, windBySource, type SpreadRow } from './spread.ts';
+export { membersCaption, spreadRow, windBySource, type SpreadRow } from './spread.ts';
 export { sunSentence } from './sun.ts';
 export { isOpen, mostRestrictive, restrictiveness, verdictPhrase } from './verdicts.ts';
 export { lastLaunchOfDay, lastLaunchWords, windowException, windowSentence } from './windows.ts';

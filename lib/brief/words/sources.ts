@@ -43,7 +43,8 @@ export function sourceName(id: string): string {
 /** What stands in brackets behind a source: why it has no vote, or how old its run is. */
 function remark(vote: SourceVote): string {
   if (vote.state === 'no vote') return plainText(vote.why ?? 'no reason given', 200);
-  return vote.runAgeHours === null ? 'run time not given' : `run ${Math.floor(vote.runAgeHours)} h old`;
+  const steps = vote.stepHours === undefined ? '' : `, interpolated from steps of ${vote.stepHours} h`;
+  return `${vote.runAgeHours === null ? 'run time not given' : `run ${Math.floor(vote.runAgeHours)} h old`}${steps}`;
 }
 
 /** "Open-Meteo ICON-D2 (no answer within 10 s)". */
@@ -68,7 +69,8 @@ export function voteSentence(vote: SourceVote, day: Pick<JudgedDay, 'timeZone' |
   const members = vote.kind === 'ensemble' ? `, ${counted(vote.members, 'member', 'members')}` : '';
   const fetched = vote.fetchedAt === null ? '' : `, fetched ${momentName(vote.fetchedAt, day)}`;
   const ground = vote.gridElevationM === null ? '' : `, its ground at ${Math.round(vote.gridElevationM)} m`;
-  return sentence(`${name}${members}: ${run}${fetched}${ground}`);
+  const steps = vote.stepHours === undefined ? '' : `, hours between its steps of ${vote.stepHours} h interpolated`;
+  return sentence(`${name}${members}: ${run}${fetched}${ground}${steps}`);
 }
 
 /** Age and sources as one line, which stands with every verdict. */

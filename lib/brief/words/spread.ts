@@ -12,8 +12,14 @@ type Wind = NonNullable<JudgedHour['wind']>['bySource'][number];
 /** "Open-Meteo ICON-D2: 4.2 m/s from 251°, gusts 5.6 m/s." */
 export function windBySource(wind: Wind, reader: Reader): string {
   const from = wind.fromDeg === null ? 'without a direction' : `from ${headingName(wind.fromDeg)}`;
+  const steps = wind.interpolated === true ? ', interpolated between its own steps' : '';
   const gust = wind.gustMps === null ? 'gusts not known' : `gusts ${quantityText({ value: wind.gustMps, unit: 'm/s' }, reader.units)}`;
-  return sentence(`${sourceName(wind.source)}: ${quantityText({ value: wind.meanMps, unit: 'm/s' }, reader.units)} ${from}, ${gust}`);
+  return sentence(`${sourceName(wind.source)}: ${quantityText({ value: wind.meanMps, unit: 'm/s' }, reader.units)} ${from}, ${gust}${steps}`);
+}
+
+/** "What the ensemble’s members leave at 13 h, interpolated between steps of 3 h". */
+export function membersCaption({ between }: NonNullable<JudgedHour['ensemble']>, at: string): string {
+  return `What the ensemble’s members leave at ${at}${between === undefined ? '' : `, interpolated between steps of ${between.stepHours} h`}`;
 }
 
 type Spread = NonNullable<JudgedHour['ensemble']>['spreads'][number];

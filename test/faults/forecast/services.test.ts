@@ -38,6 +38,11 @@ describe('Open-Meteo', () => {
     expect(askedOf('open-meteo')).toHaveLength(0);
   });
 
+  test.each([['open-meteo:ecmwf_ifs025_ensemble', 51, 3], ['open-meteo:ecmwf_ifs025', 1, 3], [EPS, 20, undefined]])('%s says how far apart its own steps are', async (id, members, stepHours) => {
+    const answer = await here(id).one(id);
+    expect(answer.ok && [answer.value.members.length, answer.value.stepHours]).toEqual([members, stepHours]);
+  });
+
   test('agreement is judged from it', async () => {
     const { sources, one } = live({ origin: server.origin, order: onlySources(D2, EPS), now: () => nowMs });
     const answers = [];

@@ -124,6 +124,7 @@ export function forecastOf(entry: OpenMeteoSource, site: Site, parts: ForecastPa
     runAt: parts.runAt,
     fetchedAt: parts.fetchedAt,
     declares,
+    ...(entry.stepHours > 1 ? { stepHours: entry.stepHours } : {}),
     members: hasStep ? members.value.map((hours) => hours.map((hour) => ({ ...hour, referencePressureHpa: pressures(site, hour.validAt) }))) : members.value,
     gridDistanceM: distanceM,
     demo: false,
