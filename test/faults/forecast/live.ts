@@ -9,6 +9,7 @@ import type { Source, SourceAnswer, SourceNotice } from '../../../worker/sources
 
 export { alpineSite };
 
+/** For services that hang. Too short for a busy machine where an answer is awaited. */
 export const SHORT: Bounds = { ...BOUNDS, totalMs: 500, firstTryMs: 200 };
 export const request = { fromUtc: '2027-05-13T21:00:00Z', toUtc: '2027-05-14T23:00:00Z' };
 export const fetchMs = Date.parse('2027-05-14T02:40:00Z');
@@ -52,7 +53,7 @@ export function live(options: LiveOptions): Live {
     openMeteoUrl: origin, openMeteoEnsembleUrl: origin, metNorwayUrl: origin, nwsUrl: origin, openMeteoKey: null, contact: 'mailto:ops@club.example', ...options.settings,
   };
   const world: SourceWorld = {
-    fetch: options.fetch ?? fetch, now: options.now ?? (() => fetchMs), local: true, bounds: options.bounds ?? SHORT, ...(options.kept ?? forgetful()),
+    fetch: options.fetch ?? fetch, now: options.now ?? (() => fetchMs), local: true, bounds: options.bounds ?? BOUNDS, ...(options.kept ?? forgetful()),
     report: (notice) => notices.push(notice),
   };
   const sources = liveSources(options.order ?? order, settings, world)(place);

@@ -4,7 +4,8 @@ import type { JudgedDay } from '../../../lib/brief/day.ts';
 import { startForecastServer, type ForecastServer } from '../../support/forecast-server/server.ts';
 import { groundM, judge } from '../../lib/sources/pipeline.ts';
 import { forgetful } from '../../../worker/sources/order.ts';
-import { alpineSite, fetchMs, live, onlySources, siteAt } from './live.ts';
+import { BOUNDS } from '../../../worker/sources/safe-fetch.ts';
+import { alpineSite, fetchMs, live, onlySources, SHORT, siteAt } from './live.ts';
 
 const D2 = 'open-meteo:icon_d2';
 const EU = 'open-meteo:icon_eu';
@@ -151,7 +152,7 @@ describe('two sources', () => {
 
 describe('F27: a service that fails half-way', () => {
   const norway = [siteAt('a', 60.1, 9.1), siteAt('b', 60.2, 9.2), siteAt('c', 60.3, 9.3), siteAt('d', 60.4, 9.4)];
-  const met = (kept = forgetful()) => live({ origin: server.origin, order: onlySources('met-norway:locationforecast'), place: norway[0]!, now: () => nowMs, kept });
+  const met = (kept = forgetful(), bounds = BOUNDS) => live({ origin: server.origin, order: onlySources('met-norway:locationforecast'), place: norway[0]!, now: () => nowMs, kept, bounds });
 
   test('keeps the first half and says for each of the rest why not', async () => {
     server.behave('met-norway', 'clean', 'clean', 'status-500');
@@ -161,7 +162,7 @@ describe('F27: a service that fails half-way', () => {
 
   test('a dead host is not asked for every site', async () => {
     server.behave('met-norway', 'hang');
-    const answers = await met().ask('met-norway:locationforecast', ...norway);
+    const answers = await met(forgetful(), SHORT).ask('met-norway:locationforecast', ...norway);
     expect([...answers.values()].every((answer) => !answer.ok && answer.error.kind === 'timeout')).toBe(true);
     // Two tries for the first place, which take all the time that a source has.
     expect(server.asked).toHaveLength(2);
