@@ -8,6 +8,7 @@ import { parseSites } from '../../lib/config/sites.ts';
 import { mailAddress } from '../security/mail-address.ts';
 import { operatorRefusal } from '../security/operator.ts';
 import { ownerOf } from '../security/owner.ts';
+import { shippedRows } from '../security/subscribe.ts';
 import { base64, derivedKey, sha256Hex } from '../secrets.ts';
 import type { DeskServices } from '../service-set.ts';
 import type { StoredSite } from '../store/site.ts';
@@ -17,11 +18,12 @@ import { json, problem } from './problem.ts';
 
 const MAX_BODY_BYTES = 256 * 1024;
 
-export function operator(services: DeskServices): Hono {
+/** `refusal`: the pages of the operator go by their own session. */
+export function operator(services: DeskServices, refusal: typeof operatorRefusal = operatorRefusal): Hono {
   const { stores, clock } = services;
   const app = new Hono();
 
-  app.use(async (c, next) => (await operatorRefusal(services, c.req.raw)) ?? next());
+  app.use(async (c, next) => (await refusal(services, c.req.raw)) ?? next());
 
   app.get('/sites', async () => {
     const rows = await stores.site.all();
@@ -88,7 +90,8 @@ export function operator(services: DeskServices): Hono {
     const pairs = parsePairs(body.value, known);
     if (!pairs.ok) return problem('bad-input', { problems: pairs.error });
     const wings = [...new Set(pairs.value.map(({ wing }) => wing))].map((key) => ({ key, name: key, body: JSON.stringify({ class: key }) }));
-    await stores.db.together([stores.wing.put(wings), ...stores.published.replaceAll(pairs.value.map(({ site, wing, sheet }) => ({ siteId: site, wingKey: wing, sheetId: sheet })))]);
+    const shipped = shippedRows(services, pairs.value.map(({ sheet }) => sheet));
+    await stores.db.together([stores.wing.put(wings), ...(shipped.length === 0 ? [] : [stores.sheetHistory.putNew(shipped, clock.nowMs())]), ...stores.published.replaceAll(pairs.value.map(({ site, wing, sheet }) => ({ siteId: site, wingKey: wing, sheetId: sheet })))]);
     return json(pairs.value);
   });
 

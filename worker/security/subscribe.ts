@@ -41,8 +41,7 @@ export async function preferenceRows(services: DeskServices, id: string, prefere
     nextDueAtMs: followingDueMs({ timeZone, deliverMinute, days }, nowMs),
     pairs: sites.map((site) => ({ siteId: site.id, wingKey, sheetId: site.sheet })),
   };
-  const named = new Set(sites.map(({ sheet }) => sheet));
-  const shipped = services.shippedSheets().filter((sheet) => named.has(sheet.id)).map((sheet) => ({ id: sheet.id, version: sheet.version, body: JSON.stringify(sheetJson(sheet)) }));
+  const shipped = shippedRows(services, sites.map(({ sheet }) => sheet));
   return [
     services.stores.wing.put([{ key: wingKey, name: wingClass ?? 'your own wing', body }]),
     ...(shipped.length === 0 ? [] : [services.stores.sheetHistory.putNew(shipped, nowMs)]),
@@ -51,7 +50,12 @@ export async function preferenceRows(services: DeskServices, id: string, prefere
   ];
 }
 
-function sheetJson({ limits, parameters, ...sheet }: LimitSheet): unknown {
+/** Rows of those of these sheets that ship: a brief is held to a row. */
+export function shippedRows(services: Pick<DeskServices, 'shippedSheets'>, ids: readonly string[]) {
+  return services.shippedSheets().filter(({ id }) => ids.includes(id)).map((sheet) => ({ id: sheet.id, version: sheet.version, body: JSON.stringify(sheetJson(sheet)) }));
+}
+
+export function sheetJson({ limits, parameters, ...sheet }: LimitSheet): unknown {
   return { ...sheet, limits: { ...limits, ...parameters } };
 }
 
