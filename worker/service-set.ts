@@ -68,6 +68,8 @@ export interface DeskServices {
 export interface Services extends DeskServices {
   /** The sources to ask about a site, in the order of config. */
   readonly sourcesFor: (place: Place) => readonly Source[];
+  /** Those behind them that cover it too; they are tried once a week. */
+  readonly standBysFor: (place: Place) => readonly Source[];
   /** What the judge gets wrong of what is known; nothing when it may be trusted. */
   readonly selfTest: () => readonly string[];
   /** Tells the watchdog outside that all is well; false when it could not be told. */

@@ -156,3 +156,9 @@ export function sourcesFor(order: SourceOrder, place: { readonly lonDeg: number;
   const ofKind = (kind: SourceEntry['kind']): SourceEntry[] => covering.filter((source) => source.kind === kind).slice(0, order.perSite[kind]);
   return [...ofKind('deterministic'), ...ofKind('ensemble')];
 }
+
+/** The sources that stand by for a place: they cover it too, behind those that are asked. */
+export function standBysFor(order: SourceOrder, place: { readonly lonDeg: number; readonly latDeg: number }): SourceEntry[] {
+  const asked = new Set(sourcesFor(order, place).map(({ id }) => id));
+  return order.sources.filter((source) => coversPlace(source, place) && !asked.has(source.id));
+}

@@ -3,6 +3,7 @@ import type { Services } from '../service-set.ts';
 import { SCHEMA_VERSION, type MetaKey } from '../store/meta.ts';
 import { planAbsent } from './absent.ts';
 import { BOARD_MINUTE, planBoard } from './board.ts';
+import { tryCanary } from './canary.ts';
 import { setBack } from './clock-back.ts';
 import { planDue } from './due.ts';
 import { beat } from './heartbeat.ts';
@@ -48,6 +49,7 @@ export async function tick(services: Services, scheduledAtMs: number, patience: 
   await sideStep(services, 'weekly-test', () => planWeeklyTest(services, nowMs, lastMs('last-weekly-test')));
   await sweep(services, nowMs);
   await tidy(services, nowMs, Number(meta.get('last-tidy') ?? 0));
+  await sideStep(services, 'canary', () => tryCanary(services, nowMs, meta.get('canary')));
   await sideStep(services, 'heartbeat', () => beat(services, nowMs, meta));
   const done = stores.meta.setting('last-tick', String(nowMs));
   await stores.db.write(done.sql, ...done.values);

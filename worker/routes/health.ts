@@ -1,4 +1,5 @@
 import { HOUR_MS } from '../../lib/time.ts';
+import { canaryNotes } from '../morning/canary.ts';
 import { imbalances } from '../morning/heartbeat.ts';
 import type { Services } from '../service-set.ts';
 import { SCHEMA_VERSION, type MetaKey } from '../store/meta.ts';
@@ -13,7 +14,7 @@ const STEPS = ['tick', 'fetch', 'assess', 'deliver', 'sweep', 'recheck', 'notice
 const UNHEARD_MS = 15 * 60_000;
 
 /** How this service is: 200 with the state of every step, 503 only when the database or its schema cannot be used. */
-export async function health(services: Services): Promise<Response> {
+export async function health(services: Pick<Services, 'stores' | 'clock' | 'settings'>): Promise<Response> {
   const { stores } = services;
   const nowMs = services.clock.nowMs();
   let meta: ReadonlyMap<string, string>;
@@ -31,12 +32,14 @@ export async function health(services: Services): Promise<Response> {
     return meta.has(key) ? Number(meta.get(key)) : null;
   };
   const tickMs = lastAt('tick');
+  const standBys = canaryNotes(meta.get('canary'));
   const warnings = [
     ...(tickMs === null || nowMs - tickMs > QUIET_MS ? ['no tick for more than five minutes: briefs are not being made'] : []),
     ...imbalances(books, { judge: meta.get('judge-fault') ?? '', clock: meta.get('clock-fault') ?? '' }),
     ...(services.settings.heartbeatUrl !== null && nowMs - (lastAt('heartbeat') ?? 0) > UNHEARD_MS ? ['the watchdog outside has not been told for more than fifteen minutes'] : []),
     ...(services.settings.linkKey === null ? ['LINK_KEY is not set: no webhook can be signed'] : []),
     ...(work.failed > 0 ? [`${work.failed} pieces of work were given up`] : []),
+    ...standBys.flatMap(({ source, wrong }) => (wrong === null ? [] : [`the source ${source}, which stands by, failed its weekly trial: ${wrong}`])),
     ...(outbox.dead > 0 ? [`${outbox.dead} messages could not be delivered`] : []),
   ];
   return json({
@@ -50,6 +53,7 @@ export async function health(services: Services): Promise<Response> {
       source, sites, fetchedAt: iso(fetchedAtMs), runAt: runAtMs < 0 ? null : iso(runAtMs),
       runAgeHours: runAtMs < 0 ? null : Math.round(((nowMs - runAtMs) / HOUR_MS) * 10) / 10,
     })),
+    standBys,
     log: errors.map(({ at, level, step, event, detail }) => ({ at: iso(at), level, step, event, detail: detail === null ? null : (JSON.parse(detail) as unknown) })),
   });
 }

@@ -12,7 +12,7 @@ import { createOpenMeteo } from './open-meteo/open-meteo.ts';
 import { FREE_QUOTA } from './quota.ts';
 import type { Outside } from './safe-fetch.ts';
 import type { Report, Source } from './source.ts';
-import { sourcesFor, type OpenMeteoSource, type SourceEntry, type SourceOrder } from '../../lib/config/source-order.ts';
+import { sourcesFor, standBysFor, type OpenMeteoSource, type SourceEntry, type SourceOrder } from '../../lib/config/source-order.ts';
 
 export interface SourceSettings {
   readonly openMeteoUrl: string;
@@ -29,7 +29,8 @@ export interface SourceWorld extends Outside {
   readonly report?: Report;
 }
 
-export type SourcesFor = (place: { readonly latDeg: number; readonly lonDeg: number }) => readonly Source[];
+/** `standBy`: instead of the sources that are asked for a place, those behind them. */
+export type SourcesFor = (place: { readonly latDeg: number; readonly lonDeg: number }, which?: 'asked' | 'standBy') => readonly Source[];
 
 /** The real services, for one invocation. */
 export function liveSources(order: SourceOrder, settings: SourceSettings, world: SourceWorld): SourcesFor {
@@ -59,7 +60,10 @@ export function liveSources(order: SourceOrder, settings: SourceSettings, world:
         return createNws(entry, hostAt(settings.nwsUrl), { cache, contact, report });
     }
   };
-  return (place) => withCompanions(sourcesFor(order, place)).map(sourceOf);
+  return (place, which = 'asked') => {
+    const entries = which === 'asked' ? sourcesFor(order, place) : standBysFor(order, place);
+    return withCompanions(entries).filter((entry) => which === 'asked' || entries.some(({ id }) => id === entry.id)).map(sourceOf);
+  };
 }
 
 /** The free addresses of the Open-Meteo interface count what they are asked; an own server or one for customers does not. */

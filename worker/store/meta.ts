@@ -4,7 +4,7 @@ import type { Database, Statement } from './database.ts';
 export const SCHEMA_VERSION = 31;
 
 export type MetaKey = 'schema' | 'last-tick' | 'last-fetch' | 'last-assess' | 'last-deliver' | 'last-sweep' | 'last-tidy'
-  | 'last-recheck' | 'last-notice' | 'last-self-test' | 'judge-fault' | 'clock-fault' | 'last-absent' | 'last-weekly-test' | 'last-heartbeat' | 'last-balance';
+  | 'last-recheck' | 'last-notice' | 'last-self-test' | 'judge-fault' | 'clock-fault' | 'last-absent' | 'last-weekly-test' | 'last-heartbeat' | 'last-balance' | 'canary';
 
 export function metaStore(db: Database) {
   return {

@@ -48,3 +48,16 @@ test('without a contact, services that want one are not asked at all', async () 
   expect(answers.get('u')).toEqual({ ok: false, error: { kind: 'not-fetched' } });
   expect(asked).toEqual([]);
 });
+
+test('those that stand by cover the place too, are not asked, and are whole without their companions', () => {
+  for (const place of [alps, utah]) {
+    const asked = new Set(sourcesFor(place).map(({ id }) => id));
+    const standBys = sourcesFor(place, 'standBy');
+    expect(standBys.length).toBeGreaterThan(0);
+    for (const source of standBys) {
+      expect(asked).not.toContain(source.id);
+      expect(source.id).not.toMatch(/^open-meteo-mixed-layer:/);
+      expect(source.covers(place)).toBe(true);
+    }
+  }
+});
