@@ -37,8 +37,13 @@ function valley(): PlanServices {
     },
     keep({ request, plan }, before) {
       const id = before?.id ?? `p${kept.size + 1}`;
-      kept.set(id, { id, revision: (before?.revision ?? 0) + 1, request, plan });
+      kept.set(id, { id, revision: (before?.revision ?? 0) + 1, request, plan, isTold: before?.isTold ?? false });
       return Promise.resolve(id);
+    },
+    tell(plan, manageLink) {
+      if (manageLink !== null && !manageLink.endsWith('/manage/ada')) return Promise.resolve(false);
+      kept.set(plan.id, { ...plan, isTold: manageLink !== null });
+      return Promise.resolve(true);
     },
     kept: (token) => Promise.resolve(kept.get(token) ?? null),
   };
@@ -77,6 +82,11 @@ async function journey(scripts: boolean): Promise<void> {
   expect(before).toMatch(/^(Within limits|Close to a limit at .*), (last launch|everybody down by) \d+:\d\d, (\d+) to \d+ h at Tivvern Strip\.$/);
   const firstHour = Number(/, (\d+) to/.exec(before)![1]);
   expect(await page.locator('main').innerText()).toContain('Next best:');
+  // Say who is told when a block turns.
+  await page.getByLabel('Link to change your subscription').fill('https://brief.example/manage/ada');
+  await page.getByRole('button', { name: 'Tell me when a block turns' }).click();
+  expect(page.url()).toBe(link);
+  expect(await page.locator('main').innerText()).toContain('A subscription is told when a planned block turns');
   // Lose an hour and plan again: one press, the same link.
   await page.getByRole('button', { name: `Take out ${firstHour} h at Tivvern Strip` }).first().click();
   expect(page.url()).toBe(link);

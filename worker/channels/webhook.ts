@@ -113,7 +113,7 @@ function iso(epochMs: number): string {
   return new Date(epochMs).toISOString();
 }
 
-const TYPES: Readonly<Record<Message['kind'], string>> = { brief: 'brief.issued', change: 'brief.changed', missed: 'brief.missed', test: 'service.test' };
+const TYPES: Readonly<Record<Message['kind'], string>> = { brief: 'brief.issued', change: 'brief.changed', missed: 'brief.missed', plan: 'plan.turned', test: 'service.test' };
 
 /** The body: the same bytes at every attempt. */
 function payload(message: Message): unknown {

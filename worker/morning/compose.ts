@@ -91,9 +91,9 @@ function messageOf(parts: MessageParts): Message | null {
   return message === null ? null : { ...message, ...threadOf(parts.row) };
 }
 
-/** A test is of no day; everything else of a subscriber's day takes the place of what came before. */
+/** A test is of no day; everything else of a subscriber's day takes the place of what came before, plans beside briefs. */
 function threadOf(row: OutboxRow): Pick<Message, 'thread'> {
-  return row.kind === 'test' ? {} : { thread: `${row.subscriptionId}|${row.dueLocalDate}` };
+  return row.kind === 'test' ? {} : { thread: `${row.subscriptionId}|${row.dueLocalDate}${row.kind === 'plan' ? '|plan' : ''}` };
 }
 
 function remembered<Value>(work: (siteId: string, atMs: number) => Value): (siteId: string, atMs: number) => Value {

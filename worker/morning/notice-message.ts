@@ -3,7 +3,9 @@ import type { Told } from '../../lib/brief/change/told.ts';
 import type { JudgedDay } from '../../lib/brief/day.ts';
 import { absentNotice, changeNotice, testNotice, type AbsentReason, type ChangedDay } from '../../lib/brief/words/change.ts';
 import type { Message } from '../channels/channel.ts';
+import { turnedNotice } from '../../lib/plan/words/notice.ts';
 import { briefMessage, missedMessage, pairDayKey, READER, type Content, type MessageParts } from './message.ts';
+import type { PlanContent } from './plan-notices.ts';
 
 /** What a change notice is made of: the newest revisions of all its sites, and of some what has changed. */
 export interface ChangeContent extends Content {
@@ -32,6 +34,7 @@ export function noticeMessage(parts: MessageParts): Message | null {
   switch (row.kind) {
     case 'brief': return briefMessage(parts);
     case 'change': return changeMessage(parts);
+    case 'plan': return planMessage(parts);
     case 'test': return { ...plain(parts), ...testNotice({ atMs: content.issuedAtMs, reachedAtMs: (content as TestContent).reachedAtMs, asked: (content as TestContent).asked === true }) };
     case 'missed': {
       const { reason } = content as Partial<AbsentContent>;
@@ -44,6 +47,15 @@ export function noticeMessage(parts: MessageParts): Message | null {
 
 function plain({ row, content }: MessageParts): Message {
   return { id: row.id, kind: row.kind, title: '', text: '', issuedAtMs: content.issuedAtMs, dataRunAtMs: null, validUntilMs: row.validUntilMs, urgent: false, demo: false, days: [] };
+}
+
+/** Planned blocks that turned, with the days that they stand on: also of sites that its subscriber has no briefs of. */
+function planMessage(parts: MessageParts): Message {
+  const { row, content, heads, units } = parts;
+  const { plans } = content as PlanContent;
+  const days = content.briefs.flatMap((brief) => { const head = heads.get(pairDayKey(brief)); return head === undefined ? [] : [JSON.parse(head.digest) as JudgedDay]; });
+  const words = turnedNotice(plans, { date: row.dueLocalDate, days, reader: units === undefined ? READER : { units } });
+  return { ...plain(parts), ...words, urgent: true, demo: plans.some(({ demo }) => demo) || days.some(({ demo }) => demo) };
 }
 
 function changeMessage(parts: MessageParts): Message | null {

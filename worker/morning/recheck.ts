@@ -3,6 +3,7 @@ import { epochOf, HOUR_MS, MINUTE_MS } from '../../lib/time.ts';
 import type { Services } from '../service-set.ts';
 import type { PairDay } from '../store/brief.ts';
 import type { WantedAssess } from '../store/run.ts';
+import { heldPlans, pairDaysOf } from './plan-notices.ts';
 import { placesOf } from './places.ts';
 import { REFETCH_AFTER_MS, type Patience } from './times.ts';
 import { wantedFetches } from './wants.ts';
@@ -20,12 +21,13 @@ export function isRecheckDue(nowMs: number, lastRecheckMs: number): boolean {
 }
 
 /**
- * Once an hour: days that somebody was told about are judged again until they end, every hour while something ahead is
+ * Once an hour: days that somebody was told about, or has a plan for, are judged again until they end, every hour while something ahead is
  * open or not known, every three hours while all of it is beyond.
  */
 export async function planRecheck(services: Services, nowMs: number, patience: Patience): Promise<void> {
   const { stores } = services;
-  const told = await stores.windowState.toldPairDays(nowMs);
+  const own = [...(await stores.windowState.toldPairDays(nowMs)), ...pairDaysOf(await heldPlans(services, nowMs))];
+  const told = [...new Map(own.map((pairDay) => [keyOf(pairDay), pairDay])).values()];
   if (told.length === 0) return stores.meta.set('last-recheck', String(nowMs)).then(() => undefined);
   const newest = new Map((await stores.windowState.newestTwo(told)).toReversed().map((brief) => [keyOf(brief), brief]));
   const wanted = told.filter((pairDay) => {

@@ -8,6 +8,7 @@ import { setBack } from './clock-back.ts';
 import { planDue } from './due.ts';
 import { beat } from './heartbeat.ts';
 import { noticeChanges } from './notices.ts';
+import { noticePlans } from './plan-notices.ts';
 import { isRecheckDue, planRecheck } from './recheck.ts';
 import { checkClock, isJudgeTrusted } from './self-test.ts';
 import { sideStep } from './side-step.ts';
@@ -37,14 +38,17 @@ export async function tick(services: Services, scheduledAtMs: number, patience: 
     await stores.log.write([{ level: 'warning', step: 'tick', event: 'ticks-absent', detail: { minutes: Math.round((nowMs - lastTickMs) / MINUTE_MS) } }], nowMs);
   }
   await planDue(services, nowMs, patience);
-  if (new Date(scheduledAtMs).getUTCMinutes() === BOARD_MINUTE) await planBoard(services, nowMs);
+  const isBoardMinute = new Date(scheduledAtMs).getUTCMinutes() === BOARD_MINUTE;
+  if (isBoardMinute) await planBoard(services, nowMs);
   const lastMs = (key: MetaKey): number => Number(meta.get(key) ?? 0);
   await sideStep(services, 'self-test', async () => {
     await checkClock(services, meta.get('clock-fault') ?? '');
     if (nowMs - lastMs('last-self-test') > 10 * MINUTE_MS) await isJudgeTrusted(services);
   });
   if (isRecheckDue(nowMs, lastMs('last-recheck'))) await sideStep(services, 'recheck', () => planRecheck(services, nowMs, patience));
-  if (lastMs('last-assess') >= lastMs('last-notice') - MINUTE_MS) await sideStep(services, 'notice', () => noticeChanges(services, nowMs, lastMs('last-notice')));
+  const isJudgedAnew = lastMs('last-assess') >= lastMs('last-notice') - MINUTE_MS;
+  if (isJudgedAnew || isBoardMinute) await sideStep(services, 'plan-notice', () => noticePlans(services, nowMs));
+  if (isJudgedAnew) await sideStep(services, 'notice', () => noticeChanges(services, nowMs, lastMs('last-notice')));
   await sideStep(services, 'absent', () => planAbsent(services, nowMs, (meta.get('judge-fault') ?? '') !== ''));
   await sideStep(services, 'weekly-test', () => planWeeklyTest(services, nowMs, lastMs('last-weekly-test')));
   await sweep(services, nowMs);

@@ -17,6 +17,7 @@ import { whatIf } from './what-if.ts';
 export const DESK_METHODS: Readonly<Record<string, string>> = {
   '/plan': 'GET, HEAD, POST',
   '/plan/:token': 'GET, HEAD, POST',
+  '/plan/:token/notice': 'POST',
   '/plan/:token/:file': 'GET, HEAD',
   '/confirm/:token': 'GET, HEAD, POST',
   '/manage/:token': 'GET, HEAD, POST',

@@ -61,7 +61,12 @@ export function planPages(services: PlanServices): Hono {
     const [known, days] = await Promise.all([services.known(), services.judge(kept.request)]);
     const link = `/plan/${c.req.param('token')}`;
     const notices = planChanges(kept.request, kept.plan, days);
-    return answer(c, pageOf(services, { known, json: kept.request, plan: kept.plan, action: link, view: { reader: READER, notices, link } }));
+    return answer(c, pageOf(services, { known, json: kept.request, plan: kept.plan, action: link, view: { reader: READER, notices, link }, isTold: kept.isTold }));
+  });
+
+  app.post('/:token/notice', async (c) => {
+    const kept = await services.kept(c.req.param('token'));
+    return kept === null ? noPlan(c) : tell(c, services, kept);
   });
 
   app.get('/:token/:file', async (c) => {
@@ -95,6 +100,20 @@ async function make(c: Context, services: PlanServices, before: KeptPlan | null)
   return answer(c, pageOf(services, { known, json: request.value, plan, action, remark: 'This plan is not kept: no LINK_KEY is set, so that it can have no link.' }));
 }
 
+/** Whom to tell when a block turns. What is wrong with the link is not said: that there is no subscription behind it is all. */
+async function tell(c: Context, services: PlanServices, kept: KeptPlan): Promise<Response> {
+  const link = `/plan/${c.req.param('token')}`;
+  if (c.req.header('sec-fetch-site') === 'cross-site') return answer(c, messagePage({ title: 'Not from here', sentences: ['Who is told is changed on the plan’s own page.'] }), 403);
+  const waitS = services.wait(sender(c));
+  if (waitS > 0) return answer(c, messagePage({ title: 'Too often', sentences: [`Please try again in ${waitS} s.`] }), 429);
+  const bytes = await readUpTo(c.req.raw.body, MAX_BYTES);
+  const form = new URLSearchParams(new TextDecoder().decode(bytes ?? new Uint8Array()));
+  if (!(await services.tell(kept, form.has('stop') ? null : form.get('manage') ?? ''))) {
+    return answer(c, messagePage({ title: 'Nobody is told', sentences: ['There is no subscription behind this link. It is the link that every brief carries to change its subscription.'] }), 400);
+  }
+  return new Response(null, { status: 303, headers: { ...PAGE_HEADERS, location: link } });
+}
+
 /** The worked example where its sites are; else every site there is, and a group to begin with. */
 function exampleDay(services: PlanServices, known: PlanPage['known']): unknown {
   const example = services.example();
@@ -105,7 +124,7 @@ function exampleDay(services: PlanServices, known: PlanPage['known']): unknown {
 }
 
 function pageOf(services: PlanServices, page: Pick<PlanPage, 'known' | 'json'> & Partial<PlanPage>): string {
-  return planPage({ now: services.now(), action: '/plan', plan: null, view: { reader: READER, notices: [], link: null }, problems: [], remark: null, ...page });
+  return planPage({ now: services.now(), action: '/plan', plan: null, view: { reader: READER, notices: [], link: null }, problems: [], remark: null, isTold: null, ...page });
 }
 
 function answer(c: Context, page: string, status: 200 | 400 | 403 | 404 | 413 | 429 = 200): Response {

@@ -1,7 +1,7 @@
 import type { Database, Statement } from './database.ts';
 
-/** What a message is: the morning's brief, what changed since, the notice that there was none, the weekly test. */
-export type MessageKind = 'brief' | 'change' | 'missed' | 'test';
+/** What a message is: the morning's brief, what changed since, the notice that there was none, a planned block that turned, the weekly test. */
+export type MessageKind = 'brief' | 'change' | 'missed' | 'plan' | 'test';
 
 export type SettledState = 'sent' | 'expired' | 'dead' | 'suppressed';
 

@@ -12,9 +12,22 @@ export interface StoredPlan {
   readonly request: string;
   /** What was planned, as JSON. */
   readonly body: string;
+  /** Who is told when a block turns; null for nobody. */
+  readonly subscriptionId: string | null;
 }
 
-const COLUMNS = 'id, link_version AS linkVersion, revision, local_date AS localDate, request, body';
+/** What somebody was told of their plans of a day, or is about to be. */
+export interface PlanTelling {
+  readonly id: string;
+  readonly subscriptionId: string;
+  readonly localDate: string;
+  readonly seq: number;
+  readonly state: string;
+  readonly isLeased: number;
+  readonly content: string;
+}
+
+const COLUMNS = 'id, link_version AS linkVersion, revision, local_date AS localDate, request, body, subscription_id AS subscriptionId';
 
 /** A plan is kept for a month after its last change, so that a day can be looked back on. */
 const KEPT_MS = 31 * 24 * 3_600_000;
@@ -25,7 +38,7 @@ const TIDIED = 50;
 export function planStore(db: Database) {
   return {
     /** Running it twice leaves the same row: the revision is given, not counted. Old plans leave with it. */
-    put(plan: Omit<StoredPlan, 'linkVersion'>, nowMs: number): Statement[] {
+    put(plan: Omit<StoredPlan, 'linkVersion' | 'subscriptionId'>, nowMs: number): Statement[] {
       return [
         { sql: `DELETE FROM plan WHERE id IN (SELECT id FROM plan WHERE expires_at < ? LIMIT ${TIDIED})`, values: [nowMs] },
         {
@@ -40,9 +53,22 @@ export function planStore(db: Database) {
       const [row] = await db.read<StoredPlan>(`SELECT ${COLUMNS} FROM plan WHERE id = ?`, id);
       return row ?? null;
     },
-    /** The plans of these days, for whoever tells their holders that an hour has turned. */
-    ofDates(localDates: readonly string[]): Promise<StoredPlan[]> {
-      return db.read<StoredPlan>(`SELECT ${COLUMNS} FROM plan WHERE local_date IN (SELECT value FROM json_each(?)) ORDER BY id`, JSON.stringify(localDates));
+    /** Who is told from now on; nobody for null. */
+    tell(id: string, subscriptionId: string | null): Statement {
+      return { sql: 'UPDATE plan SET subscription_id = ?2 WHERE id = ?1', values: [id, subscriptionId] };
+    },
+    /** The plans of these days that somebody is to be told about. */
+    held(localDates: readonly string[]): Promise<(StoredPlan & { readonly subscriptionId: string })[]> {
+      const sql = `SELECT ${COLUMNS} FROM plan WHERE local_date IN (SELECT value FROM json_each(?))
+        AND subscription_id IN (SELECT id FROM subscription WHERE state = 'active') ORDER BY id`;
+      return db.read(sql, JSON.stringify(localDates));
+    },
+    /** What those subscribers were told of plans of these days, whatever became of it, the oldest first. */
+    tellings(subscriptionIds: readonly string[], localDates: readonly string[], nowMs: number): Promise<PlanTelling[]> {
+      const sql = `SELECT id, subscription_id AS subscriptionId, due_local_date AS localDate, seq, state, (lease_until IS NOT NULL AND lease_until > ?3) AS isLeased, content
+        FROM outbox WHERE subscription_id IN (SELECT value FROM json_each(?1)) AND due_local_date IN (SELECT value FROM json_each(?2)) AND kind = 'plan'
+        ORDER BY seq, id`;
+      return db.read<PlanTelling>(sql, JSON.stringify(subscriptionIds), JSON.stringify(localDates), nowMs);
     },
   };
 }

@@ -103,6 +103,7 @@ export function subscriptionStore(db: Database) {
       return [
         { sql: 'DELETE FROM token WHERE subject = ?1 OR subject IN (SELECT id FROM channel WHERE subscription_id = ?1)', values: [id] },
         ...['channel', 'subscription_site', 'outbox'].map((table) => ({ sql: `DELETE FROM ${table} WHERE subscription_id = ?`, values: [id] })),
+        { sql: 'UPDATE plan SET subscription_id = NULL WHERE subscription_id = ?', values: [id] },
         { sql: 'DELETE FROM signup WHERE id = ?1 OR owner = (SELECT owner FROM subscription WHERE id = ?1)', values: [id] },
         { sql: 'DELETE FROM subscription WHERE id = ?', values: [id] },
         { sql: `DELETE FROM wing WHERE key LIKE 'own-%' AND key NOT IN (SELECT wing_key FROM subscription_site) AND key NOT IN (SELECT wing_key FROM published)`, values: [] },

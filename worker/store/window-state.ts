@@ -100,11 +100,11 @@ export function windowStateStore(db: Database) {
       return rows.map((row) => ({ ...row, isLeased: row.isLeased === 1 }));
     },
     /** A notice for each first channel. `seq` was counted by whoever planned it, so that a repeat finds its row. */
-    planChanges(changes: readonly PlannedChange[], nowMs: number): Statement {
+    planChanges(changes: readonly PlannedChange[], nowMs: number, kind: 'change' | 'plan' = 'change'): Statement {
       return {
         sql: `INSERT INTO outbox (id, subscription_id, channel_id, due_local_date, kind, seq, format, due_at, ready_by, valid_until,
             state, next_attempt_at, content, created_at)
-          SELECT 'msg_' || lower(hex(randomblob(16))), s.id, c.id, j.value ->> 'dueLocalDate', 'change', j.value ->> 'seq', ${OUTBOX_FORMAT},
+          SELECT 'msg_' || lower(hex(randomblob(16))), s.id, c.id, j.value ->> 'dueLocalDate', '${kind}', j.value ->> 'seq', ${OUTBOX_FORMAT},
             ?2, ?2, j.value ->> 'validUntilMs', 'pending', ?2, j.value ->> 'content', ?2
           FROM json_each(?1) AS j JOIN subscription AS s ON s.id = j.value ->> 'subscriptionId' AND s.state = 'active'
           JOIN channel AS c ON c.subscription_id = s.id AND c.state <> 'dead'

@@ -7,6 +7,9 @@ import { SI_UNITS } from '../../../lib/brief/units-out.ts';
 import { planCsv } from '../../../lib/plan/csv.ts';
 import { planChanges } from '../../../lib/plan/changes.ts';
 import { planDay } from '../../../lib/plan/plan-day.ts';
+import { turnedNotice } from '../../../lib/plan/words/notice.ts';
+import { verdictPhrase } from '../../../lib/brief/words/index.ts';
+import { worstVerdict } from '../../../lib/margin/verdict.ts';
 import { blockReason, blockSentence, eventTitle, ifLostSentence, leftOutSentence, nextBestSentence, noticeSentence, planSentence, planTitle } from '../../../lib/plan/words/index.ts';
 import { planCalendar } from '../../../worker/web/plan/calendar.ts';
 import { blemishes } from '../words/forbidden.ts';
@@ -33,6 +36,26 @@ test('no word that may not stand, no leak, on any day', () => {
       ...planChanges(request, plan, changed).map((notice) => noticeSentence(notice, plan, reader)),
     ];
     expect(texts.flatMap(blemishes)).toEqual([]);
+  }), { numRuns: 200 });
+});
+
+test('a notice of blocks that turned names the worst first, then each block, then the days with their cautions', () => {
+  fc.assert(fc.property(letters, letters, fc.boolean(), (first, later, demo) => {
+    const { request, plan } = planned([first, first], { demo });
+    const days = daysFor(request, { hill: judged('hill', later, { demo, cautions: [caution], localRules: 'Ask at the hut.' }), ridge: judged('ridge', later, { demo }) });
+    const notices = planChanges(request, plan, days);
+    fc.pre(notices.length > 0);
+    const { title, text } = turnedNotice([{ id: 'p', revision: 1, timeZone: plan.timeZone, demo, notices: notices.toReversed() }], { date: plan.date, days: [...days.values()], reader });
+    const worst = verdictPhrase(worstVerdict(notices.map(({ verdict }) => verdict)));
+    expect(title.toLowerCase().startsWith(`${demo ? 'invented weather: ' : ''}${worst}`)).toBe(true);
+    expect(text.toLowerCase().startsWith(`${demo ? 'invented weather, ' : ''}${worst} at `)).toBe(true);
+    for (const { group } of notices) expect(text.split('These blocks')[0]).toContain(`${group}, `);
+    expect(text).toMatch(/Caution: .*\n/);
+    expect(text).toContain('Local rules: Ask at the hut.');
+    expect(text.trimEnd().endsWith(CLOSING)).toBe(true);
+    expect([title, text].flatMap(blemishes)).toEqual([]);
+    // No cut of it says that anything is within limits before it has said what is not.
+    for (let end = 1; end < text.indexOf('These blocks'); end += 7) expect(text.slice(0, end)).not.toMatch(/within limits/i);
   }), { numRuns: 200 });
 });
 

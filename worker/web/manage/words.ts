@@ -68,7 +68,7 @@ export function reachedWords(channel: ChannelView, { timeZone, nowMs }: { readon
   return kind === 'push' ? `${waits}${taken}; the browser has not said that it showed anything.` : `${waits}${taken}. Whether it was read is not known here.`;
 }
 
-const KINDS: Readonly<Record<Delivery['kind'], string>> = { brief: 'brief', change: 'change notice', missed: 'notice that there is none', test: 'test' };
+const KINDS: Readonly<Record<Delivery['kind'], string>> = { brief: 'brief', change: 'change notice', missed: 'notice that there is none', plan: 'notice of a planned block', test: 'test' };
 
 export function kindWords({ kind }: Pick<Delivery, 'kind'>): string {
   return KINDS[kind];

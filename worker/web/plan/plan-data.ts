@@ -10,6 +10,7 @@ import { placesOf } from '../../morning/places.ts';
 import { judgedDate } from '../../morning/times.ts';
 import { limiter } from '../../routes/limiter.ts';
 import { linkToken, readLinkToken } from '../../secrets.ts';
+import { subscriptionOf } from '../../security/manage.ts';
 import type { DeskServices } from '../../service-set.ts';
 import type { PlanServices } from './plan-services.ts';
 
@@ -28,7 +29,7 @@ export function planServices(services: DeskServices): PlanServices {
       if (settings.linkKey === null) return null;
       const id = before?.id ?? services.ids.next();
       const row = { id, revision: (before?.revision ?? 0) + 1, localDate: request.date, request: JSON.stringify(request), body: JSON.stringify(plan) };
-      await stores.db.together(stores.plan.put(row, clock.nowMs()));
+      await stores.db.together([...stores.plan.put(row, clock.nowMs()), ...(before?.isTold === true ? [stores.wing.put(wingsOf(request))] : [])]);
       return linkToken(settings.linkKey, { purpose: 'plan', id, version: (await stores.plan.one(id))?.linkVersion ?? 1 });
     },
     async kept(token) {
@@ -36,12 +37,23 @@ export function planServices(services: DeskServices): PlanServices {
       const row = named === null ? null : await stores.plan.one(named.id);
       if (row === null || row.linkVersion !== named?.version) return null;
       try {
-        return { id: row.id, revision: row.revision, request: JSON.parse(row.request) as PlanRequest, plan: JSON.parse(row.body) as DayPlan };
+        return { id: row.id, revision: row.revision, request: JSON.parse(row.request) as PlanRequest, plan: JSON.parse(row.body) as DayPlan, isTold: row.subscriptionId !== null };
       } catch {
         return null;
       }
     },
+    async tell({ id, request }, manageLink) {
+      const detail = manageLink === null ? null : await subscriptionOf(services, 'manage', /[^/\s]*(?=\s*$)/.exec(manageLink)?.[0] ?? '');
+      if (manageLink !== null && detail === null) return false;
+      await stores.db.together([stores.wing.put(wingsOf(request)), stores.plan.tell(id, detail?.id ?? null)]);
+      return true;
+    },
   };
+}
+
+/** The morning judges the blocks of a plan that somebody is told about anew each hour: it must know their wings. */
+function wingsOf(request: PlanRequest): { readonly key: string; readonly name: string; readonly body: string }[] {
+  return [...new Set(request.groups.map(({ wing }) => wing))].map((wing) => ({ key: wing, name: wing, body: JSON.stringify({ class: wing }) }));
 }
 
 async function known(services: DeskServices): Promise<PlanContext> {

@@ -7,6 +7,7 @@ import type { Issue } from '../../../lib/result.ts';
 import { html, type Html } from '../html.ts';
 import { layout } from '../layout.ts';
 import { planForm } from './plan-form.ts';
+import { tellForm } from './tell-form.ts';
 import { planView, type PlanViewOptions } from './plan-view.ts';
 
 export interface PlanPage {
@@ -20,15 +21,17 @@ export interface PlanPage {
   readonly problems: readonly Issue[];
   /** Something to say about the plan as such. */
   readonly remark: string | null;
+  /** Of a kept plan: whether somebody is told when a block turns. */
+  readonly isTold: boolean | null;
 }
 
-export function planPage({ now, known, json, action, plan, view, problems, remark }: PlanPage): string {
+export function planPage({ now, known, json, action, plan, view, problems, remark, isTold }: PlanPage): string {
   const isExpired = plan !== null && (plan.validUntil === null || now.getTime() >= Date.parse(plan.validUntil));
   const shown = plan === null ? null : isExpired ? html`<p class="day">${EXPIRED}</p>` : planView(plan, view);
   // The first button of a form is what the return key presses: not one that takes an hour out.
   const body = html`<link rel="stylesheet" href="/plan.css"><button class="off" form="plan-form" tabindex="-1" aria-hidden="true">Plan this day</button><div class="top plan-top"><h1>${plan === null ? 'Training day' : `Training day, ${dateName(plan.date)}`}</h1>
 <p class="lede">Which group where and when, by what is left of every limit. A person decides; this informs.</p></div>
-${problems.length === 0 ? null : problemList(problems)}${remark === null ? null : html`<p class="rules">${remark}</p>`}${shown}
+${problems.length === 0 ? null : problemList(problems)}${remark === null ? null : html`<p class="rules">${remark}</p>`}${shown}${isTold === null ? null : tellForm(action, isTold)}
 <section class="plan-edit" aria-labelledby="edit-h"><h2 id="edit-h">The day as entered</h2>${planForm(json, known, action)}</section>`;
   return layout({
     title: `${problems.length > 0 ? 'Not planned' : plan === null ? 'Training day' : isExpired ? 'Expired' : planTitle(plan)} - Dawnmargin`,

@@ -9,6 +9,8 @@ export interface KeptPlan {
   readonly revision: number;
   readonly request: PlanRequest;
   readonly plan: DayPlan;
+  /** Whether somebody is told when a block turns. */
+  readonly isTold: boolean;
 }
 
 export interface PlanServices {
@@ -22,6 +24,8 @@ export interface PlanServices {
   judge(request: PlanRequest): Promise<JudgedDays>;
   /** Keeps a new plan, or one anew, and gives the token of its link; null where no link can be derived. */
   keep(plan: Pick<KeptPlan, 'request' | 'plan'>, before: KeptPlan | null): Promise<string | null>;
+  /** Tells the subscription behind a manage link from now on, or nobody for null; false when there is none behind it. */
+  tell(plan: KeptPlan, manageLink: string | null): Promise<boolean>;
   /** null for a token that is not ours, revoked, or of a plan that is gone. */
   kept(token: string): Promise<KeptPlan | null>;
 }
