@@ -42,7 +42,9 @@ export function sqliteD1(): SqliteD1 {
       return this.now();
     }
     now(): unknown {
-      return { results: [], success: true, meta: { changes: Number(statementOf(this.sql).run(...this.values).changes) } };
+      const statement = statementOf(this.sql);
+      if (/^\s*(SELECT|WITH)/i.test(this.sql)) return { results: plain(statement.all(...this.values)), success: true, meta: { changes: 0 } };
+      return { results: [], success: true, meta: { changes: Number(statement.run(...this.values).changes) } };
     }
   }
   return {

@@ -113,7 +113,7 @@ describe('the payload', () => {
 
   test('is JSON of at most two thousand bytes whatever the text, cut at its end and never through a character', () => {
     for (const length of [0, 1, 10, 900, 1700, 1800, 1900, 2500, 9000]) {
-      for (const filling of ['a', 'ä', '€', '🪁', '"', '\n', '\u0001']) {
+      for (const filling of ['a', 'ä', '€', '🪁', '"', '\n', '\u0001', '\ud83e', '€a\u0001🪁']) {
         const text = filling.repeat(Math.floor(length / filling.length));
         const bytes = pushPayload({ ...message, text }, { origin: 'https://brief.example.org' });
         expect(bytes.length).toBeLessThanOrEqual(MOST_BYTES);
@@ -122,6 +122,15 @@ describe('the payload', () => {
         if (length < 250) expect(body).toBe(text);
       }
     }
+  });
+
+  test('tells the service worker what it needs to replace what came before and to end', () => {
+    const longest = { ...message, thread: `${'s'.repeat(64)}|2027-05-14`, title: '"'.repeat(5000), days: [{ siteId: 'ü'.repeat(60), localDate: '2027-05-14', verdict: 'beyond' as const, windows: [] }] };
+    const bytes = pushPayload(longest, { origin: 'https://brief.example.org' });
+    expect(bytes.length).toBeLessThanOrEqual(MOST_BYTES);
+    expect(JSON.parse(new TextDecoder().decode(bytes))).toMatchObject({ thread: longest.thread, issuedAt: '1970-01-01T00:00:00.000Z', validUntil: '1970-01-01T01:00:00.000Z' });
+    const small = JSON.parse(new TextDecoder().decode(pushPayload(longest, { origin: 'https://brief.example.org', minimal: true }))) as object;
+    expect(small).toMatchObject({ thread: longest.thread, issuedAt: '1970-01-01T00:00:00.000Z', validUntil: '1970-01-01T01:00:00.000Z' });
   });
 
   test('has a small form', () => {

@@ -26,11 +26,10 @@ export interface Composition {
 export async function compose(services: Services, rows: readonly OutboxRow[]): Promise<Composition> {
   const { stores, clock } = services;
   const nowMs = clock.nowMs();
-  const channels = new Map((await stores.channel.some(rows.map((row) => row.channelId))).map((channel) => [channel.id, channel]));
-  const pairs = await stores.subscription.pairsOf([...new Set(rows.map((row) => row.subscriptionId))]);
-  const loosened = await loosenedNotes(services, pairs);
-  const units = await stores.subscription.unitsOf([...new Set(rows.map((row) => row.subscriptionId))]);
-  const places = await placesOf(services, [...new Set(pairs.map((pair) => pair.siteId))]);
+  const subscribers = [...new Set(rows.map((row) => row.subscriptionId))];
+  const [found, pairs, units] = await Promise.all([stores.channel.some(rows.map((row) => row.channelId)), stores.subscription.pairsOf(subscribers), stores.subscription.unitsOf(subscribers)]);
+  const channels = new Map(found.map((channel) => [channel.id, channel]));
+  const [loosened, places] = await Promise.all([loosenedNotes(services, pairs), placesOf(services, [...new Set(pairs.map((pair) => pair.siteId))])]);
   const contents = new Map<string, Content>();
   for (const row of rows) if (row.content !== null) contents.set(row.id, JSON.parse(row.content) as Content);
 
@@ -46,12 +45,14 @@ export async function compose(services: Services, rows: readonly OutboxRow[]): P
     }),
   }));
   const wanted = new Map(open.flatMap(({ pairDays }) => pairDays).map((pairDay) => [pairDayKey(pairDay), pairDay]));
-  const newest = wanted.size === 0 ? [] : await stores.brief.heads([...wanted.values()]);
+  const pinned = rows.filter((row) => row.content !== null).flatMap((row) => contents.get(row.id)?.briefs ?? []);
+  const [newest, exact] = await Promise.all([
+    wanted.size === 0 ? [] : stores.brief.heads([...wanted.values()]),
+    pinned.length === 0 ? [] : stores.brief.exact(pinned.filter((brief): brief is BriefKey => brief.revision !== null)),
+  ]);
   const heads = byKey(newest);
   for (const { row, pairDays } of open) contents.set(row.id, contentOf(pairDays, heads, nowMs));
   if (open.length > 0) await stores.outbox.pin(open.map(({ row }) => ({ id: row.id, content: JSON.stringify(contents.get(row.id)) })));
-  const pinned = rows.filter((row) => row.content !== null).flatMap((row) => contents.get(row.id)?.briefs ?? []);
-  const exact = pinned.length === 0 ? [] : await stores.brief.exact(pinned.filter((brief): brief is BriefKey => brief.revision !== null));
 
   const composed: Composed[] = [];
   const orphans: OutboxRow[] = [];

@@ -1,16 +1,17 @@
 import type { SendOutcome } from '../channels/channel.ts';
 import type { Services } from '../service-set.ts';
 import type { Statement } from '../store/database.ts';
+import type { Mark } from '../store/mark.ts';
 import type { SettledState } from '../store/outbox.ts';
 import { nextAttempt } from './backoff.ts';
 import type { Composed } from './compose.ts';
 import { quietUntilMs } from './quiet.ts';
 import { SEND_TIMEOUT_MS } from './times.ts';
 
-/** What became of one message, and the statements that say so in the tables. */
+/** What became of one message, and what says so in the tables. */
 export interface Delivered {
   readonly state: SettledState | 'retry';
-  readonly marks: readonly Statement[];
+  readonly marks: readonly (Mark | Statement)[];
 }
 
 export async function deliverOne(services: Services, item: Composed, by: string): Promise<Delivered> {
@@ -60,7 +61,7 @@ async function sendOne(services: Services, { row, channel, message }: Composed):
 }
 
 /** The end of a message on one channel, and its new beginning on the next in rank. */
-function dead(services: Services, { row }: Composed, reason: string): Statement[] {
+function dead(services: Services, { row }: Composed, reason: string): Mark[] {
   const nowMs = services.clock.nowMs();
   return [services.stores.outbox.settle(row.id, { state: 'dead', reason }, nowMs), services.stores.outbox.fallBack(row.id, nowMs)];
 }

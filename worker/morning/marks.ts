@@ -1,7 +1,8 @@
 import type { Database, Statement } from '../store/database.ts';
+import { statementsOf, type Mark } from '../store/mark.ts';
 
 interface Waiting {
-  readonly statements: readonly Statement[];
+  readonly marks: readonly (Mark | Statement)[];
   readonly resolve: () => void;
   readonly reject: (error: unknown) => void;
 }
@@ -11,13 +12,13 @@ interface Waiting {
  * waits and is written together. Whoever marks waits until it is written, so that no more is ever unmarked than is sent
  * side by side.
  */
-export function marker(db: Pick<Database, 'together'>): (statements: readonly Statement[]) => Promise<void> {
+export function marker(db: Pick<Database, 'together'>): (marks: readonly (Mark | Statement)[]) => Promise<void> {
   let waiting: Waiting[] = [];
   let isWriting = false;
 
   async function write(group: readonly Waiting[]): Promise<void> {
     try {
-      await db.together(group.flatMap(({ statements }) => statements));
+      await db.together(statementsOf(group.flatMap(({ marks }) => marks)));
       for (const { resolve } of group) resolve();
     } catch (error) {
       // One bad mark must not take its neighbours with it.
@@ -36,8 +37,8 @@ export function marker(db: Pick<Database, 'together'>): (statements: readonly St
     isWriting = false;
   }
 
-  return (statements) => new Promise((resolve, reject) => {
-    waiting.push({ statements, resolve, reject });
+  return (marks) => new Promise((resolve, reject) => {
+    waiting.push({ marks, resolve, reject });
     if (!isWriting) void writeAll();
   });
 }

@@ -9,8 +9,11 @@ export const FETCH_CHUNK = 8;
 /** Pairs of one site-day judged at once. */
 export const ASSESS_CHUNK = 4;
 
-/** Messages sent at once: each is a send and a mark, and a dozen calls come before and after. Three rounds of the six connections. */
-export const SEND_CHUNK = 18;
+/** Calls of fetch, database and queue that one invocation may make. */
+export const MOST_CALLS = 50;
+
+/** Messages taken at once. Those for which the calls of the invocation do not suffice go back. */
+export const SEND_CHUNK = 20;
 
 /** Connections that may be open at once. */
 export const SENDS_SIDE_BY_SIDE = 6;

@@ -1,4 +1,5 @@
 import type { Database, Statement } from './database.ts';
+import type { Mark } from './mark.ts';
 
 /** What a message is: the morning's brief, what changed since, the notice that there was none, a planned block that turned, the weekly test. */
 export type MessageKind = 'brief' | 'change' | 'missed' | 'plan' | 'test';
@@ -96,26 +97,27 @@ export function outboxStore(db: Database) {
       );
     },
     /** Ends a row, once. What was sent is sent, whoever holds the lease by now. */
-    settle(id: string, end: { readonly state: SettledState; readonly reason: string }, nowMs: number): Statement {
+    settle(id: string, end: { readonly state: SettledState; readonly reason: string }, nowMs: number): Mark {
       return {
-        sql: `UPDATE outbox SET state = ?2, reason = ?3, settled_at = ?4, lease_until = NULL, lease_by = NULL WHERE id = ?1 AND state = 'pending'`,
-        values: [id, end.state, end.reason, nowMs],
+        sql: `UPDATE outbox SET state = j.value ->> 'state', reason = j.value ->> 'reason', settled_at = j.value ->> 'nowMs', lease_until = NULL, lease_by = NULL
+          FROM json_each(?1) AS j WHERE outbox.id = j.value ->> 'id' AND outbox.state = 'pending'`,
+        row: { id, ...end, nowMs },
       };
     },
     /** Gives a leased row back for another attempt. */
-    retry(id: string, by: string, next: { readonly atMs: number; readonly reason: string }): Statement {
+    retry(id: string, by: string, next: { readonly atMs: number; readonly reason: string }): Mark {
       return {
-        sql: `UPDATE outbox SET next_attempt_at = ?3, reason = ?4, lease_until = NULL, lease_by = NULL
-          WHERE id = ?1 AND lease_by = ?2 AND state = 'pending'`,
-        values: [id, by, next.atMs, next.reason],
+        sql: `UPDATE outbox SET next_attempt_at = j.value ->> 'atMs', reason = j.value ->> 'reason', lease_until = NULL, lease_by = NULL
+          FROM json_each(?1) AS j WHERE outbox.id = j.value ->> 'id' AND outbox.lease_by = j.value ->> 'by' AND outbox.state = 'pending'`,
+        row: { id, by, ...next },
       };
     },
     /** Gives a leased row back until quiet hours end: nothing was tried. */
-    hold(id: string, by: string, untilMs: number): Statement {
+    hold(id: string, by: string, untilMs: number): Mark {
       return {
-        sql: `UPDATE outbox SET next_attempt_at = ?3, reason = 'quiet hours', lease_until = NULL, lease_by = NULL, attempts = attempts - 1
-          WHERE id = ?1 AND lease_by = ?2 AND state = 'pending'`,
-        values: [id, by, untilMs],
+        sql: `UPDATE outbox SET next_attempt_at = j.value ->> 'untilMs', reason = 'quiet hours', lease_until = NULL, lease_by = NULL, attempts = attempts - 1
+          FROM json_each(?1) AS j WHERE outbox.id = j.value ->> 'id' AND outbox.lease_by = j.value ->> 'by' AND outbox.state = 'pending'`,
+        row: { id, by, untilMs },
       };
     },
     /** Gives a leased row back as if it had not been taken. */
@@ -127,18 +129,19 @@ export function outboxStore(db: Database) {
       };
     },
     /** The same message for the channels of the next rank, when one is dead. */
-    fallBack(id: string, nowMs: number): Statement {
+    fallBack(id: string, nowMs: number): Mark {
       return {
         sql: `INSERT INTO outbox (id, subscription_id, channel_id, due_local_date, kind, seq, format, due_at, ready_by, valid_until,
             state, next_attempt_at, content, created_at)
           SELECT 'msg_' || lower(hex(randomblob(16))), o.subscription_id, c.id, o.due_local_date, o.kind, o.seq, ${OUTBOX_FORMAT}, o.due_at,
-            o.ready_by, o.valid_until, 'pending', ?2, o.content, ?2
-          FROM outbox AS o JOIN channel AS was ON was.id = o.channel_id
+            o.ready_by, o.valid_until, 'pending', j.value ->> 'nowMs', o.content, j.value ->> 'nowMs'
+          FROM json_each(?1) AS j JOIN outbox AS o ON o.id = j.value ->> 'id' AND o.state = 'dead'
+          JOIN channel AS was ON was.id = o.channel_id
           JOIN channel AS c ON c.subscription_id = o.subscription_id AND c.state <> 'dead'
             AND c.rank = (SELECT MIN(rank) FROM channel WHERE subscription_id = o.subscription_id AND state <> 'dead' AND rank > was.rank)
-          WHERE o.id = ?1 AND o.state = 'dead'
+          WHERE true
           ON CONFLICT (subscription_id, channel_id, due_local_date, kind, seq) DO NOTHING`,
-        values: [id, nowMs],
+        row: { id, nowMs },
       };
     },
   };

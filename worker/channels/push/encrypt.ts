@@ -32,9 +32,9 @@ export async function fresh(): Promise<Fresh> {
 }
 
 /** Throws where the keys are none: a point off the curve, a wrong length. Check them with `areKeys` when they come in. */
-export async function encrypt(plain: Uint8Array, to: PushKeys, { salt, keys }: Fresh): Promise<Uint8Array> {
+export async function encrypt(plain: Uint8Array, to: PushKeys, { salt, keys }: Fresh, imported?: CryptoKey): Promise<Uint8Array> {
   if (plain.length > MOST_PLAIN_BYTES) throw new Error(`a push message holds at most ${MOST_PLAIN_BYTES} bytes, not ${plain.length}`);
-  const browserKey = await crypto.subtle.importKey('raw', to.p256dh, P256, false, []);
+  const browserKey = imported ?? (await crypto.subtle.importKey('raw', to.p256dh, P256, false, []));
   const ownPublic = new Uint8Array((await crypto.subtle.exportKey('raw', keys.publicKey)) as ArrayBuffer);
   // Section 3.1: the shared secret. The runtime's name for the peer's key differs from that of its type definitions.
   const shared = await crypto.subtle.deriveBits({ name: 'ECDH', public: browserKey } as unknown as SubtleCryptoDeriveKeyAlgorithm, keys.privateKey, 256);
@@ -50,12 +50,16 @@ export async function encrypt(plain: Uint8Array, to: PushKeys, { salt, keys }: F
 
 /** Whether these can be encrypted to: the right lengths, and a point of the curve. */
 export async function areKeys(keys: PushKeys): Promise<boolean> {
-  if (keys.p256dh.length !== 65 || keys.p256dh[0] !== 4 || keys.auth.length !== 16) return false;
+  return (await browserKeyOf(keys)) !== null;
+}
+
+/** The browser's public key as the runtime takes it; null where the keys are none. */
+export async function browserKeyOf(keys: PushKeys): Promise<CryptoKey | null> {
+  if (keys.p256dh.length !== 65 || keys.p256dh[0] !== 4 || keys.auth.length !== 16) return null;
   try {
-    await crypto.subtle.importKey('raw', keys.p256dh, P256, false, []);
-    return true;
+    return await crypto.subtle.importKey('raw', keys.p256dh, P256, false, []);
   } catch {
-    return false;
+    return null;
   }
 }
 

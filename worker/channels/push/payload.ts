@@ -17,12 +17,23 @@ export function pushPayload(message: Message, { origin, minimal = false }: { rea
     issuedAt: new Date(message.issuedAtMs).toISOString(), validUntil: new Date(message.validUntilMs).toISOString(), inventedWeather: message.demo,
   };
   if (minimal) return encoder.encode(JSON.stringify({ id: fixed.id, thread: fixed.thread, kind: fixed.kind, nonce: fixed.nonce, title: cut(fixed.title, 120), url: fixed.url, issuedAt: fixed.issuedAt, validUntil: fixed.validUntil }));
-  let length = message.text.length;
-  for (;;) {
-    const bytes = encoder.encode(JSON.stringify({ ...fixed, title: cut(fixed.title, 400), body: cut(message.text, length) }));
-    if (bytes.length <= MOST_BYTES || length === 0) return bytes;
-    length = Math.max(0, length - Math.max(1, Math.ceil((bytes.length - MOST_BYTES) / 4)));
-  }
+  const bytesOf = (body: string): Uint8Array => encoder.encode(JSON.stringify({ ...fixed, title: cut(fixed.title, 400), body }));
+  const whole = bytesOf(message.text);
+  return whole.length <= MOST_BYTES ? whole : bytesOf(cut(message.text, lengthWithout(message.text, whole.length - MOST_BYTES)));
+}
+
+/** How much of a text is left when at least so many bytes of its JSON are taken from its end. */
+function lengthWithout(text: string, bytes: number): number {
+  let length = text.length;
+  for (let left = bytes; left > 0 && length > 0; left -= jsonBytes(text.charCodeAt(length))) length -= 1;
+  return length;
+}
+
+/** Of one UTF-16 unit, and never more than it takes: half a character counts as half of it. */
+function jsonBytes(code: number): number {
+  if (code < 0x20 || code === 0x22 || code === 0x5c) return 2;
+  if (code < 0x80) return 1;
+  return code < 0x800 || (code >= 0xd800 && code < 0xe000) ? 2 : 3;
 }
 
 /** At most so many UTF-16 units, never half a character. */

@@ -1,7 +1,7 @@
 import { base64Url, sha256 } from '../../secrets.ts';
 import type { Address, Attempt, Channel, Message, SendOutcome } from '../channel.ts';
 import { retryAfterMs } from '../retry-after.ts';
-import { areKeys, encrypt, fresh } from './encrypt.ts';
+import { browserKeyOf, encrypt, fresh } from './encrypt.ts';
 import { isLoopbackEndpoint, readTarget, type PushTarget } from './endpoint.ts';
 import { pushPayload } from './payload.ts';
 import type { Authorize } from './vapid.ts';
@@ -45,14 +45,15 @@ export function pushChannel(options: PushOptions): Channel {
       if ('problem' in target) return { state: 'gone', reason: `the push subscription is refused: ${target.problem}` };
       if (message.demo && !isLoopbackEndpoint(target.endpoint)) return { state: 'refused', reason: 'invented weather stays on this machine' };
       if (options.authorize === null) return { state: 'retry', reason: 'the settings VAPID_PUBLIC_KEY and VAPID_PRIVATE_KEY are missing', afterMs: null };
-      if (!(await areKeys(target.keys))) return { state: 'gone', reason: 'the push subscription is refused: its keys are none' };
+      const browserKey = await browserKeyOf(target.keys);
+      if (browserKey === null) return { state: 'gone', reason: 'the push subscription is refused: its keys are none' };
       const { origin } = new URL(target.endpoint);
       const quarrelMs = await options.quarrels.untilMs(origin);
       if (quarrelMs !== null && quarrelMs > attempt.nowMs) return { state: 'retry', reason: 'the push service refuses this sender', afterMs: quarrelMs - attempt.nowMs };
       const { authorize } = options;
-      const full = await post(message, target, attempt, { ...options, authorize, minimal: false });
+      const full = await post(message, target, attempt, { ...options, authorize, browserKey, minimal: false });
       // Too large for this service: what fits is the call to look.
-      const outcome = full === 'too-large' ? await post(message, target, attempt, { ...options, authorize, minimal: true }) : full;
+      const outcome = full === 'too-large' ? await post(message, target, attempt, { ...options, authorize, browserKey, minimal: true }) : full;
       if (outcome === 'too-large') return { state: 'refused', reason: 'the push service answered 413 to the smallest message' };
       if (outcome === 'quarrel') {
         await options.quarrels.begin(origin, attempt.nowMs + QUARREL_MS, attempt.nowMs);
@@ -65,11 +66,12 @@ export function pushChannel(options: PushOptions): Channel {
 
 interface Posting extends Pick<PushOptions, 'fetch' | 'publicUrl'> {
   readonly authorize: Authorize;
+  readonly browserKey: CryptoKey;
   readonly minimal: boolean;
 }
 
 async function post(message: Message, target: PushTarget, { nowMs, timeoutMs, untilMs }: Attempt, posting: Posting): Promise<SendOutcome | 'too-large' | 'quarrel'> {
-  const body = await encrypt(pushPayload(message, { origin: posting.publicUrl, minimal: posting.minimal }), target.keys, await fresh());
+  const body = await encrypt(pushPayload(message, { origin: posting.publicUrl, minimal: posting.minimal }), target.keys, await fresh(), posting.browserKey);
   try {
     const response = await posting.fetch(target.endpoint, {
       method: 'POST',
