@@ -38,16 +38,20 @@ const HEAD = `b.site_id AS siteId, b.local_date AS localDate, b.wing_key AS wing
   b.sheet_version AS sheetVersion, b.revision, b.verdict, b.demo, b.issued_at AS issuedAtMs, b.valid_until AS validUntilMs,
   b.run_at AS runAtMs, b.input_hash AS inputHash, b.digest`;
 
-/** Briefs are kept for ninety days, so that what was said can be looked up. */
-const KEPT_MS = 90 * 24 * 3_600_000;
+/** Briefs are kept for a fortnight, as what was sent of them is; kept for a season, those of own wings alone would fill a small database. */
+const KEPT_MS = 14 * 24 * 3_600_000;
 
 function head(row: Row): BriefHead {
   return { ...row, demo: row.demo === 1 };
 }
 
-/** Of several versions of a sheet and revisions of a brief the one issued last counts. */
-const NEWEST = `b.rowid = (SELECT n.rowid FROM brief AS n WHERE n.site_id = b.site_id AND n.local_date = b.local_date
-  AND n.wing_key = b.wing_key AND n.sheet_id = b.sheet_id ORDER BY n.issued_at DESC, n.revision DESC LIMIT 1)`;
+/**
+ * The newest brief b of each pair-day j: of several versions of a sheet and revisions of a brief the one issued last counts.
+ * Found from its end by the index brief_newest: joined the other way round, every revision of the day is read for it.
+ */
+const NEWEST = `FROM json_each(?) AS j CROSS JOIN brief AS b ON b.rowid = (SELECT n.rowid FROM brief AS n WHERE n.site_id = j.value ->> 'siteId'
+  AND n.local_date = j.value ->> 'localDate' AND n.wing_key = j.value ->> 'wingKey' AND n.sheet_id = j.value ->> 'sheetId'
+  ORDER BY n.issued_at DESC, n.revision DESC LIMIT 1)`;
 
 export function briefStore(db: Database) {
   return {
@@ -67,10 +71,7 @@ export function briefStore(db: Database) {
     },
     /** The newest brief of each of these pair-days that has one. */
     async heads(pairDays: readonly PairDay[]): Promise<BriefHead[]> {
-      const sql = `SELECT ${HEAD} FROM json_each(?) AS j JOIN brief AS b ON b.site_id = j.value ->> 'siteId'
-        AND b.local_date = j.value ->> 'localDate' AND b.wing_key = j.value ->> 'wingKey' AND b.sheet_id = j.value ->> 'sheetId'
-        WHERE ${NEWEST}`;
-      return (await db.read<Row>(sql, JSON.stringify(pairDays))).map(head);
+      return (await db.read<Row>(`SELECT ${HEAD} ${NEWEST}`, JSON.stringify(pairDays))).map(head);
     },
     /** These very revisions, as far as they are still kept. */
     async exact(keys: readonly BriefKey[]): Promise<BriefHead[]> {
@@ -95,10 +96,7 @@ export function briefStore(db: Database) {
     },
     /** The bodies of the newest briefs of these pair-days, for pages that show pictures. */
     async bodies(pairDays: readonly PairDay[]): Promise<(PairDay & { readonly revision: number; readonly body: string })[]> {
-      const sql = `SELECT b.site_id AS siteId, b.local_date AS localDate, b.wing_key AS wingKey, b.sheet_id AS sheetId, b.revision, b.body
-        FROM json_each(?) AS j JOIN brief AS b ON b.site_id = j.value ->> 'siteId' AND b.local_date = j.value ->> 'localDate'
-        AND b.wing_key = j.value ->> 'wingKey' AND b.sheet_id = j.value ->> 'sheetId' WHERE ${NEWEST}`;
-      return db.read(sql, JSON.stringify(pairDays));
+      return db.read(`SELECT b.site_id AS siteId, b.local_date AS localDate, b.wing_key AS wingKey, b.sheet_id AS sheetId, b.revision, b.body ${NEWEST}`, JSON.stringify(pairDays));
     },
     dropOld(nowMs: number): Statement {
       return { sql: 'DELETE FROM brief WHERE valid_until < ?', values: [nowMs - KEPT_MS] };

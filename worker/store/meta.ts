@@ -1,7 +1,7 @@
 import type { Database, Statement } from './database.ts';
 
 /** The number of the newest migration that this code was written for; each migration writes its own. */
-export const SCHEMA_VERSION = 40;
+export const SCHEMA_VERSION = 50;
 
 export type MetaKey = 'schema' | 'last-tick' | 'last-fetch' | 'last-assess' | 'last-deliver' | 'last-sweep' | 'last-tidy'
   | 'last-recheck' | 'last-notice' | 'last-self-test' | 'judge-fault' | 'clock-fault' | 'last-absent' | 'last-weekly-test' | 'last-heartbeat' | 'last-balance' | 'canary';

@@ -75,8 +75,7 @@ export function windowStateStore(db: Database) {
     },
     /** The newest two revisions of these pair-days, the newest first. */
     async newestTwo(pairDays: readonly PairDay[]): Promise<SlimBrief[]> {
-      const sql = `SELECT ${SLIM} FROM json_each(?) AS j JOIN brief AS b ON ${SAME('b', 'j')}
-        WHERE b.rowid IN (SELECT n.rowid FROM brief AS n WHERE ${SAME('n', 'j')} ORDER BY n.issued_at DESC, n.revision DESC LIMIT 2)
+      const sql = `SELECT ${SLIM} FROM json_each(?) AS j CROSS JOIN brief AS b ON b.rowid IN (SELECT n.rowid FROM brief AS n WHERE ${SAME('n', 'j')} ORDER BY n.issued_at DESC, n.revision DESC LIMIT 2)
         ORDER BY b.issued_at DESC, b.revision DESC`;
       return (await db.read<Packed>(sql, JSON.stringify(pairDays))).map(slim);
     },
@@ -93,8 +92,8 @@ export function windowStateStore(db: Database) {
           (o.lease_until IS NOT NULL AND o.lease_until > ?2) AS isLeased
         FROM outbox AS o JOIN subscription AS s ON s.id = o.subscription_id AND s.state = 'active'
         WHERE o.due_at > ?2 - ${TOLD_MS} AND o.due_at <= ?2 AND o.kind IN ('brief', 'change') AND o.state IN ('pending', 'sent')
-          AND EXISTS (SELECT 1 FROM json_each(?1) AS j JOIN subscription_site AS p ON p.site_id = j.value ->> 'siteId'
-            AND p.wing_key = j.value ->> 'wingKey' AND p.sheet_id = j.value ->> 'sheetId' WHERE p.subscription_id = s.id)
+          AND EXISTS (SELECT 1 FROM subscription_site AS p WHERE p.subscription_id = s.id AND (p.site_id, p.wing_key, p.sheet_id)
+            IN (SELECT j.value ->> 'siteId', j.value ->> 'wingKey', j.value ->> 'sheetId' FROM json_each(?1) AS j))
         ORDER BY o.subscription_id, o.due_at, o.seq, o.created_at, o.id`;
       const rows = await db.read<Omit<TellingRow, 'isLeased'> & { isLeased: number }>(sql, JSON.stringify(pairDays), nowMs);
       return rows.map((row) => ({ ...row, isLeased: row.isLeased === 1 }));
