@@ -142,6 +142,36 @@ describe('the last forecast that was good', () => {
   });
 });
 
+describe('F28: a source that comes and goes', () => {
+  /** Hour after hour at ten past, each for three minutes; what was sent by then. */
+  async function hours(house: HouseOf, isUp: (hour: number) => boolean): Promise<readonly string[]> {
+    for (let hour = 5; hour <= 12; hour += 1) {
+      house.sources = [isUp(hour) ? well('a:one') : { ...well('a:one'), fault: () => ({ kind: 'unreachable' }) }];
+      house.nowMs = Date.parse(`2027-05-14T${String(hour).padStart(2, '0')}:10:00Z`);
+      await house.minutes(3);
+    }
+    return house.posts.map(({ body }) => (JSON.parse(body) as { type: string }).type);
+  }
+  const houseWithout = async (): Promise<HouseOf> => {
+    const house = await houseOf([{ ...well('a:one'), fault: () => ({ kind: 'unreachable' }) }]);
+    await house.minutes(3);
+    expect(JSON.parse(house.posts[0]!.body)).toMatchObject({ type: 'brief.issued', data: { days: [{ verdict: 'unknown' }] } });
+    return house;
+  };
+
+  test('down for the brief and well from the next hour on: one update, and no more', async () => {
+    expect(await hours(await houseWithout(), () => true)).toEqual(['brief.issued', 'brief.changed']);
+  });
+
+  test('well every second hour: still one update, for what it gave stands while it is away', async () => {
+    expect(await hours(await houseWithout(), (hour) => hour % 2 === 1)).toEqual(['brief.issued', 'brief.changed']);
+  });
+
+  test('down all day: nothing more to say', async () => {
+    expect(await hours(await houseWithout(), () => false)).toEqual(['brief.issued']);
+  });
+});
+
 test('F14, F15: a revoked key and an address that has moved are for people: they stand in the log as errors', async () => {
   const house = await houseOf([{ ...well('a:one'), fault: () => ({ kind: 'refused', status: 401 }) }, { ...well('b:one'), fault: () => ({ kind: 'redirected' }) }, { ...well('c:one'), fault: () => ({ kind: 'unreachable' }) }]);
   await house.minute();
