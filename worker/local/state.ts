@@ -59,7 +59,7 @@ export function isAlive(pid: number): boolean {
   }
 }
 
-function secretsIn(folder: string): { readonly secrets: Secrets; readonly newOperatorToken: string | null } {
+export function secretsIn(folder: string): { readonly secrets: Secrets; readonly newOperatorToken: string | null } {
   const file = path.join(folder, 'secrets.json');
   if (existsSync(file)) return { secrets: JSON.parse(readFileSync(file, 'utf8')) as Secrets, newOperatorToken: null };
   const token = randomBytes(32).toString('base64url');
