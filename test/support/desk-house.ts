@@ -14,7 +14,7 @@ import { freePort } from '../../worker/local/own-demo.ts';
 import { serve } from '../browser/support/server.ts';
 import type { DeskHouse } from '../browser/support/house.ts';
 import { OPERATOR_TOKEN } from '../browser/support/house.ts';
-import { startPushSink } from './sinks/push-sink.ts';
+import { startPushSink, type Pushed } from './sinks/push-sink.ts';
 import { sqliteD1 } from './sqlite-d1.ts';
 
 /** `sites`: those of the demo; else a blank database, but for its tables. */
@@ -54,7 +54,8 @@ export async function startHouse({ sites }: { readonly sites: boolean }): Promis
   }
   const site = await serve(app(services()), { port, after: settle });
   return {
-    origin, sink, letters, settle,
+    origin, letters, settle,
+    sink: { pushed: sink.pushed, newBrowser: () => sink.newBrowser(), answer: (as) => sink.answer(as), decrypt: (pushed) => sink.decrypt(pushed as Pushed) },
     ask: (sql, ...values) => d1.ask(sql, ...values),
     async close() {
       await site.close();

@@ -7,6 +7,7 @@ import { bounce } from './bounces.ts';
 import { closing } from './closing.ts';
 import { manageApi } from './manage.ts';
 import { operator } from './operator.ts';
+import { operatorPages } from './operator-pages.ts';
 import { planApi, planPages } from './plan.ts';
 import { pushApi } from './push.ts';
 import { pushShown } from './shown.ts';
@@ -23,6 +24,18 @@ export const DESK_METHODS: Readonly<Record<string, string>> = {
   '/manage/:token': 'GET, HEAD, POST',
   '/subscribe': 'GET, HEAD, POST',
   '/subscribe/sent': 'GET, HEAD',
+  '/operator': 'GET, HEAD',
+  '/operator/sign-in': 'GET, HEAD, POST',
+  '/operator/sign-out': 'POST',
+  '/operator/board': 'POST',
+  '/operator/import': 'GET, HEAD, POST',
+  '/operator/new/launch': 'GET, HEAD, POST',
+  '/operator/new/strip': 'GET, HEAD, POST',
+  '/operator/sites/:id': 'GET, HEAD, POST',
+  '/operator/sites/:id/rehearse': 'GET, HEAD',
+  '/operator/sheets': 'GET, HEAD',
+  '/operator/sheets/:id': 'GET, HEAD, POST',
+  '/operator/status': 'GET, HEAD',
   '/unsubscribe/:token': 'GET, HEAD, POST',
   '/api/v1/subscriptions': 'POST',
   '/api/v1/subscriptions/confirm-push': 'POST',
@@ -52,6 +65,7 @@ export function deskRoutes(hono: Hono, services: DeskServices): void {
   hono.route('/api/v1/manage', manageApi(services));
   hono.get('/sites/:id/what-if', (c) => whatIf(whatIfServices(services), c));
   hono.route('/plan', planPages(planServices(services)));
+  hono.route('/operator', operatorPages(services));
   hono.route('/', subscriberPages(services));
 }
 

@@ -6,10 +6,10 @@ import { readUpTo } from './body.ts';
 const MAX_FORM_BYTES = 8 * 1024;
 
 /** A form as programs and browsers send one, up to a size; null for anything else. */
-export async function formOf(request: Request): Promise<FormData | null> {
+export async function formOf(request: Request, maxBytes: number = MAX_FORM_BYTES): Promise<FormData | null> {
   const type = request.headers.get('content-type') ?? '';
   if (!/^(application\/x-www-form-urlencoded|multipart\/form-data)\s*(;|$)/i.test(type)) return null;
-  const bytes = await readUpTo(request.body, MAX_FORM_BYTES);
+  const bytes = await readUpTo(request.body, maxBytes);
   if (bytes === null) return null;
   try {
     return await new Response(bytes, { headers: { 'content-type': type } }).formData();
