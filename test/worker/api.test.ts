@@ -141,10 +141,12 @@ describe('/healthz', () => {
     });
   });
 
-  test('is 503 when the schema is another or the database is gone', async () => {
+  test('is 503 when the tables are older than the code or the database is gone; after a roll-back older code reads newer tables', async () => {
     const services = house.services();
-    await env.DB.prepare(`UPDATE meta SET value = '99' WHERE key = 'schema'`).run();
+    await env.DB.prepare(`UPDATE meta SET value = '1' WHERE key = 'schema'`).run();
     expect((await app(services).request('/healthz')).status).toBe(503);
+    await env.DB.prepare(`UPDATE meta SET value = '9999' WHERE key = 'schema'`).run();
+    expect((await app(services).request('/healthz')).status).toBe(200);
     await env.DB.prepare(`UPDATE meta SET value = ? WHERE key = 'schema'`).bind(String(SCHEMA_VERSION)).run();
     house.options = { ...house.options, around: () => ({ prepare: () => { throw new Error('Network connection lost.'); }, batch: () => Promise.reject(new Error('Network connection lost.')) }) };
     expect((await app(house.services()).request('/healthz')).status).toBe(503);

@@ -1,7 +1,8 @@
 import { MINUTE_MS } from '../../lib/time.ts';
 import type { Services } from '../service-set.ts';
-import { SCHEMA_VERSION, type MetaKey } from '../store/meta.ts';
+import { schemaProblem, type MetaKey } from '../store/meta.ts';
 import { planAbsent } from './absent.ts';
+import { planAhead } from './ahead.ts';
 import { BOARD_MINUTE, planBoard } from './board.ts';
 import { tryCanary } from './canary.ts';
 import { setBack } from './clock-back.ts';
@@ -27,9 +28,8 @@ const GAP_MS = 5 * MINUTE_MS;
 export async function tick(services: Services, scheduledAtMs: number, patience: Patience = USUAL_PATIENCE): Promise<void> {
   const { stores, clock } = services;
   const meta = await stores.meta.all();
-  if (Number(meta.get('schema')) !== SCHEMA_VERSION) {
-    throw new Error(`the database has schema ${meta.get('schema') ?? 'none'}, this code needs ${SCHEMA_VERSION}: apply the migrations`);
-  }
+  const problem = schemaProblem(meta.get('schema'));
+  if (problem !== null) throw new Error(problem);
   const nowMs = clock.nowMs();
   if (await setBack(services, nowMs, Number(meta.get('last-tick') ?? 0))) return tick(services, scheduledAtMs, patience);
   if (!(await stores.run.beginTick(scheduledAtMs, nowMs))) return;
@@ -38,6 +38,7 @@ export async function tick(services: Services, scheduledAtMs: number, patience: 
     await stores.log.write([{ level: 'warning', step: 'tick', event: 'ticks-absent', detail: { minutes: Math.round((nowMs - lastTickMs) / MINUTE_MS) } }], nowMs);
   }
   await planDue(services, nowMs, patience);
+  await sideStep(services, 'ahead', () => planAhead(services, nowMs));
   const isBoardMinute = new Date(scheduledAtMs).getUTCMinutes() === BOARD_MINUTE;
   if (isBoardMinute) await planBoard(services, nowMs);
   const lastMs = (key: MetaKey): number => Number(meta.get(key) ?? 0);

@@ -2,7 +2,7 @@ import { HOUR_MS } from '../../lib/time.ts';
 import { canaryNotes } from '../morning/canary.ts';
 import { imbalances } from '../morning/heartbeat.ts';
 import type { Services } from '../service-set.ts';
-import { SCHEMA_VERSION, type MetaKey } from '../store/meta.ts';
+import { schemaProblem, type MetaKey } from '../store/meta.ts';
 import { json, problem } from './problem.ts';
 
 /** A cron that has not come for so long is worth a look. */
@@ -23,9 +23,8 @@ export async function health(services: Pick<Services, 'stores' | 'clock' | 'sett
   } catch {
     return problem('unusable', { detail: 'the database does not answer, or has no tables' });
   }
-  if (Number(meta.get('schema')) !== SCHEMA_VERSION) {
-    return problem('unusable', { detail: `the database has schema ${meta.get('schema') ?? 'none'}, this code needs ${SCHEMA_VERSION}: apply the migrations` });
-  }
+  const unfit = schemaProblem(meta.get('schema'));
+  if (unfit !== null) return problem('unusable', { detail: unfit });
   const [outbox, work, ages, errors, books] = await Promise.all([stores.outboxUpkeep.counts(), stores.run.openCounts(), stores.forecast.ages(), stores.log.newest(10), stores.absence.books(nowMs)]);
   const lastAt = (step: (typeof STEPS)[number]): number | null => {
     const key: MetaKey = `last-${step}`;

@@ -30,3 +30,7 @@ test('they are what a remote database can take: no trigger, no carriage return',
     expect(text, name).not.toMatch(/\r|CREATE\s+(TEMP\s+)?TRIGGER|BEGIN\b/i);
   }
 });
+
+test('they only add: code that is rolled back finds every table and column that it knows', () => {
+  for (const name of files) expect(readFileSync(path.join(folder, name), 'utf8'), name).not.toMatch(/DROP\s+(TABLE|COLUMN)|RENAME\s+(TO|COLUMN)/i);
+});
