@@ -9,7 +9,7 @@ import { createMetNorway } from './met-norway/met-norway.ts';
 import { createNws } from './nws/nws.ts';
 import { originWithKey } from './open-meteo/address.ts';
 import { createOpenMeteo } from './open-meteo/open-meteo.ts';
-import { FREE_QUOTA } from './quota.ts';
+import { FREE_QUOTA, schedule } from './quota.ts';
 import type { Outside } from './safe-fetch.ts';
 import type { Report, Source } from './source.ts';
 import { sourcesFor, standBysFor, type OpenMeteoSource, type SourceEntry, type SourceOrder } from '../../lib/config/source-order.ts';
@@ -69,6 +69,13 @@ export function liveSources(order: SourceOrder, settings: SourceSettings, world:
 /** The free addresses of the Open-Meteo interface count what they are asked; an own server or one for customers does not. */
 function quotaOf(origin: string): SharedQuota | null {
   return /^https:\/\/(?:ensemble-)?api\.open-meteo\.com$/.test(origin) ? { name: 'quota:open-meteo', quota: FREE_QUOTA } : null;
+}
+
+/** How long questions of these weights take from now on, one after the other, each where the free quota has room for it. */
+export function takesMs(weights: readonly number[], nowMs: number): number {
+  const gapMs = 2000;
+  const planned = schedule(weights.map((weight) => ({ weight })), { fromMs: nowMs, quota: FREE_QUOTA, gapMs });
+  return (planned.at(-1)?.atMs ?? nowMs - gapMs) + gapMs - nowMs;
 }
 
 /** The entries to ask, the companions behind the last deterministic one that needs them. */

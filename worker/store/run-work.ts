@@ -76,14 +76,14 @@ export function runWorkStore(db: Database) {
       };
     },
     /**
-     * Ends fetches with what came of them. One that is told when to ask again stays wanted until then, if somebody still
-     * waits for it by then; what came of it stands meanwhile. One that failed on the way leaves in place what an earlier
+     * Ends fetches with what came of them. One that is told when to ask again stays wanted until then, if it is not due
+     * before or somebody still waits for it by then; what came of it stands meanwhile. One that failed on the way leaves in place what an earlier
      * fetch of the same day has brought: its age speaks for itself.
      */
     finishFetches(ended: readonly EndedFetch[], nowMs: number): Statement {
       const list = ended.map(({ key, outcome, askAgainMs = null, keepsLast = false }) => ({ key, outcome: JSON.stringify(outcome), askAgainMs, keepsLast }));
-      const isAwaited = `(j.again IS NOT NULL AND EXISTS (SELECT 1 FROM run AS a WHERE a.step = 'assess' AND a.state = 'wanted'
-        AND a.site_id = run.site_id AND a.local_date = run.local_date AND a.start_by > j.again))`;
+      const isAwaited = `(j.again IS NOT NULL AND (run.due_at > j.again OR EXISTS (SELECT 1 FROM run AS a WHERE a.step = 'assess' AND a.state = 'wanted'
+        AND a.site_id = run.site_id AND a.local_date = run.local_date AND a.start_by > j.again)))`;
       const stands = `(j.keeps AND run.outcome ->> 'ok' = 1)`;
       return {
         sql: `UPDATE run SET outcome = CASE WHEN ${stands} THEN run.outcome ELSE j.outcome END,
