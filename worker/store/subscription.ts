@@ -133,10 +133,11 @@ export function subscriptionStore(db: Database) {
     /** Sets the next morning of everyone in a group. */
     advance(groups: readonly (DueGroup & { readonly followingAtMs: number })[]): Statement {
       return {
-        sql: `UPDATE subscription SET next_due_at = g.following FROM (
-            SELECT value ->> 'timeZone' AS zone, value ->> 'deliverMinute' AS minute, value ->> 'nextDueAtMs' AS due, value ->> 'days' AS days,
-              value ->> 'followingAtMs' AS following FROM json_each(?)) AS g
-          WHERE subscription.state = 'active' AND time_zone = g.zone AND deliver_minute = g.minute AND next_due_at = g.due AND subscription.days = g.days`,
+        sql: `WITH g AS MATERIALIZED (SELECT value ->> 'timeZone' AS zone, value ->> 'deliverMinute' AS minute, value ->> 'nextDueAtMs' AS due,
+            value ->> 'days' AS days, value ->> 'followingAtMs' AS following FROM json_each(?))
+          UPDATE subscription SET next_due_at = COALESCE((SELECT following FROM g
+            WHERE g.due = next_due_at AND g.zone = time_zone AND g.minute = deliver_minute AND g.days = subscription.days), next_due_at)
+          WHERE state = 'active' AND next_due_at IN (SELECT due FROM g)`,
         values: [JSON.stringify(groups)],
       };
     },
