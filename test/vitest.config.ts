@@ -44,8 +44,8 @@ export default defineConfig({
               bindings: { TEST_MIGRATIONS: await readD1Migrations(path.join(root, 'worker/store/migrations')) },
               // A closed world: a worker test that wants an answer from outside replaces fetch itself.
               outboundService: (request: Request) => new Response(`blocked ${request.url}`, { status: 599 }),
-              // Both workers are one here.
-              serviceBindings: { DESK: () => new Response('there is no desk of its own here', { status: 599 }) },
+              // The three workers are one here.
+              serviceBindings: Object.fromEntries(['DESK', 'OPERATOR'].map((name) => [name, () => new Response('there is no desk of its own here', { status: 599 })])),
             },
           })),
         ],

@@ -1,15 +1,16 @@
 import { doors } from './doors.ts';
-import { isForDesk } from './routes/desk-paths.ts';
+import { deskOf } from './routes/desk-paths.ts';
 import { frontApp } from './routes/front.ts';
 import { problem } from './routes/problem.ts';
 
 const front = doors(frontApp);
 
-/** The worker of the morning: makes the briefs, sends them, shows them. What people hand in goes on to the desk, a worker of its own. */
+/** The worker of the morning: makes the briefs, sends them, shows them. What people hand in goes on to the desk, what the operator does to a third. */
 export default {
   ...front,
   async fetch(request, env, context) {
-    if (!isForDesk(new URL(request.url).pathname)) return front.fetch(request, env, context);
-    return env.DESK === undefined ? problem('unusable', { detail: 'no desk is bound: deploy it, and bind it as DESK' }) : env.DESK.fetch(request);
+    const desk = deskOf(new URL(request.url).pathname);
+    if (desk === null) return front.fetch(request, env, context);
+    return env[desk]?.fetch(request) ?? problem('unusable', { detail: `nothing is bound as ${desk}: deploy worker/${desk.toLowerCase()}.toml, and bind it` });
   },
 } satisfies typeof front;

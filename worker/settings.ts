@@ -8,8 +8,9 @@ import type { MailBinding } from './security/mailer.ts';
 export interface Env {
   readonly DB: D1Database;
   readonly ASSETS?: Fetcher;
-  /** The worker of the desk, where it is one of its own. */
+  /** The workers of the desk and of the operator, where they are their own. */
   readonly DESK?: Fetcher;
+  readonly OPERATOR?: Fetcher;
   readonly FETCH_QUEUE: Queue<Job>;
   readonly ASSESS_QUEUE: Queue<Job>;
   readonly DELIVER_QUEUE: Queue<Job>;

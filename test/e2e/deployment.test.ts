@@ -1,15 +1,16 @@
-// The way of README, "Running it for real", walked from nothing to the first brief: the worker of the morning and the worker
-// of the desk, each built as wrangler builds it, bound to each other in the local runtime, tables made by the migrations,
-// secrets made as the deploy command makes them. (On one machine both are one worker: every other test drives that.)
+// The way of README, "Running it for real", walked from nothing to the first brief: the worker of the morning and those
+// of the desk and the operator, each built as wrangler builds it, bound to each other in the local runtime, tables made by the migrations,
+// secrets made as the deploy command makes them. (On one machine they are one worker: every other test drives that.)
 import { mkdtempSync, readdirSync, readFileSync, rmSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import path from 'node:path';
 import { gzipSync } from 'node:zlib';
 import { convertV4MiniflareOptions, Miniflare } from 'miniflare';
 import { afterAll, beforeAll, expect, test } from 'vitest';
-import { isForDesk } from '../../worker/routes/desk-paths.ts';
+import { deskOf } from '../../worker/routes/desk-paths.ts';
 import { DESK_METHODS } from '../../worker/routes/desk.ts';
 import { FRONT_METHODS } from '../../worker/routes/front.ts';
+import { OPERATOR_METHODS } from '../../worker/routes/operator-desk.ts';
 import { secretsIn } from '../../worker/local/state.ts';
 import { wrangler } from '../../worker/local/wrangler.ts';
 import { startForecastServer, type ForecastServer } from '../support/forecast-server/server.ts';
@@ -21,7 +22,7 @@ const MOST_KB = 150;
 
 const LOCAL_TOKEN = 'a-token-of-this-start-for-tests-only-01';
 
-const folder = mkdtempSync(path.join(tmpdir(), 'dawnmargin-two-'));
+const folder = mkdtempSync(path.join(tmpdir(), 'dawnmargin-three-'));
 let built: readonly string[];
 let runtime: Miniflare;
 let services: ForecastServer;
@@ -38,7 +39,7 @@ async function bundle(name: string, config: string): Promise<string> {
 }
 
 beforeAll(async () => {
-  built = [await bundle('morning', 'wrangler.toml'), await bundle('desk', 'worker/desk.toml')];
+  built = [await bundle('morning', 'wrangler.toml'), await bundle('desk', 'worker/desk.toml'), await bundle('operator', 'worker/operator.toml')];
   [services, hook] = [await startForecastServer(), await startWebhookSink()];
   hook.behave(({ body }) => echo(body));
   const { secrets, newOperatorToken } = secretsIn(folder);
@@ -57,8 +58,9 @@ beforeAll(async () => {
   const module = (contents: string | undefined) => [{ type: 'ESModule' as const, path: 'index.js', contents: contents ?? '' }];
   runtime = new Miniflare(convertV4MiniflareOptions({
     workers: [
-      { ...shared, name: 'dawnmargin', queueConsumers: { fetch: consumer, assess: consumer, deliver: consumer }, modules: module(built[0]), serviceBindings: { DESK: 'dawnmargin-desk' } },
+      { ...shared, name: 'dawnmargin', queueConsumers: { fetch: consumer, assess: consumer, deliver: consumer }, modules: module(built[0]), serviceBindings: { DESK: 'dawnmargin-desk', OPERATOR: 'dawnmargin-operator' } },
       { ...shared, name: 'dawnmargin-desk', modules: module(built[1]) },
+      { ...shared, name: 'dawnmargin-operator', modules: module(built[2]) },
     ],
   }));
   await runtime.ready;
@@ -83,14 +85,15 @@ function echo(body: string): Behaviour {
 
 const ask = (url: string, init: { method?: string; headers?: Record<string, string>; body?: string } = {}) => runtime.dispatchFetch(`https://dawnmargin.example${url}`, init);
 
-test('each of the two stays under 150 kB of gzip', () => {
+test('each of the three stays under 150 kB of gzip', () => {
   expect(built.map((code) => gzipSync(code, { level: 9 }).length / 1000).filter((weightKb) => weightKb > MOST_KB)).toEqual([]);
 });
 
 test('each path is answered by the worker that knows it', () => {
   const example = (pattern: string): string => pattern.replaceAll(/:\w+/g, 'x');
-  expect(Object.keys(DESK_METHODS).map(example).filter((url) => !isForDesk(url))).toEqual([]);
-  expect(Object.keys(FRONT_METHODS).map(example).filter(isForDesk)).toEqual([]);
+  expect(Object.keys(DESK_METHODS).map(example).filter((url) => deskOf(url) !== 'DESK')).toEqual([]);
+  expect(Object.keys(OPERATOR_METHODS).map(example).filter((url) => deskOf(url) !== 'OPERATOR')).toEqual([]);
+  expect(Object.keys(FRONT_METHODS).map(example).filter((url) => deskOf(url) !== null)).toEqual([]);
 });
 
 test('what is read comes from the worker of the morning', async () => {

@@ -1,4 +1,4 @@
-// npm run deploy [-- --for-real]: both workers into the account that wrangler is logged in to. Without --for-real nothing is
+// npm run deploy [-- --for-real]: the three workers into the account that wrangler is logged in to. Without --for-real nothing is
 // sent: both are built, and what would be done is said. Exit 2 when a setting is missing, 1 when a step fails.
 import { mkdirSync, readFileSync, writeFileSync } from 'node:fs';
 import path from 'node:path';
@@ -29,7 +29,7 @@ async function take({ does, args, unless }: Step): Promise<string> {
   return run.output();
 }
 
-/** The account's database, its id written into both configurations, where it stays. */
+/** The account's database, its id written into the configurations, where it stays. */
 async function database(): Promise<void> {
   const files = Object.values(WORKERS).map((name) => path.join(root, name));
   if (files.every((file) => !readFileSync(file, 'utf8').includes(NO_DATABASE))) return;

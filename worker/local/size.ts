@@ -51,5 +51,5 @@ async function weigh(name: string, config: string): Promise<boolean> {
   }
 }
 
-const fits = [await weigh('morning', 'wrangler.toml'), await weigh('desk', 'worker/desk.toml')];
+const fits = [await weigh('morning', 'wrangler.toml'), await weigh('desk', 'worker/desk.toml'), await weigh('operator', 'worker/operator.toml')];
 if (fits.includes(false)) process.exitCode = 1;

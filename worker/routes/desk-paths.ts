@@ -1,7 +1,8 @@
-/** What the paths of the desk begin with. */
-const DESK = /^\/(?:sites\/[^/]*\/what-if|plan|subscribe|confirm|manage|unsubscribe|operator|api\/v1\/(?:plan|bounces|operator|subscriptions|manage|assess|push))(?:\/|$)/;
+/** What the paths of the desk, and those of the operator, begin with. */
+const DESK = /^\/(?:sites\/[^/]*\/what-if|plan|subscribe|confirm|manage|unsubscribe|api\/v1\/(?:plan|bounces|subscriptions|manage|assess|push))(?:\/|$)/;
+const OPERATOR = /^\/(?:operator|api\/v1\/operator)(?:\/|$)/;
 
-/** Whether the worker of the morning hands a request on. */
-export function isForDesk(path: string): boolean {
-  return DESK.test(path);
+/** To whom the worker of the morning hands a request on, by the name of the binding; null when it answers itself. */
+export function deskOf(path: string): 'DESK' | 'OPERATOR' | null {
+  return OPERATOR.test(path) ? 'OPERATOR' : DESK.test(path) ? 'DESK' : null;
 }

@@ -6,8 +6,6 @@ import { assess } from './assess.ts';
 import { bounce } from './bounces.ts';
 import { closing } from './closing.ts';
 import { manageApi } from './manage.ts';
-import { operator } from './operator.ts';
-import { operatorPages } from './operator-pages.ts';
 import { planApi, planPages } from './plan.ts';
 import { pushApi } from './push.ts';
 import { pushShown } from './shown.ts';
@@ -24,18 +22,6 @@ export const DESK_METHODS: Readonly<Record<string, string>> = {
   '/manage/:token': 'GET, HEAD, POST',
   '/subscribe': 'GET, HEAD, POST',
   '/subscribe/sent': 'GET, HEAD',
-  '/operator': 'GET, HEAD',
-  '/operator/sign-in': 'GET, HEAD, POST',
-  '/operator/sign-out': 'POST',
-  '/operator/board': 'POST',
-  '/operator/import': 'GET, HEAD, POST',
-  '/operator/new/launch': 'GET, HEAD, POST',
-  '/operator/new/strip': 'GET, HEAD, POST',
-  '/operator/sites/:id': 'GET, HEAD, POST',
-  '/operator/sites/:id/rehearse': 'GET, HEAD',
-  '/operator/sheets': 'GET, HEAD',
-  '/operator/sheets/:id': 'GET, HEAD, POST',
-  '/operator/status': 'GET, HEAD',
   '/unsubscribe/:token': 'GET, HEAD, POST',
   '/api/v1/subscriptions': 'POST',
   '/api/v1/subscriptions/confirm-push': 'POST',
@@ -43,12 +29,6 @@ export const DESK_METHODS: Readonly<Record<string, string>> = {
   '/api/v1/push/key': 'GET, HEAD',
   '/api/v1/push/shown': 'POST',
   '/api/v1/bounces': 'POST',
-  '/api/v1/operator/sites': 'GET, HEAD, PUT',
-  '/api/v1/operator/sheets': 'GET, HEAD',
-  '/api/v1/operator/sheets/:id': 'GET, HEAD, PUT',
-  '/api/v1/operator/published': 'GET, HEAD, PUT',
-  '/api/v1/operator/forget': 'POST',
-  '/api/v1/operator/bounce-secret': 'GET, HEAD',
   '/api/v1/manage/:token': 'GET, HEAD, PUT, POST, DELETE',
   '/api/v1/assess': 'POST',
   '/api/v1/plan': 'POST',
@@ -58,14 +38,12 @@ export function deskRoutes(hono: Hono, services: DeskServices): void {
   hono.route('/api/v1/plan', planApi(planServices(services)));
   hono.post('/api/v1/assess', (c) => assess(services, c));
   hono.post('/api/v1/bounces', (c) => bounce(services, c.req.raw));
-  hono.route('/api/v1/operator', operator(services));
   hono.route('/api/v1/subscriptions', subscriptions(services));
   hono.post('/api/v1/push/shown', (c) => pushShown(services, c));
   hono.route('/api/v1/push', pushApi(services));
   hono.route('/api/v1/manage', manageApi(services));
   hono.get('/sites/:id/what-if', (c) => whatIf(whatIfServices(services), c));
   hono.route('/plan', planPages(planServices(services)));
-  hono.route('/operator', operatorPages(services));
   hono.route('/', subscriberPages(services));
 }
 

@@ -1,4 +1,4 @@
-/** What is done, in which order, to bring both workers of this version into an account. Pure: the commands as words. */
+/** What is done, in which order, to bring the workers of this version into an account. Pure: the commands as words. */
 
 export interface Step {
   /** For people, in the imperative. */
@@ -9,19 +9,19 @@ export interface Step {
   readonly unless?: RegExp;
 }
 
-export const WORKERS = { morning: 'wrangler.toml', desk: 'worker/desk.toml' } as const;
+export const WORKERS = { morning: 'wrangler.toml', desk: 'worker/desk.toml', operator: 'worker/operator.toml' } as const;
 
 const QUEUES = ['fetch', 'assess', 'deliver', 'dead'];
-/** The id that stands in both files until an account has given its own. */
+/** The id that stands in their files until an account has given its own. */
 export const NO_DATABASE = '00000000-0000-0000-0000-000000000000';
 
-/** Weighs both; needs no account. */
+/** Weighs them; needs no account. */
 export function rehearsalSteps(): Step[] {
   return Object.entries(WORKERS).map(([name, config]) => ({ does: `build the worker of the ${name}, without sending it`, args: ['deploy', '--config', config, '--dry-run'] }));
 }
 
 /**
- * The tables come before the code that reads them, and the desk before the worker that is bound to it. Every step may be
+ * The tables come before the code that reads them, and the desks before the worker that is bound to them. Every step may be
  * done again: what is there already is left as it is.
  */
 export function deploySteps(secretsFile: string): Step[] {
@@ -30,6 +30,8 @@ export function deploySteps(secretsFile: string): Step[] {
     { does: 'bring the tables up to date', args: ['d1', 'migrations', 'apply', 'DB', '--remote', '--config', WORKERS.morning] },
     { does: 'send the desk', args: ['deploy', '--config', WORKERS.desk] },
     { does: 'give the desk its secrets', args: ['secret', 'bulk', secretsFile, '--config', WORKERS.desk] },
+    { does: 'send the worker of the operator', args: ['deploy', '--config', WORKERS.operator] },
+    { does: 'give the worker of the operator its secrets', args: ['secret', 'bulk', secretsFile, '--config', WORKERS.operator] },
     { does: 'send the worker of the morning', args: ['deploy', '--config', WORKERS.morning] },
     { does: 'give the worker of the morning its secrets', args: ['secret', 'bulk', secretsFile, '--config', WORKERS.morning] },
   ];
