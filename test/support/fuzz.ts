@@ -199,7 +199,7 @@ function spoil(random: () => number, value: unknown): void {
   if (places.length === 0) return;
   const [node, key] = pick(random, places);
   const how = random();
-  const junk = random() < 0.5 ? pick(random, JUNK) : Math.floor(random() * 1000 - 300) / pick(random, [1, 3, 100]);
+  const junk = random() < 0.5 ? structuredClone(pick(random, JUNK)) : Math.floor(random() * 1000 - 300) / pick(random, [1, 3, 100]);
   if (how < 0.2) delete node[key];
   else if (how < 0.35) Object.defineProperty(node, pick(random, KEYS), { value: junk, enumerable: true, configurable: true, writable: true });
   else if (how < 0.45 && Array.isArray(node)) node.push(...Array.from({ length: 1 + Math.floor(random() * 60) }, () => structuredClone(node[0])));

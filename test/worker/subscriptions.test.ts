@@ -250,14 +250,16 @@ describe('a webhook instead of mail', () => {
 
 const ZONES = ['Europe/Vienna', 'Europe/London', 'America/New_York', 'America/Los_Angeles', 'America/St_Johns', 'America/Santiago', 'Africa/Casablanca', 'Asia/Kathmandu', 'Asia/Tokyo', 'Australia/Lord_Howe', 'Australia/Adelaide', 'Pacific/Auckland'];
 
-test('twelve zones, both clock changes: one brief a wanted day, none in quiet hours, then no trace', async () => {
+// test/e2e/journey.test.ts goes the whole way at each zone's own changes; here the runtime's own clocks and database count.
+test('zones and clock changes in workerd: one brief a wanted day, none in quiet hours, then no trace', async () => {
   // Not one zone changes its clocks on all of these days; each does on some, or never.
   const spans = ['2027-03-13T00:00:00Z', '2027-03-27T00:00:00Z', '2027-04-03T00:00:00Z', '2027-09-04T00:00:00Z', '2027-09-25T00:00:00Z', '2027-10-02T00:00:00Z', '2027-10-30T00:00:00Z', '2027-11-06T00:00:00Z'];
   const isWhole = process.env['PROVE'] !== undefined;
   const stepMinutes = isWhole ? 15 : 30;
-  for (const from of isWhole ? spans : [spans[1]!, spans[6]!]) {
+  const zones = isWhole ? ZONES : ['Europe/Vienna', 'America/St_Johns', 'Asia/Kathmandu', 'Australia/Lord_Howe'];
+  for (const from of isWhole ? spans : [spans[1]!]) {
     house = await newPostHouse({ nowIso: from });
-    for (const [at, timeZone] of ZONES.entries()) {
+    for (const [at, timeZone] of zones.entries()) {
       const address = `p${at}@mail.example.org`;
       await house.ask('POST', POST, wish({ deliver: { at: '02:30', timeZone }, channels: [{ kind: 'mail', address, ...(at % 3 === 0 ? { quiet: { from: '22:00', to: '04:15' } } : {}) }] }));
       await house.answerAll();
@@ -270,7 +272,7 @@ test('twelve zones, both clock changes: one brief a wanted day, none in quiet ho
       await house.minute();
       house.nowMs += stepMinutes * 60_000;
     }
-    for (const [at, timeZone] of ZONES.entries()) {
+    for (const [at, timeZone] of zones.entries()) {
       const local = times.filter(({ to }) => to.startsWith(`p${at}@`)).map(({ atMs }) => new Intl.DateTimeFormat('sv', { timeZone, dateStyle: 'short', timeStyle: 'short' }).format(atMs));
       expect(new Set(local.map((text) => text.slice(0, 10))).size, `${timeZone} ${from} ${local}`).toBe(local.length);
       expect(local.length, `${timeZone} ${from} ${local}`).toBe(3);

@@ -98,7 +98,7 @@ export function subscriptionStore(db: Database) {
     renewLinks(id: string, version: number): Statement {
       return { sql: 'UPDATE subscription SET link_version = ?2 + 1 WHERE id = ?1 AND link_version = ?2', values: [id, version] };
     },
-    /** Everything that was kept of somebody, at once. Briefs stay: they are of a site and name nobody. */
+    /** Everything that was kept of somebody, at once. Briefs stay, but for those of a wing with figures of their own: the others are of a site and name nobody. */
     erase(id: string): Statement[] {
       return [
         { sql: 'DELETE FROM token WHERE subject = ?1 OR subject IN (SELECT id FROM channel WHERE subscription_id = ?1)', values: [id] },
@@ -106,7 +106,9 @@ export function subscriptionStore(db: Database) {
         { sql: 'UPDATE plan SET subscription_id = NULL WHERE subscription_id = ?', values: [id] },
         { sql: 'DELETE FROM signup WHERE id = ?1 OR owner = (SELECT owner FROM subscription WHERE id = ?1)', values: [id] },
         { sql: 'DELETE FROM subscription WHERE id = ?', values: [id] },
-        { sql: `DELETE FROM wing WHERE key LIKE 'own-%' AND key NOT IN (SELECT wing_key FROM subscription_site) AND key NOT IN (SELECT wing_key FROM published)`, values: [] },
+        ...[['wing', 'key'], ['brief', 'wing_key'], ['run', 'wing_key']].map(([table, key]) => (
+          { sql: `DELETE FROM ${table} WHERE ${key} >= 'own-' AND ${key} < 'own.' AND ${key} NOT IN (SELECT wing_key FROM subscription_site) AND ${key} NOT IN (SELECT wing_key FROM published)`, values: [] }
+        )),
       ];
     },
     async idOfOwner(owner: string): Promise<string | null> {
