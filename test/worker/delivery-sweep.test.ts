@@ -1,4 +1,5 @@
-// The n-th-operation sweep: a whole morning in which one call fails, for every call there is and in every way it can.
+// The n-th-operation sweep (F31, F32, F34, F42, F43, F54, F64, F72): a whole morning in which one call fails, for every
+// call there is and in every way it can.
 import { env } from 'cloudflare:workers';
 import { beforeEach, describe, expect, test, vi } from 'vitest';
 import { app } from '../../worker/routes/app.ts';

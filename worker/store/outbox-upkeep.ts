@@ -3,8 +3,8 @@ import type { SettledState } from './outbox.ts';
 
 export type OutboxState = 'pending' | SettledState;
 
-/** Rows are kept for ninety days: longer than any message can come back, and long enough to answer for it. */
-const KEPT_MS = 90 * 24 * 3_600_000;
+/** A fortnight: as long as a queue may keep a message that comes back, and long enough to answer for it. */
+const KEPT_MS = 14 * 24 * 3_600_000;
 
 /** Looking after the outbox as a whole: what is overdue, how much there is, what may be forgotten. */
 export function outboxUpkeepStore(db: Database) {
