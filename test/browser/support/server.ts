@@ -13,7 +13,7 @@ export interface Served {
 }
 
 /** Headers of a browser that pages go by. */
-const PASSED = ['content-type', 'accept', 'cookie', 'origin', 'authorization', 'sec-fetch-site', 'if-match'] as const;
+const PASSED = ['content-type', 'accept', 'cookie', 'origin', 'authorization', 'sec-fetch-site', 'if-match', 'cf-connecting-ip'] as const;
 
 /** `after`: what is to happen once an answer was given. */
 export async function serve(app: Pick<Hono, 'request'>, { port = 0, after }: { readonly port?: number; readonly after?: () => Promise<void> } = {}): Promise<Served> {

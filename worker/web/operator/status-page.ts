@@ -28,7 +28,7 @@ function moment(iso: string | null): Html {
 
 function table(heads: readonly string[], rows: readonly (readonly Piece[])[], label: string): Html {
   if (rows.length === 0) return html`<p>None.</p>`;
-  return html`<div class="scroll" tabindex="0" role="region" aria-label="${label}"><table><thead><tr>${heads.map((head) => html`<th scope="col">${head}</th>`)}</tr></thead><tbody>${rows.map(([first, ...rest]) => html`<tr><th scope="row">${first ?? null}</th>${rest.map((cell) => html`<td>${cell}</td>`)}</tr>`)}</tbody></table></div>`;
+  return html`<div class="scroll" tabindex="0" role="region" aria-label="${label}, as a table"><table><thead><tr>${heads.map((head) => html`<th scope="col">${head}</th>`)}</tr></thead><tbody>${rows.map(([first, ...rest]) => html`<tr><th scope="row">${first ?? null}</th>${rest.map((cell) => html`<td>${cell}</td>`)}</tr>`)}</tbody></table></div>`;
 }
 
 export function operatorStatusPage(page: StatusPage): string {
