@@ -21,7 +21,8 @@ export default {
       for (let target = left.pop(); target !== undefined; target = left.pop()) {
         const body = await encrypt(text, { p256dh: base64UrlBytes(target.p256dh), auth: base64UrlBytes(target.auth) }, await fresh());
         const authorization = await authorize(new URL(target.endpoint).origin, Date.now());
-        const response = await fetch(target.endpoint, { method: 'POST', body, headers: { authorization, ttl: '60', 'content-encoding': 'aes128gcm' } });
+        const headers = { authorization, 'content-type': 'application/octet-stream', 'content-encoding': 'aes128gcm', ttl: '60', topic: 'a-topic-of-thirty-two-characters', urgency: 'normal' };
+        const response = await fetch(target.endpoint, { method: 'POST', body, headers, redirect: 'manual', signal: AbortSignal.timeout(15_000) });
         await response.body?.cancel();
       }
     }));

@@ -40,9 +40,10 @@ if (tables?.n === 0) {
     await db.batch(text.split(';').filter((statement) => statement.trim() !== '').map((statement) => db.prepare(statement)));
   }
 }
+/** Whether there is anything that nobody else has taken and that may be done now. */
 async function isLeft(step: string): Promise<boolean> {
   const table = step === 'deliver' ? `outbox WHERE state = 'pending'` : `run WHERE state = 'wanted' AND step = '${step}'`;
-  return (await db.prepare(`SELECT 1 AS one FROM ${table} LIMIT 1`).first()) !== null;
+  return (await db.prepare(`SELECT 1 AS one FROM ${table} AND next_attempt_at <= ?1 AND (lease_until IS NULL OR lease_until <= ?1) LIMIT 1`).bind(Date.now()).first()) !== null;
 }
 
 async function consume(step: string): Promise<void> {
