@@ -60,7 +60,7 @@ export function planStore(db: Database) {
     /** The plans of these days that somebody is to be told about. */
     held(localDates: readonly string[]): Promise<(StoredPlan & { readonly subscriptionId: string })[]> {
       const sql = `SELECT ${COLUMNS} FROM plan WHERE local_date IN (SELECT value FROM json_each(?))
-        AND subscription_id IN (SELECT id FROM subscription WHERE state = 'active') ORDER BY id`;
+        AND EXISTS (SELECT 1 FROM subscription AS s WHERE s.id = plan.subscription_id AND s.state = 'active') ORDER BY id`;
       return db.read(sql, JSON.stringify(localDates));
     },
     /** What those subscribers were told of plans of these days, whatever became of it, the oldest first. */

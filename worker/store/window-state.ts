@@ -85,15 +85,16 @@ export function windowStateStore(db: Database) {
         AND b.sheet_version = j.value ->> 'sheetVersion' AND b.revision = j.value ->> 'revision'`;
       return (await db.read<Packed>(sql, JSON.stringify(keys))).map(slim);
     },
-    /** What active subscribers of these pairs were told lately, the oldest first. */
+    /** What active subscribers of these pairs were told lately, the oldest first. Found from the pairs: from the outbox, everybody's rows are read for each handful of sites. */
     async tellings(pairDays: readonly PairDay[], nowMs: number): Promise<TellingRow[]> {
       const sql = `SELECT o.id, o.subscription_id AS subscriptionId, o.due_local_date AS dueLocalDate, o.kind, o.seq, o.state, o.content,
           (SELECT MAX(n.seq) FROM outbox AS n WHERE n.subscription_id = o.subscription_id AND n.due_local_date = o.due_local_date) AS lastSeq,
           (o.lease_until IS NOT NULL AND o.lease_until > ?2) AS isLeased
-        FROM outbox AS o JOIN subscription AS s ON s.id = o.subscription_id AND s.state = 'active'
+        FROM (SELECT DISTINCT p.subscription_id AS id FROM json_each(?1) AS j CROSS JOIN subscription_site AS p
+            ON p.site_id = j.value ->> 'siteId' AND p.wing_key = j.value ->> 'wingKey' AND p.sheet_id = j.value ->> 'sheetId') AS w
+          CROSS JOIN subscription AS s ON s.id = w.id AND s.state = 'active'
+          CROSS JOIN outbox AS o ON o.subscription_id = s.id
         WHERE o.due_at > ?2 - ${TOLD_MS} AND o.due_at <= ?2 AND o.kind IN ('brief', 'change') AND o.state IN ('pending', 'sent')
-          AND EXISTS (SELECT 1 FROM subscription_site AS p WHERE p.subscription_id = s.id AND (p.site_id, p.wing_key, p.sheet_id)
-            IN (SELECT j.value ->> 'siteId', j.value ->> 'wingKey', j.value ->> 'sheetId' FROM json_each(?1) AS j))
         ORDER BY o.subscription_id, o.due_at, o.seq, o.created_at, o.id`;
       const rows = await db.read<Omit<TellingRow, 'isLeased'> & { isLeased: number }>(sql, JSON.stringify(pairDays), nowMs);
       return rows.map((row) => ({ ...row, isLeased: row.isLeased === 1 }));
