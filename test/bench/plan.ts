@@ -1,6 +1,7 @@
-// How the planner grows: random days of growing size, the ways tried and the time of each, medians and worsts printed.
-// Tests count the ways; no test asserts a clock.
+// How the planner grows: random days of growing size, the ways tried and the time of each. Tests count the ways; no test
+// asserts a clock.
 import { bestStays } from '../../lib/plan/best-stays.ts';
+import { say } from './turns.ts';
 import { randomPuzzle, type Size } from '../lib/plan/random-puzzle.ts';
 
 const SIZES: readonly Size[] = [
@@ -29,10 +30,9 @@ export function growth(days: number): readonly { readonly size: Size; readonly n
 }
 
 if (import.meta.main) {
-  const days = Number(process.argv[2] ?? 60);
-  console.log('groups x sites x hours, wish: ways tried (median, 95 %, most); ms (median, 95 %, most); not proven');
-  for (const { size, nodes, ms, unproven } of growth(days)) {
+  const sizes = growth(Number(process.argv[2] ?? 30));
+  for (const { size, nodes, ms, unproven } of sizes) {
     const line = (values: readonly number[], digits: number): string => [0.5, 0.95, 1].map((share) => at(values, share).toFixed(digits)).join(' / ');
-    console.log(`${size.groups} x ${size.sites} x ${size.slots}, ${size.wish} h: ${line(nodes, 0)}; ${line(ms, 1)} ms; ${unproven} of ${days}`);
+    say({ name: `plan of ${size.groups} groups, ${size.sites} sites, ${size.slots} h, ${size.wish} h wished`, says: `ways tried ${line(nodes, 0)}; ${line(ms, 1)} ms (median / 95 % / most); ${unproven} of ${nodes.length} not proven` });
   }
 }

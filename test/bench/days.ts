@@ -1,5 +1,4 @@
-// Judging one site-day against parsing a forecast payload of 150 kB, in one process and in turns: the ratio is what is
-// asserted, because a clock alone says more about the machine than about the code.
+// What the benches judge and what they are held against: days of the demo sites, and a payload of 150 kB like a service's.
 import { readFileSync } from 'node:fs';
 import path from 'node:path';
 import { judgeDay } from '../../lib/brief/judge-day.ts';
@@ -9,16 +8,7 @@ import { inventedForecast } from '../../lib/forecast/invented/forecast.ts';
 
 const file = (name: string): unknown => JSON.parse(readFileSync(path.join(import.meta.dirname, '../../config', `${name}.json`), 'utf8'));
 const NOW = '2027-05-14T04:00:00Z';
-/** Rounds before the count begins: the compiler has settled by then. */
-const WARM_UP = 300;
 const DATE = '2027-05-14';
-
-export interface Ratio {
-  readonly site: string;
-  readonly judgeMs: number;
-  readonly parseMs: number;
-  readonly ratio: number;
-}
 
 /** A payload of 150 kB like a service's: an hourly table of numbers, seeded by arithmetic only. */
 export function calibrationPayload(): string {
@@ -30,7 +20,7 @@ export function calibrationPayload(): string {
   return JSON.stringify({ latitude: 47.25, longitude: 11.38, elevation: 812, hourly: columns });
 }
 
-function dayInputs(): DayInput[] {
+export function dayInputs(): DayInput[] {
   const config = loadConfig({
     sites: file('sites'), sheets: file('sheets'), wingClasses: file('wing-classes'), published: file('published'),
     sources: file('sources'), thresholds: file('thresholds'), subscribers: file('subscribers'), demo: file('demo'),
@@ -46,37 +36,4 @@ function dayInputs(): DayInput[] {
     if (answers.some(({ outcome }) => !outcome.ok)) return [];
     return [{ site, wing: wingClasses['EN B'], wingKey: 'EN B', wingName: 'EN B', sheet, localDate: DATE, issuedAt: NOW, validUntil: '2027-05-14T22:00:00Z', demo: true, thresholds, answers, storedGroundM: {} }];
   });
-}
-
-function median(values: readonly number[]): number {
-  const sorted = [...values].sort((a, b) => a - b);
-  return sorted[Math.floor(sorted.length / 2)] ?? NaN;
-}
-
-/** The median of `rounds` turns of each, parse and judge alternating. */
-export function measureSiteDays(rounds: number): Ratio[] {
-  const payload = calibrationPayload();
-  let kept = 0;
-  return dayInputs().map((input) => {
-    const judge: number[] = [];
-    const parse: number[] = [];
-    for (let round = 0; round < rounds + WARM_UP; round += 1) {
-      const start = performance.now();
-      kept += judgeDay(input).hours.length;
-      const middle = performance.now();
-      kept += Object.keys(JSON.parse(payload) as object).length;
-      const end = performance.now();
-      if (round < WARM_UP) continue;
-      judge.push(middle - start);
-      parse.push(end - middle);
-    }
-    if (kept === 0) throw new Error('nothing was judged');
-    return { site: input.site.id, judgeMs: median(judge), parseMs: median(parse), ratio: median(judge) / median(parse) };
-  });
-}
-
-if (import.meta.main) {
-  for (const { site, judgeMs, parseMs, ratio } of measureSiteDays(200)) {
-    console.log(`${site.padEnd(20)} judged in ${judgeMs.toFixed(2)} ms, 150 kB parsed in ${parseMs.toFixed(2)} ms: ${ratio.toFixed(1)} x`);
-  }
 }
