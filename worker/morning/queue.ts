@@ -20,7 +20,8 @@ function work(services: Services, step: Step): Promise<boolean> {
   switch (step) {
     case 'fetch': return fetchStep(services);
     case 'assess': return assessStep(services);
-    case 'deliver': return confirmStep(services).then(() => deliverStep(services));
+    // Briefs first: however many sign up, a morning does not wait for them.
+    case 'deliver': return deliverStep(services).then(async (wasBusy) => { if (!wasBusy) await confirmStep(services); return wasBusy; });
   }
 }
 

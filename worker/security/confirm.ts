@@ -19,13 +19,16 @@ const MAILS = { most: 300, withinMs: HOUR_MS };
 export async function confirmStep(services: Services): Promise<void> {
   const { stores, mailer, settings, clock } = services;
   await askBrowsers(services);
-  if (mailer === null || settings.linkKey === null) return;
-  for (const signup of await stores.signup.claim(clock.nowMs(), AT_ONCE)) {
-    const isSent = signup.isSuppressed === 1 || (await ask(services, mailer, settings.linkKey, signup));
+  const { linkKey } = settings;
+  // Who signed up after too many others waits for the next hour, in the order of coming.
+  if (mailer === null || linkKey === null || (await stores.rate.isUsedUp('mails', MAILS, clock.nowMs()))) return;
+  const signups = await stores.signup.claim(clock.nowMs(), AT_ONCE);
+  await Promise.all(signups.map(async (signup) => {
+    const isSent = signup.isSuppressed === 1 || (await ask(services, mailer, linkKey, signup));
     const nowMs = clock.nowMs();
     const isDone = isSent && (signup.isSuppressed === 1 || signup.subscriptionId !== null);
     await stores.db.together([isSent ? stores.signup.mailed(signup.owner, nowMs) : stores.signup.postpone(signup.owner, nowMs), ...(isDone ? [stores.signup.blank(signup.owner)] : [])]);
-  }
+  }));
 }
 
 async function ask(services: Services, mailer: Mailer, linkKey: string, signup: SignupToMail): Promise<boolean> {

@@ -17,6 +17,11 @@ export function rateStore(db: Database) {
       );
       return (row?.count ?? 1) > most ? Math.ceil((sinceMs + withinMs - nowMs) / 1000) : 0;
     },
+    /** Whether one more would be one too many; counts nothing. */
+    async isUsedUp(key: string, { most, withinMs }: RateRule, nowMs: number): Promise<boolean> {
+      const [row] = await db.read<{ count: number }>('SELECT count FROM rate WHERE key = ? AND since = ?', key, Math.floor(nowMs / withinMs) * withinMs);
+      return (row?.count ?? 0) >= most;
+    },
     /** No stretch is longer than a day. */
     dropOld(nowMs: number): Statement {
       return { sql: 'DELETE FROM rate WHERE since < ?', values: [nowMs - 24 * 3_600_000] };
