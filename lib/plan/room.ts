@@ -51,7 +51,9 @@ export function roomFor(puzzle: Puzzle, slots: readonly (readonly number[])[]): 
     const staffed = ~bitsWhere(staffLeft, instructors);
     const bySite = (slots[group] ?? []).map((bits, site) => inRuns(bits & staffed & ~(full[site] ?? -1), minHours));
     const any = bySite.reduce((all, bits) => all | bits, 0);
-    return { bySite, staffed, mostHours: any === 0 ? 0 : Math.min(wishHours, count(any)), longest: Math.max(0, ...bySite.map(longestRun)) };
+    const longest = Math.max(0, ...bySite.map(longestRun));
+    // As many stays as its wish has least hours, none of them longer than the longest run.
+    return { bySite, staffed, mostHours: any === 0 ? 0 : Math.min(wishHours, count(any), Math.floor(wishHours / minHours) * longest), longest };
   }
 
   return { capacityLeft, staffLeft, occupy, of };

@@ -1,6 +1,8 @@
+import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { bestStays } from '../../../lib/plan/best-stays.ts';
 import { objectiveOf } from '../../../lib/plan/puzzle.ts';
+import { mostUsed } from '../../../lib/plan/staffed-hours.ts';
 import { bruteForce, isLawful } from './brute-force.ts';
 import { randomPuzzle } from './random-puzzle.ts';
 
@@ -19,6 +21,29 @@ describe('against brute force', () => {
     }
     // The days are of every kind: some place nobody, some everybody.
     for (const count of [0, 1, 2, 3]) expect(placed.get(count) ?? 0, `${count} placed`).toBeGreaterThan(20);
+  });
+});
+
+describe('with too few instructors', () => {
+  test('on 200 random small days, half of those that are needed, it is the same as brute force too', () => {
+    for (let seed = 1001; seed <= 1200; seed += 1) {
+      const { groups, ...rest } = randomPuzzle(seed, { groups: 3, sites: 2, slots: 4, wish: 3 });
+      const needy = groups.map((group, index) => ({ ...group, instructors: 1 + ((seed + index) % 3) }));
+      const puzzle = { ...rest, groups: needy, instructors: Math.ceil(needy.reduce((sum, { instructors }) => sum + instructors, 0) / 2) };
+      const best = bestStays(puzzle);
+      expect(best.objective, `seed ${seed}`).toEqual(bruteForce(puzzle));
+      expect(isLawful(puzzle, best.stays), `seed ${seed}`).toBe(true);
+    }
+  });
+
+  test('what can be used of them is the largest sum of needs that there is', () => {
+    fc.assert(fc.property(fc.array(fc.integer({ min: 0, max: 9 }), { maxLength: 7 }), fc.integer({ min: 0, max: 40 }), (needs, left) => {
+      const sums = Array.from({ length: 2 ** needs.length }, (_, chosen) => needs.reduce((sum, need, index) => sum + ((chosen & (1 << index)) === 0 ? 0 : need), 0));
+      // Above thirty it may say what there is: a bound that is no less than the truth.
+      const truth = Math.max(...sums.filter((sum) => sum <= left));
+      if (left <= 30) expect(mostUsed(needs, left)).toBe(truth);
+      else expect(mostUsed(needs, left)).toBeGreaterThanOrEqual(truth);
+    }));
   });
 });
 
