@@ -45,5 +45,5 @@ for (const entry of order.value.sources.filter(({ provider, id }) => provider ==
     return location === undefined ? answer : forecastOf(entry, site, { location, ask, pressures: () => ({ a: null, b: null }), runAt: '2027-05-14T00:00:00Z', fetchedAt: '2027-05-14T04:00:00Z' });
   });
 }
-await against('MET Norway', metNorway(site, NOW_MS, { groundAtM }), toMetForecast);
+await against('MET Norway', metNorway(site, NOW_MS, { groundAtM }), (json) => toMetForecast(json, NOW_MS));
 await against('National Weather Service', gridAnswer(31, 80, NOW_MS, { groundAtM }), toNwsForecast);

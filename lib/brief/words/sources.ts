@@ -27,7 +27,7 @@ function serviceOf(id: string): Service | undefined {
 /** Models by the name their makers give them; a service with one product needs no second name. */
 const MODELS: Readonly<Record<string, string>> = {
   icon_d2: 'ICON-D2', icon_eu: 'ICON-EU', icon_d2_eps: 'ICON-D2-EPS', icon_eu_eps: 'ICON-EU-EPS', meteofrance_arome_france: 'AROME France', gfs_global: 'GFS',
-  ecmwf_ifs025: 'ECMWF IFS', ecmwf_ifs025_ensemble: 'ECMWF ensemble', ncep_gefs025: 'GEFS', locationforecast: '', gridpoints: '',
+  ecmwf_ifs025: 'ECMWF IFS', ecmwf_ifs: 'ECMWF IFS 9 km', ecmwf_ifs025_ensemble: 'ECMWF ensemble', ncep_gefs025: 'GEFS', locationforecast: '', gridpoints: '',
 };
 
 /** `open-meteo:icon_d2` is "Open-Meteo ICON-D2". */

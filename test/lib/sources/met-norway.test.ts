@@ -23,6 +23,8 @@ function answer(series: unknown[]) {
   return { type: 'Feature', geometry: { type: 'Point', coordinates: [9.1, 60.1, 640] }, properties: { meta: { updated_at: '2027-05-14T01:20:05Z', units }, timeseries: series } };
 }
 
+const nowMs = Date.parse('2027-05-14T02:40:00Z');
+
 const byHand = () =>
   answer([
     entry('2027-05-14T03:00:00Z', 1.5, 3, 0),
@@ -33,7 +35,7 @@ const byHand = () =>
   ]);
 
 test('every number lands where it belongs; where steps are six hours long there is no hour', () => {
-  const read = toMetForecast(byHand());
+  const read = toMetForecast(byHand(), nowMs);
   const common = { gridElevationM: 640, temperature2mC: 7.1, dewPoint2mC: 2.2, seaLevelPressureHpa: 1012.4, lowCloudPct: 12.5 };
   const wind = (speedMps: number) => ({ speedMps, fromDeg: 350.5 });
   expect(read).toEqual({
@@ -52,8 +54,19 @@ test('every number lands where it belongs; where steps are six hours long there 
 
 test('an hour missing in the middle costs the amounts of its neighbours, not the rest', () => {
   const series = byHand().properties.timeseries;
-  const read = toMetForecast(answer([series[0], series[2], series[3]]));
+  const read = toMetForecast(answer([series[0], series[2], series[3]]), nowMs);
   expect(read.ok && read.value.hours.map((hour) => [hour.validAt.slice(11, 13), hour.precipitationMm, hour.wind10m?.speedMps])).toEqual([['03', null, 1.5], ['05', null, 3], ['06', null, 2]]);
+});
+
+// The service's series begins with the hour of the question (recorded answers, reference/forecast-sources, 2).
+test.each([
+  ['when it is under way: what is to come of it counts', '03:00', 0], ['at its last minute', '03:59', 0],
+  ['when it lies ahead: the hour before it is missing', '02:59', null], ['when it is over: the answer is not of this hour', '04:00', null],
+])('the first hour, %s', (_, clock, amountMm) => {
+  const read = toMetForecast(byHand(), Date.parse(`2027-05-14T${clock}:00Z`));
+  const [first, second] = read.ok ? read.value.hours : [];
+  expect([first?.precipitationMm, first?.precipitationProbabilityPct === null]).toEqual([amountMm, amountMm === null]);
+  expect(second?.precipitationMm).toBe(1);
 });
 
 describe('symbols', () => {
@@ -67,11 +80,10 @@ describe('symbols', () => {
 });
 
 describe('faults of content', () => {
-  const nowMs = Date.parse('2027-05-14T02:40:00Z');
   const spoilt = (fault: string) => {
     const clean = metNorway({ latDeg: 60.1, lonDeg: 9.1 }, nowMs, { groundAtM: () => 640 });
     metNorwayFaults[fault]?.(clean);
-    return toMetForecast(clean);
+    return toMetForecast(clean, nowMs);
   };
 
   test('clean, it has 56 hours', () => {
@@ -105,6 +117,6 @@ describe('faults of content', () => {
   });
 
   test.each(['x', null, 5, [], {}, { properties: { timeseries: {} } }, { properties: { timeseries: [5, null, 'x'] }, geometry: { coordinates: [1, 2, 3] } }])('%j is refused', (json) => {
-    expect(toMetForecast(json).ok).toBe(false);
+    expect(toMetForecast(json, nowMs).ok).toBe(false);
   });
 });

@@ -90,7 +90,7 @@ const severity: readonly Verdict[] = ['within', 'close', 'unknown', 'beyond'];
 const declaresOf = (id: string) => order.sources.find((entry) => entry.id === id)!.declares;
 
 test.each<[string, unknown, (json: unknown) => Result<Read, SourceFailure>]>([
-  ['met-norway:locationforecast', shortSeries(), toMetForecast],
+  ['met-norway:locationforecast', shortSeries(), (json) => toMetForecast(json, nowMs)],
   ['nws:gridpoints', gridAnswer(2720, 5208, nowMs, terrain), toNwsForecast],
 ])(`${ROUNDS} spoilt answers of %s`, { timeout: 1_800_000 }, (id, payload, read) => {
   const text = JSON.stringify(payload);

@@ -46,7 +46,7 @@ function missingOn(date: string, source: Forecast, place: { latDeg: number; lonD
 
 describe.skipIf(!isThere)('MET Norway complete, London, 2020-07-20', () => {
   const read = () => {
-    const result = toMetForecast((json('metno_locationforecast_complete_london_2020-07-20.json') as { data: unknown }).data);
+    const result = toMetForecast((json('metno_locationforecast_complete_london_2020-07-20.json') as { data: unknown }).data, Date.parse('2020-07-20T11:20:00Z'));
     if (!result.ok) throw new Error(JSON.stringify(result.error));
     return result.value;
   };
@@ -76,7 +76,7 @@ describe.skipIf(!isThere)('MET Norway complete, London, 2020-07-20', () => {
 
 describe.skipIf(!isThere)('MET Norway compact, Oslo, 2026-02-06', () => {
   test('reads what compact has and misses what it has not', () => {
-    const result = toMetForecast(json('metno_locationforecast_compact_oslo_2026-02-06.json'));
+    const result = toMetForecast(json('metno_locationforecast_compact_oslo_2026-02-06.json'), Date.parse('2026-02-06T21:20:00Z'));
     const value = result.ok ? result.value : null;
     expect(value?.hours).toHaveLength(52);
     expect(value?.hours[1]).toEqual({

@@ -19,10 +19,10 @@ export function createMetNorway(entry: PlainSource, host: Host, world: OneByOneW
     maxSites: MAX_SITES,
     origin: host.origin,
     askPlace: (site, headers) => askCached(host, world.cache, {
-      version: 1,
+      version: 2,
       path: `/weatherapi/locationforecast/2.0/complete?lat=${fourDecimals(site.latDeg)}&lon=${fourDecimals(site.lonDeg)}`,
       headers,
-      read: toMetForecast,
+      read: (json) => toMetForecast(json, host.now()),
       freshMs: HOUR_MS / 2,
       keepMs: 24 * HOUR_MS,
     }),

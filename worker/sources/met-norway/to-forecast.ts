@@ -38,7 +38,8 @@ interface Entry {
   readonly hour: unknown;
 }
 
-export function toMetForecast(json: unknown): Result<PlaceForecast, SourceFailure> {
+/** `nowMs`: when it came. */
+export function toMetForecast(json: unknown, nowMs: number): Result<PlaceForecast, SourceFailure> {
   const properties = fieldOf(json, 'properties');
   const series = listOf(fieldOf(properties, 'timeseries'));
   const coordinates = listOf(fieldOf(fieldOf(json, 'geometry'), 'coordinates'));
@@ -58,7 +59,11 @@ export function toMetForecast(json: unknown): Result<PlaceForecast, SourceFailur
     runAt: updatedMs === null ? null : isoUtc(updatedMs),
     latDeg: numberOf(coordinates[1]),
     lonDeg: numberOf(coordinates[0]),
-    hours: entries.map((entry) => hourOf(entry, { before: byStamp.get(entry.atMs - HOUR_MS), after: byStamp.get(entry.atMs + HOUR_MS) }, groundM)),
+    hours: entries.map((entry, i) => {
+      // The series begins with the hour under way; of the one before it, which is over, nothing is told and nothing is to come.
+      const isUnderWay = i === 0 && entry.atMs <= nowMs && entry.atMs > nowMs - HOUR_MS;
+      return hourOf(entry, { before: isUnderWay ? entry : byStamp.get(entry.atMs - HOUR_MS), after: byStamp.get(entry.atMs + HOUR_MS) }, groundM);
+    }),
   });
 }
 
