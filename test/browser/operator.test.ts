@@ -85,7 +85,7 @@ test.each(LOOKS.map((look) => [lookName(look), look] as const))('a new operator 
   await blank.close();
 });
 
-const api = (path: string, init: RequestInit = {}) => fetch(`${house.origin}/api/v1/operator${path}`, { ...init, headers: { authorization: `Bearer ${OPERATOR_TOKEN}`, 'content-type': 'application/json', ...init.headers } });
+const api = (path: string, { headers = {}, ...init }: { readonly method?: string; readonly body?: string; readonly headers?: Record<string, string> } = {}) => fetch(`${house.origin}/api/v1/operator${path}`, { ...init, headers: { authorization: `Bearer ${OPERATOR_TOKEN}`, 'content-type': 'application/json', ...headers } });
 const featureOf = async (id: string) => ((await (await api('/sites')).json()) as { features: { id: string; properties: Record<string, unknown> }[] }).features.find((feature) => feature.id === id);
 
 describe('sites', () => {

@@ -129,3 +129,25 @@ test('this browser is told: asked on a press, confirmed by the echo of its nonce
   await expect.poll(() => page.locator('#log table').innerText()).toMatch(/test\s+Browser, 127\.0\.0\.1:\d+\s+shown at/);
   await context.close();
 });
+
+test('a browser whose push address has changed says so at its next visit, and is told at the new one once that has confirmed', async () => {
+  const [was, now] = [house.sink.newBrowser().target, house.sink.newBrowser().target];
+  const wish = { sites: [{ id: 'wennet-meadow' }], wing: { class: 'EN B' }, deliver: { at: '05:30', timeZone: 'Europe/Vienna' }, channels: [{ kind: 'push', endpoint: was.endpoint, keys: { p256dh: was.p256dh, auth: was.auth } }] };
+  expect((await fetch(`${house.origin}/api/v1/subscriptions`, { method: 'POST', headers: { 'content-type': 'application/json' }, body: JSON.stringify(wish) })).status).toBe(202);
+  await expect.poll(() => house.sink.pushed.some(({ path }) => was.endpoint.endsWith(path))).toBe(true);
+  house.ask('UPDATE channel SET state = \'active\', ask_at = NULL WHERE target ->> \'endpoint\' = ? RETURNING id', was.endpoint);
+  const { page, context, deliver, settled } = await toldBrowser(browser, `${house.origin}/`);
+  // As the service worker keeps it when the browser tells it of the change and nobody can be reached.
+  await page.evaluate(async ({ old, fresh }) => {
+    const json = ({ endpoint, p256dh, auth }: typeof old) => ({ endpoint, expirationTime: null, keys: { p256dh, auth } });
+    await (await caches.open('dawnmargin-pushes')).put('/push-state/renew', new Response(JSON.stringify({ old: json(old), fresh: json(fresh) })));
+  }, { old: was, fresh: now });
+  await page.reload();
+  await expect.poll(() => house.sink.pushed.some(({ path }) => now.endpoint.endsWith(path))).toBe(true);
+  expect(house.ask('SELECT target ->> \'endpoint\' AS endpoint, state FROM channel WHERE target ->> \'endpoint\' IN (?, ?)', was.endpoint, now.endpoint)).toEqual([{ endpoint: now.endpoint, state: 'unverified' }]);
+  expect(await page.evaluate(async () => (await (await caches.open('dawnmargin-pushes')).match('/push-state/renew')) === undefined)).toBe(true);
+  await deliver(house.sink.decrypt(house.sink.pushed.find(({ path }) => now.endpoint.endsWith(path))!));
+  await settled((list) => expect(list.map(({ title }) => title)).toEqual(['This browser is told from now on']));
+  expect(house.ask('SELECT state FROM channel WHERE target ->> \'endpoint\' = ?', now.endpoint)).toEqual([{ state: 'active' }]);
+  await context.close();
+});

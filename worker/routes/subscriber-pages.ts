@@ -63,7 +63,8 @@ export function subscriberPages(services: DeskServices): Hono {
     return detail === null ? nothing() : managed(services, detail, (await formOf(c.req.raw)) ?? new FormData());
   });
 
-  app.get('/subscribe', async () => shown(await subscribeStart(services)));
+  // The one of these pages that a search may find.
+  app.get('/subscribe', async () => shown(await subscribeStart(services), 200, { 'x-robots-tag': 'all' }));
   app.get('/subscribe/sent', () => shown(page('Please look into your mail', 'A mail with a link goes to the address, at most one a day. Nothing else is sent before you confirm it, within 48 hours.')));
   app.post('/subscribe', async (c) => {
     const form = await formOf(c.req.raw);
