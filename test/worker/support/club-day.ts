@@ -20,6 +20,8 @@ export interface DayCount {
   readonly rowsRead: number;
   readonly rowsWritten: number;
   readonly sends: number;
+  /** How often a site was asked about at its source. */
+  readonly siteFetches: number;
   /** Of the database at the end of the day, with what it began with taken off. */
   readonly storedBytes: number;
   /** The statements that read most, dearest first. */
@@ -120,5 +122,5 @@ export async function clubDay({ sites: siteCount, subscribers: subscriberCount, 
   const lateMin = Math.max(...house.posts.map((post) => (post.atMs % 1_800_000) / 60_000));
   const dearest = [...meter.bySql].map(([sql, counts]) => ({ sql, ...counts })).sort((one, other) => other.rowsRead - one.rowsRead).slice(0, 8);
   const { statements, rowsRead, rowsWritten, sizeBytes } = meter;
-  return { house, count: { invocations, most, messages, statements, rowsRead, rowsWritten, sends: house.posts.length, storedBytes: sizeBytes - sizeBefore, dearest, lateMin } };
+  return { house, count: { invocations, most, messages, statements, rowsRead, rowsWritten, sends: house.posts.length, siteFetches: house.asked.reduce((sum, { sites: of }) => sum + of.length, 0), storedBytes: sizeBytes - sizeBefore, dearest, lateMin } };
 }
