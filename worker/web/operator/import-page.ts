@@ -28,7 +28,7 @@ function planPart({ added, changed, same, retired }: ImportPlan): Html {
 
 export function importPage(page: ImportPage): string {
   const { fieldProblems, plan, text, isWhole } = page;
-  const wrong = fieldProblems.length === 0 ? null : html`<div class="wrong" id="text-wrong" role="alert"><p>Nothing was taken. ${fieldProblems.length === 1 ? 'One thing has' : `${fieldProblems.length} things have`} to be mended first:</p><ul>${fieldProblems.slice(0, 40).map(({ path, value, problem, allowed }) => html`<li><code>${plainText(path, 120)}</code>: ${plainText(problem, 200)} (${plainText(value, 90)}); right would be ${plainText(allowed, 200)}.</li>`)}</ul></div>`;
+  const wrong = fieldProblems.length === 0 ? null : html`<div class="wrong" id="text-wrong" role="alert"><p>Nothing was taken. ${fieldProblems.length === 1 ? 'One thing has' : `${fieldProblems.length} things have`} to be mended first:</p><ul>${fieldProblems.slice(0, 40).map(({ path, value, problem, allowed }) => html`<li><code>${plainText(path, 120)}</code>: ${plainText(problem, 200)}${value === 'missing' ? '' : ` (${plainText(value, 90)})`}; right would be ${plainText(allowed, 200)}.</li>`)}</ul></div>`;
   return operatorPage(page, html`<p>${page.count === 0 ? 'There is no site yet to take out.' : html`<a class="button" href="/operator/sites.geojson" download>Take all ${page.count} sites out as GeoJSON</a>`}</p>
 ${wrong}<form class="steps" method="post" action="/operator/import" enctype="multipart/form-data">${stamped(page.stamp)}<input type="hidden" name="etag" value="${page.etag}">
 ${plan === null ? null : html`${planPart(plan)}<div class="turn"><button class="next" name="to" value="save">Take these in</button></div>`}
