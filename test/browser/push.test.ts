@@ -61,7 +61,7 @@ test('two subscriptions on one device keep their own newest: of each thread the 
   await settled((list) => expect(list.map(({ title }) => title).sort()).toEqual(['Beyond a limit at 1 site', 'Close to a limit at 1 site']));
 });
 
-test('a page left open overnight says expired, and keeps no verdict', async () => {
+test('T36 a page left open overnight says expired, and keeps no verdict', async () => {
   const left = await context.newPage();
   await left.clock.install();
   await left.goto(`${site.origin}/sites/kestrel-edge`);

@@ -134,7 +134,7 @@ describe('the database', () => {
 });
 
 describe('the platform', () => {
-  test('F46: a wake-up call of three days ago finds nothing to do, and what is that old has expired', async () => {
+  test('T29 F46: a wake-up call of three days ago finds nothing to do, and what is that old has expired', async () => {
     const house = await newHouse({ nowIso: six, answer: () => new Response(null, { status: 500 }) });
     await house.seed([ana]);
     await house.minute();

@@ -84,14 +84,14 @@ describe('the calendar', () => {
     expect(text.replaceAll('\r\n', '')).not.toMatch(/[\r\n]/);
   });
 
-  test('lets nothing of a text become structure', () => {
+  test('T27 B31 B32 lets nothing of a text become structure', () => {
     const hostile = 'A;B,C\\D\r\nBEGIN:VEVENT\nX\u0000\u2028"<>&🪁';
     const component = new ICAL.Component(ICAL.parse(`BEGIN:VCALENDAR\r\n${folded(`SUMMARY:${icalText(hostile)}`)}\r\nEND:VCALENDAR`) as unknown as string);
     expect(component.getFirstPropertyValue('summary')).toBe('A;B,C\\D\nBEGIN:VEVENT\nX \u2028"<>&🪁');
     expect(component.getAllSubcomponents()).toHaveLength(0);
   });
 
-  test('folds on the edges of characters', () => {
+  test('B34 folds on the edges of characters', () => {
     const line = `SUMMARY:${'🪁ä'.repeat(60)}`;
     const parts = folded(line).split('\r\n ');
     expect(parts.join('')).toBe(line);
@@ -121,7 +121,7 @@ describe('Atom', () => {
     }
   });
 
-  test('lets nothing of a text become structure', () => {
+  test('T27 B31 B32 lets nothing of a text become structure', () => {
     const hostile = `</title><script>"'&]]>\u0000\ud800`;
     const parsed = new XMLParser().parse(`<a>${xml(hostile)}</a>`) as { a: string };
     expect(parsed.a).toBe(`</title><script>"'&]]>`);
@@ -129,7 +129,7 @@ describe('Atom', () => {
 });
 
 describe('the address', () => {
-  test('answers 304 until something changes', async () => {
+  test('T26 answers 304 until something changes', async () => {
     const first = await get(`/feeds/${token}.ics`);
     const etag = first.headers.get('etag')!;
     expect((await get(`/feeds/${token}.ics`, { 'if-none-match': etag })).status).toBe(304);
@@ -139,7 +139,7 @@ describe('the address', () => {
     expect((await get(`/feeds/${token}.ics`, { 'if-none-match': etag })).status).toBe(200);
   });
 
-  test('is one and the same 404 for whatever is not a token of ours', async () => {
+  test('T25 is one and the same 404 for whatever is not a token of ours', async () => {
     const other = await linkToken(LINK_KEY, { purpose: 'manage', id: 'ana', version: 1 });
     const unknown = await linkToken(LINK_KEY, { purpose: 'feed', id: 'nobody', version: 1 });
     const bodies = new Set<string>();

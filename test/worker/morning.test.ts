@@ -59,7 +59,7 @@ describe('a morning', () => {
     expect(house.posts.map((post) => JSON.parse(post.body).data.days[0].localDate)).toEqual(['2027-05-14', '2027-05-15']);
   });
 
-  test('a tick that fires twice, one after the other or at once, sends once', async () => {
+  test('T28 a tick that fires twice, one after the other or at once, sends once', async () => {
     const house = await newHouse({ nowIso: six });
     await house.seed([ana]);
     await Promise.all([1, 2, 3, 4, 5].map(() => tick(house.services(), house.nowMs)));
@@ -306,7 +306,7 @@ describe('a webhook', () => {
     expect(await stateOf()).toBe('unverified');
   });
 
-  test('is signed with two secrets while one is being changed, and with none that was given up', async () => {
+  test('T18 T34 is signed with two secrets while one is being changed, and with none that was given up', async () => {
     const house = await newHouse({ nowIso: six });
     await house.seed([ana]);
     await env.DB.prepare('UPDATE channel SET secret_version = 3, oldest_secret_version = 2').run();

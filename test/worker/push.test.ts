@@ -80,7 +80,7 @@ describe('VAPID', () => {
   });
 });
 
-describe('where a push may go', () => {
+describe('T21 where a push may go', () => {
   test.each([
     'https://fcm.googleapis.com/fcm/send/abc', 'https://updates.push.services.mozilla.com/wpush/v2/abc', 'https://wns2-par02p.notify.windows.com/w/?token=abc',
     'https://web.push.apple.com/abc', 'https://fcm.googleapis.com:443/x', 'HTTPS://FCM.GOOGLEAPIS.COM/x',

@@ -31,7 +31,7 @@ test('a clean answer is read, packed or not, with or without a byte order mark (
   expect(server.asked).toHaveLength(3);
 });
 
-describe('each fault has its tag, and as many tries as may help', () => {
+describe('T2 each fault has its tag, and as many tries as may help', () => {
   test.each<[string, string, object, number]>([
     ['F1: the connection is reset', 'reset', { kind: 'unreachable' }, 2],
     ['F3: no answer at all', 'hang', { kind: 'timeout', afterMs: 600 }, 2],
@@ -94,7 +94,7 @@ describe('size: 2 MB, counted after unpacking', () => {
   });
 });
 
-describe('who may be asked', () => {
+describe('T2 who may be asked', () => {
   const outside = { fetch, now: Date.now, local: true, bounds: SHORT };
 
   test('F1: a closed port', async () => {
@@ -138,7 +138,7 @@ describe('who may be asked', () => {
   });
 });
 
-test('with the real bounds nothing takes longer than 10 s (F3, F4)', { timeout: 30_000 }, async () => {
+test('T2 with the real bounds nothing takes longer than 10 s (F3, F4)', { timeout: 30_000 }, async () => {
   const asks = ['hang', 'hang-in-body', 'drip'].map(async (mode) => {
     const own = await startForecastServer();
     own.behave('open-meteo', mode);

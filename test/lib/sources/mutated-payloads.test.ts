@@ -107,7 +107,7 @@ describe('the clean days', () => {
   });
 });
 
-test(`${ROUNDS} spoilt answers`, { timeout: 1_800_000 }, () => {
+test(`T1 ${ROUNDS} spoilt answers, none of which may read as within`, { timeout: 1_800_000 }, () => {
   const startedMs = performance.now();
   const random = seeded(SEED);
   const pick = <T>(list: readonly T[]): T => list[Math.floor(random() * list.length)]!;

@@ -56,7 +56,7 @@ test('the quick way to look at every prefix agrees with the slow one', () => {
 /** A hundred thousand texts; a million with DAWNMARGIN_PROVE=1. */
 const DAYS = process.env['DAWNMARGIN_PROVE'] === '1' ? 250_000 : 25_000;
 
-test(`no prefix of a day sentence, block or title of ${DAYS} days is more permissive than the whole`, () => {
+test(`T31 no prefix of a day sentence, block or title of ${DAYS} days is more permissive than the whole`, () => {
   let texts = 0;
   fc.assert(fc.property(days, readers, (day, reader) => {
     for (const text of [daySentence(day, reader), siteBlock(day, reader), briefTitle([day]), siteSentence(day, reader), ...day.windows.map((window) => windowSentence(window, day))]) {
