@@ -4,6 +4,9 @@ import type { Scenario } from '../forecast/invented/scenario.ts';
 import type { LimitSheet } from '../margin/sheet.ts';
 import { failure, success, type Issue, type Result } from '../result.ts';
 import type { Site } from '../site.ts';
+import type { PlanRequest } from '../plan/request.ts';
+import { localDate } from '../time.ts';
+import { parsePlanRequest } from './plan.ts';
 import { parsePublished, type Published } from './published.ts';
 import { parseScenario } from './scenario.ts';
 import { parseSheets } from './sheet.ts';
@@ -24,6 +27,8 @@ export interface ConfigFiles {
   readonly thresholds: unknown;
   readonly subscribers: unknown;
   readonly demo: unknown;
+  /** The worked training day. */
+  readonly planDemo: unknown;
 }
 
 export interface Config {
@@ -35,6 +40,7 @@ export interface Config {
   readonly thresholds: CautionThresholds;
   readonly subscribers: readonly SeedSubscriber[];
   readonly demo: Scenario;
+  readonly planDemo: PlanRequest;
 }
 
 /** `nowMs`: the clock's now, for headings given as magnetic. The path of an issue begins with its file: `$.sheets[2].limits`. */
@@ -48,11 +54,13 @@ export function loadConfig(files: ConfigFiles, context: { readonly nowMs: number
   // What names sites and sheets by id can only be held against those that could be read.
   const published = sites.ok && sheets.ok ? parsePublished(files.published, { sites: sites.value, sheets: sheets.value }, ['published']) : null;
   const subscribers = sites.ok ? parseSubscribers(files.subscribers, sites.value, ['subscribers']) : null;
-  const all = [sites, sheets, wingClasses, sources, thresholds, demo, published, subscribers];
+  const planDemo = sites.ok && sheets.ok
+    ? parsePlanRequest(files.planDemo, { sites: sites.value, sheets: sheets.value, dateAt: ({ timeZone }) => localDate(context.nowMs, timeZone) }, ['planDemo']) : null;
+  const all = [sites, sheets, wingClasses, sources, thresholds, demo, published, subscribers, planDemo];
   const issues = all.flatMap((result) => (result === null || result.ok ? [] : result.error));
-  if (!sites.ok || !sheets.ok || !wingClasses.ok || !sources.ok || !thresholds.ok || !demo.ok || !published?.ok || !subscribers?.ok) return failure(issues);
+  if (!sites.ok || !sheets.ok || !wingClasses.ok || !sources.ok || !thresholds.ok || !demo.ok || !published?.ok || !subscribers?.ok || !planDemo?.ok) return failure(issues);
   return success({
     sites: sites.value, sheets: sheets.value, wingClasses: wingClasses.value, published: published.value,
-    sources: sources.value, thresholds: thresholds.value, subscribers: subscribers.value, demo: demo.value,
+    sources: sources.value, thresholds: thresholds.value, subscribers: subscribers.value, demo: demo.value, planDemo: planDemo.value,
   });
 }

@@ -28,7 +28,7 @@ const hours = () => wholeNumber({ min: 1, max: 24, unit: 'h' });
 const people = (min: number) => wholeNumber({ min, max: 99, unit: 'instructors' });
 const minutes = () => wholeNumber({ min: 0, max: 360, unit: 'min' });
 
-const planSchema = once(() => fields({
+export const planSchema = once(() => fields({
   date: z.nullish(z.string({ error: () => DATE }).check(z.refine(isCalendarDate, { error: () => DATE, params: { problem: 'not a date' } }))),
   instructors: people(0),
   movingMin: z._default(minutes(), 30),

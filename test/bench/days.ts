@@ -23,7 +23,7 @@ export function calibrationPayload(): string {
 export function dayInputs(): DayInput[] {
   const config = loadConfig({
     sites: file('sites'), sheets: file('sheets'), wingClasses: file('wing-classes'), published: file('published'),
-    sources: file('sources'), thresholds: file('thresholds'), subscribers: file('subscribers'), demo: file('demo'),
+    sources: file('sources'), thresholds: file('thresholds'), subscribers: file('subscribers'), demo: file('demo'), planDemo: file('plan-demo'),
   }, { nowMs: Date.parse(NOW) });
   if (!config.ok) throw new Error(config.error.map(({ path, problem }) => `${path}: ${problem}`).join('\n'));
   const { sites, sheets, wingClasses, thresholds, demo } = config.value;

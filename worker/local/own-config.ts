@@ -15,7 +15,7 @@ export interface OwnConfig {
 
 const FILES = {
   sites: 'sites.json', sheets: 'sheets.json', wingClasses: 'wing-classes.json', published: 'published.json',
-  sources: 'sources.json', thresholds: 'thresholds.json', subscribers: 'subscribers.json', demo: 'demo.json',
+  sources: 'sources.json', thresholds: 'thresholds.json', subscribers: 'subscribers.json', demo: 'demo.json', planDemo: 'plan-demo.json',
 } as const;
 
 export function readOwnConfig(nowMs: number): Result<OwnConfig, Issue[]> {

@@ -4,6 +4,7 @@ import { loadConfig, type ConfigFiles } from '../../../lib/config/load.ts';
 import { publishedPairs } from '../../../lib/config/published.ts';
 import { coversPlace, sourcesFor } from '../../../lib/config/source-order.ts';
 import demo from '../../../config/demo.json' with { type: 'json' };
+import planDemo from '../../../config/plan-demo.json' with { type: 'json' };
 import published from '../../../config/published.json' with { type: 'json' };
 import sheets from '../../../config/sheets.json' with { type: 'json' };
 import sites from '../../../config/sites.json' with { type: 'json' };
@@ -13,7 +14,7 @@ import thresholds from '../../../config/thresholds.json' with { type: 'json' };
 import wingClasses from '../../../config/wing-classes.json' with { type: 'json' };
 import { issuesOf, NOW_MS, valueOf, withValue, type Json } from './fixtures.ts';
 
-const files = { demo, published, sheets, sites, sources, subscribers, thresholds, wingClasses };
+const files = { demo, planDemo, published, sheets, sites, sources, subscribers, thresholds, wingClasses };
 const config = valueOf(loadConfig(files, { nowMs: NOW_MS }));
 
 /** Paths of what is wrong when one value of one file is replaced. */
@@ -37,6 +38,19 @@ describe('the shipped configuration', () => {
     const result = loadConfig({ ...files, demo: {}, thresholds: {}, sites: null }, { nowMs: NOW_MS });
     const named = new Set(issuesOf(result).map(({ path }) => path.split('.')[1]));
     expect(named).toEqual(new Set(['demo', 'sites', 'thresholds']));
+  });
+});
+
+describe('the worked training day', () => {
+  test.each<[readonly (string | number)[], unknown, string]>([
+    [['groups', 0, 'sheet'], 'first-hop', '$.planDemo.groups[0].sheet'],
+    [['groups', 1, 'sites', 0], 'wennet-meadow', '$.planDemo.groups[1].sites[0]'],
+    [['groups', 2, 'wishHours'], 0, '$.planDemo.groups[2].wishHours'],
+    [['sites', 3, 'id'], 'maddle-bowls', '$.planDemo.sites[3].id'],
+    [['moves', 0, 'minutes'], '15', '$.planDemo.moves[0].minutes'],
+    [['instructers'], 4, '$.planDemo.instructers'],
+  ])('%j as %j is refused by its path', (at, value, path) => {
+    expect(paths('planDemo', at, value)).toContain(path);
   });
 });
 

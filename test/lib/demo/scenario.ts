@@ -9,6 +9,7 @@ import type { Conditions, Forecast } from '../../../lib/forecast/conditions.ts';
 import type { Site } from '../../../lib/site.ts';
 import { HOUR_MS, isoUtc, localDay, shiftDate } from '../../../lib/time.ts';
 import demo from '../../../config/demo.json' with { type: 'json' };
+import planDemo from '../../../config/plan-demo.json' with { type: 'json' };
 import published from '../../../config/published.json' with { type: 'json' };
 import sheets from '../../../config/sheets.json' with { type: 'json' };
 import sites from '../../../config/sites.json' with { type: 'json' };
@@ -18,7 +19,7 @@ import thresholds from '../../../config/thresholds.json' with { type: 'json' };
 import wingClasses from '../../../config/wing-classes.json' with { type: 'json' };
 import { valueOf } from '../config/fixtures.ts';
 
-export const config = valueOf(loadConfig({ demo, published, sheets, sites, sources, subscribers, thresholds, wingClasses }, { nowMs: Date.UTC(2028, 0, 1) }));
+export const config = valueOf(loadConfig({ demo, planDemo, published, sheets, sites, sources, subscribers, thresholds, wingClasses }, { nowMs: Date.UTC(2028, 0, 1) }));
 
 export function site(id: string): Site {
   const found = config.sites.find((each) => each.id === id);
