@@ -24,7 +24,7 @@ const STEPS: readonly Step[] = [
   { name: 'second-opinion', what: 'two implementations on 3,000 random sites', ...vitest('test/properties/second-opinion'), env: { SECOND_OPINION_CASES: '3000', SECOND_OPINION_SEED: seed } },
   { name: 'payloads', what: 'a million spoilt answers of services, none of which may read as within', ...vitest('test/lib/sources/mutated-payloads', 'test/lib/sources/mutated-surface'), env: { DAWNMARGIN_PROVE: '1' } },
   { name: 'year', what: '366 mornings in twelve zones while one call in ten fails, nobody left in silence', script: 'test/prove/year.ts' },
-  { name: 'words', what: 'every prefix of the messages of a quarter of a million days', ...vitest('test/lib/words/prefix-safe'), env: { DAWNMARGIN_PROVE: '1' } },
+  { name: 'words', what: 'every prefix of the sentences of a quarter of a million days, and of a million messages as they are carried', ...vitest('test/lib/words/prefix-safe', 'test/lib/words/message-prefixes'), env: { DAWNMARGIN_PROVE: '1' } },
   { name: 'fuzz', what: '200,000 request bodies and 200,000 configurations at random, no crash, no half-stored row', script: 'test/prove/fuzz.ts', args: ['200000', seed] },
   { name: 'wishes', what: '200,000 subscriptions and 200,000 configurations spoilt before they are read', ...vitest('test/lib/config/subscription.test'), env: { PROVE: '1' } },
   { name: 'lighthouse', what: 'board and day page, four scores of at least 98 each; on an idle machine', script: 'test/prove/lighthouse.ts' },

@@ -7,22 +7,29 @@ export function icalText(text: string): string {
     .replaceAll('\\', '\\\\').replaceAll(';', '\\;').replaceAll(',', '\\,').replaceAll('\n', '\\n');
 }
 
-const encoder = new TextEncoder();
-
 /** Lines of at most 75 octets (RFC 5545, 3.1), never cut through a character. */
 export function folded(line: string): string {
   const parts: string[] = [];
-  let part = '';
+  let begin = 0;
+  let at = 0;
   let octets = 0;
   for (const character of line) {
-    const size = encoder.encode(character).length;
+    const size = octetsOf(character.codePointAt(0) ?? 0);
     if (octets + size > 75) {
-      parts.push(part);
-      part = ' ';
+      parts.push(line.slice(begin, at));
+      begin = at;
+      // The space that begins the next line.
       octets = 1;
     }
-    part += character;
+    at += character.length;
     octets += size;
   }
-  return [...parts, part].join('\r\n');
+  return [...parts, line.slice(begin)].join('\r\n ');
+}
+
+/** In UTF-8. */
+function octetsOf(codePoint: number): number {
+  if (codePoint < 0x80) return 1;
+  if (codePoint < 0x800) return 2;
+  return codePoint < 0x10000 ? 3 : 4;
 }

@@ -1,38 +1,9 @@
 // Invariant I7: whatever is cut off at the end, what remains reads no more permissive than the whole.
 import fc from 'fast-check';
 import { expect, test } from 'vitest';
-import type { Verdict } from '../../../lib/margin/ids.ts';
 import { briefText, briefTitle, daySentence, restrictiveness, siteBlock, siteSentence, verdictPhrase, windowSentence } from '../../../lib/brief/words/index.ts';
 import { days, readers } from './arbitrary.ts';
-
-const VERDICTS: readonly Verdict[] = ['within', 'close', 'unknown', 'beyond'];
-
-/** Where each verdict is first heard in a text: the length at which its phrase is complete. */
-function heardAt(text: string): { readonly rank: number; readonly length: number }[] {
-  const heard = text.toLowerCase();
-  return VERDICTS.flatMap((verdict) => {
-    const phrase = verdictPhrase(verdict);
-    const at = heard.indexOf(phrase);
-    return at < 0 ? [] : [{ rank: restrictiveness(verdict), length: at + phrase.length }];
-  });
-}
-
-/** The most restrictive verdict that a text speaks of; null while it speaks of none. */
-function readAs(text: string): number | null {
-  const heard = heardAt(text);
-  return heard.length === 0 ? null : Math.max(...heard.map(({ rank }) => rank));
-}
-
-/**
- * Lengths at which a prefix begins to speak more permissively than the whole. A prefix speaks of what is complete in it,
- * so only the lengths at which a phrase becomes complete have to be looked at: that is every prefix there is.
- */
-function permissivePrefixes(text: string): number[] {
-  const heard = heardAt(text);
-  const whole = readAs(text) ?? restrictiveness('unknown');
-  const spokenBy = (length: number) => Math.max(...heard.filter((one) => one.length <= length).map(({ rank }) => rank));
-  return heard.map(({ length }) => length).filter((length) => spokenBy(length) < whole);
-}
+import { permissivePrefixes, readAs, VERDICTS } from './reading.ts';
 
 /** Every prefix, one after the other: slow, and what the quick way must agree with. */
 function permissiveOneByOne(text: string): boolean {
