@@ -107,7 +107,7 @@ export function operator(services: DeskServices, refusal: typeof operatorRefusal
     const owner = await ownerOf(linkKey, address.is);
     const id = await stores.subscription.idOfOwner(owner);
     await stores.db.together([
-      ...(id === null ? [] : stores.subscription.erase(id)), stores.signup.remove(owner),
+      ...(id === null ? [] : stores.subscription.erase(id)), ...stores.signup.forget(owner),
       ...(asked.value.forGood === true ? [stores.suppression.add(owner, 'forgotten', clock.nowMs())] : []),
     ]);
     return json({ state: 'forgotten' });

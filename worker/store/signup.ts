@@ -74,6 +74,10 @@ export function signupStore(db: Database) {
     remove(owner: string): Statement {
       return { sql: 'DELETE FROM signup WHERE owner = ?', values: [owner] };
     },
+    /** With the link that was sent for it. */
+    forget(owner: string): Statement[] {
+      return [{ sql: 'DELETE FROM token WHERE subject = (SELECT id FROM signup WHERE owner = ?)', values: [owner] }, this.remove(owner)];
+    },
     dropExpired(nowMs: number): Statement {
       return { sql: 'DELETE FROM signup WHERE expires_at <= ?', values: [nowMs] };
     },

@@ -103,7 +103,7 @@ describe('Web Push', () => {
     expect(await send(() => ({ status: 413 }))).toMatchObject({ state: 'refused' });
   });
 
-  test.each([400, 401, 403])('F62: %i is a quarrel with the whole service: nobody is ended, and it is left alone for a while', async (status) => {
+  test.each([400, 401, 403])('T34 F62: %i is a quarrel with the whole service: nobody is ended, and it is left alone for a while', async (status) => {
     const before = sink.pushed.length;
     expect(await send(() => ({ status }))).toMatchObject({ state: 'retry', afterMs: 600_000 });
     expect(quarrels.begun.has(sink.origin)).toBe(true);
