@@ -5,6 +5,7 @@
  * number, rather than one that has drifted. Uncertainty of a WMM2025 declination:
  * sqrt(0.26² + (5417/H)²) degrees, H the horizontal intensity in nT; a compass on a hill is worse.
  */
+// oxlint-disable-next-line typescript/triple-slash-reference -- types of a file that the package does not type, for every project that reads this one
 /// <reference path="./geomagnetism-model.d.ts" />
 import wmm2025 from 'geomagnetism/data/wmm-2025.json' with { type: 'json' };
 import Model from 'geomagnetism/lib/model.js';
