@@ -79,13 +79,28 @@ describe('a change notice', () => {
     expect(more).toEqual([]);
   });
 
-  test('F88: a source that falls silent takes the windows back', async () => {
+  test('F88: a source that does not serve us any more takes the windows back', async () => {
     const house = await changing((input) => judgedAs(input, 'within'), [{ ...ana, sites: ['north'] }]);
     await house.until('2027-05-14T05:00:00Z');
-    house.options = { ...house.options, source: async (request) => new Map(request.sites.map((site) => [site.id, { ok: false, error: { kind: 'unreachable' } } as const])) };
+    house.options = { ...house.options, source: async (request) => new Map(request.sites.map((site) => [site.id, { ok: false, error: { kind: 'refused', status: 403 } } as const])) };
     await house.until('2027-05-14T07:00:00Z');
     expect(posts(house)[1]!.data.text).toMatch(/^Site north, worse: .* can no longer be confirmed: cannot say\./);
     expect(posts(house)).toHaveLength(2);
+  });
+
+  test('F88: one that cannot be reached leaves its last forecast standing, until that is too old', async () => {
+    // The age limit of a run as the judge has it, on a stand-in for the rest.
+    const ageH = (input: DayInput): number => Math.max(...input.answers.map(({ outcome }) => (outcome.ok && outcome.value.runAt !== null ? (epochOf(input.issuedAt) - epochOf(outcome.value.runAt)) / 3_600_000 : Infinity)));
+    const house = await changing((input) => judgedAs(input, ageH(input) > 9 ? 'unknown' : 'within'), [{ ...ana, sites: ['north'] }]);
+    await house.until('2027-05-14T05:00:00Z');
+    house.options = { ...house.options, source: async (request) => new Map(request.sites.map((site) => [site.id, { ok: false, error: { kind: 'unreachable' } } as const])) };
+    await house.until('2027-05-14T08:00:00Z');
+    expect(posts(house)).toHaveLength(1);
+    await house.until('2027-05-14T11:00:00Z');
+    const [, notice, ...more] = posts(house);
+    expect(notice!.data.text).toMatch(/^Site north, worse: .* can no longer be confirmed: cannot say\./);
+    expect(notice!.atMs).toBeGreaterThan(Date.parse('2027-05-14T09:00:00Z'));
+    expect(more).toEqual([]);
   });
 
   test('F89: what changes before the brief has left stands in the brief', async () => {
