@@ -66,6 +66,7 @@ if (values.json) {
   const binding = bindingLine(lines);
   const over = lines.filter(({ need, limit }) => need > limit).length;
   if (binding !== undefined) console.log(`\n${fits ? `It fits on all ${lines.length} lines; the first to give way: ${binding.name}.` : `It does not fit: ${over} of ${lines.length} lines are passed, first of all ${binding.name}.`}`);
+  if (binding?.name.startsWith('weight')) console.log('With a key of the weather service its own limit counts: --weather WEIGHT A DAY. What does not fit is put off by the worker itself, and its sites say "cannot say".');
   const charges = chargesOf(figures.prices, needs);
   if (values.on === 'paid') {
     console.log(`\nA month at the prices of ${figures.prices.asOf} (${figures.prices.source}):`);

@@ -6,6 +6,8 @@ export interface Growth {
   readonly site: number;
   readonly subscriber: number;
   readonly ownWing: number;
+  /** For each site and subscriber at once: what is looked through for everybody while each site is worked on. */
+  readonly siteAndSubscriber?: number;
 }
 
 export interface Load {
@@ -40,7 +42,8 @@ export interface Needs extends Readonly<Record<Counted, number>> {
 }
 
 export function needsOf(counts: Counts, { sites, subscribers, ownWings, pageViewsPerSubscriber }: Load): Needs {
-  const of = ({ house, site, subscriber, ownWing }: Growth): number => Math.ceil(house + site * sites + subscriber * subscribers + ownWing * ownWings);
+  const of = ({ house, site, subscriber, ownWing, siteAndSubscriber = 0 }: Growth): number =>
+    Math.ceil(house + site * sites + subscriber * subscribers + ownWing * ownWings + siteAndSubscriber * sites * subscribers);
   const { invocations, queueOperations, rowsRead, rowsWritten, storedBytes } = counts.growth;
   return {
     invocations: of(invocations),
