@@ -1,10 +1,13 @@
 // npm run soak -- --kills N: ends with the line that counts, and with 0 only when nothing was lost or shown twice.
+// npm run soak -- --signups [--messages N]: a morning while people sign up, see signups.ts.
 import { rmSync } from 'node:fs';
 import { parseArgs } from 'node:util';
 import { killAgainAndAgain } from './kills.ts';
+import { signups } from './signups.ts';
 import { buildBundle } from './plant/bundle.ts';
 
-const { values } = parseArgs({ options: { kills: { type: 'string', default: '200' }, seed: { type: 'string', default: '1' } } });
+const { values } = parseArgs({ options: { kills: { type: 'string', default: '200' }, seed: { type: 'string', default: '1' }, signups: { type: 'boolean', default: false }, messages: { type: 'string', default: '10000' } } });
+if (values.signups) process.exit((await signups(Number(values.messages))) ? 0 : 1);
 const kills = Number(values.kills);
 const seed = Number(values.seed);
 if (!Number.isInteger(kills) || kills < 1 || !Number.isInteger(seed)) throw new Error('--kills and --seed are whole numbers, kills at least 1');
