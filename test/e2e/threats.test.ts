@@ -179,7 +179,7 @@ test('T33 every package of the lockfile is held to a hash, comes from no named a
   const own = JSON.parse(readFileSync(path.join(root, 'package.json'), 'utf8')) as { dependencies: Record<string, string>; devDependencies: Record<string, string>; allowScripts: Record<string, boolean> };
   const packages = Object.entries(lock.packages).filter(([name]) => name !== '');
   expect(packages.length).toBeGreaterThan(100);
-  expect(packages.filter(([, { integrity, resolved }]) => !/^sha512-/.test(integrity ?? '') || resolved !== undefined).map(([name]) => name)).toEqual([]);
+  expect(packages.filter(([, { integrity, resolved }]) => !(integrity ?? '').startsWith('sha512-') || resolved !== undefined).map(([name]) => name)).toEqual([]);
   for (const version of Object.values({ ...own.dependencies, ...own.devDependencies })) expect(version).toMatch(/^\d+\.\d+\.\d+(-[\w.]+)?$/);
   expect(Object.keys(own.allowScripts).toSorted()).toEqual(['esbuild', 'node', 'workerd']);
   expect(Object.keys(own.dependencies).length).toBeLessThanOrEqual(6);
