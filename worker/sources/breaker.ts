@@ -1,5 +1,5 @@
 /**
- * A circuit breaker for each host: five failures within a minute open it; after half a minute one probe may pass, and
+ * A circuit breaker for each host: five failures within a minute, or one hang, open it; after half a minute one probe may pass, and
  * each probe that fails doubles the wait, up to ten minutes. A host that says 429 is left alone at least until its next
  * full minute. Pure: state and time in, state out.
  */
@@ -43,7 +43,9 @@ export function afterFailure(state: BreakerState, failed: SourceFailure, nowMs: 
   if (!isOfTheHost(failed)) return state.openUntilMs === null ? state : CLOSED;
   if (state.probeMs !== null) return opened(state, nowMs, Math.min(state.waitMs * 2, LONGEST_WAIT_MS));
   const failuresMs = [...state.failuresMs.filter((at) => at > nowMs - WINDOW_MS), nowMs];
-  return failuresMs.length >= FAILURES_TO_OPEN ? opened(state, nowMs, CLOSED.waitMs) : { ...state, failuresMs };
+  // A hang has taken more of a morning than five quick failures: nobody else waits for this host before it has been probed.
+  const isOver = failed.kind === 'timeout' || failuresMs.length >= FAILURES_TO_OPEN;
+  return isOver ? opened(state, nowMs, CLOSED.waitMs) : { ...state, failuresMs };
 }
 
 function opened(state: BreakerState, nowMs: number, waitMs: number): BreakerState {

@@ -183,6 +183,15 @@ describe('F27: a service that fails half-way', () => {
   });
 });
 
+describe('F3: a host that hangs', () => {
+  test('costs a morning one wait, whatever number of its sources are asked', async () => {
+    server.behave('meta', 'hang');
+    const day = await live({ origin: server.origin, order: onlySources(D2, EU, 'open-meteo:gfs_global'), now: () => nowMs, bounds: SHORT }).day();
+    expect(server.asked).toHaveLength(2);
+    expect(day.sources.map(({ why }) => why)).toEqual(['no answer within 1 s', ...Array.from({ length: day.sources.length - 1 }, () => expect.stringMatching(/^it failed before and is not asked again until/) as string)]);
+  });
+});
+
 describe('the breaker', () => {
   const kept = forgetful();
   const ask = () => live({ origin: server.origin, order: onlySources(D2), now: () => nowMs, kept }).one(D2);

@@ -26,6 +26,11 @@ test('five failures over more than a minute do not open it', () => {
   expect(passes(failing(50, 15_001), t0 + 50 * 15_001)).toBe(true);
 });
 
+test('F3: one hang opens it by itself', () => {
+  const open = afterFailure(CLOSED, { kind: 'timeout', afterMs: 10_000 }, t0);
+  expect(permit(open, t0 + 1)).toEqual({ allowed: false, untilMs: t0 + 30_000 });
+});
+
 describe('open', () => {
   const probe = (state: BreakerState, atMs: number): BreakerState => {
     const passed = permit(state, atMs);
