@@ -3,7 +3,7 @@ import { shiftDate } from '../../lib/time.ts';
 import { placesOf } from '../morning/places.ts';
 import { judgedDate } from '../morning/times.ts';
 import { readLinkToken } from '../secrets.ts';
-import type { Services } from '../service-set.ts';
+import type { DeskServices } from '../service-set.ts';
 
 /** What a subscriber's feeds are made of: each day that still holds, with everything that was said about it. */
 export interface Feed {
@@ -24,7 +24,7 @@ export interface FeedDay {
 }
 
 /** null for a token that is not one of ours, is revoked, or belongs to a subscription that has ended. */
-export async function readFeed(services: Services, token: string): Promise<Feed | null> {
+export async function readFeed(services: DeskServices, token: string): Promise<Feed | null> {
   const { settings, stores, clock } = services;
   const named = settings.linkKey === null ? null : await readLinkToken(settings.linkKey, 'feed', token);
   const subscription = named === null ? null : await stores.subscription.one(named.id);

@@ -5,6 +5,7 @@ import { planServices } from '../web/plan/plan-data.ts';
 import { assess } from './assess.ts';
 import { bounce } from './bounces.ts';
 import { closing } from './closing.ts';
+import { feeds } from './feeds.ts';
 import { manageApi } from './manage.ts';
 import { planApi, planPages } from './plan.ts';
 import { pushApi } from './push.ts';
@@ -14,6 +15,7 @@ import { subscriptions } from './subscriptions.ts';
 import { whatIf } from './what-if.ts';
 
 export const DESK_METHODS: Readonly<Record<string, string>> = {
+  '/feeds/:file': 'GET, HEAD',
   '/plan': 'GET, HEAD, POST',
   '/plan/:token': 'GET, HEAD, POST',
   '/plan/:token/notice': 'POST',
@@ -43,11 +45,12 @@ export function deskRoutes(hono: Hono, services: DeskServices): void {
   hono.route('/api/v1/push', pushApi(services));
   hono.route('/api/v1/manage', manageApi(services));
   hono.get('/sites/:id/what-if', (c) => whatIf(whatIfServices(services), c));
+  hono.route('/feeds', feeds(services));
   hono.route('/plan', planPages(planServices(services)));
   hono.route('/', subscriberPages(services));
 }
 
-/** The desk: where people hand something in, from a subscription to a training day. */
+/** The desk: what is one person's own, from a subscription and its feeds to a training day. */
 export function deskApp(services: DeskServices): Hono {
   const hono = new Hono();
   deskRoutes(hono, services);

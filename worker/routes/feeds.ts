@@ -4,11 +4,11 @@ import { readFeed } from '../feeds/feed.ts';
 import { icalFeed } from '../feeds/ical.ts';
 import { READER } from '../morning/message.ts';
 import { sha256Hex } from '../secrets.ts';
-import type { Services } from '../service-set.ts';
+import type { DeskServices } from '../service-set.ts';
 import { API_HEADERS, problem } from './problem.ts';
 
 /** Feeds behind a secret address. A token that is wrong, revoked or ended gets one and the same answer. */
-export function feeds(services: Services): Hono {
+export function feeds(services: DeskServices): Hono {
   const app = new Hono();
 
   app.get('/:file', async (c) => {

@@ -3,8 +3,10 @@ import type { DeskServices } from '../service-set.ts';
 import { closing } from './closing.ts';
 import { operator } from './operator.ts';
 import { operatorPages } from './operator-pages.ts';
+import { status } from './status.ts';
 
 export const OPERATOR_METHODS: Readonly<Record<string, string>> = {
+  '/status': 'GET, HEAD',
   '/operator': 'GET, HEAD',
   '/operator/sign-in': 'GET, HEAD, POST',
   '/operator/sign-out': 'POST',
@@ -20,6 +22,7 @@ export const OPERATOR_METHODS: Readonly<Record<string, string>> = {
   '/api/v1/operator/sites': 'GET, HEAD, PUT',
   '/api/v1/operator/sheets': 'GET, HEAD',
   '/api/v1/operator/sheets/:id': 'GET, HEAD, PUT',
+  '/api/v1/operator/sheets/:id/approval': 'POST',
   '/api/v1/operator/published': 'GET, HEAD, PUT',
   '/api/v1/operator/forget': 'POST',
   '/api/v1/operator/bounce-secret': 'GET, HEAD',
@@ -27,6 +30,7 @@ export const OPERATOR_METHODS: Readonly<Record<string, string>> = {
 
 export function operatorRoutes(hono: Hono, services: DeskServices): void {
   hono.route('/api/v1/operator', operator(services));
+  hono.route('/status', status(services));
   hono.route('/operator', operatorPages(services));
 }
 

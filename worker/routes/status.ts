@@ -1,11 +1,11 @@
 import { Hono } from 'hono/tiny';
-import type { Services } from '../service-set.ts';
+import type { DeskServices } from '../service-set.ts';
 import { statusPage, type Status } from '../web/status-page.ts';
 import { health } from './health.ts';
 import { PAGE_HEADERS } from './pages.ts';
 
 /** The same as /healthz, for people. */
-export function status(services: Services): Hono {
+export function status(services: DeskServices): Hono {
   const app = new Hono();
   app.get('/', async (c) => {
     const answer = await health(services);

@@ -1,4 +1,4 @@
-// The worker as it would be deployed, built once.
+// The worker as it runs on one machine, built once: /local/… lets the harness begin a morning.
 import { mkdtempSync, readdirSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import path from 'node:path';
@@ -11,7 +11,7 @@ export interface Bundle {
 
 export async function buildBundle(): Promise<Bundle> {
   const folder = mkdtempSync(path.join(tmpdir(), 'dawnmargin-bundle-'));
-  const run = wrangler(['deploy', '--dry-run', '--outdir', folder], folder);
+  const run = wrangler(['deploy', 'worker/whole.ts', '--dry-run', '--outdir', folder], folder);
   if ((await run.ended) !== 0) throw new Error(`the worker could not be built:\n${run.output()}`);
   const script = readdirSync(folder).find((name) => name.endsWith('.js'));
   if (script === undefined) throw new Error('wrangler has written no script');
