@@ -2,7 +2,7 @@
  * Secrets that must be printable again in every message are not stored but derived from LINK_KEY:
  * HMAC-SHA256(LINK_KEY, purpose|id|version). Only the version is kept; raising it revokes what was printed before.
  */
-export type Purpose = 'webhook' | 'challenge' | 'manage' | 'unsubscribe' | 'feed' | 'bounce' | 'plan';
+export type Purpose = 'webhook' | 'challenge' | 'manage' | 'unsubscribe' | 'feed' | 'bounce' | 'plan' | 'approval';
 
 export interface Derivation {
   readonly purpose: Purpose;

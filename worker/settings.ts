@@ -30,6 +30,8 @@ export interface Env {
   readonly VAPID_PUBLIC_KEY?: string;
   readonly VAPID_PRIVATE_KEY?: string;
   readonly OPERATOR_TOKEN_SHA256?: string;
+  /** A second key: with it, what loosens a limit sheet needs the approval of whoever holds it. */
+  readonly OPERATOR_SECOND_TOKEN_SHA256?: string;
   readonly SMTP_URL?: string;
   readonly MAIL_FROM?: string;
   /** The platform's own way to send mail, in place of SMTP_URL. */
@@ -53,6 +55,7 @@ export interface Settings {
   readonly linkKey: string | null;
   readonly vapid: { readonly publicKey: string; readonly privateKey: string } | null;
   readonly operatorTokenSha256: string | null;
+  readonly secondTokenSha256: string | null;
   readonly smtp: MailServer | null;
   readonly mailFrom: string | null;
   readonly heartbeatUrl: string | null;
@@ -97,6 +100,9 @@ export function readSettings(env: Partial<Record<keyof Env, unknown>>): Result<S
   if ((text('VAPID_PUBLIC_KEY') === null) !== (text('VAPID_PRIVATE_KEY') === null)) {
     wrong('VAPID_PRIVATE_KEY', 'missing', 'the two keys of VAPID belong together', 'VAPID_PUBLIC_KEY and VAPID_PRIVATE_KEY, or neither');
   }
+  if (text('OPERATOR_SECOND_TOKEN_SHA256') !== null && text('OPERATOR_SECOND_TOKEN_SHA256') === text('OPERATOR_TOKEN_SHA256')) {
+    wrong('OPERATOR_SECOND_TOKEN_SHA256', 'not shown', 'the two keys are one', 'the hash of another token');
+  }
   const contact = text('CONTACT');
   if (contact !== null && !/^(mailto:)?[^\s@<>"]+@[^\s@<>"]+$|^https:\/\/[^\s<>"]+$/.test(contact)) {
     wrong('CONTACT', JSON.stringify(contact.slice(0, 80)), 'providers could not reach anyone there', 'a mail address or an https address');
@@ -123,6 +129,7 @@ export function readSettings(env: Partial<Record<keyof Env, unknown>>): Result<S
     contact,
     linkKey: secret('LINK_KEY', /^[\x21-\x7e]{32,500}$/, 'at least 32 characters without spaces, made by chance'),
     vapid: publicKey !== null && privateKey !== null ? { publicKey, privateKey } : null,
+    secondTokenSha256: secret('OPERATOR_SECOND_TOKEN_SHA256', /^[0-9a-f]{64}$/, '64 lower-case hexadecimal digits, of another token than the first'),
     operatorTokenSha256: secret('OPERATOR_TOKEN_SHA256', /^[0-9a-f]{64}$/, '64 lower-case hexadecimal digits'),
     smtp,
     mailFrom,

@@ -9,7 +9,7 @@ import { openapi } from '../support/openapi.ts';
 import { DESK_METHODS } from '../../worker/routes/desk.ts';
 import { FRONT_METHODS } from '../../worker/routes/front.ts';
 import { OPERATOR_METHODS } from '../../worker/routes/operator-desk.ts';
-import { base64, derivedKey, hmacSha256 } from '../../worker/secrets.ts';
+import { base64, derivedKey, hmacSha256, sha256Hex } from '../../worker/secrets.ts';
 import { newBrowser } from '../worker/support/browser.ts';
 import { launchFeature } from '../worker/support/stand-ins.ts';
 
@@ -35,10 +35,10 @@ async function ask(method: string, path: string, body?: unknown, { headers = {},
 }
 
 /** What every door that takes JSON refuses in the same way. */
-async function refusals(method: string, path: string, headers: Readonly<Record<string, string>> = {}): Promise<void> {
-  expect((await ask(method, path, 'not JSON', { headers })).status).toBe(400);
-  expect((await ask(method, path, `"${'x'.repeat(300_000)}"`, { headers })).status).toBe(413);
-  expect((await ask(method, path, '{}', { headers: { ...headers, 'content-type': 'text/plain' } })).status).toBe(415);
+async function refusals(method: string, path: string, headers: Readonly<Record<string, string>> = {}, of = first): Promise<void> {
+  expect((await ask(method, path, 'not JSON', { headers, of })).status).toBe(400);
+  expect((await ask(method, path, `"${'x'.repeat(300_000)}"`, { headers, of })).status).toBe(413);
+  expect((await ask(method, path, '{}', { headers: { ...headers, 'content-type': 'text/plain' }, of })).status).toBe(415);
 }
 
 const wish = (channels: readonly unknown[]) => ({ sites: [{ id: 'north', sheet: 'hill' }], wing: { class: 'EN B' }, deliver: { at: '06:00', timeZone: 'Europe/Vienna' }, channels });
@@ -174,6 +174,16 @@ test('the operator', async () => {
     expect((await ask('PUT', path, body, { headers: guarded })).status).toBe(200);
     expect((await ask('PUT', path, body, { headers: { ...bearer, 'if-match': '"other"' } })).status).toBe(412);
   }
+  const SECOND = 'another-token-for-tests-only-0123456789abcdef';
+  const two = await house({ OPERATOR_SECOND_TOKEN_SHA256: await sha256Hex(SECOND) });
+  const approval = `${OPERATOR}/sheets/hill/approval`;
+  const held = { of: two, headers: { ...bearer, 'if-match': '"1"' } };
+  const second = { of: two, headers: { authorization: `Bearer ${SECOND}`, 'if-match': '"1"' } };
+  expect((await ask('PUT', `${OPERATOR}/sheets/hill`, sheet, held)).status).toBe(409);
+  expect((await ask('POST', approval, sheet, second)).status).toBe(200);
+  expect((await ask('POST', approval, sheet, { of: two, headers: { authorization: `Bearer ${SECOND}` } })).status).toBe(428);
+  expect((await ask('POST', approval, sheet, { of: two, headers: { authorization: `Bearer ${SECOND}`, 'if-match': '"7"' } })).status).toBe(412);
+  await refusals('POST', approval, second.headers, two);
   expect((await ask('GET', `${OPERATOR}/sheets/none`, undefined, as)).status).toBe(404);
   for (const path of ['sheets', 'published', 'bounce-secret']) expect((await ask('GET', `${OPERATOR}/${path}`, undefined, as)).status).toBe(200);
   expect((await ask('PUT', `${OPERATOR}/published`, [{ site: 'north', wing: 'EN A', sheet: 'hill' }], as)).status).toBe(200);

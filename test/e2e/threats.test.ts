@@ -6,6 +6,7 @@ import { afterEach, describe, expect, test } from 'vitest';
 import { judgeDay } from '../../lib/brief/judge-day.ts';
 import type { SourceFailure } from '../../lib/forecast/failure.ts';
 import { failure, success } from '../../lib/result.ts';
+import { sha256Hex } from '../../worker/secrets.ts';
 import { answersTo } from '../support/fast-house.ts';
 import { FastPostHouse, OPERATOR_TOKEN } from '../support/fast-post-house.ts';
 import { root } from '../support/run-tool.ts';
@@ -157,6 +158,31 @@ describe('what an operator hands in', () => {
     expect([response.status, problems.map((problem) => problem.path)]).toEqual([400, expect.arrayContaining([place])]);
     expect(post.everyRow()).toBe(before);
   });
+});
+
+test('T4 B38 where the operator has set two keys, what loosens a sheet waits for the second; what tightens it does not', async () => {
+  const SECOND = 'another-token-for-tests-only-0123456789abcdef';
+  const post = await opened({ env: { OPERATOR_SECOND_TOKEN_SHA256: await sha256Hex(SECOND) } });
+  const HILL = '/api/v1/operator/sheets/hill';
+  const sheet = (maxMeanMps: number) => ({ id: 'hill', name: 'Hill', kind: 'launch', limits: { maxMeanMps } });
+  const second = { authorization: `Bearer ${SECOND}` };
+  const before = post.everyRow();
+  const put = async (mps: number, etag: string, headers: Readonly<Record<string, string>> = {}) => (await post.ask('PUT', HILL, sheet(mps), { ...bearer, 'if-match': etag, ...headers })).status;
+  expect(await put(25, '"1"')).toBe(409);
+  // One person with one key, whichever it is, cannot do it alone.
+  expect((await post.ask('POST', `${HILL}/approval`, sheet(25), { ...bearer, 'if-match': '"1"' })).status).toBe(401);
+  expect((await post.ask('PUT', HILL, sheet(25), { ...second, 'if-match': '"1"' })).status).toBe(401);
+  const { approval } = (await (await post.ask('POST', `${HILL}/approval`, sheet(8), { ...second, 'if-match': '"1"' })).json()) as { approval: string };
+  // What was approved is this text and no other.
+  expect(await put(25, '"1"', { approval })).toBe(409);
+  expect(await put(8, '"1"', { approval: `${approval}x` })).toBe(409);
+  expect(post.everyRow()).toBe(before);
+  expect(await put(8, '"1"', { approval })).toBe(200);
+  expect(await put(5, '"2"')).toBe(200);
+  // And this place in the order of versions: it is good once.
+  expect(await put(8, '"3"', { approval })).toBe(409);
+  const [newest] = post.d1.ask<{ body: string; version: number }>(`SELECT body, version FROM sheet WHERE id = 'hill' ORDER BY version DESC LIMIT 1`);
+  expect([newest?.version, JSON.parse(newest?.body ?? '{}')]).toEqual([3, { ...sheet(5), version: 3 }]);
 });
 
 test('T32 "you said it was within limits": from what is kept the brief is made again, byte for byte', async () => {

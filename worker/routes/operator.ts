@@ -2,19 +2,19 @@
 import { Hono } from 'hono/tiny';
 import { check, issue } from '../../lib/config/check.ts';
 import { forgetSchema, parsePairs } from '../../lib/config/operator.ts';
-import { parseSheet } from '../../lib/config/sheet.ts';
-import { sheetChanges } from '../../lib/config/sheet-change.ts';
 import { parseSites } from '../../lib/config/sites.ts';
 import { mailAddress } from '../security/mail-address.ts';
 import { operatorRefusal } from '../security/operator.ts';
 import { ownerOf } from '../security/owner.ts';
 import { shippedRows } from '../security/subscribe.ts';
-import { base64, derivedKey, sha256Hex } from '../secrets.ts';
+import { base64, derivedKey, sameText, sha256Hex } from '../secrets.ts';
 import type { DeskServices } from '../service-set.ts';
 import type { StoredSite } from '../store/site.ts';
 import { jsonBody } from './body.ts';
 import { sitesAndSheets } from './forms-data.ts';
+import { approvalOf, nextSheet } from './next-sheet.ts';
 import { json, problem } from './problem.ts';
+import { staleness } from './staleness.ts';
 
 const MAX_BODY_BYTES = 256 * 1024;
 
@@ -22,6 +22,15 @@ const MAX_BODY_BYTES = 256 * 1024;
 export function operator(services: DeskServices, refusal: typeof operatorRefusal = operatorRefusal): Hono {
   const { stores, clock } = services;
   const app = new Hono();
+
+  /** The second key is good for this alone. */
+  app.post('/sheets/:id/approval', async (c) => {
+    const { secondTokenSha256, linkKey } = services.settings;
+    const refused = await operatorRefusal(services, c.req.raw, secondTokenSha256);
+    if (refused !== null || linkKey === null) return refused ?? problem('unusable');
+    const next = await nextSheet(services, c.req.param('id'), c.req.raw);
+    return next.ok ? json({ version: next.value.version, changes: next.value.changes, approval: await approvalOf(services, c.req.param('id'), next.value) }) : next.error;
+  });
 
   app.use(async (c, next) => (await refusal(services, c.req.raw)) ?? next());
 
@@ -57,27 +66,19 @@ export function operator(services: DeskServices, refusal: typeof operatorRefusal
   /** A new version: what it changes and what of it loosens is kept, answered, and told to everyone held to it. */
   app.put('/sheets/:id', async (c) => {
     const id = c.req.param('id');
-    const [row] = await stores.sheet.newestOf([id]);
-    const stale = await staleness(c.req.header('if-match'), row === undefined ? null : `"${row.version}"`);
-    if (stale !== null) return stale;
-    const body = await jsonBody(c.req.raw, MAX_BODY_BYTES);
-    if (!body.ok) return body.error;
-    const shipped = services.shippedSheets().find((sheet) => sheet.id === id);
-    const read = row === undefined ? undefined : services.read.sheet(row);
-    const before = read?.ok === true ? read.value : row === undefined ? shipped : undefined;
-    const version = (row?.version ?? shipped?.version ?? 0) + 1;
-    const given = typeof body.value === 'object' && body.value !== null ? { ...body.value, version } : body.value;
-    const sheet = parseSheet(given, { basis: 'optional', ...(before === undefined ? {} : { kind: before.kind }) });
-    if (!sheet.ok) return problem('bad-input', { problems: sheet.error });
-    if (sheet.value.id !== id) return problem('bad-input', { problems: [issue(['id'], sheet.value.id, { problem: 'not the id of the address', allowed: id })] });
-    if (before !== undefined && before.kind !== sheet.value.kind) return problem('bad-input', { problems: [issue(['kind'], sheet.value.kind, { problem: 'people are held to this sheet at sites of the other kind', allowed: before.kind })] });
-    const changes = before === undefined ? [] : sheetChanges(before, sheet.value);
+    const next = await nextSheet(services, id, c.req.raw);
+    if (!next.ok) return next.error;
+    const { version, body, against, changes, loosens } = next.value;
+    const approval = services.settings.secondTokenSha256 !== null && loosens ? ((await approvalOf(services, id, next.value)) ?? 'none') : null;
+    if (approval !== null && (approval === 'none' || !(await sameText(c.req.header('approval') ?? '', approval)))) {
+      return problem('unapproved', { detail: `it lets more pass than before: whoever holds the second key asks for the approval of the same sheet, by POST to /api/v1/operator/sheets/${id}/approval; then send it with the header approval` });
+    }
     const nowMs = clock.nowMs();
     await stores.db.together([
-      stores.sheet.put([{ id, version, body: JSON.stringify(given) }], nowMs),
-      stores.sheetHistory.add({ sheetId: id, version, against: before?.version ?? null, changes, storedAtMs: nowMs }),
+      stores.sheet.put([{ id, version, body }], nowMs),
+      stores.sheetHistory.add({ sheetId: id, version, against, changes, storedAtMs: nowMs }),
     ]);
-    await stores.log.write([{ level: changes.some(({ loosens }) => loosens) ? 'warning' : 'info', step: 'operator', event: 'sheet-changed', detail: { sheet: id, version, loosened: changes.filter(({ loosens }) => loosens).length } }], nowMs);
+    await stores.log.write([{ level: loosens ? 'warning' : 'info', step: 'operator', event: 'sheet-changed', detail: { sheet: id, version, loosened: changes.filter((change) => change.loosens).length } }], nowMs);
     return json({ id, version, changes }, { headers: { etag: `"${version}"` } });
   });
 
@@ -129,11 +130,4 @@ function collection(rows: readonly StoredSite[]): unknown {
 
 async function etagOf(rows: readonly StoredSite[]): Promise<string> {
   return `"${(await sha256Hex(JSON.stringify(rows.map(({ feature }) => feature)))).slice(0, 32)}"`;
-}
-
-/** A write that replaces must name what it replaces. */
-async function staleness(ifMatch: string | undefined, etag: string | null): Promise<Response | null> {
-  if (etag === null) return ifMatch === undefined ? null : problem('stale', { detail: 'there is nothing to replace yet' });
-  if (ifMatch === undefined) return problem('unconditional', { detail: 'send If-Match with the ETag that was read' });
-  return ifMatch === etag ? null : problem('stale', { detail: 'it was changed since it was read', headers: { etag } });
 }

@@ -1,7 +1,7 @@
 import type { Issue } from '../../lib/result.ts';
 
 /** Errors of the API as problem details (RFC 9457). `problems` lists everything that is wrong with a request, each with its path. */
-export type ProblemKind = 'bad-input' | 'not-found' | 'gone' | 'wrong-method' | 'too-large' | 'wrong-type' | 'too-many' | 'not-allowed' | 'stale' | 'unconditional' | 'fault' | 'unusable';
+export type ProblemKind = 'bad-input' | 'not-found' | 'gone' | 'wrong-method' | 'too-large' | 'wrong-type' | 'too-many' | 'not-allowed' | 'unapproved' | 'stale' | 'unconditional' | 'fault' | 'unusable';
 
 interface ProblemForm {
   readonly status: number;
@@ -14,6 +14,7 @@ const FORMS: Readonly<Record<ProblemKind, ProblemForm>> = {
   'not-found': { status: 404, title: 'There is nothing here' },
   gone: { status: 410, title: 'There is nothing here any more' },
   'wrong-method': { status: 405, title: 'This method is not answered here' },
+  unapproved: { status: 409, title: 'A second approval is needed' },
   stale: { status: 412, title: 'Somebody else has changed it' },
   unconditional: { status: 428, title: 'The request must say what it replaces' },
   'too-large': { status: 413, title: 'The request is too large' },
