@@ -1,7 +1,6 @@
 // What the benches judge and what they are held against: days of the demo sites, and a payload of 150 kB like a service's.
 import { readFileSync } from 'node:fs';
 import path from 'node:path';
-import { judgeDay } from '../../lib/brief/judge-day.ts';
 import type { DayInput } from '../../lib/brief/day-input.ts';
 import { loadConfig } from '../../lib/config/load.ts';
 import { inventedForecast } from '../../lib/forecast/invented/forecast.ts';

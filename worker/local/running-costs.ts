@@ -7,7 +7,7 @@ import figures from '../../config/running-costs.json' with { type: 'json' };
 import { parseSourceOrder } from '../../lib/config/source-order.ts';
 import { FREE_QUOTA } from '../sources/quota.ts';
 import { planRequests } from '../sources/request-plan.ts';
-import { bindingLine, chargesOf, linesOf, needsOf, type Line } from './running-costs/model.ts';
+import { bindingLine, chargesOf, linesOf, needsOf, shareOf, type Line, type Prices } from './running-costs/model.ts';
 
 const HELP = 'npm run plan -- --sites N --subscribers M [--own-wings N] [--views PAGES A SUBSCRIBER AND DAY] [--on free|paid] [--weather WEIGHT A DAY] [--json]';
 
@@ -52,7 +52,7 @@ const plan = figures.plans[values.on];
 
 const needs = needsOf(figures.counts, { sites, subscribers, ownWings, pageViewsPerSubscriber: wholeNumber(values.views, 'views') });
 const lines = linesOf(plan, figures.counts, needs, weatherLine(sites, wholeNumber(values.weather, 'weather')));
-const fits = lines.every(({ need, limit }) => need <= limit);
+const fits = lines.every((line) => shareOf(line) <= 1);
 process.exitCode = fits ? 0 : 1;
 
 if (values.json) {
@@ -62,12 +62,12 @@ if (values.json) {
   const row = (cells: readonly string[]): string => cells.map((cell, index) => (index === 0 ? cell.padEnd(36) : cell.padStart(18))).join('');
   console.log(`${whole(sites)} sites, ${whole(subscribers)} subscribers, ${whole(ownWings)} with a wing of their own, on the ${values.on} plan (limits as read ${figures.plans.readOn}):\n`);
   console.log(row(['', 'need', 'limit', 'share']));
-  for (const { name, need, limit } of lines) console.log(row([name, whole(need), whole(limit), `${((100 * need) / limit).toFixed(1)} %`]));
+  for (const line of lines) console.log(row([line.name, whole(line.need), whole(line.limit), `${(100 * shareOf(line)).toFixed(1)} %`]));
   const binding = bindingLine(lines);
-  const over = lines.filter(({ need, limit }) => need > limit).length;
+  const over = lines.filter((line) => shareOf(line) > 1).length;
   if (binding !== undefined) console.log(`\n${fits ? `It fits on all ${lines.length} lines; the first to give way: ${binding.name}.` : `It does not fit: ${over} of ${lines.length} lines are passed, first of all ${binding.name}.`}`);
   if (binding?.name.startsWith('weight')) console.log('With a key of the weather service its own limit counts: --weather WEIGHT A DAY. What does not fit is put off by the worker itself, and its sites say "cannot say".');
-  const charges = chargesOf(figures.prices, needs);
+  const charges = chargesOf(figures.prices as Prices, needs);
   if (values.on === 'paid') {
     console.log(`\nA month at the prices of ${figures.prices.asOf} (${figures.prices.source}):`);
     for (const { name, amountAMonth, usd } of charges) console.log(row([name, whole(amountAMonth), '', `${usd.toFixed(2)} USD`]));

@@ -80,9 +80,14 @@ export function linesOf(plan: Plan, counts: Counts, needs: Needs, weather: Line)
   return [...bounded.flatMap(([name, need, limit]) => (limit === undefined ? [] : [{ name, need, limit }])), weather];
 }
 
+/** How much of what the plan gives is needed: above 1 it does not fit. */
+export function shareOf({ need, limit }: Line): number {
+  return need / limit;
+}
+
 /** The line that gives way first; the most heavily used one when all hold. */
 export function bindingLine(lines: readonly Line[]): Line | undefined {
-  return [...lines].sort((one, other) => other.need / other.limit - one.need / one.limit)[0];
+  return [...lines].sort((one, other) => shareOf(other) - shareOf(one))[0];
 }
 
 /** A month's charge beyond what the plan includes. */
