@@ -210,6 +210,37 @@ test.each([[390, false], [1280, true]] as const)('sheets: what loosens comes fir
   await close();
 });
 
+test('where there is a second key, what loosens waits for it, and what tightens does not', async () => {
+  const secondToken = 'the-token-of-the-second-key-for-tests-0123456789';
+  const two = await startHouse({ sites: true, secondToken });
+  const { page, close } = await signedIn(two, { width: 390, scripts: false }, '/operator/sheets/first-hops');
+  const gust = page.getByLabel('Gust, at most', { exact: true });
+  const before = Number(await gust.inputValue());
+  const versions = () => two.ask('SELECT version FROM sheet WHERE id = \'first-hops\' ORDER BY version').length;
+  await gust.fill(String(before - 0.5));
+  await press(page, 'Look at what changes');
+  expect(await page.locator('#second').count()).toBe(0);
+  await press(page, /^Save as version/);
+  expect(versions()).toBe(2);
+  await gust.fill(String(before + 2));
+  await press(page, 'Look at what changes');
+  for (const token of ['', OPERATOR_TOKEN, `${secondToken}0`]) {
+    await page.getByLabel('I mean to let this pass').check();
+    await page.fill('#second', token);
+    await press(page, /^Save as version/);
+    expect(await page.locator('[role=alert]').innerText()).toContain('What loosens needs the second key here');
+    expect([await gust.inputValue(), await page.inputValue('#second')]).toEqual([String(before + 2), '']);
+  }
+  expect(versions()).toBe(2);
+  await page.getByLabel('I mean to let this pass').check();
+  await page.fill('#second', secondToken);
+  await press(page, /^Save as version/);
+  expect(await page.locator('.said').innerText()).toContain('Saved');
+  expect(versions()).toBe(3);
+  await close();
+  await two.close();
+});
+
 test('the status says how steps, sources, breakers, messages and canaries are', async () => {
   const untilMs = Date.now() + 600_000;
   house.ask('INSERT INTO breaker (source, body, stored_at) VALUES (?, ?, ?) RETURNING source', 'weather.example', JSON.stringify({ failuresMs: [1, 2, 3], openUntilMs: untilMs, waitMs: 60_000, probeMs: null }), Date.now());

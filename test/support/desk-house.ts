@@ -12,13 +12,13 @@ import { assemble } from '../../worker/services.ts';
 import { readSettings } from '../../worker/settings.ts';
 import { freePort } from '../../worker/local/own-demo.ts';
 import { serve } from '../browser/support/server.ts';
-import type { DeskHouse } from '../browser/support/house.ts';
+import type { DeskHouse, HouseOptions } from '../browser/support/house.ts';
 import { OPERATOR_TOKEN } from '../browser/support/house.ts';
 import { startPushSink, type Pushed } from './sinks/push-sink.ts';
 import { sqliteD1 } from './sqlite-d1.ts';
 
 /** `sites`: those of the demo; else a blank database, but for its tables. */
-export async function startHouse({ sites }: { readonly sites: boolean }): Promise<DeskHouse> {
+export async function startHouse({ sites, secondToken }: HouseOptions): Promise<DeskHouse> {
   const [sink, port] = [await startPushSink(), await freePort()];
   const origin = `http://127.0.0.1:${port}`;
   const d1 = sqliteD1();
@@ -28,6 +28,7 @@ export async function startHouse({ sites }: { readonly sites: boolean }): Promis
   const settings = readSettings({
     LOCAL: '1', LINK_KEY: 'a-link-key-for-tests-only-0123456789', PUBLIC_URL: origin, VAPID_PUBLIC_KEY: point.toString('base64url'), VAPID_PRIVATE_KEY: keys.d ?? '',
     OPERATOR_TOKEN_SHA256: createHash('sha256').update(OPERATOR_TOKEN).digest('hex'),
+    ...(secondToken === undefined ? {} : { OPERATOR_SECOND_TOKEN_SHA256: createHash('sha256').update(secondToken).digest('hex') }),
   });
   if (!settings.ok) throw new Error(`settings of the house: ${JSON.stringify(settings.error)}`);
   const woken: Step[] = [];

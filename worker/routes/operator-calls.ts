@@ -11,8 +11,8 @@ export interface Called {
 }
 
 /** Only for who has shown the token: the session of the page stands for it. */
-export async function call(services: DeskServices, method: 'GET' | 'PUT', path: string, given: { readonly body?: unknown; readonly etag?: string } = {}): Promise<Called> {
-  const headers = { 'content-type': 'application/json', ...(given.etag === undefined || given.etag === '' ? {} : { 'if-match': given.etag }) };
+export async function call(services: DeskServices, method: 'GET' | 'PUT' | 'POST', path: string, given: { readonly body?: unknown; readonly etag?: string; readonly headers?: Readonly<Record<string, string>> } = {}): Promise<Called> {
+  const headers = { 'content-type': 'application/json', ...(given.etag === undefined || given.etag === '' ? {} : { 'if-match': given.etag }), ...given.headers };
   const answer = await operator(services, () => Promise.resolve(null)).request(path, { method, headers, ...(given.body === undefined ? {} : { body: JSON.stringify(given.body) }) });
   const body = await answer.json<unknown>();
   const { problems, detail, title } = body as { readonly problems?: readonly Issue[]; readonly detail?: string; readonly title?: string };

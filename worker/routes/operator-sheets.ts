@@ -38,6 +38,17 @@ interface Show {
   readonly status: number;
 }
 
+function needsSecond({ settings }: DeskServices, changes: readonly SheetChange[]): boolean {
+  return settings.secondTokenSha256 !== null && changes.some(({ loosens }) => loosens);
+}
+
+/** The header that lets this very version through, for who holds the second key; null for anybody else. */
+async function approved(services: DeskServices, path: string, wanted: { readonly body: unknown; readonly etag: string }, token: string): Promise<Readonly<Record<string, string>> | null> {
+  const asked = await call(services, 'POST', `${path}/approval`, { ...wanted, headers: { authorization: `Bearer ${token}` } });
+  const { approval } = asked.body as { readonly approval?: string | null };
+  return typeof approval === 'string' ? { approval } : null;
+}
+
 export async function oneSheet(visit: Visit, id: string, sent: FormData | null): Promise<Response | null> {
   const { services, stamp, said } = visit;
   const sheet = (await sitesAndSheets(services)).sheets.find((known) => known.id === id);
@@ -46,7 +57,7 @@ export async function oneSheet(visit: Visit, id: string, sent: FormData | null):
   const etag = now.status === 200 ? now.etag : '';
   const [history, held] = await Promise.all([services.stores.sheetHistory.of(id), heldTo(services, id)]);
   const show = ({ form, problems, changes, status }: Show): Response => shown(sheetPage({
-    title: sheet.name, stamp, said: said === 'saved' ? 'Saved. From the next brief on this version counts; whoever it loosens is told with it.' : null, sheet, form, etag, history, held, changes,
+    title: sheet.name, stamp, said: said === 'saved' ? 'Saved. From the next brief on this version counts; whoever it loosens is told with it.' : null, sheet, form, etag, history, held, changes, asksSecond: changes !== null && needsSecond(services, changes),
     fieldProblems: problems, problems: problems.filter(({ path }) => !/^\$\.limits\.\w+$/.test(path)),
   }), status);
   if (sent === null) return show({ form: formOfSheet(sheet), problems: [], changes: null, status: 200 });
@@ -58,7 +69,11 @@ export async function oneSheet(visit: Visit, id: string, sent: FormData | null):
   if (changes.some(({ loosens }) => loosens) && sent.get('aware') !== '1') {
     return show({ form: sent, problems: [{ path: '$', value: '', problem: 'this lets more pass than before', allowed: 'to say below that it is meant' }], changes, status: 400 });
   }
-  const written = await call(services, 'PUT', `/sheets/${encodeURIComponent(id)}`, { body: json, etag: textIn(sent, 'etag') });
+  const path = `/sheets/${encodeURIComponent(id)}`;
+  const wanted = { body: json, etag: textIn(sent, 'etag') };
+  const approval = needsSecond(services, changes) ? await approved(services, path, wanted, textIn(sent, 'second')) : {};
+  if (approval === null) return show({ form: sent, problems: [{ path: '$', value: 'not shown', problem: 'what loosens needs the second key here', allowed: 'the token of whoever holds it, typed below' }], changes, status: 400 });
+  const written = await call(services, 'PUT', path, { ...wanted, headers: approval });
   if (written.problems.length > 0) return show({ form: sent, problems: written.problems, changes, status: written.status === 412 ? 412 : 400 });
   return seeOther(`/operator/sheets/${encodeURIComponent(id)}?said=saved`);
 }

@@ -21,12 +21,18 @@ export interface DeskHouse {
   close(): Promise<void>;
 }
 
-interface HouseModule {
-  startHouse(options: { readonly sites: boolean }): Promise<DeskHouse>;
+export interface HouseOptions {
+  /** Those of the demo; else a blank database, but for its tables. */
+  readonly sites: boolean;
+  /** Of whoever holds the second key, where there is one. */
+  readonly secondToken?: string;
 }
 
-/** `sites`: those of the demo; else a blank database, but for its tables. */
-export async function startHouse(options: { readonly sites: boolean }): Promise<DeskHouse> {
+interface HouseModule {
+  startHouse(options: HouseOptions): Promise<DeskHouse>;
+}
+
+export async function startHouse(options: HouseOptions): Promise<DeskHouse> {
   const house = (await import(new URL('../../support/desk-house.ts', import.meta.url).pathname)) as HouseModule;
   return house.startHouse(options);
 }

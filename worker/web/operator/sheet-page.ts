@@ -20,6 +20,8 @@ export interface SheetPage extends OperatorFrame {
   readonly changes: readonly SheetChange[] | null;
   readonly etag: string;
   readonly history: readonly StoredSheetChange[];
+  /** What stands in the fields needs the second key besides. */
+  readonly asksSecond: boolean;
   /** Subscribers who are held to it. */
   readonly held: number;
 }
@@ -105,12 +107,12 @@ function changeItem({ what, before, after }: SheetChange): Html {
 }
 
 function changesPart(page: SheetPage): Piece {
-  const { changes, held } = page;
+  const { changes, held, asksSecond } = page;
   if (changes === null) return null;
   if (changes.length === 0) return html`<p>Nothing would change in what is judged.</p>`;
   const [looser, tighter] = [changes.filter(({ loosens }) => loosens), changes.filter(({ loosens }) => !loosens)];
   return html`${looser.length === 0 ? null : html`<section class="loosens" aria-labelledby="loosens-h"><h2 id="loosens-h">Lets more pass than before</h2><ul>${looser.map(changeItem)}</ul><p>${held === 0 ? 'Nobody who subscribed is held to this sheet now.' : `${held} who subscribed ${held === 1 ? 'is' : 'are'} held to this sheet; the next brief tells each of them what was loosened.`}</p>
-<label class="pick"><input type="checkbox" name="aware" value="1"> <span>I mean to let this pass</span></label></section>`}
+<label class="pick"><input type="checkbox" name="aware" value="1"> <span>I mean to let this pass</span></label>${asksSecond ? html`<div class="field"><label for="second">Token of the second key</label> <input id="second" type="password" name="second" maxlength="200" autocomplete="off"></div>` : null}</section>`}
 ${tighter.length === 0 ? null : html`<section class="tightens" aria-labelledby="tightens-h"><h2 id="tightens-h">Holds tighter than before</h2><ul>${tighter.map(changeItem)}</ul></section>`}`;
 }
 
