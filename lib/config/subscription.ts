@@ -52,14 +52,19 @@ interface Kinded {
   readonly kind: 'launch' | 'strip';
 }
 
+/** Somebody who pauses for longer than this century means to end it. */
+export function isPauseDate(text: string): boolean {
+  return isCalendarDate(text) && text < '2100';
+}
+
 function preferences() {
-  const DATE = 'a date yyyy-mm-dd';
+  const DATE = 'a date yyyy-mm-dd of this century';
   return {
     sites: list(fields({ id: kebabId(), sheet: z.optional(kebabId()) }), { min: 1, max: 50 }),
     wing: z.optional(z.unknown()),
     deliver: fields({ at: clock(), timeZone: zone(), days: z.optional(list(oneOf(DAYS), { min: 1, max: 7 })) }),
     units: z.optional(fields({ speed: z.optional(oneOf(SPEED_UNITS)), height: z.optional(oneOf(HEIGHT_UNITS)) })),
-    pauseUntil: z.nullish(z.string({ error: () => DATE }).check(z.refine(isCalendarDate, { error: () => DATE, params: { problem: 'no date' } }))),
+    pauseUntil: z.nullish(z.string({ error: () => DATE }).check(z.refine(isPauseDate, { error: () => DATE, params: { problem: 'no date' } }))),
     /** There is English; whoever asks for another language is answered in it. */
     language: z.optional(z.string({ error: () => 'a language tag such as "en"' }).check(z.maxLength(35, { error: () => 'at most 35 characters' }))),
   };

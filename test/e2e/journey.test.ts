@@ -130,6 +130,8 @@ test.each(cases)('%s, clocks changed on %s: told once a wanted morning at the ho
   await passTo(dueMs(5) + 5 * HOUR_MS);
   expectBrief(4, 5);
 
+  expect((await ask('POST', api, { action: 'test' })).status).toBe(200);
+
   // One click, as a mail program makes it, and nothing is left of her: not in a table, not behind a link, not in a later morning.
   const [{ id } = { id: '' }] = post.d1.ask<{ id: string }>('SELECT id FROM subscription');
   const leave = new URL(/<(.+)>/.exec(post.letters.at(-1)?.headers['List-Unsubscribe'] ?? '')?.[1] ?? '').pathname;

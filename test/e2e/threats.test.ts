@@ -123,6 +123,16 @@ describe('people at the door', () => {
     expect((await post.ask('POST', '/api/v1/subscriptions', wish({ language }))).status).toBe(202);
   });
 
+  test.each(['9999-12-31', '2100-01-01', '0000-01-01', '2027-05-13', '2027-02-30', '20270520'])('a pause until %j is refused, by its own action and among the wishes', async (until) => {
+    const post = await opened();
+    const made = await post.ask('POST', '/api/v1/subscriptions', wish({ channels: [{ kind: 'webhook', url: 'http://127.0.0.1:9/x' }] }));
+    const api = `/api/v1${new URL(((await made.json()) as { links: { manage: string } }).links.manage).pathname}`;
+    expect((await post.ask('POST', api, { action: 'pause', until })).status).toBe(400);
+    // Among the wishes a day that has passed is no pause.
+    expect((await post.ask('POST', '/api/v1/subscriptions', wish({ pauseUntil: until }))).status).toBe(['2027-05-13', '0000-01-01'].includes(until) ? 202 : 400);
+    expect((await post.ask('POST', api, { action: 'pause', until: '2099-12-31' })).status).toBe(200);
+  });
+
   test('B26 an hour that the clocks leave out is taken, shown as it was asked for, and kept to as F78 has it', async () => {
     const post = await opened({ nowIso: '2027-03-27T12:00:00Z' });
     const asked = await post.ask('POST', '/api/v1/subscriptions', wish({ deliver: { at: '02:30', timeZone: 'Europe/Vienna' }, channels: [{ kind: 'webhook', url: 'http://127.0.0.1:9/x' }] }));

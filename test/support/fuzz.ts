@@ -29,7 +29,7 @@ const HOUSEFUL = 1000;
 
 const JUNK: readonly unknown[] = [
   null, '', ' ', -1, 0, -0, 1e308, 5e-324, 2 ** 53, true, false, [], {}, [[]], [null], { a: {} }, 'x'.repeat(300), '\u202e', '\u0000', '\ud800', 'a\r\nBcc: x@y.org', '<script>', "' OR 1=1 --", '"', '\\', '../../etc/passwd',
-  'constructor', 'toString', '1e999', 'NaN', '25', 'true', '2027-02-30', '24:00', 'Europe/Wein', 'https://127.0.0.1/', 'a@b', 'ana@mail.example.org', 'north', 'hill', 'https://hook.example.com/x',
+  'constructor', 'toString', '1e999', 'NaN', '25', 'true', '2027-02-30', '9999-12-31', '2099-12-31', '0001-01-01', '24:00', 'Europe/Wein', 'https://127.0.0.1/', 'a@b', 'ana@mail.example.org', 'north', 'hill', 'https://hook.example.com/x',
 ];
 const KEYS = ['__proto__', 'constructor', 'confirmed', 'id', 'role', 'sites', 'channels', 'x', ''] as const;
 

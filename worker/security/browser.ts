@@ -14,6 +14,7 @@ import type { ChannelToAsk, StoredChannel } from '../store/channel.ts';
 import { UNCONFIRMED_MS } from '../store/signup.ts';
 import { newToken } from '../store/token.ts';
 import { subscriptionOf } from './manage.ts';
+import { browserKey } from './owner.ts';
 
 const AT_ONCE = 5;
 /** Whoever asks: so many of them reach one browser a day, so that nobody is pestered through us. */
@@ -29,7 +30,7 @@ async function ask(services: Services, channel: ChannelToAsk): Promise<void> {
   const { stores, clock, settings, channels } = services;
   const nowMs = clock.nowMs();
   const { endpoint } = JSON.parse(channel.target) as { readonly endpoint: string };
-  const isOver = (await stores.rate.take(`ask ${(await sha256Hex(endpoint)).slice(0, 32)}`, ASKS, nowMs)) > 0;
+  const isOver = (await stores.rate.take(`ask ${await browserKey(settings.linkKey ?? 'no key', endpoint)}`, ASKS, nowMs)) > 0;
   const nonce = newToken();
   if (!isOver) await stores.token.put(nonce, { purpose: 'push', subject: channel.id, expiresAtMs: nowMs + UNCONFIRMED_MS });
   const message = {

@@ -1,7 +1,7 @@
 import { testLetter } from '../../lib/brief/words/letters.ts';
 import type { DisplayUnits } from '../../lib/brief/units-out.ts';
-import { DAYS } from '../../lib/config/subscription.ts';
-import { isCalendarDate, isoUtc, localDate } from '../../lib/time.ts';
+import { DAYS, isPauseDate } from '../../lib/config/subscription.ts';
+import { isoUtc, localDate } from '../../lib/time.ts';
 import type { Issue } from '../../lib/result.ts';
 import type { Message } from '../channels/channel.ts';
 import { followingDueMs, SEND_TIMEOUT_MS } from '../morning/times.ts';
@@ -43,7 +43,7 @@ export async function act(services: DeskServices, detail: SubscriptionDetail, { 
         await stores.db.together(stores.subscription.pause(id, null));
         return { state: 'done' };
       }
-      if (typeof until !== 'string' || !isCalendarDate(until) || until <= localDate(nowMs, detail.timeZone)) {
+      if (typeof until !== 'string' || !isPauseDate(until) || until <= localDate(nowMs, detail.timeZone)) {
         return { state: 'wrong', problems: [{ path: '$.until', value: typeof until === 'string' ? JSON.stringify(until.slice(0, 20)) : typeof until, problem: 'not a day to come', allowed: 'a date yyyy-mm-dd after today, or none' }] };
       }
       await stores.db.together(pauseRows(services, id, detail, until));

@@ -13,6 +13,11 @@ export function ownerOf(linkKey: string, address: string): Promise<string> {
   return keyed(linkKey, 'owner', sameMailbox(address));
 }
 
+/** Which browser it is. */
+export function browserKey(linkKey: string, endpoint: string): Promise<string> {
+  return keyed(linkKey, 'browser', endpoint);
+}
+
 /** Who asks, for counting: the network that a request came from. Of IPv6 the first 64 bits, which one customer has whole. */
 export async function callerKey(linkKey: string, request: Request): Promise<string> {
   const from = request.headers.get('cf-connecting-ip') ?? 'unknown';

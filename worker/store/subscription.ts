@@ -105,6 +105,7 @@ export function subscriptionStore(db: Database) {
         ...['channel', 'subscription_site', 'outbox'].map((table) => ({ sql: `DELETE FROM ${table} WHERE subscription_id = ?`, values: [id] })),
         { sql: 'UPDATE plan SET subscription_id = NULL WHERE subscription_id = ?', values: [id] },
         { sql: 'DELETE FROM signup WHERE id = ?1 OR owner = (SELECT owner FROM subscription WHERE id = ?1)', values: [id] },
+        { sql: `DELETE FROM rate WHERE key = 'test ' || ?`, values: [id] },
         { sql: 'DELETE FROM subscription WHERE id = ?', values: [id] },
         ...[['wing', 'key'], ['brief', 'wing_key'], ['run', 'wing_key']].map(([table, key]) => (
           { sql: `DELETE FROM ${table} WHERE ${key} >= 'own-' AND ${key} < 'own.' AND ${key} NOT IN (SELECT wing_key FROM subscription_site) AND ${key} NOT IN (SELECT wing_key FROM published)`, values: [] }
