@@ -14,6 +14,7 @@ import type { Job, Step } from './morning/job.ts';
 import { ownData, ownReaders } from './own-data.ts';
 import type { Mailer } from './security/mailer.ts';
 import type { Clock, DeskServices, IdSource } from './service-set.ts';
+import { sayer } from './say.ts';
 import { readSettings, type Env, type Settings } from './settings.ts';
 import { withCompanions } from './sources/order.ts';
 import { database, type D1 } from './store/database.ts';
@@ -33,6 +34,8 @@ export interface World {
   readonly ids: IdSource;
   readonly random: () => number;
   readonly mailer?: Mailer | null;
+  /** Where lines of the running log go; the console unless a test says otherwise. */
+  readonly write?: (line: string) => void;
   /** How long database and queue are waited for. */
   readonly patienceMs?: number;
 }
@@ -70,6 +73,7 @@ export function deskServices(world: World): DeskServices {
     wingClasses: ownData.wingClasses,
     shippedSheets: ownData.sheets,
     thresholds: ownData.thresholds,
+    say: sayer(clock.nowMs, world.write ?? ((line) => console.log(line))),
     wake: waker(world.queues, patienceMs),
     sourceNames: ({ site, demo }) => (demo && !settings.rehearsal ? ownData.demo().sources : withCompanions(sourcesFor(ownData.sources(), site))),
     judge: judgeDay,

@@ -10,6 +10,7 @@ import type { ChannelChecks } from '../lib/config/subscription-channels.ts';
 import type { Address, Channel } from './channels/channel.ts';
 import type { Step } from './morning/job.ts';
 import type { Mailer } from './security/mailer.ts';
+import type { Say } from './say.ts';
 import type { Settings } from './settings.ts';
 import type { Source } from './sources/source.ts';
 import type { AbsenceStore } from './store/absence.ts';
@@ -48,6 +49,8 @@ export interface DeskServices {
   /** 0 to 1; spreads retries. */
   readonly random: () => number;
   readonly stores: Stores;
+  /** Writes a line of the running log. */
+  readonly say: Say;
   /** Sends wake-up calls. Never fails: a call that cannot be sent is made up for by the sweep. */
   readonly wake: (step: Step, calls: number) => Promise<void>;
   /** The names of the sources of a site, in the order of config; the desk reads what they said, and asks none. */

@@ -55,6 +55,8 @@ export class FastHouse {
   queue: Step[] = [];
   readonly d1: SqliteD1 = sqliteD1();
   readonly posts: FastPost[] = [];
+  /** Of the running log. */
+  readonly lines: string[] = [];
   readonly fetched: string[] = [];
   readonly asked: SourceRequest[] = [];
   #ids = 0;
@@ -73,7 +75,7 @@ export class FastHouse {
         settings: settings.value, db: this.options.around?.(this.d1) ?? this.d1,
         queues: { fetch: queueOf('fetch'), assess: queueOf('assess'), deliver: queueOf('deliver') },
         fetch: (url, init) => this.#fetch(url, init), sleep: async () => undefined,
-        clock: { nowMs: () => this.nowMs }, ids: { next: () => `by-${(this.#ids += 1)}` }, random: () => 0.5, patienceMs: 25,
+        clock: { nowMs: () => this.nowMs }, ids: { next: () => `by-${(this.#ids += 1)}` }, random: () => 0.5, patienceMs: 25, write: (line) => { this.lines.push(line); },
       },
       { sourcesFor: () => [{ id: 'stand-in:one', kind: 'deterministic', covers: () => true, fetch: (request) => this.#answers(request) }], judge: (input) => this.options.judge?.(input) ?? judgedAs(input, 'within') },
     );

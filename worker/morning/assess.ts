@@ -5,6 +5,7 @@ import type { LimitSheet } from '../../lib/margin/sheet.ts';
 import { isoUtc, localDay, MINUTE_MS } from '../../lib/time.ts';
 import type { Wing } from '../../lib/wing/wing.ts';
 import { sha256Hex } from '../secrets.ts';
+import { traceOf } from '../say.ts';
 import type { Place, Services } from '../service-set.ts';
 import type { NewBrief } from '../store/brief.ts';
 import type { Statement } from '../store/database.ts';
@@ -73,6 +74,7 @@ async function assessSiteDay(services: Services, { runs, place, localDate }: Sit
       await putOff(services, [run], `judging failed: ${error instanceof Error ? error.name : 'unknown'}`);
     }
   }
+  services.say({ step: 'assess', event: 'judged', trace: [traceOf({ siteId: place.site.id, localDate })], detail: { pairs: done.length, new: statements.length } });
   await stores.db.together([...statements, stores.runWork.finishAssessments(done, nowMs), stores.meta.setting('last-assess', String(nowMs))]);
 }
 

@@ -5,6 +5,7 @@ import { inLanes } from './lanes.ts';
 import { marker } from './marks.ts';
 import { MOST_CALLS, SEND_CHUNK, SENDS_SIDE_BY_SIDE } from './sizes.ts';
 import { LEASE_MS, SEND_TIMEOUT_MS } from './times.ts';
+import { traceOf } from '../say.ts';
 import { statementsOf } from '../store/mark.ts';
 
 /** What is left of a lease must outlast a send and its mark, or somebody else would send the same again. */
@@ -46,6 +47,7 @@ export async function deliverStep(services: Services): Promise<boolean> {
     const { state, marks } = await deliverOne(services, item, by);
     await mark(marks);
     unmarked -= calls;
+    services.say({ step: 'deliver', event: state, trace: item.message.days.map(traceOf), detail: { message: item.row.id, channel: item.channel.kind, kind: item.row.kind } });
     if (state === 'sent') reached.push(item.channel.id);
   });
   const nowMs = clock.nowMs();

@@ -2,6 +2,7 @@ import { MAX_GROUND_CHANGE_M } from '../../lib/forecast/place.ts';
 import { isoUtc } from '../../lib/time.ts';
 import { failure } from '../../lib/result.ts';
 import type { Place, Services } from '../service-set.ts';
+import { traceOf } from '../say.ts';
 import type { Source, SourceAnswer } from '../sources/source.ts';
 import type { FetchRun } from '../store/run-work.ts';
 import { endedFetch, failureEntries, groundEntry } from './fetch-ended.ts';
@@ -35,12 +36,19 @@ export async function fetchStep(services: Services): Promise<boolean> {
     ...behindOf(services, asked, answers).map((sources) => stores.runWork.putBehind(sources, nowMs)),
     stores.meta.setting('last-fetch', String(nowMs)),
   ]);
+  sayFetched(services, runs, answers);
   const moved = grounds.length === 0 ? [] : await stores.sourceGround.moved(grounds, MAX_GROUND_CHANGE_M);
   await stores.log.write([...failureEntries(runs[0]?.source ?? '', answers), ...moved.map(groundEntry)], nowMs);
   const ready = await stores.run.ready(nowMs, ASSESS_CHUNK, runs.map((run) => run.siteId));
   await services.wake('assess', ready.assessJobs);
   if (ready.fetch > 0 || claimed.length > runs.length) await services.wake('fetch', 1);
   return true;
+}
+
+/** A line a kind of answer, however many sites it is about. */
+function sayFetched(services: Services, runs: readonly FetchRun[], answers: ReadonlyMap<string, SourceAnswer>): void {
+  const kinds = Map.groupBy(runs, ({ siteId }) => { const answer = answers.get(siteId); return answer === undefined ? 'not asked' : answer.ok ? 'stored' : answer.error.kind; });
+  for (const [event, some] of kinds) services.say({ step: 'fetch', event, trace: some.map(traceOf), detail: { source: some[0]?.source ?? '' } });
 }
 
 interface Asked {

@@ -45,6 +45,8 @@ export class House {
   /** Wake-up calls that are under way. */
   queue: Step[] = [];
   readonly posts: Post[] = [];
+  /** Of the running log. */
+  readonly lines: string[] = [];
   readonly asked: SourceRequest[] = [];
   calls = { db: 0, fetch: 0, queue: 0 };
   options: HouseOptions;
@@ -79,6 +81,7 @@ export class House {
         clock: { nowMs: () => this.nowMs },
         ids: { next: () => `by-${(this.#ids += 1)}` },
         random: () => 0.5,
+        write: (line) => { this.lines.push(line); },
         patienceMs: faults === undefined ? 10_000 : 25,
       },
       this.options.real === true ? {} : { sourcesFor: () => [this.#source()], judge: this.options.judge ?? ((input) => judgedAs(input, 'within')) },
