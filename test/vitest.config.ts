@@ -77,6 +77,8 @@ export default defineConfig({
           environment: 'node',
           include: ['test/browser/**/*.test.ts'],
           testTimeout: 120_000,
+          // A browser on a busy machine: no check of ours is about how long something takes.
+          expect: { poll: { timeout: 20_000 } },
           hookTimeout: 120_000,
           fileParallelism: false,
           sequence: { groupOrder: 4 },
