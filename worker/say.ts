@@ -8,7 +8,7 @@ export interface Said {
   readonly step: 'fetch' | 'assess' | 'deliver';
   readonly event: string;
   readonly trace: readonly string[];
-  readonly detail?: Readonly<Record<string, string | number>>;
+  readonly detail?: Readonly<Record<string, string | number | readonly string[]>>;
 }
 
 export type Say = (said: Said) => void;

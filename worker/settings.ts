@@ -1,5 +1,6 @@
 import { failure, success, type Issue, type Result } from '../lib/result.ts';
 import type { Job } from './morning/job.ts';
+import { FREE_CALLS, PAID_CALLS } from './morning/sizes.ts';
 import { mailAddress } from './security/mail-address.ts';
 import { mailServer, type MailServer } from './security/mail-server.ts';
 import type { MailBinding } from './security/mailer.ts';
@@ -37,6 +38,8 @@ export interface Env {
   /** The platform's own way to send mail, in place of SMTP_URL. */
   readonly MAIL?: MailBinding;
   readonly HEARTBEAT_URL?: string;
+  /** Calls that one invocation may make: 50 unless the plan allows more. */
+  readonly CALLS_AN_INVOCATION?: string;
 }
 
 export interface Settings {
@@ -59,6 +62,8 @@ export interface Settings {
   readonly smtp: MailServer | null;
   readonly mailFrom: string | null;
   readonly heartbeatUrl: string | null;
+  /** Calls of fetch, database and queue that one invocation may make. */
+  readonly mostCalls: number;
 }
 
 const LOOPBACK = new Set(['127.0.0.1', '[::1]', 'localhost']);
@@ -116,6 +121,9 @@ export function readSettings(env: Partial<Record<keyof Env, unknown>>): Result<S
   const mailFrom = text('MAIL_FROM');
   if (mailFrom !== null && !('is' in mailAddress(mailFrom))) wrong('MAIL_FROM', JSON.stringify(mailFrom.slice(0, 80)), 'not a mail address', 'name@domain');
   if (smtp !== null && mailFrom === null) wrong('MAIL_FROM', 'missing', 'SMTP_URL needs an address to send from', 'name@domain');
+  const calls = text('CALLS_AN_INVOCATION');
+  const mostCalls = calls === null ? FREE_CALLS : Number(calls);
+  if (!(Number.isInteger(mostCalls) && mostCalls >= FREE_CALLS && mostCalls <= PAID_CALLS)) wrong('CALLS_AN_INVOCATION', JSON.stringify(calls?.slice(0, 20)), 'not what a plan allows', `a whole number from ${FREE_CALLS} to ${PAID_CALLS}`);
   const settings: Settings = {
     publicUrl: origin('PUBLIC_URL', 'http://127.0.0.1:8787'),
     local,
@@ -134,6 +142,7 @@ export function readSettings(env: Partial<Record<keyof Env, unknown>>): Result<S
     smtp,
     mailFrom,
     heartbeatUrl,
+    mostCalls,
   };
   return issues.length > 0 ? failure(issues) : success(settings);
 }

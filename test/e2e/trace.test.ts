@@ -7,7 +7,7 @@ interface Line {
   readonly step: string;
   readonly event: string;
   readonly trace: readonly string[];
-  readonly message?: string;
+  readonly messages?: readonly string[];
 }
 
 test('fetch, judgement and message of a site’s day carry one trace; no line names a subscriber, an address or a secret', async () => {
@@ -22,7 +22,7 @@ test('fetch, judgement and message of a site’s day carry one trace; no line na
   expect(house.lines.every((line) => !line.includes('\n'))).toBe(true);
   const followed = (trace: string) => [...new Set(lines.filter((line) => line.trace.includes(trace)).map(({ step, event }) => `${step} ${event}`))];
   for (const trace of ['north@2027-05-14', 'west@2027-05-14']) expect(followed(trace)).toEqual(['fetch stored', 'assess judged', 'deliver sent']);
-  const sent = lines.filter(({ step }) => step === 'deliver').map(({ message }) => message);
+  const sent = lines.filter(({ step }) => step === 'deliver').flatMap(({ messages }) => messages ?? []);
   expect(sent.sort()).toEqual(house.posts.map(({ id }) => id).sort());
   expect(house.lines.join('\n')).not.toMatch(/somebody-in-particular|another-one|secret-place|elsewhere|127\.0\.0\.1|a-link-key/);
 });

@@ -9,7 +9,7 @@ import { issueLines } from './report.ts';
 import { secretsIn } from './state.ts';
 import { root, wrangler } from './wrangler.ts';
 
-const SETTINGS = ['PUBLIC_URL', 'CONTACT', 'SMTP_URL', 'MAIL_FROM', 'HEARTBEAT_URL', 'OPEN_METEO_KEY'] as const;
+const SETTINGS = ['PUBLIC_URL', 'CONTACT', 'SMTP_URL', 'MAIL_FROM', 'HEARTBEAT_URL', 'OPEN_METEO_KEY', 'CALLS_AN_INVOCATION'] as const;
 const NEEDED = ['PUBLIC_URL', 'CONTACT'] as const;
 
 class Stop extends Error {

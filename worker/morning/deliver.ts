@@ -1,9 +1,9 @@
 import type { Services } from '../service-set.ts';
 import { compose, type Composed } from './compose.ts';
-import { deliverOne } from './deliver-one.ts';
+import { deliverOne, type Delivered } from './deliver-one.ts';
 import { inLanes } from './lanes.ts';
 import { marker } from './marks.ts';
-import { MOST_CALLS, SEND_CHUNK, SENDS_SIDE_BY_SIDE } from './sizes.ts';
+import { sendChunk, SENDS_SIDE_BY_SIDE } from './sizes.ts';
 import { LEASE_MS, SEND_TIMEOUT_MS } from './times.ts';
 import { traceOf } from '../say.ts';
 import { statementsOf } from '../store/mark.ts';
@@ -23,18 +23,21 @@ if (LEASE_MS < SEND_TIMEOUT_MS + MARK_MS) throw new Error(`a lease of ${LEASE_MS
 export async function deliverStep(services: Services): Promise<boolean> {
   const { stores, clock } = services;
   const by = services.ids.next();
-  const rows = await stores.outbox.claim({ nowMs: clock.nowMs(), leaseMs: LEASE_MS, by, limit: SEND_CHUNK });
+  const { mostCalls } = services.settings;
+  const chunk = sendChunk(mostCalls);
+  const rows = await stores.outbox.claim({ nowMs: clock.nowMs(), leaseMs: LEASE_MS, by, limit: chunk });
   if (rows.length === 0) return false;
   // There may be more: whoever answers goes on with it while these are being sent, and waits for no slow receiver of them.
-  const woken = rows.length === SEND_CHUNK ? services.wake('deliver', 1) : undefined;
+  const woken = rows.length === chunk ? services.wake('deliver', 1) : undefined;
   const { composed, orphans } = await compose(services, rows);
   const reached: string[] = [];
   const putBack: string[] = [];
+  const ended: Ended[] = [];
   const laneOf = ({ channel }: Composed): string => services.channels[channel.kind]?.lane(channel) ?? channel.id;
   const mark = marker(stores.db);
   let sends = 0;
   let unmarked = 0;
-  const isEnough = (needed: number): boolean => stores.db.asked() + sends + needed + unmarked + CALLS_AT_THE_END <= MOST_CALLS;
+  const isEnough = (needed: number): boolean => stores.db.asked() + sends + needed + unmarked + CALLS_AT_THE_END <= mostCalls;
   await inLanes(composed, laneOf, SENDS_SIDE_BY_SIDE, async (item) => {
     // One that has yet to show that it wants to be told is asked first, and has that marked too.
     const calls = item.channel.state === 'active' ? 1 : 2;
@@ -47,7 +50,7 @@ export async function deliverStep(services: Services): Promise<boolean> {
     const { state, marks } = await deliverOne(services, item, by);
     await mark(marks);
     unmarked -= calls;
-    services.say({ step: 'deliver', event: state, trace: item.message.days.map(traceOf), detail: { message: item.row.id, channel: item.channel.kind, kind: item.row.kind } });
+    ended.push({ item, state });
     if (state === 'sent') reached.push(item.channel.id);
   });
   const nowMs = clock.nowMs();
@@ -57,7 +60,23 @@ export async function deliverStep(services: Services): Promise<boolean> {
     stores.channel.reached(reached, nowMs),
     stores.meta.setting('last-deliver', String(nowMs)),
   ]);
+  sayEnded(services, ended);
   await woken;
   if (putBack.length > 0) await services.wake('deliver', 1);
   return true;
+}
+
+interface Ended {
+  readonly item: Composed;
+  readonly state: Delivered['state'];
+}
+
+/** A line a way to end and channel: a line a message costs as much as the sending of it. */
+function sayEnded({ say }: Services, ended: readonly Ended[]): void {
+  for (const some of Map.groupBy(ended, ({ item, state }) => `${state} ${item.channel.kind}`).values()) {
+    const [first] = some;
+    if (first === undefined) continue;
+    const trace = [...new Set(some.flatMap(({ item }) => item.message.days.map(traceOf)))];
+    say({ step: 'deliver', event: first.state, trace, detail: { channel: first.item.channel.kind, messages: some.map(({ item }) => item.row.id) } });
+  }
 }

@@ -22,6 +22,7 @@ const main = {
   ...(isDriven ? {} : { queueConsumers: { fetch: consumer, assess: consumer, deliver: consumer, dead: { maxBatchSize: 10, maxBatchTimeout: 1 } } }),
   bindings: {
     LOCAL: '1', LOCAL_TOKEN: token, LINK_KEY: 'a-link-key-for-tests-only-0123456789', PUBLIC_URL: `http://127.0.0.1:${port}`,
+    ...(process.env['CALLS_AN_INVOCATION'] === undefined ? {} : { CALLS_AN_INVOCATION: process.env['CALLS_AN_INVOCATION'] }),
     ...(process.env['SMTP_URL'] === undefined ? {} : { SMTP_URL: process.env['SMTP_URL'], MAIL_FROM: 'brief@dawnmargin.example.org' }),
     ...(process.env['VAPID_PUBLIC_KEY'] === undefined ? {} : { VAPID_PUBLIC_KEY: process.env['VAPID_PUBLIC_KEY'], VAPID_PRIVATE_KEY: process.env['VAPID_PRIVATE_KEY'] ?? '' }),
   },
