@@ -69,6 +69,7 @@ export function deskServices(world: World): DeskServices {
   const stores = storesOn(database(world.db, { sleep: world.sleep, random, timeoutMs: patienceMs }));
   return {
     settings, clock, ids, random, stores,
+    sleep: world.sleep,
     read: ownReaders,
     wingClasses: ownData.wingClasses,
     shippedSheets: ownData.sheets,

@@ -49,6 +49,7 @@ export interface DeskServices {
   /** 0 to 1; spreads retries. */
   readonly random: () => number;
   readonly stores: Stores;
+  readonly sleep: (ms: number) => Promise<void>;
   /** Writes a line of the running log. */
   readonly say: Say;
   /** Sends wake-up calls. Never fails: a call that cannot be sent is made up for by the sweep. */

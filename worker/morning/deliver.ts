@@ -11,6 +11,9 @@ import { statementsOf } from '../store/mark.ts';
 /** What is left of a lease must outlast a send and its mark, or somebody else would send the same again. */
 const MARK_MS = 5000;
 
+/** So long a mark waits for those of other sends that end with it. */
+const GATHER_MS = 4;
+
 /** The four statements that end the step, two wake-up calls, and one to spare for a fault that is logged. */
 const CALLS_AT_THE_END = 7;
 
@@ -34,7 +37,7 @@ export async function deliverStep(services: Services): Promise<boolean> {
   const putBack: string[] = [];
   const ended: Ended[] = [];
   const laneOf = ({ channel }: Composed): string => services.channels[channel.kind]?.lane(channel) ?? channel.id;
-  const mark = marker(stores.db);
+  const mark = marker(stores.db, () => services.sleep(GATHER_MS));
   let sends = 0;
   let unmarked = 0;
   const isEnough = (needed: number): boolean => stores.db.asked() + sends + needed + unmarked + CALLS_AT_THE_END <= mostCalls;

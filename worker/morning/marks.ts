@@ -9,10 +9,11 @@ interface Waiting {
 
 /**
  * Marks what has been sent, each piece as soon as it can be: while one write is under way, what has been sent meanwhile
- * waits and is written together. Whoever marks waits until it is written, so that no more is ever unmarked than is sent
+ * waits and is written together. `gather` is the moment that is waited for others that end at the same time: two writes cost
+ * twice as much as one. Whoever marks waits until it is written, so that no more is ever unmarked than is sent
  * side by side.
  */
-export function marker(db: Pick<Database, 'together'>): (marks: readonly (Mark | Statement)[]) => Promise<void> {
+export function marker(db: Pick<Database, 'together'>, gather: () => Promise<void>): (marks: readonly (Mark | Statement)[]) => Promise<void> {
   let waiting: Waiting[] = [];
   let isWriting = false;
 
@@ -30,6 +31,7 @@ export function marker(db: Pick<Database, 'together'>): (marks: readonly (Mark |
   async function writeAll(): Promise<void> {
     isWriting = true;
     while (waiting.length > 0) {
+      await gather();
       const group = waiting;
       waiting = [];
       await write(group);
