@@ -1,5 +1,5 @@
 /** Angles in degrees, clockwise from true north. */
-export const RAD_PER_DEG = Math.PI / 180;
+const RAD_PER_DEG = Math.PI / 180;
 
 export function radians(deg: number): number {
   return deg * RAD_PER_DEG;

@@ -1,4 +1,5 @@
-// npm run check: types of every project, then lint (type-aware), then the repository's own rules.
+// npm run check: types of every project, lint (type-aware; it finds circular imports too), what nothing uses, and then the
+// repository's own rules.
 // Everything runs even if something before it failed, so that one run shows every problem.
 import { existsSync, globSync } from 'node:fs';
 import path from 'node:path';
@@ -16,6 +17,7 @@ for (const project of projects) {
   if (hasFiles) await step(`types of ${project}`, toolEntry('typescript', 'tsc'), ['-p', project]);
 }
 await step('lint', toolEntry('oxlint', 'oxlint'), ['--type-aware', '--deny-warnings']);
+await step('nothing unused', toolEntry('knip', 'knip'), ['--config', 'test/knip.json', '--no-config-hints', '--no-progress']);
 // Under npm test the rules run with all the other tests.
 if (process.env['npm_lifecycle_event'] !== 'test' && existsSync(path.join(root, 'test/lib/rules'))) {
   await step('rules', vitestEntry, ['run', '--config=test/vitest.config.ts', '--project=lib', 'test/lib/rules']);

@@ -60,7 +60,7 @@ function decimalsFor({ value, unit }: Quantity): number {
   return isFine && Math.abs(value) < 10 ? 1 : 0;
 }
 
-export function rounded(value: number, decimals: number, rounding: Rounding): number {
+function rounded(value: number, decimals: number, rounding: Rounding): number {
   const scaled = value * 10 ** decimals;
   const whole =
     rounding === 'down' ? Math.floor(scaled + SUM_NOISE)

@@ -2,7 +2,7 @@ import type { Forecast } from '../forecast/conditions.ts';
 import type { SourceFailure } from '../forecast/failure.ts';
 import { checkFrame } from '../forecast/frame.ts';
 import { runAgeHours } from '../forecast/ages.ts';
-import { checkHour, type CheckedHour } from '../forecast/ranges.ts';
+import { checkHour } from '../forecast/ranges.ts';
 import { viewsOf, type BorrowMixedLayer } from '../margin/judge-member.ts';
 import type { HourView } from '../margin/hour-view.ts';
 import type { Setup } from '../margin/setup.ts';
@@ -91,9 +91,4 @@ function borrowing(trusted: readonly Forecast[]): BorrowMixedLayer {
   if (lender === undefined) return () => null;
   const depths = new Map((lender.members[0] ?? []).map((hour) => [epochOf(hour.validAt), checkHour(hour).mixedLayerM]));
   return (validAtMs) => ({ depthM: depths.get(validAtMs) ?? NaN, source: lender.source });
-}
-
-/** The hours of a voter's only or first member, in order of time. */
-export function hoursOf(voter: Voter): CheckedHour[] {
-  return [...(voter.members[0]?.values() ?? [])].map(({ hour }) => hour);
 }

@@ -6,8 +6,8 @@
 import { epochOf, HOUR_MS } from '../time.ts';
 
 export const MAX_RUN_AGE_H = 18;
-export const SAID_RUN_AGE_H = 12;
-export const REFETCH_AFTER_H = 3;
+const SAID_RUN_AGE_H = 12;
+const REFETCH_AFTER_H = 3;
 export const MAX_RUN_AHEAD_H = 1;
 
 /** Hours from the model run to `now` (ISO 8601 UTC), negative for a run ahead of it; null when there is no run time. */

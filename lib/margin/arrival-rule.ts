@@ -13,7 +13,7 @@ export function airSinkMps(view: HourView): number {
 }
 
 /** Airspeed and sink at trim with the density at the landing: the slowest true airspeed of the way. */
-export function glideOf(view: HourView, air: 'forecast' | 'still'): Glide {
+function glideOf(view: HourView, air: 'forecast' | 'still'): Glide {
   const site = launchOf(view);
   const airspeedMps = view.trimAt(site.landing.elevationM);
   const still = { altitudeM: [site.landing.elevationM, site.elevationM], uMps: [0, 0], vMps: [0, 0] };
@@ -24,7 +24,7 @@ export function glideOf(view: HourView, air: 'forecast' | 'still'): Glide {
   };
 }
 
-export function glideEnd(view: HourView): GlideEnd {
+function glideEnd(view: HourView): GlideEnd {
   return flyGlide(glideOf(view, 'forecast'));
 }
 

@@ -170,7 +170,7 @@ function windFields(winds: readonly Estimate[], declares: ReadonlySet<ConditionF
 }
 
 /** u and v of a checked wind; a calm has no direction and no components. */
-export function nodeVector(wind: CheckedWind): { readonly uMps: number; readonly vMps: number } {
+function nodeVector(wind: CheckedWind): { readonly uMps: number; readonly vMps: number } {
   return isCalm(wind.speedMps) ? { uMps: 0, vMps: 0 } : vectorOf(wind.speedMps, wind.fromDeg);
 }
 

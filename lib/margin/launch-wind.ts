@@ -37,7 +37,7 @@ export function launchWinds(view: HourView, site: LaunchSite): Estimate[] {
 }
 
 /** A launch far above the model's ground says nothing through the model's 10 m wind. */
-export function groundKept(site: LaunchSite, aboveGroundM: number): boolean {
+function groundKept(site: LaunchSite, aboveGroundM: number): boolean {
   return aboveGroundM <= groundReachM(site.hill);
 }
 

@@ -6,7 +6,7 @@ import { readAtM, stripHeightsBetween, windOverStrip } from './strip-profile.ts'
 
 /** Margins of the tow: shear on the way up, release height, forward speed at release. Strips only. */
 
-export function stripOf(view: HourView): StripSite {
+function stripOf(view: HourView): StripSite {
   const { site } = view.setup;
   if (site.kind !== 'strip') throw new Error('a strip margin was asked of a launch');
   return site;

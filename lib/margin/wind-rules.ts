@@ -8,7 +8,7 @@ import type { LimitName } from './sheet.ts';
 /** Margins on the wind itself, for launches (all kept estimates) and strips (the 10 m wind). */
 
 /** Axis the wind is taken on: where the launch faces, or the heading of the tow. */
-export function axisDeg(view: HourView): number {
+function axisDeg(view: HourView): number {
   const { site } = view.setup;
   return site.kind === 'launch' ? site.facingDeg : view.headingDeg;
 }

@@ -18,7 +18,7 @@ export interface Ellipsoid {
 }
 
 /** NIMA TR8350.2 (third edition, 2000). */
-export const WGS84: Ellipsoid = { semiMajorM: 6378137, flattening: 1 / 298.257223563 };
+const WGS84: Ellipsoid = { semiMajorM: 6378137, flattening: 1 / 298.257223563 };
 
 export interface Geodesic {
   readonly distanceM: number;

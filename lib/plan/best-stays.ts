@@ -15,7 +15,7 @@ export interface Best {
   readonly proven: boolean;
 }
 
-export const NODE_BUDGET = 60_000;
+const NODE_BUDGET = 60_000;
 
 export function bestStays(puzzle: Puzzle, nodeBudget: number = NODE_BUDGET): Best {
   let nodes = 0;

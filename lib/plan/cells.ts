@@ -63,7 +63,7 @@ function shut(closed: Closed): Cell {
 }
 
 /** What the tightest margin of an hour leaves. The thunderstorm signal alone has no number to compare. */
-export function spareOf(hour: JudgedHour): { readonly spare: number; readonly tightest: Tightest | null } {
+function spareOf(hour: JudgedHour): { readonly spare: number; readonly tightest: Tightest | null } {
   let spare = Infinity;
   let tightest: Tightest | null = null;
   for (const margin of hour.margins) {

@@ -67,7 +67,7 @@ function bitsWhere(left: readonly number[], needed: number): number {
 }
 
 /** The way to another site takes the slots right before the stay there; a pause at the same site takes none. */
-export function wayBefore(puzzle: Puzzle, before: Stay | null, stay: Stay): number {
+function wayBefore(puzzle: Puzzle, before: Stay | null, stay: Stay): number {
   return before === null || before.site === stay.site ? 0 : puzzle.gapSlots[before.site]?.[stay.site] ?? 0;
 }
 

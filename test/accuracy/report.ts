@@ -6,7 +6,7 @@ import { compare, type Comparison } from './compare.ts';
 import type { Table } from './table.ts';
 
 /** Printed or measured by others, and read where they printed it. */
-export function isOutsideEvidence(table: Table): boolean {
+function isOutsideEvidence(table: Table): boolean {
   return table.standing === 'published' && table.evidence !== 'formula';
 }
 

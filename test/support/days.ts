@@ -3,7 +3,7 @@ import type { AirspeedColumn, CombinedMargin, JudgedDay, JudgedHour, JudgedWindo
 import { isoUtc } from '../../lib/time.ts';
 import { MARGIN_IDS, type MarginId, type MarginUnit, type Verdict } from '../../lib/margin/ids.ts';
 
-export const DEMO_SOURCE = 'demo';
+const DEMO_SOURCE = 'demo';
 
 export const UNIT_OF: Readonly<Record<MarginId, MarginUnit>> = {
   meanWind: 'm/s', gust: 'm/s', gustSpread: 'm/s', crosswind: 'm/s', tailwind: 'm/s', offAxis: '°', forwardLaunch: 'm/s',
@@ -25,7 +25,7 @@ export function columnOf(spareMps: number, reserveMps = 2.5): AirspeedColumn {
   return { trimMps, headMps: paid * 0.7, crabMps, gustMps: paid * 0.3, reserveMps, spareMps };
 }
 
-export function hourOf(validAt: string, verdict: Verdict, given: Partial<JudgedHour> = {}): JudgedHour {
+function hourOf(validAt: string, verdict: Verdict, given: Partial<JudgedHour> = {}): JudgedHour {
   const spare = { within: 2.4, close: 0.3, beyond: -1.3, unknown: null }[verdict];
   const forward = marginOf('forwardLaunch', {
     spare, demand: spare === null ? null : 2.5 + spare, status: verdict, missing: verdict === 'unknown' ? ['gustMps'] : [],
@@ -46,7 +46,7 @@ export function voteOf(given: Partial<SourceVote> = {}): SourceVote {
 }
 
 /** Runs of within and close as windows, the way a day is judged: two instants at least, the worst inside. */
-export function windowsOf(hours: readonly JudgedHour[], flightMin = 12): JudgedWindow[] {
+function windowsOf(hours: readonly JudgedHour[], flightMin = 12): JudgedWindow[] {
   const windows: JudgedWindow[] = [];
   let run: JudgedHour[] = [];
   const close = () => {

@@ -14,7 +14,7 @@ export interface FuzzReport {
 }
 
 /** A small generator (mulberry32), so that a seed repeats a run anywhere. */
-export function randomOf(seed: number): () => number {
+function randomOf(seed: number): () => number {
   let state = seed >>> 0;
   return () => {
     state = (state + 0x6d2b79f5) >>> 0;

@@ -13,7 +13,7 @@ export const MORNING = new Date('2027-05-14T04:00:00Z');
 
 const SPARES = [3.1, 2.8, 2.9, 2.4, 1.7, 0.9, 0.3, -0.4, -1.3, -2.2, -1.9, -0.8, 0.2, 1.1, 2, 2.7];
 
-export function withSpares(day: JudgedDay, spares: readonly number[] = SPARES): JudgedDay {
+function withSpares(day: JudgedDay, spares: readonly number[] = SPARES): JudgedDay {
   return { ...day, hours: day.hours.map((hour, index) => (hour.verdict === 'unknown' ? hour : { ...hour, airspeed: columnOf(spares[index % spares.length] ?? 1) })) };
 }
 
@@ -44,7 +44,7 @@ export const DAYS: Readonly<Record<string, JudgedDay>> = {
   'tern-meadow': withSpares(dayOf('cccccwwwwwwwcccc', STRIP), [1.2, 0.8, 0.4, 1.9]),
 };
 
-export function detailFor(kind: JudgedDay['kind']): HourDetail {
+function detailFor(kind: JudgedDay['kind']): HourDetail {
   return {
     workings: [{
       id: 'forwardLaunch', terms: [

@@ -115,7 +115,7 @@ export const STRIP_GROUND_M = 590;
 
 export const DATE = '2027-05-14';
 export const ISSUED_AT = '2027-05-14T03:00:00Z';
-export const RUN_AT = '2027-05-14T00:00:00Z';
+const RUN_AT = '2027-05-14T00:00:00Z';
 
 function config(name: string): unknown {
   return JSON.parse(readFileSync(path.join(root, 'config', name), 'utf8'));

@@ -23,7 +23,7 @@ export async function secretLinks({ publicUrl, linkKey }: Omit<LetterContext, 'm
 export type SecretLinks = Awaited<ReturnType<typeof secretLinks>>;
 
 /** `<msg_…@domain>`: the same at every attempt. */
-export function messageIdOf(id: string, mailFrom: string): string {
+function messageIdOf(id: string, mailFrom: string): string {
   return `<${id}@${mailFrom.slice(mailFrom.indexOf('@') + 1)}>`;
 }
 

@@ -3,7 +3,7 @@
  * one pass over the text finds what it lets through in silence: a key that comes twice (the second value would win) and
  * lists inside lists without end. Numbers beyond a double become Infinity here and missing values later.
  */
-export const MAX_DEPTH = 32;
+const MAX_DEPTH = 32;
 
 /** The value, or undefined when the text is not one JSON value with unique keys and bounded depth. */
 export function readJson(text: string): unknown {

@@ -2,7 +2,7 @@
 const loopback: ReadonlySet<string> = new Set(['127.0.0.1', '[::1]', 'localhost']);
 
 /** The origin of a setting such as OPEN_METEO_URL, normalised by the URL parser; null when it is not allowed. */
-export function originOf(setting: string, local: boolean): string | null {
+function originOf(setting: string, local: boolean): string | null {
   const url = parsed(setting);
   if (url === null || url.username !== '' || url.password !== '') return null;
   if (url.protocol === 'https:') return url.origin;

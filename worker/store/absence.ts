@@ -14,7 +14,7 @@ export interface Books {
 }
 
 /** How long after its last moment to be made a brief is given up, and after which nothing may be waiting. */
-export const DEADLINE_MS = 20 * 60_000;
+const DEADLINE_MS = 20 * 60_000;
 
 /** Messages are open for hours, not days: older ones need no look, and reading them all would cost more every day. */
 const LOOKED_AT_MS = 48 * 3_600_000;

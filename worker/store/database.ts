@@ -44,7 +44,7 @@ const RETRY_BASE_MS = [50, 200, 600] as const;
 /** The statement itself is wrong, or a constraint refused it: asking again gives the same answer. */
 const OWN_FAULT = /SQLITE_(ERROR|CONSTRAINT|MISMATCH|RANGE|TOOBIG|AUTH)|constraint failed|no such (table|column)|syntax error|D1_TYPE_ERROR|datatype mismatch/i;
 
-export function isOwnFault(error: unknown): boolean {
+function isOwnFault(error: unknown): boolean {
   return OWN_FAULT.test(error instanceof Error ? error.message : String(error));
 }
 

@@ -8,7 +8,7 @@ export type FetchOutcome =
   | { readonly ok: false; readonly error: SourceFailure };
 
 /** Stands for a run time where the service gives none, in keys only. */
-export const NO_RUN_TIME = -1;
+const NO_RUN_TIME = -1;
 
 /** What a source said about a site-day, as stored: the text is parsed by whoever needs it. */
 export interface StoredAnswer {

@@ -24,7 +24,7 @@ const INVISIBLE = /[\p{Cf}\p{Cs}\p{Zl}\p{Zp}]|[^\P{Cc}\n\t]/gu;
 
 const ENTITY: Readonly<Record<string, string>> = { '&': '&amp;', '<': '&lt;', '>': '&gt;', '"': '&quot;', "'": '&#39;', '`': '&#96;' };
 
-export function escapeText(text: string): string {
+function escapeText(text: string): string {
   return text.replace(INVISIBLE, ' ').replace(/[&<>"'`]/g, (character) => ENTITY[character] ?? '');
 }
 
@@ -43,8 +43,6 @@ export function html(strings: TemplateStringsArray, ...values: readonly Piece[])
   });
   return Html.ofTemplate(markup);
 }
-
-export const NOTHING: Html = html``;
 
 /** Coordinates in a picture: a tenth of a pixel is enough, and shorter. */
 export function px(value: number): string {

@@ -13,7 +13,7 @@ import { findDay } from './page-data.ts';
 import type { WhatIf, WhatIfAnswer, WhatIfQuery, WhatIfServices } from './page-services.ts';
 
 /** The request that programs would send to /api/v1/assess for the same question; null without a forecast to start from. */
-export function whatIfRequest(input: DayInput, question: { readonly validAt: string; readonly numbers: OwnNumbers; readonly wing: unknown }): { readonly source: string; readonly body: Record<string, unknown> } | null {
+function whatIfRequest(input: DayInput, question: { readonly validAt: string; readonly numbers: OwnNumbers; readonly wing: unknown }): { readonly source: string; readonly body: Record<string, unknown> } | null {
   const poll = pollSources(input, setUp(input), []);
   const voter = poll.deterministic.find(speaks);
   const hours = voter?.forecast.members[0] ?? [];
@@ -30,7 +30,7 @@ export function whatIfRequest(input: DayInput, question: { readonly validAt: str
   };
 }
 
-export function judgeWhatIf(services: Pick<DeskServices, 'wingClasses' | 'clock'>, input: DayInput, question: { readonly validAt: string; readonly numbers: OwnNumbers; readonly wing: unknown }): WhatIf {
+function judgeWhatIf(services: Pick<DeskServices, 'wingClasses' | 'clock'>, input: DayInput, question: { readonly validAt: string; readonly numbers: OwnNumbers; readonly wing: unknown }): WhatIf {
   const asked = whatIfRequest(input, question);
   if (asked === null) return { kind: 'problems', problems: ['No source with a vote has a forecast of this hour to start from.'] };
   const request = parseAssessRequest(asked.body, { sites: [input.site], sheets: [input.sheet], wingClasses: services.wingClasses(), nowMs: services.clock.nowMs() });

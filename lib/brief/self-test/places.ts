@@ -52,7 +52,7 @@ export const LEVELS: readonly Level[] = ([[950, 545], [925, 767], [900, 993], [8
   pressureHpa, altitudeM, speedMps: 3.4 + index / 2, fromDeg: 262, temperatureC: 4 - altitudeM * 0.0055, relativeHumidityPct: 50,
 }));
 
-export function hour(index: number, changes: Partial<Conditions> = {}): Conditions {
+function hour(index: number, changes: Partial<Conditions> = {}): Conditions {
   return {
     validAt: isoUtc(Date.parse(`${DATE}T00:00:00Z`) + index * HOUR_MS), gridElevationM: GROUND_M, wind10m: { speedMps: 3 + (index % 3) / 20, fromDeg: 265 },
     gustMps: 4.6 + (index % 2) / 10, levels: LEVELS, temperature2mC: 4 - (index % 5) / 10, dewPoint2mC: -4, surfacePressureHpa: 968, seaLevelPressureHpa: 1017,

@@ -30,7 +30,7 @@ function isField(name: string): name is ConditionField {
 }
 
 /** A missing input by name: `levels 850 hPa.speedMps` is wind and air aloft, whichever part of it is missing. */
-export function missingName(name: string): string {
+function missingName(name: string): string {
   const [head = ''] = /^\w*/.exec(name) ?? [];
   if (head === 'gridElevationM') return 'height of the model ground';
   if (name === 'levels (do not reach)') return 'wind and air at that height';

@@ -16,7 +16,7 @@ function lower(name: string): string {
   return name.slice(0, 1).toLowerCase() + name.slice(1);
 }
 
-export function headingReason(reason: HeadingReason, reader: Reader): string {
+function headingReason(reason: HeadingReason, reader: Reader): string {
   switch (reason.kind) {
     case 'only one': return 'The strip is used one way only.';
     case 'set': return sentence(`As ${sourceName(reason.by)} has it, so that all sources judge one tow`);

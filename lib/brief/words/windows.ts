@@ -18,7 +18,7 @@ export function windowSentence(window: JudgedWindow, day: Pick<JudgedDay, 'timeZ
 }
 
 /** "9 h to last launch 11:48 (close to a limit)": the window as an exception in the day sentence. */
-export function windowException(window: JudgedWindow, day: Pick<JudgedDay, 'timeZone'>): string {
+function windowException(window: JudgedWindow, day: Pick<JudgedDay, 'timeZone'>): string {
   const from = hourName(window.from, day.timeZone);
   const last = lastLaunchWords(window, day);
   const until = last === null ? ' with no flight known to end in it' : ` to ${last}`;

@@ -16,13 +16,13 @@ export function blockWhere(block: Pick<Block, 'site' | 'siteName' | 'from' | 'to
 }
 
 /** "Close to a limit at 7 and 8 h", "Within limits". */
-export function blockVerdict(block: Pick<Block, 'verdict' | 'closeAt'>, timeZone: string): string {
+function blockVerdict(block: Pick<Block, 'verdict' | 'closeAt'>, timeZone: string): string {
   const at = block.verdict === 'close' && block.closeAt.length > 0 ? ` at ${listed(block.closeAt.map((hour) => hourName(hour, timeZone)))}` : '';
   return `${capital(verdictPhrase(block.verdict))}${at}`;
 }
 
 /** "last launch 11:48" where the window's is known and falls into the block; else when everybody is down. */
-export function blockLastLaunch(block: Pick<Block, 'window' | 'from' | 'to'>, timeZone: string): string {
+function blockLastLaunch(block: Pick<Block, 'window' | 'from' | 'to'>, timeZone: string): string {
   const last = block.window?.lastLaunch ?? null;
   const isInside = last !== null && epochOf(last) >= epochOf(block.from) && epochOf(last) < epochOf(block.to);
   return isInside ? `last launch ${clockTime(last, timeZone)}` : `everybody down by ${clockTime(block.to, timeZone)}`;

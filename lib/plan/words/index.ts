@@ -1,3 +1,3 @@
-export { blockLastLaunch, blockPlace, blockReason, blockSentence, blockVerdict, blockWhere, moveWords, spareWords } from './blocks.ts';
-export { turnedNotice } from './notice.ts';
-export { asOfWords, eventTitle, groupName, ifLostSentence, leftOutSentence, nextBestSentence, noticeSentence, objectiveWords, planSentence, planTitle } from './plan.ts';
+export {  blockPlace, blockReason, blockSentence,   moveWords,  } from './blocks.ts';
+;
+export {  eventTitle, groupName, ifLostSentence, leftOutSentence, nextBestSentence, noticeSentence,  planSentence, planTitle } from './plan.ts';

@@ -13,7 +13,7 @@ export function groupName(name: string): string {
 }
 
 /** "as of 5:30", of the oldest brief behind the plan. */
-export function asOfWords(plan: Pick<DayPlan, 'asOf' | 'timeZone'>): string {
+function asOfWords(plan: Pick<DayPlan, 'asOf' | 'timeZone'>): string {
   return plan.asOf === null ? 'nothing judged' : `as of ${clockTime(plan.asOf, plan.timeZone)}`;
 }
 
@@ -71,7 +71,7 @@ function limiting(cause: Parameters<typeof closedClause>[0], plan: Day, reader: 
 }
 
 /** "2 groups, 5 h, spare 0.4 close bands, 1 move". */
-export function objectiveWords({ placed, hours, moves, spare }: PlanObjective): string {
+function objectiveWords({ placed, hours, moves, spare }: PlanObjective): string {
   return placed === 0 ? 'no group has a place' : `${counted(placed, 'group', 'groups')}, ${hours} h, ${spareWords(spare)}, ${moves === 0 ? 'no move' : counted(moves, 'move', 'moves')}`;
 }
 

@@ -11,7 +11,7 @@ export { alpineSite };
 
 /** For services that hang. Too short for a busy machine where an answer is awaited. */
 export const SHORT: Bounds = { ...BOUNDS, totalMs: 500, firstTryMs: 200 };
-export const request = { fromUtc: '2027-05-13T21:00:00Z', toUtc: '2027-05-14T23:00:00Z' };
+const request = { fromUtc: '2027-05-13T21:00:00Z', toUtc: '2027-05-14T23:00:00Z' };
 export const fetchMs = Date.parse('2027-05-14T02:40:00Z');
 
 /** A site like the alpine one, somewhere else. */

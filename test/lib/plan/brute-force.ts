@@ -25,7 +25,7 @@ function ways(puzzle: Puzzle, index: number): Stay[][] {
 }
 
 /** Whether capacities and instructors hold in every slot; a group on its way to another site keeps its instructors. */
-export function holds(puzzle: Puzzle, plan: readonly (readonly Stay[])[]): boolean {
+function holds(puzzle: Puzzle, plan: readonly (readonly Stay[])[]): boolean {
   for (let slot = 0; slot < puzzle.slots; slot += 1) {
     const here = puzzle.capacity.map(() => 0);
     let staff = 0;

@@ -2,7 +2,7 @@
 import type { Puzzle } from '../../../lib/plan/puzzle.ts';
 
 /** mulberry32: small, seeded, the same everywhere. */
-export function seeded(seed: number): () => number {
+function seeded(seed: number): () => number {
   let state = seed >>> 0;
   return () => {
     state = (state + 0x6d2b79f5) >>> 0;

@@ -67,14 +67,14 @@ export const site: Site = valueOf(
   ),
 ) as LaunchSite;
 
-export const localDate = '2027-05-14';
-export const issuedAt = '2027-05-14T03:00:00Z';
+const localDate = '2027-05-14';
+const issuedAt = '2027-05-14T03:00:00Z';
 export const request = { fromUtc: '2027-05-13T21:00:00Z', toUtc: '2027-05-14T23:00:00Z' };
 export const runAt = '2027-05-14T00:00:00Z';
 
 export type Window = typeof request;
 
-export function askOf(entry: OpenMeteoSource, window: Window = request): Ask {
+function askOf(entry: OpenMeteoSource, window: Window = request): Ask {
   return { ...entry, fromMs: epochOf(window.fromUtc), toMs: epochOf(window.toUtc) };
 }
 

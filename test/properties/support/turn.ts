@@ -9,7 +9,7 @@ function windMapped<T extends Wind>(wind: T, map: Map): T {
   return wind.fromDeg === null || wind.fromDeg < 0 || wind.fromDeg > 360 ? wind : { ...wind, fromDeg: normalDeg(map(wind.fromDeg)) };
 }
 
-export function hourMapped(hour: Conditions, map: Map): Conditions {
+function hourMapped(hour: Conditions, map: Map): Conditions {
   const { wind10m, nearGround, levels } = hour;
   return {
     ...hour,

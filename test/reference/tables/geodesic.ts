@@ -6,7 +6,7 @@ export function dms(degreesPart: number, minutes = 0, seconds = 0): number {
   return degreesPart + minutes / 60 + seconds / 3600;
 }
 
-export const GRS80: Ellipsoid = { semiMajorM: 6378137, flattening: 1 / 298.257222101 };
+const GRS80: Ellipsoid = { semiMajorM: 6378137, flattening: 1 / 298.257222101 };
 const bessel: Ellipsoid = { semiMajorM: 6377397.155, flattening: 1 / 299.1528128 };
 const international: Ellipsoid = { semiMajorM: 6378388, flattening: 1 / 297 };
 

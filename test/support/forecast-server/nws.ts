@@ -27,7 +27,7 @@ export function pointAnswer(latDeg: number, lonDeg: number, origin: string): obj
   return { properties: { gridId: 'TST', gridX: x, gridY: y, forecastGridData: `${origin}/gridpoints/TST/${x},${y}` } };
 }
 
-export function updateTimeMs(nowMs: number): number {
+function updateTimeMs(nowMs: number): number {
   return Math.floor(nowMs / HOUR_MS) * HOUR_MS - 2_700_000;
 }
 

@@ -40,7 +40,7 @@ const contentFaults: Readonly<Record<Service, Readonly<Record<string, unknown>>>
 };
 
 /** Every mode a service knows. */
-export function modesOf(service: Service): string[] {
+function modesOf(service: Service): string[] {
   return ['clean', ...Object.keys(wireFaults), ...Object.keys(contentFaults[service])];
 }
 

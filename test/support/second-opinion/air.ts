@@ -19,7 +19,7 @@ export type Level = {
 };
 
 // Section 2: "Site heights are geometric; the ISA wants geopotential: convert."
-export function geopotentialM(geometricM: number): number {
+function geopotentialM(geometricM: number): number {
   return (6356766 * geometricM) / (6356766 + geometricM);
 }
 
@@ -33,19 +33,19 @@ export function standardAltitudeM(pressureHpa: number): number {
 }
 
 // Bolton (1980) eq. 10, Pa.
-export function vapourPressurePa(dewPointC: number): number {
+function vapourPressurePa(dewPointC: number): number {
   return 611.2 * Math.exp((17.67 * dewPointC) / (dewPointC + 243.5));
 }
 
 // Bolton eq. 10 solved for the temperature. No dew point exists at 0 % (ln 0): unknown.
-export function dewPointFromHumidityC(temperatureC: number, relativeHumidityPct: number): number {
+function dewPointFromHumidityC(temperatureC: number, relativeHumidityPct: number): number {
   const logarithm = Math.log(((relativeHumidityPct / 100) * vapourPressurePa(temperatureC)) / 611.2);
   if (!known(logarithm)) return UNKNOWN;
   return (243.5 * logarithm) / (17.67 - logarithm);
 }
 
 // rho = (p - e)/(Rd T) + e/(Rv T)
-export function moistDensity(pressurePa: number, temperatureC: number, dewPointC: number): number {
+function moistDensity(pressurePa: number, temperatureC: number, dewPointC: number): number {
   const e = vapourPressurePa(dewPointC);
   const T = temperatureC + 273.15;
   return (pressurePa - e) / (Rd * T) + e / (Rv * T);

@@ -11,12 +11,12 @@ import { hourVerdict, judge, windowsOf } from './verdict.ts';
 import { declaredReachM, windProfile } from './wind.ts';
 import { polarOf } from './wing.ts';
 
-export { sheets, wingClasses } from './tables.ts';
+;
 
 export type AssessInput = { site: Site; wing: Wing; sheet: Sheet; hours: Conditions[]; declares?: string[]; now?: string };
 
 // architecture.md: "every field that is there (not null, not empty) in at least one of the hours"
-export function declaredFields(hours: Conditions[]): string[] {
+function declaredFields(hours: Conditions[]): string[] {
   const names = new Set<string>();
   for (const hour of hours) {
     for (const [name, value] of Object.entries(hour)) {

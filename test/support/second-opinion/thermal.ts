@@ -16,7 +16,7 @@ function virtualPotentialK(column: Column, altitudeM: number): number {
 
 // Ri(z) = (g/thetaV0) (thetaV(z) - thetaV0) (z - z0) / (u² + v²), the ground with its 2 m values as the lower end and at rest, no
 // friction-velocity term (no source gives one). The first height, metre by metre, at which it reaches 0.25.
-export function bulkRichardsonHeightM(column: Column, profile: Profile): number {
+function bulkRichardsonHeightM(column: Column, profile: Profile): number {
   const ground = virtualPotentialK(column, column.groundM);
   if (!known(ground)) return UNKNOWN;
   for (let heightM = 1; heightM <= 6000; heightM++) {

@@ -13,7 +13,7 @@ export function isCalm(speedMps: number): boolean {
 }
 
 // air-and-flight.md b: u = -V sin D, v = -V cos D.
-export function vectorOf(speedMps: number, fromDeg: number): Vector {
+function vectorOf(speedMps: number, fromDeg: number): Vector {
   if (isCalm(speedMps)) return { u: 0, v: 0 };
   return { u: -speedMps * Math.sin(degToRad(fromDeg)), v: -speedMps * Math.cos(degToRad(fromDeg)) };
 }
@@ -22,7 +22,7 @@ export function speedOf(vector: Vector): number {
   return Math.sqrt(vector.u * vector.u + vector.v * vector.v);
 }
 
-export function fromDegOf(vector: Vector): number {
+function fromDegOf(vector: Vector): number {
   return (radToDeg(Math.atan2(-vector.u, -vector.v)) + 360) % 360;
 }
 
@@ -107,7 +107,7 @@ export function windProfile(hour: Conditions, declared: Set<string>): Profile {
 }
 
 // dS of section 3, for the 10 m wind.
-export function speedUp(hill: Hill, launchM: number, gridElevationM: number): number {
+function speedUp(hill: Hill, launchM: number, gridElevationM: number): number {
   const constants = {
     ridge: { B: 2.0, A: 3.0 },
     escarpment: { B: 0.8, A: 2.5 },

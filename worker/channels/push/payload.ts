@@ -37,7 +37,7 @@ function jsonBytes(code: number): number {
 }
 
 /** At most so many UTF-16 units, never half a character. */
-export function cut(text: string, length: number): string {
+function cut(text: string, length: number): string {
   const end = /[\uD800-\uDBFF]/.test(text.charAt(length - 1)) ? length - 1 : length;
   return text.slice(0, end);
 }

@@ -26,12 +26,12 @@ export function textIn(form: FormData, name: string): string {
   return typeof value === 'string' ? value.trim().slice(0, 2048) : '';
 }
 
-export function listIn(form: FormData, name: string): string[] {
+function listIn(form: FormData, name: string): string[] {
   return form.getAll(name).filter((value) => typeof value === 'string').slice(0, 60);
 }
 
 /** A key is the id of a site, or `id~1` where one site is held to a second sheet. */
-export function siteIdOf(key: string): string {
+function siteIdOf(key: string): string {
   return key.replace(/~\d+$/, '');
 }
 
@@ -39,7 +39,7 @@ const named = (words: readonly string[]) => words.map((word) => ({ id: word, nam
 export const DAY_NAMES: Readonly<Record<(typeof DAYS)[number], string>> = { mon: 'Monday', tue: 'Tuesday', wed: 'Wednesday', thu: 'Thursday', fri: 'Friday', sat: 'Saturday', sun: 'Sunday' };
 
 /** Where in a request the problems of a field stand. */
-export const WISH_PLACES: Readonly<Record<string, RegExp>> = {
+const WISH_PLACES: Readonly<Record<string, RegExp>> = {
   sites: /^\$\.sites$/, site: /^\$\.sites\[\d+\]/, wing: /^\$\.wing(?!\.allUpMassKg)/, mass: /^\$\.wing\.allUpMassKg/,
   at: /^\$\.deliver\.at/, zone: /^\$\.deliver\.timeZone/, days: /^\$\.deliver\.days/, speed: /^\$\.units\.speed/, height: /^\$\.units\.height/,
 };

@@ -17,7 +17,7 @@ export function act(view: Pick<ManageView, 'path'>, action: string, label: strin
   return html`<form class="act" method="post" action="${view.path}${at}">${hidden('action', action)}${more.channel === undefined ? null : hidden('channel', more.channel)}${more.fields ?? null}<button type="submit"${more.about === undefined ? null : html` aria-label="${label}: ${more.about}"`}>${label}</button></form>`;
 }
 
-export function minuteClock(minute: number): string {
+function minuteClock(minute: number): string {
   const two = (value: number): string => String(value).padStart(2, '0');
   return `${two(Math.floor(minute / 60))}:${two(minute % 60)}`;
 }

@@ -14,7 +14,7 @@ function leaf(id: string, title: string, aside: string, body: Piece): Html {
 }
 
 /** What is kept, as the form would have sent it. */
-export function keptForm({ kept }: Pick<ManageView, 'kept'>): FormData {
+function keptForm({ kept }: Pick<ManageView, 'kept'>): FormData {
   const form = new FormData();
   const seen = new Map<string, number>();
   for (const { id, sheet } of kept.sites) {

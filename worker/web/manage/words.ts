@@ -11,7 +11,7 @@ export function momentIn(atMs: number, timeZone: string): string {
   return `${dateName(localDate(atMs, timeZone), 'short')}, ${clockTime(isoUtc(atMs), timeZone)}`;
 }
 
-export function channelName({ kind }: Pick<ChannelView, 'kind'>): string {
+function channelName({ kind }: Pick<ChannelView, 'kind'>): string {
   switch (kind) {
     case 'mail': return 'mail';
     case 'push': return 'a browser';

@@ -33,7 +33,7 @@ const OF_LAUNCH = new Set<string>(['maxOffAxisDeg', 'maxBackMps', 'maxUpperMps',
 const OF_STRIP = new Set<string>(['maxClimbShearMps', 'minReleaseM']);
 
 /** "Largest mean wind" and "least forward speed" from the name of a limit. */
-export function limitWords(name: LimitName | ParameterName): string {
+function limitWords(name: LimitName | ParameterName): string {
   switch (name) {
     case 'maxMeanMps': return 'Mean wind, at most';
     case 'maxGustMps': return 'Gust, at most';

@@ -11,7 +11,7 @@ type Json = Readonly<Record<string, unknown>>;
 const IN_FIELDS = new Set(['kind', 'name', 'timeZone', 'headingReference', 'facingDeg', 'slopeDeg', 'hill', 'landing', 'localRules', 'headingDeg', 'usableBothWays', 'lineLengthM', 'roughnessM', 'lineClearM', 'summitElevationM']);
 
 /** "47.2692, 11.4041, 1240" as a map gives it: latitude first; [longitude, latitude, metres], or null. */
-export function placeOf(text: string): [number, number, number] | null {
+function placeOf(text: string): [number, number, number] | null {
   const parts = text.replace(/[°()]/g, ' ').trim().split(/\s*[,;]\s*|\s+/).filter((part) => part !== '' && !/^m$/i.test(part));
   const numbers = parts.map((part) => {
     const found = /^([+-]?\d+(?:\.\d+)?)([NSEW]?|m)$/i.exec(part);
@@ -21,7 +21,7 @@ export function placeOf(text: string): [number, number, number] | null {
   return numbers.length === 3 && latDeg !== undefined && lonDeg !== undefined && elevationM !== undefined && numbers.every(Number.isFinite) ? [lonDeg, latDeg, elevationM] : null;
 }
 
-export function placeText(coordinates: unknown): string {
+function placeText(coordinates: unknown): string {
   const [lonDeg, latDeg, elevationM] = [0, 1, 2].map((at) => numberAt(coordinates, [at]));
   return lonDeg === undefined || latDeg === undefined ? '' : `${latDeg}, ${lonDeg}${elevationM === undefined ? '' : `, ${elevationM}`}`;
 }

@@ -55,7 +55,7 @@ ${isLaunch ? null : html`<label class="pick"><input type="checkbox" name="both" 
 <div class="field"><label for="more">${more.label}</label><textarea id="more" name="more" rows="6" spellcheck="false"${more.problems.length === 0 ? null : html` aria-invalid="true" aria-describedby="more-wrong"`}>${more.value}</textarea><p class="hint">sectors, localWind, pressureStep, daylight, notes${isLaunch ? ', trackDeg, distanceM' : ', lineTensionRatio, releaseAngleDeg'}.</p>${more.problems.length === 0 ? null : html`<p class="wrong" id="more-wrong">${problemWords(more.problems)}</p>`}</div></details>`;
 }
 
-export function computedPart(rows: readonly ComputedRow[]): Html {
+function computedPart(rows: readonly ComputedRow[]): Html {
   const list = rows.map(({ what, value, note }) => html`<div><dt>${what}</dt><dd><strong>${value}</strong> <span>${note}</span></dd></div>`);
   return html`<section class="computed" data-computed aria-labelledby="computed-h" aria-live="polite"><h2 id="computed-h">What follows</h2>${rows.length === 0 ? html`<p class="hint">Track, distance, glide, declination and speed-up stand here as soon as the place is given.</p>` : html`<dl>${list}</dl>`}</section>`;
 }

@@ -118,7 +118,7 @@ function hourWords(hour: JudgedHour, day: JudgedDay, reader: Reader): string {
 }
 
 /** The picture as words, the same data in the same order. */
-export function columnsDescription(day: JudgedDay, reader: Reader): string {
+function columnsDescription(day: JudgedDay, reader: Reader): string {
   return `${day.hours.map((hour) => hourWords(hour, day, reader)).join('; ')}.`;
 }
 

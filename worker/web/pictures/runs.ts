@@ -9,7 +9,7 @@ interface Run {
   readonly count: number;
 }
 
-export function runsOf(hours: readonly JudgedHour[]): Run[] {
+function runsOf(hours: readonly JudgedHour[]): Run[] {
   const runs: Run[] = [];
   for (const hour of hours) {
     const run = runs.at(-1);

@@ -19,7 +19,7 @@ function metres(value: number, reader: Reader): string {
   return quantityText({ value, unit: 'm' }, reader.units);
 }
 
-export function arrivalWords(glide: GlidePicture, reader: Reader): string {
+function arrivalWords(glide: GlidePicture, reader: Reader): string {
   if (glide.arrivalM === null) return 'does not arrive';
   return glide.arrivalM < 0 ? `ends ${metres(-glide.arrivalM, reader)} below the landing` : `arrives ${metres(glide.arrivalM, reader)} above the landing`;
 }
@@ -31,7 +31,7 @@ function description(glide: GlidePicture, reader: Reader): string {
   return `From the launch at ${metres(glide.launchM, reader)} to the landing at ${metres(glide.landingM, reader)}, ${Math.round(glide.distanceM)} m away, the glide ${arrivalWords(glide, reader)}.${asked}${inStill} The ground between is not known.`;
 }
 
-export function sideView(glide: GlidePicture, reader: Reader): Html {
+function sideView(glide: GlidePicture, reader: Reader): Html {
   const [low, high] = extent([glide.launchM, glide.landingM, ...glide.inWind.map(({ altitudeM }) => altitudeM), ...glide.stillAir.map(({ altitudeM }) => altitudeM)]);
   const x = scaleOf([0, glide.distanceM], [26, WIDTH - 74]);
   const y = scaleOf([low, high], [HEIGHT - 50, 30]);

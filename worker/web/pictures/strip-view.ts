@@ -38,7 +38,7 @@ function arrow(from: { readonly x: number; readonly y: number }, to: { readonly 
 }
 
 /** The strip lies across the picture, the wing at the left, the winch at the right: the tow goes to the right. */
-export function stripFromAbove(tow: TowPicture, reader: Reader): Html {
+function stripFromAbove(tow: TowPicture, reader: Reader): Html {
   const [startX, winchX, middleY] = [40, WIDTH - 40, 88];
   const across = scaleOf([0, Math.max(60, tow.lineClearM ?? 0, Math.abs(tow.driftM ?? 0))], [0, 52]);
   const clear = tow.lineClearM === null ? null : html`<rect class="ground" x="${startX}" width="${winchX - startX}" y="${px(middleY - across(tow.lineClearM))}" height="${px(2 * across(tow.lineClearM))}"/>`;
@@ -57,7 +57,7 @@ ${Math.abs(tow.crossMps) < 0.05 ? null : cross}<text class="lbl end" x="${crossX
 <text class="lbl" x="${startX - 26}" y="170">launch here, tow along ${headingName(tow.headingDeg)}</text><text class="lbl end" x="${WIDTH - 14}" y="170">winch</text></svg>`;
 }
 
-export function climbSideView(tow: TowPicture, reader: Reader): Html {
+function climbSideView(tow: TowPicture, reader: Reader): Html {
   const top = Math.max(tow.releaseM, ...tow.climb.map(({ heightM }) => heightM), 1);
   const x = scaleOf([0, tow.lineLengthM], [40, WIDTH - 40]);
   const y = scaleOf([0, top], [160, 40]);

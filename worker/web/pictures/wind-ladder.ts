@@ -18,7 +18,7 @@ function height(m: number, reader: Reader): string {
   return quantityText({ value: m, unit: 'm' }, reader.units);
 }
 
-export function rungWords(rung: LadderRung, reader: Reader): string {
+function rungWords(rung: LadderRung, reader: Reader): string {
   const along = quantityText({ value: Math.abs(rung.headMps), unit: 'm/s' }, reader.units);
   const across = quantityText({ value: Math.abs(rung.crossMps), unit: 'm/s' }, reader.units);
   const side = rung.crossMps < 0 ? 'left' : 'right';
@@ -46,7 +46,7 @@ function labelled(rungs: readonly LadderRung[], y: (altitudeM: number) => number
   return kept;
 }
 
-export function windLadder(ladder: LadderPicture, reader: Reader): Html {
+function windLadder(ladder: LadderPicture, reader: Reader): Html {
   const rungs = ladder.rungs.filter((rung) => Number.isFinite(rung.altitudeM) && Number.isFinite(rung.headMps));
   const y = scaleOf(extent([ladder.launchM, ...rungs.map(({ altitudeM }) => altitudeM)]), [FOOT, TOP]);
   const [least, most] = extent([-3, ladder.trimMps + 2, ...rungs.map(({ headMps }) => headMps)]);
