@@ -28,6 +28,7 @@ export default defineConfig({
           environment: 'node',
           // Pure functions leave nothing behind, so the files share a process.
           isolate: false,
+          maxWorkers: 2,
           // Long enough for a busy machine: no test of ours asserts a clock.
           testTimeout: 120_000,
           sequence: { groupOrder: 1 },
@@ -52,6 +53,7 @@ export default defineConfig({
         test: {
           name: 'worker',
           testTimeout: 120_000,
+          maxWorkers: 2,
           hookTimeout: 120_000,
           sequence: { groupOrder: 2 },
           include: ['test/worker/**/*.test.ts'],
@@ -66,7 +68,8 @@ export default defineConfig({
           include: ['test/e2e/**/*.test.ts', 'test/faults/**/*.test.ts'],
           testTimeout: 120_000,
           hookTimeout: 120_000,
-          fileParallelism: false,
+          // Two at a time: most of them wait for a process of their own, which has its own port and folder.
+          maxWorkers: 2,
           sequence: { groupOrder: 3 },
         },
       },
@@ -80,7 +83,7 @@ export default defineConfig({
           // A browser on a busy machine: no check of ours is about how long something takes.
           expect: { poll: { timeout: 20_000 } },
           hookTimeout: 120_000,
-          fileParallelism: false,
+          maxWorkers: 2,
           sequence: { groupOrder: 4 },
         },
       },
