@@ -113,7 +113,9 @@ test('looking changes nothing, and a page loaded again does nothing twice', asyn
   await press(page, /^Send a test/);
   await expect.poll(() => house.letters.filter(({ to }) => to === 'gaze@example.org').length).toBe(2);
   await page.waitForURL(/said=test/);
+  await page.waitForLoadState('networkidle');
   await page.reload();
+  await page.waitForLoadState('networkidle');
   await page.reload();
   await house.settle();
   expect(house.letters.filter(({ to }) => to === 'gaze@example.org')).toHaveLength(2);
@@ -131,6 +133,7 @@ test('a way that fails says why; the order is its owner’s; the last way is onl
   expect(await page.locator('.way h3').allInnerTexts()).toEqual([expect.stringMatching(/^1\. Browser/), '2. Mail, b…@example.org']);
   await press(page, /^Send a test: Browser/);
   await house.settle();
+  await page.waitForLoadState('networkidle');
   await page.reload();
   expect(await page.locator('.way').first().innerText()).toContain('Ended: the push service answered 410: the subscription has ended.');
   expect(await page.locator('#log table').innerText()).toMatch(/failed: the push service answered 410/);
