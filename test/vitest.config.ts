@@ -19,7 +19,7 @@ export default defineConfig({
     passWithNoTests: true,
     // On demand only: `npx vitest run --config test/vitest.config.ts --coverage`.
     coverage: { provider: 'istanbul', include: ['lib/**', 'worker/**'], reporter: ['text', 'json-summary'] },
-    // One group after the other, what starts processes and browsers last. No group is 0: vitest runs a group 0 without parallel files last.
+    // One group after the other, the browser last. No group is 0: vitest runs a group 0 without parallel files last.
     projects: [
       {
         root,
@@ -84,7 +84,7 @@ export default defineConfig({
           expect: { poll: { timeout: 20_000 } },
           hookTimeout: 120_000,
           maxWorkers: 2,
-          sequence: { groupOrder: 3 },
+          sequence: { groupOrder: 4 },
         },
       },
     ],
