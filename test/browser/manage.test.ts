@@ -132,15 +132,16 @@ test('a way that fails says why; the order is its owner’s; the last way is onl
   const { page, close } = await open(browser, house.origin + path, { width: 390 });
   expect(await page.locator('.way h3').allInnerTexts()).toEqual([expect.stringMatching(/^1\. Browser/), '2. Mail, b…@example.org']);
   await press(page, /^Send a test: Browser/);
+  await page.waitForURL(/said=test/);
   await house.settle();
   await page.waitForLoadState('networkidle');
   await page.reload();
   expect(await page.locator('.way').first().innerText()).toContain('Ended: the push service answered 410: the subscription has ended.');
   expect(await page.locator('#log table').innerText()).toMatch(/failed: the push service answered 410/);
   await press(page, /^Try this way earlier/);
-  expect(await page.locator('.way h3').allInnerTexts()).toEqual(['1. Mail, b…@example.org', expect.stringMatching(/^2\. Browser/)]);
+  await expect.poll(() => page.locator('.way h3').allInnerTexts()).toEqual(['1. Mail, b…@example.org', expect.stringMatching(/^2\. Browser/)]);
   await press(page, /^Take it away: Browser/);
-  expect(await page.locator('.way').count()).toBe(1);
+  await expect.poll(() => page.locator('.way').count()).toBe(1);
   expect(await page.getByRole('button', { name: /^Take it away/ }).count()).toBe(0);
   await expectKeyboard(page);
   house.sink.answer(() => ({ status: 201 }));
