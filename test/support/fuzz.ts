@@ -4,6 +4,7 @@
 import { base64, derivedKey, hmacSha256 } from '../../worker/secrets.ts';
 import { FastPostHouse, LINK_KEY, OPERATOR_TOKEN } from './fast-post-house.ts';
 import { launchFeature } from '../worker/support/stand-ins.ts';
+import { seeded } from './seeded.ts';
 
 export interface FuzzReport {
   readonly requests: number;
@@ -11,17 +12,6 @@ export interface FuzzReport {
   readonly statuses: Readonly<Record<string, number>>;
   /** What went against the rules, with the seed of its case. */
   readonly violations: readonly string[];
-}
-
-/** A small generator (mulberry32), so that a seed repeats a run anywhere. */
-function randomOf(seed: number): () => number {
-  let state = seed >>> 0;
-  return () => {
-    state = (state + 0x6d2b79f5) >>> 0;
-    let mixed = Math.imul(state ^ (state >>> 15), state | 1);
-    mixed ^= mixed + Math.imul(mixed ^ (mixed >>> 7), mixed | 61);
-    return ((mixed ^ (mixed >>> 14)) >>> 0) / 4_294_967_296;
-  };
 }
 
 const NOW = '2027-05-13T20:00:00Z';
@@ -99,7 +89,7 @@ export async function fuzz(doors: readonly Door[], { cases, seed }: { readonly c
       tried.house.d1.close();
       tried = await freshHouse();
     }
-    const { status, wrong } = await attempt(tried, doors, randomOf(seed + index));
+    const { status, wrong } = await attempt(tried, doors, seeded(seed + index));
     statuses[status] = (statuses[status] ?? 0) + 1;
     violations.push(...wrong.map((what) => `case ${seed + index}: ${what}`));
   }

@@ -5,6 +5,7 @@ import type { Verdict } from '../../lib/margin/ids.ts';
 import type { D1 } from '../../worker/store/database.ts';
 import { judgedAs } from '../worker/support/stand-ins.ts';
 import { answersTo, FastHouse, hook } from './fast-house.ts';
+import { seeded } from './seeded.ts';
 
 export const ZONES: readonly (readonly [timeZone: string, lonDeg: number, latDeg: number])[] = [
   ['Europe/Vienna', 11.4, 47.2], ['Europe/Oslo', 18.9, 69.6], ['Europe/London', -1.8, 51.2], ['Africa/Cairo', 31.2, 29.9], ['Asia/Beirut', 35.9, 34.1],
@@ -28,17 +29,6 @@ export interface YearReport {
   readonly faults: number;
   readonly lateShare: number;
   readonly violations: readonly string[];
-}
-
-/** mulberry32: the same seed, the same year. */
-function seeded(seed: number): () => number {
-  let state = seed >>> 0;
-  return () => {
-    state = (state + 0x6d2b79f5) >>> 0;
-    let mixed = Math.imul(state ^ (state >>> 15), state | 1);
-    mixed = (mixed + Math.imul(mixed ^ (mixed >>> 7), mixed | 61)) ^ mixed;
-    return ((mixed ^ (mixed >>> 14)) >>> 0) / 2 ** 32;
-  };
 }
 
 class Weather {

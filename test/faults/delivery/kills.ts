@@ -8,6 +8,7 @@ import { freePort } from '../../e2e/support/start.ts';
 import type { Bundle } from './plant/bundle.ts';
 import { seedOf } from './plant/seed.ts';
 import { settle, startPlant, type Plant } from './plant/plant.ts';
+import { seeded } from '../../support/seeded.ts';
 
 export interface KillReport {
   readonly kills: number;
@@ -83,15 +84,4 @@ export async function killAgainAndAgain({ bundle, kills, seed, perRound = 24, re
 
 function repeatsIn(ids: readonly string[]): number {
   return ids.length - new Set(ids).size;
-}
-
-/** mulberry32 */
-function seeded(seed: number): () => number {
-  let state = seed >>> 0;
-  return () => {
-    state = (state + 0x6d2b79f5) >>> 0;
-    let mixed = Math.imul(state ^ (state >>> 15), state | 1);
-    mixed = (mixed + Math.imul(mixed ^ (mixed >>> 7), mixed | 61)) ^ mixed;
-    return ((mixed ^ (mixed >>> 14)) >>> 0) / 4_294_967_296;
-  };
 }

@@ -1,16 +1,6 @@
 // Puzzles by a seed: the weather of a site is a curve over the day, as real ones are, or plain noise.
 import type { Puzzle } from '../../../lib/plan/puzzle.ts';
-
-/** mulberry32: small, seeded, the same everywhere. */
-function seeded(seed: number): () => number {
-  let state = seed >>> 0;
-  return () => {
-    state = (state + 0x6d2b79f5) >>> 0;
-    let mixed = Math.imul(state ^ (state >>> 15), state | 1);
-    mixed ^= mixed + Math.imul(mixed ^ (mixed >>> 7), mixed | 61);
-    return ((mixed ^ (mixed >>> 14)) >>> 0) / 4_294_967_296;
-  };
-}
+import { seeded } from '../../support/seeded.ts';
 
 export interface Size {
   readonly groups: number;
