@@ -10,6 +10,11 @@ export interface Shown {
   readonly silent: boolean | null;
 }
 
+interface WorkerScope {
+  readonly registration: ServiceWorkerRegistration;
+  inLine<T>(work: () => Promise<T>): Promise<T>;
+}
+
 export interface ToldBrowser {
   readonly context: BrowserContext;
   readonly page: Page;
@@ -39,10 +44,12 @@ export async function toldBrowser(browser: Browser, url: string, { width = 390, 
   // Until it is activated in full, the browser drops what is delivered to it.
   await expect.poll(() => page.evaluate(async () => (await navigator.serviceWorker.ready).active?.state), { timeout: 20_000 }).toBe('activated');
   await expect.poll(() => seen.length, { timeout: 20_000 }).toBeGreaterThan(0);
-  const shown = (): Promise<Shown[]> => page.evaluate(async () => {
-    const registration = await navigator.serviceWorker.ready;
-    return (await registration.getNotifications()).map(({ title, body, tag, silent }) => ({ title, body, tag, silent }));
-  });
+  const [worker] = context.serviceWorkers();
+  if (worker === undefined) throw new Error('the page has no service worker');
+  // In the worker's own line: a list that is read while a notification is put up loses it (Chromium 156).
+  const shown = (): Promise<Shown[]> => worker.evaluate(() => (globalThis as unknown as WorkerScope).inLine(
+    async () => (await (globalThis as unknown as WorkerScope).registration.getNotifications()).map(({ title, body, tag, silent }) => ({ title, body, tag, silent })),
+  ));
   return {
     context, page, shown,
     async deliver(data) {
