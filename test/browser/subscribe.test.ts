@@ -6,17 +6,21 @@ import { launch, open } from './support/chromium.ts';
 import { startHouse, type DeskHouse } from './support/house.ts';
 import { expectInOrder, expectKeyboard, LOOKS, lookName } from './support/journey.ts';
 import { toldBrowser } from './support/push.ts';
+import { Webhook } from 'standardwebhooks';
+import { startWebhookSink, type Received, type WebhookSink } from '../support/sinks/webhook-sink.ts';
 
 let browser: Browser;
 let house: DeskHouse;
+let hooks: WebhookSink;
 
 beforeAll(async () => {
-  [browser, house] = await Promise.all([launch(), startHouse({ sites: true })]);
+  [browser, house, hooks] = await Promise.all([launch(), startHouse({ sites: true }), startWebhookSink()]);
 });
 
 afterAll(async () => {
   await browser.close();
   await house.close();
+  await hooks.close();
 });
 
 const on = (page: Page, name: string) => page.getByRole('button', { name, exact: true }).click();
@@ -71,6 +75,74 @@ test.each(LOOKS.map((look) => [lookName(look), look] as const))('by mail in thre
     `SELECT s.days, s.deliver_minute AS minute, s.speed_unit AS unit, p.sheet_id AS sheet FROM subscription AS s JOIN subscription_site AS p ON p.subscription_id = s.id
       JOIN channel AS c ON c.subscription_id = s.id WHERE c.target ->> 'address' = ?`, address);
   expect(kept).toEqual({ days: 63, minute: 345, unit: 'kt', sheet: 'first-hops' });
+  expect(complaints.filter((text) => !text.includes('400'))).toEqual([]);
+  await close();
+});
+
+/** What a program does that takes part: it echoes its challenge, and says yes to the rest. */
+const echoed = ({ id, body }: Received) => (id.startsWith('chl_') ? { status: 200, body: JSON.stringify({ challenge: (JSON.parse(body) as { data: { challenge: string } }).data.challenge }) } : 204);
+
+test.each([LOOKS[1], LOOKS[2]].map((look) => [lookName(look), look] as const))('by webhook, at %s: refused beside its field, shown its secret until it has echoed its challenge, tested and given another secret', async (_, look) => {
+  const path = `/hook-${look.width}`;
+  const got = () => hooks.received.filter((one) => one.path === path);
+  const { page, complaints, close } = await open(browser, `${house.origin}/subscribe`, look);
+  await page.getByLabel('Wennet Meadow', { exact: true }).check();
+  await on(page, 'On: when, and how');
+  for (const [typed, why] of [['http://hook.example.org/x', 'Not https'], ['https://10.0.0.1/x', 'An IP address instead of a name'], [`https://hook.example.com/${'x'.repeat(2060)}`, 'Longer than 2048 characters']] as const) {
+    await page.fill('#hook', typed);
+    await on(page, 'On: look over');
+    expect(await page.locator('#hook-wrong').innerText()).toContain(why);
+    expect(await page.inputValue('#hook')).toBe(typed);
+    expect(await page.locator('#address-wrong').count()).toBe(0);
+  }
+  await expectInOrder(page, look);
+  await page.fill('#hook', hooks.origin + path);
+  await page.getByLabel('the webhook first').check();
+  await on(page, 'On: look over');
+  expect(await page.locator('.gist').innerText()).toContain(`By a webhook at ${new URL(hooks.origin).host}.`);
+  await on(page, 'Subscribe');
+  expect(await page.locator('.said').innerText()).toContain('Keep the address of this page');
+  expect(await page.locator('.way').innerText()).toContain('It has not answered its challenge yet: no brief goes there.');
+  const secret = await page.locator('.way code').innerText();
+  await expectInOrder(page, look);
+  const test = async (outcome: string): Promise<void> => {
+    await page.getByRole('button', { name: /^Send a test/ }).click();
+    await page.waitForURL(/said=test/);
+    await house.settle();
+    await page.goto(page.url().split('?')[0] ?? '');
+    expect(await page.locator('.outcome').innerText()).toContain(outcome);
+  };
+  // It says yes to anything and echoes nothing: nothing but the challenge goes there.
+  await test('Last test: waits: the receiver has not echoed the challenge.');
+  expect(got().map(({ id }) => id.slice(0, 4))).toEqual(['chl_']);
+  hooks.behave(echoed);
+  await test('Last test: accepted at');
+  expect(await page.locator('.way').innerText()).not.toContain('challenge');
+  expect(await page.locator('.way code').count()).toBe(0);
+  const sent = got().at(-1)!;
+  expect(new Webhook(secret).verify(sent.body, sent.headers as Record<string, string>)).toMatchObject({ type: 'service.test' });
+  // Another secret: both sign until the old one is given up.
+  await page.getByRole('button', { name: /^Make a new secret/ }).click();
+  const anew = await page.locator('.way code').innerText();
+  await test('Last test: accepted at');
+  const both = got().at(-1)!;
+  for (const key of [secret, anew]) expect(new Webhook(key).verify(both.body, both.headers as Record<string, string>)).toMatchObject({ type: 'service.test' });
+  await page.getByRole('button', { name: /^Give up the old secret/ }).click();
+  await test('Last test: accepted at');
+  const last = got().at(-1)!;
+  expect(new Webhook(anew).verify(last.body, last.headers as Record<string, string>)).toMatchObject({ type: 'service.test' });
+  expect(() => new Webhook(secret).verify(last.body, last.headers as Record<string, string>)).toThrow('No matching signature found');
+  // A second one beside it, and not twice the same.
+  for (const [typed, why] of [['https://nas.local/x', 'A name that is not public'], [hooks.origin + path, 'This webhook is there already']] as const) {
+    await page.fill('#hook', typed);
+    await page.getByRole('button', { name: 'Tell this webhook too' }).click();
+    expect(await page.locator('#hook-wrong').innerText()).toContain(why);
+    expect(await page.inputValue('#hook')).toBe(typed);
+  }
+  await page.fill('#hook', `${hooks.origin}${path}-too`);
+  await page.getByRole('button', { name: 'Tell this webhook too' }).click();
+  expect(await page.locator('.way').nth(1).locator('code').innerText()).toMatch(/^whsec_/);
+  hooks.behave(() => 204);
   expect(complaints.filter((text) => !text.includes('400'))).toEqual([]);
   await close();
 });

@@ -2,10 +2,11 @@
 import { channelIssues, minuteOf } from '../../lib/config/subscription-channels.ts';
 import { localDate } from '../../lib/time.ts';
 import type { Issue } from '../../lib/result.ts';
+import { channelProblems } from '../security/channel-limits.ts';
 import { act, change, preferencesJson } from '../security/manage.ts';
 import type { DeskServices } from '../service-set.ts';
 import type { StoredChannel } from '../store/channel.ts';
-import { orderChannels, plannedTest, removeChannel, setQuiet } from '../store/deliveries.ts';
+import { dropOldSecret, orderChannels, plannedTest, removeChannel, renewSecret, setQuiet } from '../store/deliveries.ts';
 import type { SubscriptionDetail } from '../store/subscription.ts';
 import { textIn, wishesJson } from '../web/forms/wishes.ts';
 
@@ -20,6 +21,7 @@ interface Asked {
   readonly services: DeskServices;
   readonly detail: SubscriptionDetail;
   readonly form: FormData;
+  readonly request: Request;
 }
 
 function wrong(path: string, problem: string, allowed: string): Done {
@@ -42,17 +44,18 @@ export async function doAsked(asked: Asked): Promise<Done> {
       if (action === 'renew-links' && 'linkVersion' in acted && acted.linkVersion !== undefined) return { said: 'new-links', linkVersion: acted.linkVersion };
       return { said: action === 'pause' ? 'paused' : 'resumed', at: 'pause' };
     }
-    case 'test': case 'quiet': case 'raise': case 'remove': {
+    case 'test': case 'quiet': case 'raise': case 'remove': case 'new-secret': case 'old-secret': {
       const channels = await services.stores.channel.ofSubscription(detail.id);
       const channel = channels.find(({ id }) => id === form.get('channel'));
       return channel === undefined ? 'not-understood' : ofChannel(asked, action, channel, channels);
     }
-    case 'add-browser': return addBrowser(asked);
+    case 'add-browser': return addChannel(asked, { kind: 'push', endpoint: textIn(form, 'endpoint'), keys: { p256dh: textIn(form, 'p256dh'), auth: textIn(form, 'auth') } });
+    case 'add-webhook': return addChannel(asked, { kind: 'webhook', url: textIn(form, 'hook') });
     default: return 'not-understood';
   }
 }
 
-async function ofChannel({ services, detail, form }: Asked, action: 'test' | 'quiet' | 'raise' | 'remove', channel: StoredChannel, channels: readonly StoredChannel[]): Promise<Done> {
+async function ofChannel({ services, detail, form }: Asked, action: 'test' | 'quiet' | 'raise' | 'remove' | 'new-secret' | 'old-secret', channel: StoredChannel, channels: readonly StoredChannel[]): Promise<Done> {
   const { stores } = services;
   switch (action) {
     case 'test': return test(services, detail, channel);
@@ -75,6 +78,13 @@ async function ofChannel({ services, detail, form }: Asked, action: 'test' | 'qu
       if (before !== undefined) await stores.db.together([orderChannels(detail.id, [...ids.slice(0, at - 1), channel.id, before, ...ids.slice(at + 1)])]);
       return { said: 'order', at: channel.id };
     }
+    case 'new-secret': {
+      await stores.db.together([renewSecret(detail.id, channel.id, Number(textIn(form, 'version')))]);
+      return { said: 'new-secret', at: channel.id };
+    }
+    case 'old-secret':
+      await stores.db.together([dropOldSecret(detail.id, channel.id)]);
+      return { said: 'old-secret', at: channel.id };
     case 'remove':
       if (!channels.some(({ id, state }) => id !== channel.id && state !== 'dead')) return wrong('$.channels', 'this is the only way left', 'end the subscription instead');
       await stores.db.together([removeChannel(detail.id, channel.id)]);
@@ -96,19 +106,22 @@ async function test(services: DeskServices, detail: SubscriptionDetail, channel:
   return { said: isAsked ? 'asked' : 'test', at: channel.id };
 }
 
-async function addBrowser({ services, detail, form }: Asked): Promise<Done> {
+async function addChannel({ services, detail, request }: Asked, given: { readonly kind: 'push' | 'webhook' } & Readonly<Record<string, unknown>>): Promise<Done> {
   const { stores, addresses, clock } = services;
-  const given = { kind: 'push', endpoint: textIn(form, 'endpoint'), keys: { p256dh: textIn(form, 'p256dh'), auth: textIn(form, 'auth') } };
-  const { accepted: [push], issues } = channelIssues([given], addresses);
-  if (push === undefined || issues.length > 0) return { problems: issues };
-  if (!(await addresses.hasKeys(push.target))) return wrong('$.channels', 'these are no keys of a browser', 'a subscription as the browser gave it');
+  const { accepted, issues } = channelIssues([given], addresses);
+  const [asked] = accepted;
+  if (asked === undefined || issues.length > 0) return { problems: issues };
   const channels = await stores.channel.ofSubscription(detail.id);
-  if (channels.length >= MOST_CHANNELS) return wrong('$.channels', 'there are four ways to reach you already', 'one taken away first');
-  const known = channels.find(({ target, state }) => target === push.target && state !== 'dead');
+  const known = channels.find(({ kind, target, state }) => kind === asked.kind && target === asked.target && state !== 'dead');
+  if (known === undefined) {
+    if (channels.length >= MOST_CHANNELS) return wrong('$.channels', 'there are four ways to reach you already', 'one taken away first');
+    const problems = await channelProblems(services, { channels: accepted }, request);
+    if (problems.length > 0) return { problems };
+  } else if (asked.kind === 'webhook') return wrong('$.channels', 'this webhook is there already', 'another address');
   const free = [0, 1, 2, 3, 4].map((nth) => `${detail.id}-${nth}`).find((id) => channels.every((channel) => channel.id !== id)) ?? '';
   await stores.db.together([known === undefined
-    ? stores.channel.put([{ id: free, subscriptionId: detail.id, rank: Math.max(-1, ...channels.map(({ rank }) => rank)) + 1, kind: 'push', target: push.target, state: 'unverified' }], clock.nowMs())
+    ? stores.channel.put([{ id: free, subscriptionId: detail.id, rank: Math.max(-1, ...channels.map(({ rank }) => rank)) + 1, kind: asked.kind, target: asked.target, state: 'unverified' }], clock.nowMs())
     : stores.channel.askAt(known.id, clock.nowMs())]);
-  await services.wake('deliver', 1);
-  return { said: 'asked', at: known?.id ?? free };
+  if (asked.kind === 'push') await services.wake('deliver', 1);
+  return { said: asked.kind === 'push' ? 'asked' : 'added', at: known?.id ?? free };
 }

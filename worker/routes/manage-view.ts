@@ -21,12 +21,15 @@ const SAID: Readonly<Record<string, string>> = {
   loud: 'There are no quiet hours on this way any more.',
   order: 'The order is changed.',
   removed: 'This way is taken away.',
+  added: 'Added. Give its receiver the secret below; a test sends it the challenge.',
+  'new-secret': 'A new secret is made. Both sign what is sent until you give up the old one.',
+  'old-secret': 'The old secret signs nothing any more.',
   'new-links': 'These are the new links; those before lead nowhere now.',
   welcome: 'Accepted. Keep the address of this page: it is the only way to it, and as secret as a key.',
 };
 
 export async function manageMarkup(services: DeskServices, detail: SubscriptionDetail, { said = null, refused = null }: { readonly said?: string | null; readonly refused?: ManageView['refused'] }): Promise<string> {
-  const { settings, stores, clock } = services;
+  const { settings, stores, clock, addresses } = services;
   const nowMs = clock.nowMs();
   const [known, rows, about, deliveries, kept, { channels: seen }] = await Promise.all([
     sitesAndSheets(services), stores.channel.ofSubscription(detail.id), reachedOf(stores.db, detail.id),
@@ -34,11 +37,12 @@ export async function manageMarkup(services: DeskServices, detail: SubscriptionD
   ]);
   const links = await secretLinks({ publicUrl: settings.publicUrl, linkKey: settings.linkKey ?? '' }, detail.id, detail.linkVersion);
   const none = { reachedAtMs: null, shownAtMs: null, reason: null };
+  const secrets = await Promise.all(rows.map(async (row) => (row.kind === 'webhook' && (row.state === 'unverified' || row.oldestSecretVersion < row.secretVersion) ? addresses.secretOf(row) : null)));
   return managePage({
     ...known, kept, deliveries, refused, nowMs,
     state: detail.state,
     nextBriefAtMs: detail.state === 'active' ? detail.nextDueAtMs : null,
-    channels: rows.map(({ id, kind, state, quietFrom, quietTo }, nth) => ({ id, kind, state, quietFrom, quietTo, to: seen[nth]?.to ?? '', ...(about.get(id) ?? none) })),
+    channels: rows.map((row, nth) => ({ ...row, to: seen[nth]?.to ?? '', secret: secrets[nth] ?? null, ...(about.get(row.id) ?? none) })),
     feed: links.feed,
     path: new URL(links.manage).pathname,
     pushKey: settings.vapid?.publicKey ?? null,

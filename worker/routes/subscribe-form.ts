@@ -3,7 +3,7 @@ import type { Issue } from '../../lib/result.ts';
 import { readSubscription } from '../security/subscribe.ts';
 import type { DeskServices } from '../service-set.ts';
 import { textIn, wishesJson } from '../web/forms/wishes.ts';
-import { subscribePage, type Step } from '../web/subscribe/subscribe-page.ts';
+import { subscribePage, waysIn, type Step } from '../web/subscribe/subscribe-page.ts';
 import { page } from './forms.ts';
 import { sitesAndSheets } from './forms-data.ts';
 import { seeOther, shown } from './page-answers.ts';
@@ -24,11 +24,14 @@ export async function subscribeStart(services: DeskServices): Promise<string> {
 
 /** The form as a request of the API. */
 function requestOf(form: FormData): unknown {
-  const address = textIn(form, 'address');
-  const endpoint = textIn(form, 'endpoint');
-  const mail = address === '' ? [] : [{ kind: 'mail', address }];
-  const push = endpoint === '' ? [] : [{ kind: 'push', endpoint, keys: { p256dh: textIn(form, 'p256dh'), auth: textIn(form, 'auth') } }];
-  return { ...wishesJson(form), channels: textIn(form, 'first') === 'mail' ? [...mail, ...push] : [...push, ...mail] };
+  const channels = waysIn(form).map((kind) => {
+    switch (kind) {
+      case 'mail': return { kind, address: textIn(form, 'address') };
+      case 'webhook': return { kind, url: textIn(form, 'hook') };
+      case 'push': return { kind, endpoint: textIn(form, 'endpoint'), keys: { p256dh: textIn(form, 'p256dh'), auth: textIn(form, 'auth') } };
+    }
+  });
+  return { ...wishesJson(form), channels };
 }
 
 /** The first step that something is wrong in. */
@@ -40,7 +43,7 @@ function stepOf({ path }: Issue): Step {
   return /^\$\.(sites|wing)/.test(path) ? 1 : /^\$\.(deliver|units|channels)/.test(path) ? 2 : 3;
 }
 
-const NO_WAY: Issue = { path: '$.channels', value: 'none', problem: 'there is no way to reach you', allowed: 'a mail address, or this browser' };
+const NO_WAY: Issue = { path: '$.channels', value: 'none', problem: 'there is no way to reach you', allowed: 'a mail address, this browser, or a webhook' };
 
 export async function subscribeForm(services: DeskServices, form: FormData, request: Request): Promise<Response> {
   const asked = textIn(form, 'to');
@@ -48,7 +51,7 @@ export async function subscribeForm(services: DeskServices, form: FormData, requ
   const known = await sitesAndSheets(services);
   const show = (step: Step, problems: readonly Issue[], status: number): Response => shown(subscribePage({ ...known, step, form, problems, pushKey: services.settings.vapid?.publicKey ?? null }), status);
   const read = await readSubscription(services, requestOf(form));
-  const problems = (read.ok ? [] : read.error).map((issue) => (issue.path === '$.channels' ? NO_WAY : issue));
+  const problems = (read.ok ? [] : read.error).map((issue) => (issue.path === '$.channels' && waysIn(form).length === 0 ? NO_WAY : issue));
   const isOver = asked === 'send';
   const held = firstOf(problems, (step) => isOver || step < wanted);
   if (held !== undefined) return show(held, problems.filter((issue) => stepOf(issue) === held), 400);

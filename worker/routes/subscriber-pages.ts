@@ -60,7 +60,7 @@ export function subscriberPages(services: DeskServices): Hono {
   });
   app.post('/manage/:token', async (c) => {
     const detail = await subscriptionOf(services, 'manage', c.req.param('token'));
-    return detail === null ? nothing() : managed(services, detail, (await formOf(c.req.raw)) ?? new FormData());
+    return detail === null ? nothing() : managed(services, detail, c.req.raw);
   });
 
   // The one of these pages that a search may find.
@@ -73,8 +73,9 @@ export function subscriberPages(services: DeskServices): Hono {
   return app;
 }
 
-async function managed(services: DeskServices, detail: SubscriptionDetail, form: FormData): Promise<Response> {
-  const done = await doAsked({ services, detail, form });
+async function managed(services: DeskServices, detail: SubscriptionDetail, request: Request): Promise<Response> {
+  const form = (await formOf(request)) ?? new FormData();
+  const done = await doAsked({ services, detail, form, request });
   if (done === 'ended') return ended();
   if (done === 'not-understood') return shown(page('This was not understood', null), 400);
   if ('problems' in done) return shown(await manageMarkup(services, detail, { refused: { form, action: textIn(form, 'action'), problems: done.problems } }), done.status ?? 400);

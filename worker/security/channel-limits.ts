@@ -10,7 +10,7 @@ const MOST_UNVERIFIED = 3;
 const WEBHOOKS = { most: 5, withinMs: 24 * HOUR_MS };
 
 /** What of the channels this service does not take, whatever their form. */
-export async function channelProblems(services: DeskServices, { channels }: SubscriptionRequest, caller: Request): Promise<Issue[]> {
+export async function channelProblems(services: DeskServices, { channels }: Pick<SubscriptionRequest, 'channels'>, caller: Request): Promise<Issue[]> {
   const { stores, settings, addresses, mailer } = services;
   const problems: Issue[] = [];
   const hosts: string[] = [];
@@ -26,14 +26,14 @@ export async function channelProblems(services: DeskServices, { channels }: Subs
       if (asked > MOST_UNVERIFIED) say('url', JSON.stringify(host), `${MOST_UNVERIFIED} receivers at this host have not answered their challenge yet`, 'a host whose receivers answer');
     }
   }
-  return problems.length > 0 || hosts.length === 0 ? problems : tooManyWebhooks(services, hosts.length, caller);
+  return problems.length > 0 || hosts.length === 0 ? problems : tooManyWebhooks(services, channels.flatMap(({ kind }, index) => (kind === 'webhook' ? [index] : [])), caller);
 }
 
-async function tooManyWebhooks({ stores, settings, clock }: DeskServices, count: number, caller: Request): Promise<Issue[]> {
+async function tooManyWebhooks({ stores, settings, clock }: DeskServices, indexes: readonly number[], caller: Request): Promise<Issue[]> {
   const key = `hook ${await callerKey(settings.linkKey ?? '', caller)}`;
-  for (let index = 0; index < count; index += 1) {
+  for (const index of indexes) {
     if ((await stores.rate.take(key, WEBHOOKS, clock.nowMs())) > 0) {
-      return [{ path: '$.channels', value: `${count} webhooks`, problem: `${WEBHOOKS.most} webhooks a day are taken from one network`, allowed: 'fewer, or tomorrow' }];
+      return [{ path: `$.channels[${index}].url`, value: `${indexes.length} webhooks`, problem: `${WEBHOOKS.most} webhooks a day are taken from one network`, allowed: 'fewer, or tomorrow' }];
     }
   }
   return [];

@@ -67,6 +67,18 @@ export function setQuiet(subscriptionId: string, channelId: string, quiet: { rea
   return { sql: 'UPDATE channel SET quiet_from = ?3, quiet_to = ?4 WHERE subscription_id = ?1 AND id = ?2', values: [subscriptionId, channelId, quiet?.from ?? null, quiet?.to ?? null] };
 }
 
+/** A secret of the next version; the one before signs beside it, and no third. Asked twice from one page it is made once. */
+export function renewSecret(subscriptionId: string, channelId: string, version: number): Statement {
+  return {
+    sql: `UPDATE channel SET secret_version = ?3 + 1, oldest_secret_version = ?3 WHERE subscription_id = ?1 AND id = ?2 AND kind = 'webhook' AND secret_version = ?3`,
+    values: [subscriptionId, channelId, version],
+  };
+}
+
+export function dropOldSecret(subscriptionId: string, channelId: string): Statement {
+  return { sql: 'UPDATE channel SET oldest_secret_version = secret_version WHERE subscription_id = ?1 AND id = ?2', values: [subscriptionId, channelId] };
+}
+
 /** One of several: the last way to reach somebody is only taken away with the subscription. */
 export function removeChannel(subscriptionId: string, channelId: string): Statement {
   return {

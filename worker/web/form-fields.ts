@@ -35,8 +35,8 @@ function field({ name, label, problems, hint }: Field, control: (attributes: Htm
 ${problems.length === 0 ? null : html`<p class="wrong" id="${wrong}">${problemWords(problems)}</p>`}</div>`;
 }
 
-export function inputField(given: Field, kind: { readonly type?: string; readonly mode?: string; readonly complete?: string; readonly isRequired?: boolean; /** Filled with the reader's own where it is empty and scripts run. */ readonly isZone?: boolean } = {}): Html {
-  return field(given, (attributes) => html`<input ${attributes} type="${kind.type ?? 'text'}" value="${given.value}" maxlength="254"${kind.mode === undefined ? null : html` inputmode="${kind.mode}"`} autocomplete="${kind.complete ?? 'off'}"${kind.isRequired === true ? html` required` : null}${kind.isZone === true ? html` data-zone` : null}>`);
+export function inputField(given: Field, kind: { readonly type?: string; readonly mode?: string; readonly most?: number; readonly complete?: string; readonly isRequired?: boolean; /** Filled with the reader's own where it is empty and scripts run. */ readonly isZone?: boolean } = {}): Html {
+  return field(given, (attributes) => html`<input ${attributes} type="${kind.type ?? 'text'}" value="${given.value}" maxlength="${kind.most ?? 254}"${kind.mode === undefined ? null : html` inputmode="${kind.mode}"`} autocomplete="${kind.complete ?? 'off'}"${kind.isRequired === true ? html` required` : null}${kind.isZone === true ? html` data-zone` : null}>`);
 }
 
 export function selectField(given: Field, options: readonly Option[]): Html {

@@ -21,9 +21,12 @@ export interface WishesView {
 
 export const OWN_WING = 'own';
 
+/** More than any field may hold is cut to what is still too long: an address that was cut might be another one. */
+export const MOST_TYPED = 2100;
+
 export function textIn(form: FormData, name: string): string {
   const value = form.get(name);
-  return typeof value === 'string' ? value.trim().slice(0, 2048) : '';
+  return typeof value === 'string' ? value.trim().slice(0, MOST_TYPED) : '';
 }
 
 function listIn(form: FormData, name: string): string[] {

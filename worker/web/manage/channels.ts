@@ -1,7 +1,7 @@
 /** The ways to reach a subscriber, in their order: a test of each, when it was last reached, its quiet hours, its place. */
-import { problemWords } from '../form-fields.ts';
+import { inputField, problemWords } from '../form-fields.ts';
 import { html, type Html, type Piece } from '../html.ts';
-import { textIn } from '../forms/wishes.ts';
+import { MOST_TYPED, textIn } from '../forms/wishes.ts';
 import type { ChannelView, ManageView } from './view.ts';
 import { channelTitle, outcomeWords, reachedWords } from './words.ts';
 
@@ -46,7 +46,17 @@ function entry(channel: ChannelView, nth: number, view: ManageView): Html {
   return html`<li class="way" id="${channel.id}"><h3>${nth + 1}. ${channelTitle(channel)}, ${channel.to}</h3>
 <div data-live="reached-${nth}"><p>${reachedWords(channel, { timeZone: view.kept.deliver.timeZone, nowMs: view.nowMs })}</p>${lastTest(channel, view)}</div>
 <div class="acts">${isDead ? null : act(view, 'test', 'Send a test', { channel: channel.id, about })}${nth === 0 ? null : act(view, 'raise', 'Try this way earlier', { channel: channel.id, about })}${isDead || live > 1 ? act(view, 'remove', 'Take it away', { channel: channel.id, about }) : null}</div>
-${isDead ? null : quietForm(channel, view)}</li>`;
+${secretPart(channel, view)}${isDead ? null : quietForm(channel, view)}</li>`;
+}
+
+/** Of a webhook that is being set up its secret; of one that works only how to get another. */
+function secretPart(channel: ChannelView, view: ManageView): Piece {
+  if (channel.kind !== 'webhook' || channel.state === 'dead') return null;
+  const about = `${channelTitle(channel)} ${channel.to}`;
+  const fields = hidden('version', String(channel.secretVersion));
+  const isChanging = channel.oldestSecretVersion < channel.secretVersion;
+  return html`${channel.secret === null ? null : html`<p>Its secret, shown until ${isChanging ? 'you give up the one before' : 'it has answered'}: <code>${channel.secret}</code></p>`}
+<div class="acts">${isChanging ? act(view, 'old-secret', 'Give up the old secret', { channel: channel.id, about }) : act(view, 'new-secret', 'Make a new secret', { channel: channel.id, about, fields })}</div>`;
 }
 
 /** Shown by the script of the page where this browser can be told; without scripts nothing is offered that would not work. */
@@ -55,9 +65,18 @@ function addBrowser(view: ManageView): Piece {
   return html`<form class="act" method="post" action="${view.path}" data-browser="${view.pushKey}" hidden>${hidden('action', 'add-browser')}${hidden('endpoint', '')}${hidden('p256dh', '')}${hidden('auth', '')}<button type="button">Tell this browser too</button><p class="hint" role="status"></p></form>`;
 }
 
+function addWebhook(view: ManageView): Piece {
+  if (view.channels.length >= 4) return null;
+  const refused = view.refused?.action === 'add-webhook' ? view.refused : null;
+  const fields = inputField({
+    name: 'hook', label: 'Webhook', value: refused === null ? '' : textIn(refused.form, 'hook'), problems: refused?.problems ?? [], hint: 'An https address of a program of yours that takes signed posts.',
+  }, { type: 'url', mode: 'url', most: MOST_TYPED });
+  return act(view, 'add-webhook', 'Tell this webhook too', { fields });
+}
+
 export function channelsPart(view: ManageView): Html {
-  const refused = view.refused !== null && ['test', 'add-browser', 'remove', 'raise'].includes(view.refused.action) ? view.refused : null;
+  const refused = view.refused !== null && ['test', 'add-browser', 'remove', 'raise', 'new-secret', 'old-secret'].includes(view.refused.action) ? view.refused : null;
   return html`${refused === null ? null : html`<p class="wrong">${problemWords(refused.problems)}</p>`}
 <p class="hint">A message goes the first way; the next is taken when that has ended. A test goes now, and counts as shown only when the browser says so. Quiet hours hold a message back until they end, unless it is of no use by then; empty both to have none.</p>
-<ol class="ways">${view.channels.map((channel, nth) => entry(channel, nth, view))}</ol>${addBrowser(view)}`;
+<ol class="ways">${view.channels.map((channel, nth) => entry(channel, nth, view))}</ol>${addBrowser(view)}${addWebhook(view)}`;
 }

@@ -6,13 +6,15 @@ import type { PreferencesJson } from '../../security/manage.ts';
 import type { Delivery } from '../../store/deliveries.ts';
 import type { StoredChannel } from '../../store/channel.ts';
 
-export interface ChannelView extends Pick<StoredChannel, 'id' | 'kind' | 'state' | 'quietFrom' | 'quietTo'> {
+export interface ChannelView extends Pick<StoredChannel, 'id' | 'kind' | 'state' | 'quietFrom' | 'quietTo' | 'secretVersion' | 'oldestSecretVersion'> {
   /** Enough to tell which one it is. */
   readonly to: string;
   readonly reachedAtMs: number | null;
   readonly shownAtMs: number | null;
   /** Why it has ended. */
   readonly reason: string | null;
+  /** Of a webhook, until it has answered or the secret before is given up; null from then on. */
+  readonly secret: string | null;
 }
 
 /** Which form of the page was sent and could not be used, as it was typed. */

@@ -60,7 +60,7 @@ export function nextWords({ state, nextBriefAtMs, kept }: Pick<ManageView, 'stat
 export function reachedWords(channel: ChannelView, { timeZone, nowMs }: { readonly timeZone: string; readonly nowMs: number }): string {
   const { reachedAtMs, shownAtMs, kind, state } = channel;
   if (state === 'dead') return `Ended: ${plainText(channel.reason ?? 'nothing is taken there any more', 160)}.`;
-  const waits = state === 'unverified' ? `${kind === 'push' ? 'This browser has not confirmed yet that it wants to be told: no brief goes there.' : 'It has not answered its challenge yet: no brief goes there.'} ` : '';
+  const waits = state === 'unverified' ? `${kind === 'push' ? 'This browser has not confirmed yet that it wants to be told: no brief goes there.' : 'It has not answered its challenge yet: no brief goes there. A test sends the challenge first.'} ` : '';
   const said = (atMs: number): string => `${momentIn(atMs, timeZone)}${nowMs - atMs < 60_000 ? ', just now' : `, ${ageName(nowMs - atMs)} ago`}`;
   if (kind === 'push' && shownAtMs !== null) return `${waits}Last shown on ${said(shownAtMs)}.`;
   if (reachedAtMs === null) return `${waits}Nothing has been handed over on this way so far.`;
