@@ -38,16 +38,19 @@ export interface HouseOptions {
   readonly real?: boolean;
   /** Between the worker and the database. */
   readonly around?: (d1: D1) => D1;
+  readonly env?: Readonly<Record<string, string>>;
 }
 
 export class House {
   nowMs: number;
   /** Wake-up calls that are under way. */
   queue: Step[] = [];
-  readonly posts: Post[] = [];
+  /** With whether the receiver took it: what it never answered is not here. */
+  readonly posts: (Post & { readonly taken: boolean })[] = [];
   /** Of the running log. */
   readonly lines: string[] = [];
   readonly asked: SourceRequest[] = [];
+  readonly slept: number[] = [];
   calls = { db: 0, fetch: 0, queue: 0 };
   options: HouseOptions;
   #ids = 0;
@@ -58,7 +61,7 @@ export class House {
   }
 
   services(): Services {
-    const settings = readSettings({ LOCAL: '1', LINK_KEY, PUBLIC_URL: 'http://127.0.0.1:8787' });
+    const settings = readSettings({ LOCAL: '1', LINK_KEY, PUBLIC_URL: 'http://127.0.0.1:8787', ...this.options.env });
     if (!settings.ok) throw new Error('the settings of the test house are wrong');
     const queueOf = (step: Step): Pick<Queue<Job>, 'sendBatch'> => ({
       sendBatch: async (messages) => {
@@ -77,7 +80,7 @@ export class House {
         db: around(this.#counted(env.DB)),
         queues: { fetch: queueOf('fetch'), assess: queueOf('assess'), deliver: queueOf('deliver') },
         fetch: (url, init) => faults?.call('fetch', () => this.#post(url, init)) ?? this.#post(url, init),
-        sleep: async () => {},
+        sleep: async (ms) => { this.slept.push(ms); },
         clock: { nowMs: () => this.nowMs },
         ids: { next: () => `by-${(this.#ids += 1)}` },
         random: () => 0.5,
@@ -159,7 +162,7 @@ export class House {
     const headers = new Headers(init.headers);
     const post = { url, id: headers.get('webhook-id') ?? '', headers, body: typeof init.body === 'string' ? init.body : '', atMs: this.nowMs };
     const response = await (this.options.answer?.(post) ?? new Response(null, { status: 204 }));
-    this.posts.push(post);
+    this.posts.push({ ...post, taken: response.ok });
     return response;
   }
 
