@@ -210,6 +210,41 @@ test.each([[390, false], [1280, true]] as const)('sheets: what loosens comes fir
   await close();
 });
 
+test.each([[390, false], [1280, true]] as const)('a new sheet begins as a copy: what it lets pass beyond the other has to be meant, at %i px, scripts %s', async (width, scripts) => {
+  const { page, close } = await signedIn(house, { width, scripts }, '/operator/sheets/ridge-soaring');
+  const model = ((await (await api('/sheets/ridge-soaring')).json()) as { sheet: { for: string; limits: Record<string, number>; basis: Record<string, string> } }).sheet;
+  await page.getByRole('link', { name: 'Begin a new sheet from this one' }).click();
+  const gust = page.getByLabel('Gust, at most', { exact: true });
+  const before = Number(await gust.inputValue());
+  expect([await page.inputValue('#name'), await page.inputValue('#for'), before]).toEqual(['', model.for, model.limits['maxGustMps']]);
+  await gust.fill(String(before + 1));
+  const rain = page.getByLabel('Rain, at most', { exact: true });
+  await rain.fill('0.05');
+  for (const [name, why] of [['', 'This text is empty'], ['First hops', 'A sheet of this name is here already']] as const) {
+    await page.fill('#name', name);
+    await press(page, 'Look at what differs');
+    expect(await page.locator('#name-wrong').innerText()).toContain(why);
+    expect([await page.inputValue('#name'), await gust.inputValue()]).toEqual([name, String(before + 1)]);
+  }
+  await page.fill('#name', `Ridge at dusk ${width}`);
+  await press(page, 'Look at what differs');
+  expect(await page.locator('.loosens').innerText()).toMatch(new RegExp(`^Lets more pass than Ridge soaring\\s+Gust, at most: ${before} → ${before + 1}\\s+Nobody is held to the new sheet yet\\.`));
+  expect(await page.locator('.tightens').innerText()).toContain('→ 0.05');
+  await expectInOrder(page, { scripts });
+  await press(page, 'Save as a new sheet');
+  expect(await page.locator('[role=alert]').innerText()).toContain('This lets more pass than before');
+  expect((await api(`/sheets/ridge-at-dusk-${width}`)).status).toBe(404);
+  await page.getByLabel('I mean to let this pass').check();
+  await press(page, 'Save as a new sheet');
+  expect(await page.locator('.said').innerText()).toContain('Saved as a new sheet');
+  expect(new URL(page.url()).pathname).toBe(`/operator/sheets/ridge-at-dusk-${width}`);
+  const stored = ((await (await api(`/sheets/ridge-at-dusk-${width}`)).json()) as { sheet: typeof model }).sheet;
+  const { maxGustMps: _, maxRainMm: __, ...basis } = model.basis;
+  expect(stored).toMatchObject({ name: `Ridge at dusk ${width}`, kind: 'launch', version: 1, limits: { ...model.limits, maxGustMps: before + 1, maxRainMm: 0.05 } });
+  expect(stored.basis).toEqual(basis);
+  await close();
+});
+
 test('where there is a second key, what loosens waits for it, and what tightens does not', async () => {
   const secondToken = 'the-token-of-the-second-key-for-tests-0123456789';
   const two = await startHouse({ sites: true, secondToken });

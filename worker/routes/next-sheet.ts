@@ -5,6 +5,7 @@ import type { Result } from '../../lib/result.ts';
 import { base64Url, derivedKey, sha256Hex } from '../secrets.ts';
 import type { DeskServices } from '../service-set.ts';
 import { jsonBody } from './body.ts';
+import { sitesAndSheets } from './forms-data.ts';
 import { problem } from './problem.ts';
 import { staleness } from './staleness.ts';
 
@@ -21,7 +22,10 @@ export interface NextSheet {
   readonly loosens: boolean;
 }
 
-/** Reads it from a request that names the version it replaces; or the answer that says why it cannot be. */
+/**
+ * Reads it from a request that names the version it replaces; or the answer that says why it cannot be. The first version of a
+ * sheet replaces nothing; where the header copy-of names the sheet it was made from, it is held against that one.
+ */
 export async function nextSheet(services: DeskServices, id: string, request: Request): Promise<Result<NextSheet, Response>> {
   const refused = (error: Response): Result<never, Response> => ({ ok: false, error });
   const [row] = await services.stores.sheet.newestOf([id]);
@@ -38,7 +42,10 @@ export async function nextSheet(services: DeskServices, id: string, request: Req
   if (!sheet.ok) return refused(problem('bad-input', { problems: sheet.error }));
   if (sheet.value.id !== id) return refused(problem('bad-input', { problems: [issue(['id'], sheet.value.id, { problem: 'not the id of the address', allowed: id })] }));
   if (before !== undefined && before.kind !== sheet.value.kind) return refused(problem('bad-input', { problems: [issue(['kind'], sheet.value.kind, { problem: 'people are held to this sheet at sites of the other kind', allowed: before.kind })] }));
-  const changes = before === undefined ? [] : sheetChanges(before, sheet.value);
+  const copied = row === undefined && before === undefined ? request.headers.get('copy-of') : null;
+  const model = copied === null ? before : (await sitesAndSheets(services)).sheets.find((known) => known.id === copied);
+  if (copied !== null && model === undefined) return refused(problem('bad-input', { problems: [issue(['copy-of'], copied, { problem: 'no sheet of this id is here', allowed: 'the id of a sheet' })] }));
+  const changes = model === undefined ? [] : sheetChanges(model, sheet.value);
   const isBlind = row !== undefined && before === undefined;
   return { ok: true, value: { version, body: JSON.stringify(given), against: before?.version ?? null, changes, loosens: isBlind || changes.some(({ loosens }) => loosens) } };
 }

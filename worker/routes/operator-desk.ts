@@ -18,6 +18,7 @@ export const OPERATOR_METHODS: Readonly<Record<string, string>> = {
   '/operator/sites/:id/rehearse': 'GET, HEAD',
   '/operator/sheets': 'GET, HEAD',
   '/operator/sheets/:id': 'GET, HEAD, POST',
+  '/operator/sheets/:id/copy': 'GET, HEAD, POST',
   '/operator/status': 'GET, HEAD',
   '/api/v1/operator/sites': 'GET, HEAD, PUT',
   '/api/v1/operator/sheets': 'GET, HEAD',

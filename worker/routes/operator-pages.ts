@@ -12,7 +12,7 @@ import { rehearsalPage } from '../web/operator/rehearsal-page.ts';
 import { page } from './forms.ts';
 import { formOf, sitesAndSheets } from './forms-data.ts';
 import { canSignIn, isOwnForm, sessionOf, signedOut, signIn } from './operator-session.ts';
-import { allSheets, oneSheet } from './operator-sheets.ts';
+import { allSheets, copiedSheet, oneSheet } from './operator-sheets.ts';
 import { board, exported, imported, importStart, newSite, oneSite, sentSite, type Visit } from './operator-sites.ts';
 import { status } from './operator-status.ts';
 import { seeOther, shown } from './page-answers.ts';
@@ -69,6 +69,8 @@ export function operatorPages(services: DeskServices): Hono {
   app.get('/sheets', visited(allSheets));
   app.get('/sheets/:id', visited((visit, c) => oneSheet(visit, id(c), null)));
   app.post('/sheets/:id', sent((visit, form, c) => oneSheet(visit, id(c), form)));
+  app.get('/sheets/:id/copy', visited((visit, c) => copiedSheet(visit, id(c), null)));
+  app.post('/sheets/:id/copy', sent((visit, form, c) => copiedSheet(visit, id(c), form)));
   app.get('/status', visited(status));
   return app;
 }

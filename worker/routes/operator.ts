@@ -76,7 +76,8 @@ export function operator(services: DeskServices, refusal: typeof operatorRefusal
     const nowMs = clock.nowMs();
     await stores.db.together([
       stores.sheet.put([{ id, version, body }], nowMs),
-      stores.sheetHistory.add({ sheetId: id, version, against, changes, storedAtMs: nowMs }),
+      // Nobody is held to a first version yet: what it lets pass beyond the one it was made from is nothing to be told of.
+      stores.sheetHistory.add({ sheetId: id, version, against, changes: against === null ? [] : changes, storedAtMs: nowMs }),
     ]);
     await stores.log.write([{ level: loosens ? 'warning' : 'info', step: 'operator', event: 'sheet-changed', detail: { sheet: id, version, loosened: changes.filter((change) => change.loosens).length } }], nowMs);
     return json({ id, version, changes }, { headers: { etag: `"${version}"` } });

@@ -58,11 +58,12 @@ export async function subscribe(services: DeskServices, value: unknown, caller: 
   }
   await stores.db.together([...(await preferenceRows(services, id, request.value)), channelRows(services, id, request.value, false)]);
   await services.wake('deliver', 1);
-  const [first] = await stores.channel.ofSubscription(id);
-  const secret = first?.kind === 'webhook' ? await services.addresses.secretOf(first) : null;
+  const channels = await stores.channel.ofSubscription(id);
+  const hook = channels.find(({ kind }) => kind === 'webhook');
+  const secret = hook === undefined ? null : await services.addresses.secretOf(hook);
   return json({
     status: 'accepted',
-    detail: first?.kind === 'push'
+    detail: channels[0]?.kind === 'push'
       ? 'The browser is sent a push with a nonce, and is told once it has echoed it to /api/v1/subscriptions/confirm-push.'
       : 'The receiver has to answer a challenge before its first brief; a test asked for through the manage link sends it at once.',
     links: await secretLinks({ publicUrl: settings.publicUrl, linkKey }, id, 1),

@@ -22,6 +22,7 @@ export class PostHouse extends House {
   isLocal = true;
   publicUrl = 'http://127.0.0.1:8787';
   operatorHash: string | null = null;
+  secondHash: string | null = null;
   vapid: { readonly publicKey: string; readonly privateKey: string } | null = null;
   pushes: { readonly url: string; readonly body: Uint8Array; readonly headers: Headers }[] = [];
   pushStatus = 201;
@@ -43,7 +44,7 @@ export class PostHouse extends House {
         return Promise.resolve(outcome);
       },
     };
-    const settings = { ...services.settings, local: this.isLocal, publicUrl: this.publicUrl, vapid: this.vapid, mailFrom: 'brief@dawnmargin.example.org', operatorTokenSha256: this.operatorHash };
+    const settings = { ...services.settings, local: this.isLocal, publicUrl: this.publicUrl, vapid: this.vapid, mailFrom: 'brief@dawnmargin.example.org', operatorTokenSha256: this.operatorHash, secondTokenSha256: this.secondHash };
     const push = pushChannel({
       fetch: (url, init) => {
         this.pushes.push({ url, body: init.body as Uint8Array, headers: new Headers(init.headers) });

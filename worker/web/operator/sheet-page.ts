@@ -7,7 +7,7 @@ import { LIMIT_NAMES, PARAMETER_NAMES, type LimitName, type LimitSheet, type Par
 import type { Issue } from '../../../lib/result.ts';
 import { isoUtc } from '../../../lib/time.ts';
 import type { StoredSheetChange } from '../../store/sheet-history.ts';
-import { problemsOf, problemWords } from '../form-fields.ts';
+import { inputField, problemsOf, problemWords } from '../form-fields.ts';
 import { textIn } from '../forms/wishes.ts';
 import { html, type Html, type Piece } from '../html.ts';
 import { leaf, operatorPage, stamped, type OperatorFrame } from './frame.ts';
@@ -24,6 +24,8 @@ export interface SheetPage extends OperatorFrame {
   readonly asksSecond: boolean;
   /** Subscribers who are held to it. */
   readonly held: number;
+  /** The fields are those of a new sheet, begun from this one. */
+  readonly isCopy: boolean;
 }
 
 export const SHEET_NAMES = [...LIMIT_NAMES, ...PARAMETER_NAMES] as const;
@@ -107,29 +109,31 @@ function changeItem({ what, before, after }: SheetChange): Html {
 }
 
 function changesPart(page: SheetPage): Piece {
-  const { changes, held, asksSecond } = page;
+  const { changes, held, asksSecond, isCopy, sheet } = page;
+  const than = isCopy ? plainText(sheet.name) : 'before';
   if (changes === null) return null;
-  if (changes.length === 0) return html`<p>Nothing would change in what is judged.</p>`;
+  if (changes.length === 0) return html`<p>${isCopy ? `What is judged is as in ${than}.` : 'Nothing would change in what is judged.'}</p>`;
   const [looser, tighter] = [changes.filter(({ loosens }) => loosens), changes.filter(({ loosens }) => !loosens)];
-  return html`${looser.length === 0 ? null : html`<section class="loosens" aria-labelledby="loosens-h"><h2 id="loosens-h">Lets more pass than before</h2><ul>${looser.map(changeItem)}</ul><p>${held === 0 ? 'Nobody who subscribed is held to this sheet now.' : `${held} who subscribed ${held === 1 ? 'is' : 'are'} held to this sheet; the next brief tells each of them what was loosened.`}</p>
+  return html`${looser.length === 0 ? null : html`<section class="loosens" aria-labelledby="loosens-h"><h2 id="loosens-h">Lets more pass than ${than}</h2><ul>${looser.map(changeItem)}</ul><p>${isCopy ? 'Nobody is held to the new sheet yet.' : held === 0 ? 'Nobody who subscribed is held to this sheet now.' : `${held} who subscribed ${held === 1 ? 'is' : 'are'} held to this sheet; the next brief tells each of them what was loosened.`}</p>
 <label class="pick"><input type="checkbox" name="aware" value="1"> <span>I mean to let this pass</span></label>${asksSecond ? html`<div class="field"><label for="second">Token of the second key</label> <input id="second" type="password" name="second" maxlength="200" autocomplete="off"></div>` : null}</section>`}
-${tighter.length === 0 ? null : html`<section class="tightens" aria-labelledby="tightens-h"><h2 id="tightens-h">Holds tighter than before</h2><ul>${tighter.map(changeItem)}</ul></section>`}`;
+${tighter.length === 0 ? null : html`<section class="tightens" aria-labelledby="tightens-h"><h2 id="tightens-h">Holds tighter than ${than}</h2><ul>${tighter.map(changeItem)}</ul></section>`}`;
 }
 
 export function sheetPage(page: SheetPage): string {
-  const { sheet, form, history, changes } = page;
+  const { sheet, form, history, changes, isCopy } = page;
+  const path = `/operator/sheets/${encodeURIComponent(sheet.id)}`;
   const names = SHEET_NAMES.filter((name) => sheet.limits[name as LimitName] !== undefined || !(sheet.kind === 'launch' ? OF_STRIP : OF_LAUNCH).has(name));
   const past = history.map((change) => html`<li class="way"><h3>Version ${change.version}, ${isoUtc(change.storedAtMs).slice(0, 10)}</h3>${change.changes.length === 0 ? html`<p>The first that is kept here, or without a change in what is judged.</p>` : html`<ul>${change.changes.map((one) => html`<li>${one.loosens ? 'Loosened. ' : 'Tightened. '}${nameOf(one.what)}: ${one.before ?? 'not judged'} → ${one.after ?? 'not judged'}</li>`)}</ul>`}</li>`);
-  return operatorPage(page, html`<p class="day">${plainText(sheet.for, 500)}</p><p class="ages">Version ${sheet.version}, for a ${sheet.kind}.</p>
-<form class="steps sheet-form" method="post" action="/operator/sheets/${encodeURIComponent(sheet.id)}" novalidate>${stamped(page.stamp)}<input type="hidden" name="etag" value="${page.etag}">
-${changesPart(page)}${changes === null ? null : html`<div class="turn"><button class="next" name="to" value="save">Save as version ${sheet.version + 1}</button></div>`}
-<fieldset><legend>Name</legend><div class="fields"><div class="field"><label for="name">Name</label> <input id="name" name="name" maxlength="80" value="${textIn(form, 'name')}"></div><div class="field"><label for="for">For whom</label> <input id="for" name="for" maxlength="500" value="${textIn(form, 'for')}"></div></div></fieldset>
+  return operatorPage(page, html`<p class="day">${plainText(sheet.for, 500)}</p><p class="ages">${isCopy ? 'Begun from version' : 'Version'} ${sheet.version}, for a ${sheet.kind}.</p>
+<form class="steps sheet-form" method="post" action="${path}${isCopy ? '/copy' : null}" novalidate>${stamped(page.stamp)}<input type="hidden" name="etag" value="${page.etag}">
+${changesPart(page)}${changes === null ? null : html`<div class="turn"><button class="next" name="to" value="save">${isCopy ? 'Save as a new sheet' : `Save as version ${sheet.version + 1}`}</button></div>`}
+<fieldset><legend>Name</legend><div class="fields">${inputField({ name: 'name', label: 'Name', value: textIn(form, 'name'), problems: problemsOf(page.fieldProblems, /^\$\.(?:name|id)$/) }, { most: 80 })}<div class="field"><label for="for">For whom</label> <input id="for" name="for" maxlength="500" value="${textIn(form, 'for')}"></div></div></fieldset>
 <fieldset><legend>Limits, and what they are reckoned with</legend><ul class="limits">${names.map((name) => row(name, page))}</ul></fieldset>
-<div class="turn"><button class="${changes === null ? 'next' : 'back'}" name="to" value="look">Look at what changes</button></div></form>
+<div class="turn"><button class="${changes === null ? 'next' : 'back'}" name="to" value="look">${isCopy ? 'Look at what differs' : 'Look at what changes'}</button></div></form>${isCopy ? null : html`<div class="turn"><a class="button" href="${path}/copy">Begin a new sheet from this one</a></div>`}
 ${past.length === 0 ? null : leaf('history', 'Earlier', 'what each version changed', html`<ol class="ways">${past}</ol>`)}`);
 }
 
 export function sheetsPage(page: OperatorFrame & { readonly sheets: readonly LimitSheet[] }): string {
   const rows = page.sheets.map(({ id, name, version, kind, for: whom }) => html`<tr><th scope="row"><a href="/operator/sheets/${encodeURIComponent(id)}">${plainText(name)}</a></th><td>${kind}</td><td>${version}</td><td>${plainText(whom, 160)}</td></tr>`);
-  return operatorPage(page, html`<p class="lede">What a wing is held to. A change makes a new version; what it loosens is told to everyone who is held to it.</p><div class="scroll" tabindex="0" role="region" aria-label="Limit sheets"><table><thead><tr><th scope="col">Sheet</th><th scope="col">For a</th><th scope="col">Version</th><th scope="col">For whom</th></tr></thead><tbody>${rows}</tbody></table></div>`);
+  return operatorPage(page, html`<p class="lede">What a wing is held to. A change makes a new version; what it loosens is told to everyone who is held to it. A new sheet begins as a copy: open the one that is nearest to it.</p><div class="scroll" tabindex="0" role="region" aria-label="Limit sheets"><table><thead><tr><th scope="col">Sheet</th><th scope="col">For a</th><th scope="col">Version</th><th scope="col">For whom</th></tr></thead><tbody>${rows}</tbody></table></div>`);
 }

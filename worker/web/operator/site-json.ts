@@ -26,7 +26,7 @@ function placeText(coordinates: unknown): string {
   return lonDeg === undefined || latDeg === undefined ? '' : `${latDeg}, ${lonDeg}${elevationM === undefined ? '' : `, ${elevationM}`}`;
 }
 
-function kebab(name: string): string {
+export function kebab(name: string): string {
   return name.normalize('NFD').replace(/\p{M}/gu, '').replaceAll('ß', 'ss').toLowerCase().replace(/[^a-z0-9]+/g, '-').replace(/^-|-$/g, '').slice(0, 64).replace(/-$/, '');
 }
 
