@@ -30,11 +30,10 @@ export async function assessStep(services: Services): Promise<boolean> {
   }
   const place = (await placesOf(services, [first.siteId])).get(first.siteId);
   if (place === undefined) await putOff(services, runs, 'the site is gone or cannot be read');
-  else await assessSiteDay(services, { runs, place, localDate: first.localDate });
-  const nowMs = clock.nowMs();
-  const ready = await stores.run.ready(nowMs, ASSESS_CHUNK, [first.siteId]);
+  const messages = place === undefined ? 0 : await assessSiteDay(services, { runs, place, localDate: first.localDate });
+  const ready = await stores.run.ready(clock.nowMs(), ASSESS_CHUNK, [first.siteId]);
   await services.wake('assess', ready.assessJobs);
-  await services.wake('deliver', Math.min(4, Math.ceil((await stores.outbox.readyCount(nowMs)) / SEND_CHUNK)));
+  await services.wake('deliver', Math.min(4, Math.ceil(messages / SEND_CHUNK)));
   return true;
 }
 
@@ -44,7 +43,8 @@ interface SiteDay {
   readonly localDate: string;
 }
 
-async function assessSiteDay(services: Services, { runs, place, localDate }: SiteDay): Promise<void> {
+/** How many messages waited for nothing else. */
+async function assessSiteDay(services: Services, { runs, place, localDate }: SiteDay): Promise<number> {
   const { stores } = services;
   const sheets = new Map((await stores.sheet.newestOf(runs.map((run) => run.sheetId))).map((row) => [row.id, row]));
   const wings = new Map((await stores.wing.some(runs.map((run) => run.wingKey))).map((row) => [row.key, row]));
@@ -75,7 +75,10 @@ async function assessSiteDay(services: Services, { runs, place, localDate }: Sit
     }
   }
   services.say({ step: 'assess', event: 'judged', trace: [traceOf({ siteId: place.site.id, localDate })], detail: { pairs: done.length, new: statements.length } });
-  await stores.db.together([...statements, stores.runWork.finishAssessments(done, nowMs), stores.meta.setting('last-assess', String(nowMs))]);
+  const changed = await stores.db.together([
+    ...statements, stores.runWork.finishAssessments(done, nowMs), stores.meta.setting('last-assess', String(nowMs)), stores.outbox.bringForward(place.site.id, nowMs),
+  ]);
+  return changed.at(-1) ?? 0;
 }
 
 export interface DayInputParts {

@@ -25,14 +25,14 @@ export async function planDue(services: Services, nowMs: number, patience: Patie
   const groups = await stores.subscription.dueGroups(nowMs);
   if (groups.length === 0) return { groups: 0, fetches: 0, assessments: 0 };
   const mornings = groups.map((group) => ({ group, ...morningsOf(group, nowMs) }));
-  const pairs = (await stores.subscription.duePairs(nowMs)).flatMap(({ timeZone, deliverMinute, nextDueAtMs, days, ...pair }) => {
-    const key = groupKey({ timeZone, deliverMinute, nextDueAtMs, days });
-    const own = mornings.find(({ group }) => groupKey(group) === key);
-    return own === undefined ? [] : [{ ...pair, dueAtMs: own.newestMs }];
+  const newestMs = new Map(mornings.map((morning) => [groupKey(morning.group), morning.newestMs]));
+  const pairs = (await stores.subscription.duePairs(nowMs)).flatMap(({ siteId, wingKey, sheetId, ...group }) => {
+    const dueAtMs = newestMs.get(groupKey(group));
+    return dueAtMs === undefined ? [] : [{ siteId, wingKey, sheetId, dueAtMs }];
   });
   const places = await placesOf(services, [...new Set(pairs.map((pair) => pair.siteId))]);
-  const published = await stores.published.all();
-  const shown = pairs.flatMap((pair) => published.filter(({ siteId }) => siteId === pair.siteId).map((other) => ({ ...other, dueAtMs: pair.dueAtMs })));
+  const published = Map.groupBy(await stores.published.all(), ({ siteId }) => siteId);
+  const shown = pairs.flatMap((pair) => (published.get(pair.siteId) ?? []).map((other) => ({ ...other, dueAtMs: pair.dueAtMs })));
   const assessments = wantedAssessments(places, [...pairs, ...shown], patience);
   const fetches = await wantedFetches(services, { places, assessments, nowMs });
   await stores.db.together([

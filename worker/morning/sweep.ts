@@ -17,8 +17,9 @@ export async function sweep(services: Services, nowMs: number): Promise<void> {
   const silent = await stores.subscription.neverVerified(nowMs - UNCONFIRMED_MS);
   await stores.db.together([
     ...silent.flatMap((id) => stores.subscription.erase(id)),
-    ...stores.outboxUpkeep.closeOverdue(nowMs),
+    stores.outboxUpkeep.closeOverdue(nowMs),
     stores.runWork.giveUp(nowMs),
+    stores.outbox.bringForward(null, nowMs),
     stores.subscription.resumeDue(nowMs),
     stores.signup.dropExpired(nowMs),
     stores.token.dropExpired(nowMs),

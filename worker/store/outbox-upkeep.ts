@@ -10,22 +10,16 @@ const KEPT_MS = 14 * 24 * 3_600_000;
 export function outboxUpkeepStore(db: Database) {
   return {
     /** Rows whose time is over, and rows of subscribers or channels that are gone. A row that is being sent is left alone. */
-    closeOverdue(nowMs: number): Statement[] {
-      const idle = `state = 'pending' AND (lease_until IS NULL OR lease_until <= ?1)`;
-      return [
-        {
-          sql: `UPDATE outbox SET state = 'expired', reason = 'not delivered before it ceased to be valid' || COALESCE('; last: ' || reason, ''),
-            settled_at = ?1, lease_until = NULL, lease_by = NULL WHERE ${idle} AND valid_until <= ?1`,
-          values: [nowMs],
-        },
-        {
-          sql: `UPDATE outbox SET state = 'suppressed', reason = 'the subscription or its channel has ended', settled_at = ?1,
-            lease_until = NULL, lease_by = NULL
-            WHERE ${idle} AND NOT EXISTS (SELECT 1 FROM subscription AS s JOIN channel AS c ON c.subscription_id = s.id
-              WHERE s.id = outbox.subscription_id AND s.state = 'active' AND c.id = outbox.channel_id AND c.state <> 'dead')`,
-          values: [nowMs],
-        },
-      ];
+    closeOverdue(nowMs: number): Statement {
+      return {
+        sql: `UPDATE outbox SET settled_at = ?1, lease_until = NULL, lease_by = NULL,
+            state = CASE WHEN valid_until <= ?1 THEN 'expired' ELSE 'suppressed' END,
+            reason = CASE WHEN valid_until <= ?1 THEN 'not delivered before it ceased to be valid' || COALESCE('; last: ' || reason, '') ELSE 'the subscription or its channel has ended' END
+          WHERE state = 'pending' AND (lease_until IS NULL OR lease_until <= ?1) AND (valid_until <= ?1
+            OR NOT EXISTS (SELECT 1 FROM subscription AS s JOIN channel AS c ON c.subscription_id = s.id
+              WHERE s.id = outbox.subscription_id AND s.state = 'active' AND c.id = outbox.channel_id AND c.state <> 'dead'))`,
+        values: [nowMs],
+      };
     },
     /** For a machine of its own on which whoever held a lease is known to be gone. */
     dropLeases(): Statement[] {

@@ -46,13 +46,12 @@ export interface Claim {
   readonly limit: number;
 }
 
-/** Not before every brief it needs is computed, or the time is up. */
+/** Rows of outbox, named o, that may be sent at ?1. */
 const READY = `o.state = 'pending' AND o.format <= ${OUTBOX_FORMAT} AND o.next_attempt_at <= ?1 AND o.valid_until > ?1
-  AND (o.lease_until IS NULL OR o.lease_until <= ?1)
-  AND (o.ready_by <= ?1 OR o.kind <> 'brief' OR NOT EXISTS (
-    SELECT 1 FROM subscription_site AS p CROSS JOIN run AS r ON r.site_id = p.site_id AND r.step = 'assess'
-    WHERE p.subscription_id = o.subscription_id AND r.state = 'wanted' AND r.due_at <= o.due_at
-      AND r.wing_key = p.wing_key AND r.sheet_id = p.sheet_id))`;
+  AND (o.lease_until IS NULL OR o.lease_until <= ?1)`;
+
+/** Briefs that nobody has begun to send. */
+const WAITING = (t: string): string => `${t}.state = 'pending' AND ${t}.kind = 'brief' AND ${t}.content IS NULL`;
 
 export function outboxStore(db: Database) {
   return {
@@ -68,7 +67,7 @@ export function outboxStore(db: Database) {
             value ->> 'days' AS days, value ->> 'dueLocalDate' AS date, value ->> 'kind' AS kind, value ->> 'dueAtMs' AS due,
             value ->> 'readyByMs' AS ready, value ->> 'validUntilMs' AS valid, ABS(RANDOM() % 4000000000) AS first FROM json_each(?1))
           SELECT 'msg_' || printf('%08x', g.first + ROW_NUMBER() OVER ()) || lower(hex(randomblob(12))), s.id, c.id, g.date, g.kind, 1, ${OUTBOX_FORMAT},
-            g.due, g.ready, g.valid, 'pending', g.due, ?2
+            g.due, g.ready, g.valid, 'pending', CASE g.kind WHEN 'brief' THEN g.ready ELSE g.due END, ?2
           FROM g CROSS JOIN subscription AS s ON s.state = 'active' AND s.next_due_at = g.next_due
             AND s.time_zone = g.zone AND s.deliver_minute = g.minute AND s.days = COALESCE(g.days, s.days)
           JOIN channel AS c ON c.subscription_id = s.id AND c.state <> 'dead'
@@ -76,6 +75,22 @@ export function outboxStore(db: Database) {
           WHERE true
           ON CONFLICT (subscription_id, channel_id, due_local_date, kind, seq) DO NOTHING`,
         values: [JSON.stringify(groups), nowMs],
+      };
+    },
+    /**
+     * Brings forward the briefs all of whose assessments have ended: of those who asked for this site, or of everybody. The
+     * number of rows changed is how many are ready by that.
+     */
+    bringForward(siteId: string | null, nowMs: number): Statement {
+      return {
+        sql: `UPDATE outbox AS o SET next_attempt_at = o.due_at
+          WHERE ${WAITING('o')} AND o.due_at <= ?1 AND o.next_attempt_at = o.ready_by AND o.ready_by > ?1
+            ${siteId === null ? '' : `AND o.subscription_id IN (SELECT p.subscription_id FROM (SELECT 1 FROM outbox AS w INDEXED BY outbox_waiting WHERE ${WAITING('w')} LIMIT 1)
+              CROSS JOIN subscription_site AS p ON p.site_id = ?2)`}
+            AND NOT EXISTS (SELECT 1 FROM subscription_site AS p CROSS JOIN run AS r INDEXED BY run_wanted_of_site ON r.site_id = p.site_id AND r.step = 'assess'
+                AND r.wing_key = p.wing_key AND r.sheet_id = p.sheet_id
+              WHERE p.subscription_id = o.subscription_id AND r.state = 'wanted' AND r.due_at <= o.due_at)`,
+        values: siteId === null ? [nowMs] : [nowMs, siteId],
       };
     },
     /** Leases rows that may be sent now, the longest waiting first; a row is leased to one at a time. */

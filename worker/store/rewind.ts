@@ -40,14 +40,16 @@ export function rewound(nowMs: number, usefulMs: number, mornings: readonly Comi
     step(`UPDATE outbox SET state = 'suppressed', reason = 'planned by a clock that was ahead', settled_at = ?1, lease_until = NULL, lease_by = NULL
       WHERE state = 'pending' AND created_at > ?1 AND kind <> 'brief'`),
     {
-      sql: `UPDATE outbox SET state = 'pending', reason = NULL, settled_at = NULL, content = NULL, attempts = 0, ready_by = ?1 + 600000,
-          valid_until = due_at + ?2, next_attempt_at = due_at
+      sql: `UPDATE outbox SET state = 'pending', reason = NULL, settled_at = NULL, content = NULL, attempts = 0,
+          valid_until = due_at + ?2
         WHERE kind = 'brief' AND settled_at > ?1 AND due_at + ?2 > ?1 AND (state = 'expired' OR (state = 'suppressed' AND reason LIKE 'no brief was made%'))`,
       values: [nowMs, usefulMs],
     },
     // A send that is under way keeps its lease for as long as a send can take.
     step(`UPDATE outbox SET lease_until = MIN(lease_until, ?1 + 60000), next_attempt_at = MAX(due_at, ?1), content = CASE WHEN due_at > ?1 THEN NULL ELSE content END
       WHERE state = 'pending' AND (next_attempt_at > ?1 OR lease_until > ?1 + 60000)`),
+    // What has yet to be made is waited for once more.
+    step(`UPDATE outbox SET ready_by = MAX(due_at, ?1) + 600000, next_attempt_at = MAX(due_at, ?1) + 600000 WHERE state = 'pending' AND kind = 'brief' AND content IS NULL`),
     step(`UPDATE outbox SET due_at = ?1 WHERE state = 'sent' AND due_at > ?1 AND due_at <= ?1 + ${SAME_DAY_MS}`),
     step('UPDATE outbox SET created_at = MIN(created_at, ?1), settled_at = MIN(settled_at, ?1) WHERE created_at > ?1 OR settled_at > ?1'),
     // The first morning ahead whose brief has not been sent: those of one whose time has come again are planned at once.

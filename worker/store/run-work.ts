@@ -39,8 +39,8 @@ export function free(t: string): string {
 }
 
 /** Assessments, named a, all of whose fetches have ended, or whose time is up. */
-export const FETCHED = `(a.start_by <= ?1 OR NOT EXISTS (SELECT 1 FROM run AS f WHERE f.site_id = a.site_id
-  AND f.local_date = a.local_date AND f.step = 'fetch' AND f.state = 'wanted'))`;
+export const FETCHED = `(a.start_by <= ?1 OR NOT EXISTS (SELECT 1 FROM run AS f INDEXED BY run_wanted_of_site WHERE f.site_id = a.site_id
+  AND f.step = 'fetch' AND f.local_date = a.local_date AND f.state = 'wanted'))`;
 
 export function runWorkStore(db: Database) {
   return {
@@ -48,9 +48,9 @@ export function runWorkStore(db: Database) {
     claimFetches({ nowMs, leaseMs, by, limit }: Claim): Promise<FetchRun[]> {
       return db.take<FetchRun>(
         `UPDATE run SET lease_until = ?1 + ?2, lease_by = ?3, attempts = attempts + 1 WHERE key IN (
-          SELECT r.key FROM run AS r JOIN (SELECT source, local_date FROM run AS f WHERE step = 'fetch' AND ${free('f')} ORDER BY start_by, key LIMIT 1) AS first
-            ON r.source = first.source AND r.local_date = first.local_date
-          WHERE r.step = 'fetch' AND ${free('r')} ORDER BY r.due_at, r.key LIMIT ?4)
+          SELECT r.key FROM run AS r INDEXED BY run_wanted WHERE r.step = 'fetch' AND ${free('r')} AND (r.source, r.local_date) = (
+            SELECT source, local_date FROM run AS f INDEXED BY run_wanted WHERE step = 'fetch' AND ${free('f')} ORDER BY start_by, key LIMIT 1)
+          ORDER BY r.start_by, r.key LIMIT ?4)
           RETURNING key, site_id AS siteId, local_date AS localDate, source, attempts`,
         nowMs, leaseMs, by, limit,
       );
@@ -59,10 +59,10 @@ export function runWorkStore(db: Database) {
     claimAssessments({ nowMs, leaseMs, by, limit }: Claim): Promise<AssessRun[]> {
       return db.take<AssessRun>(
         `UPDATE run SET lease_until = ?1 + ?2, lease_by = ?3, attempts = attempts + 1 WHERE key IN (
-          SELECT r.key FROM run AS r JOIN (SELECT a.site_id, a.local_date FROM run AS a WHERE a.step = 'assess' AND ${free('a')}
-              AND ${FETCHED} ORDER BY a.due_at, a.key LIMIT 1) AS first
-            ON r.site_id = first.site_id AND r.local_date = first.local_date
-          WHERE r.step = 'assess' AND ${free('r')} ORDER BY r.due_at, r.key LIMIT ?4)
+          SELECT r.key FROM (SELECT a.site_id, a.local_date FROM run AS a INDEXED BY run_wanted WHERE a.step = 'assess' AND ${free('a')}
+              AND ${FETCHED} ORDER BY a.start_by, a.key LIMIT 1) AS first
+            CROSS JOIN run AS r INDEXED BY run_wanted_of_site ON r.site_id = first.site_id AND r.local_date = first.local_date
+          WHERE r.step = 'assess' AND ${free('r')} ORDER BY r.start_by, r.key LIMIT ?4)
           RETURNING key, site_id AS siteId, local_date AS localDate, wing_key AS wingKey, sheet_id AS sheetId, attempts`,
         nowMs, leaseMs, by, limit,
       );
@@ -82,7 +82,7 @@ export function runWorkStore(db: Database) {
      */
     finishFetches(ended: readonly EndedFetch[], nowMs: number): Statement {
       const list = ended.map(({ key, outcome, askAgainMs = null, keepsLast = false }) => ({ key, outcome: JSON.stringify(outcome), askAgainMs, keepsLast }));
-      const isAwaited = `(j.again IS NOT NULL AND (run.due_at > j.again OR EXISTS (SELECT 1 FROM run AS a WHERE a.step = 'assess' AND a.state = 'wanted'
+      const isAwaited = `(j.again IS NOT NULL AND (run.due_at > j.again OR EXISTS (SELECT 1 FROM run AS a INDEXED BY run_wanted_of_site WHERE a.step = 'assess' AND a.state = 'wanted'
         AND a.site_id = run.site_id AND a.local_date = run.local_date AND a.start_by > j.again)))`;
       const stands = `(j.keeps AND run.outcome ->> 'ok' = 1)`;
       return {

@@ -64,11 +64,12 @@ export function runStore(db: Database) {
     },
     /** Whether there is a fetch to begin, and how many jobs the assessments make that may begin, of these sites or of all. */
     async ready(nowMs: number, chunk: number, siteIds: readonly string[] | null): Promise<{ readonly fetch: number; readonly assessJobs: number }> {
+      const wanted = siteIds === null ? 'run AS a INDEXED BY run_wanted' : '(SELECT DISTINCT value AS id FROM json_each(?3)) AS j CROSS JOIN run AS a INDEXED BY run_wanted_of_site ON a.site_id = j.id';
       const [row] = await db.read<{ fetch: number; assessJobs: number }>(
-        `SELECT (SELECT COUNT(*) FROM run AS f WHERE f.step = 'fetch' AND ${free('f')}) AS fetch,
-          (SELECT COALESCE(SUM((n + ?2 - 1) / ?2), 0) FROM (SELECT COUNT(*) AS n FROM run AS a WHERE a.step = 'assess' AND ${free('a')}
-            AND (?3 IS NULL OR a.site_id IN (SELECT value FROM json_each(?3))) AND ${FETCHED} GROUP BY a.site_id, a.local_date)) AS assessJobs`,
-        nowMs, chunk, siteIds === null ? null : JSON.stringify(siteIds),
+        `SELECT EXISTS (SELECT 1 FROM run AS f INDEXED BY run_wanted WHERE f.step = 'fetch' AND ${free('f')}) AS fetch,
+          (SELECT COALESCE(SUM((n + ?2 - 1) / ?2), 0) FROM (SELECT COUNT(*) AS n FROM ${wanted}
+            WHERE a.step = 'assess' AND ${free('a')} AND ${FETCHED} GROUP BY a.site_id, a.local_date)) AS assessJobs`,
+        nowMs, chunk, ...(siteIds === null ? [] : [JSON.stringify(siteIds)]),
       );
       return row ?? { fetch: 0, assessJobs: 0 };
     },
