@@ -28,6 +28,10 @@ export interface FastPost {
 export interface FastOptions {
   readonly nowIso: string;
   readonly answer?: (post: FastPost) => Response;
+  /** In place of every answer of the world outside. */
+  readonly fetch?: (url: string, init: RequestInit) => Promise<Response>;
+  /** One that is always the middle where none is given. */
+  readonly random?: () => number;
   readonly source?: (request: SourceRequest) => Promise<ReadonlyMap<string, SourceAnswer>>;
   readonly judge?: (input: DayInput) => JudgedDay;
   readonly around?: (d1: D1) => D1;
@@ -75,7 +79,7 @@ export class FastHouse {
         settings: settings.value, db: this.options.around?.(this.d1) ?? this.d1,
         queues: { fetch: queueOf('fetch'), assess: queueOf('assess'), deliver: queueOf('deliver') },
         fetch: (url, init) => this.#fetch(url, init), sleep: async () => undefined,
-        clock: { nowMs: () => this.nowMs }, ids: { next: () => `by-${(this.#ids += 1)}` }, random: () => 0.5, patienceMs: 25, write: (line) => { this.lines.push(line); },
+        clock: { nowMs: () => this.nowMs }, ids: { next: () => `by-${(this.#ids += 1)}` }, random: this.options.random ?? (() => 0.5), patienceMs: 25, write: (line) => { this.lines.push(line); },
       },
       { sourcesFor: () => [{ id: 'stand-in:one', kind: 'deterministic', covers: () => true, fetch: (request) => this.#answers(request) }], judge: (input) => this.options.judge?.(input) ?? judgedAs(input, 'within') },
     );
@@ -130,6 +134,7 @@ export class FastHouse {
 
   async #fetch(url: string, init: RequestInit): Promise<Response> {
     this.fetched.push(url);
+    if (this.options.fetch !== undefined) return this.options.fetch(url, init);
     if (!url.startsWith('http://127.0.0.1:9/')) return new Response(null, { status: 204 });
     const body = JSON.parse(typeof init.body === 'string' ? init.body : '{}') as Pick<FastPost, 'type' | 'data'>;
     const post = { url, id: new Headers(init.headers).get('webhook-id') ?? '', ...body, atMs: this.nowMs };

@@ -17,12 +17,14 @@ export interface FailedAttempt {
 }
 
 /**
- * Full jitter: anywhere between at once and the whole wait, so that what failed together does not come back together. A
- * receiver that says when to come back is not given up for being busy, however often: only time ends that.
+ * Full jitter: anywhere between at once and the whole wait, so that what failed together does not come back together; what
+ * the receiver asks for comes before that, and the end of the message's time cuts it short. A receiver that says when to
+ * come back is not given up for being busy, however often: only time ends that.
  */
 export function nextAttempt({ nowMs, attempts, validUntilMs, afterMs, random }: FailedAttempt): NextAttempt {
-  const waitMs = WAITS_MS[attempts - 1] ?? (afterMs === null ? undefined : 0);
+  const waitMs = WAITS_MS[attempts - 1] ?? (afterMs === null ? undefined : WAITS_MS[5]);
   if (waitMs === undefined) return { never: 'given up' };
-  const atMs = nowMs + Math.max(Math.round(waitMs * random), afterMs ?? 0);
-  return atMs < validUntilMs ? { atMs } : { never: 'too late' };
+  const earliestMs = nowMs + (afterMs ?? 0);
+  const leftMs = validUntilMs - earliestMs;
+  return leftMs > 0 ? { atMs: earliestMs + Math.floor(Math.min(waitMs, leftMs) * random) } : { never: 'too late' };
 }

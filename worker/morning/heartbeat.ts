@@ -13,6 +13,7 @@ export function imbalances(books: Books, faults: { readonly judge: string; reado
     ...said(books.stuck, 'messages wait and nobody sends them'),
     ...said(books.overdue, 'messages are open after their time'),
     ...said(books.unaccounted, 'messages ended without a reason'),
+    ...said(books.refusals, 'push services refuse this sender: are the VAPID keys right?'),
     ...(faults.judge === '' ? [] : [`the judge failed its self-test: ${faults.judge}`]),
     ...(faults.clock === '' ? [] : [`the rules of time differ for ${faults.clock}: every time is said in UTC`]),
   ];

@@ -11,6 +11,8 @@ export interface Books {
   readonly overdue: number;
   /** Rows that are neither open nor ended with a reason. */
   readonly unaccounted: number;
+  /** Push services that take nothing from this sender, whoever it is for. */
+  readonly refusals: number;
 }
 
 /** How long after its last moment to be made a brief is given up, and after which nothing may be waiting. */
@@ -46,11 +48,12 @@ export function absenceStore(db: Database) {
         `SELECT (SELECT COUNT(*) FROM subscription WHERE state = 'active' AND next_due_at < ?1 - ${DEADLINE_MS / 2}) AS unplanned,
           COALESCE(SUM(${IDLE} AND o.next_attempt_at <= ?1 - ${DEADLINE_MS} AND o.ready_by <= ?1 - ${DEADLINE_MS} AND o.valid_until > ?1), 0) AS stuck,
           COALESCE(SUM(${IDLE} AND o.valid_until <= ?1 - 300000), 0) AS overdue,
-          COALESCE(SUM((o.state <> 'pending') <> (o.settled_at IS NOT NULL) OR (o.state <> 'pending' AND o.reason IS NULL)), 0) AS unaccounted
+          COALESCE(SUM((o.state <> 'pending') <> (o.settled_at IS NOT NULL) OR (o.state <> 'pending' AND o.reason IS NULL)), 0) AS unaccounted,
+          (SELECT COUNT(*) FROM breaker WHERE source LIKE 'push %' AND CAST(body AS INTEGER) > ?1) AS refusals
           FROM outbox AS o WHERE o.due_at > ?1 - ${LOOKED_AT_MS}`,
         nowMs,
       );
-      return row ?? { unplanned: 0, stuck: 0, overdue: 0, unaccounted: 0 };
+      return row ?? { unplanned: 0, stuck: 0, overdue: 0, unaccounted: 0, refusals: 0 };
     },
     /** One test a week to every channel that is up, of active subscribers whose clocks now show its hour. */
     planTests(groups: readonly { readonly timeZone: string; readonly dueLocalDate: string }[], times: { readonly nowMs: number; readonly validUntilMs: number }): Statement {

@@ -17,6 +17,8 @@ export function storedQuarrels(stores: { readonly breaker: BreakerStore; readonl
       return found;
     },
     async begin(origin, untilMs, nowMs) {
+      // Sends that were side by side are one quarrel.
+      if (((await known.get(origin)) ?? 0) > nowMs) return;
       known.set(origin, Promise.resolve(untilMs));
       await stores.breaker.put(keyOf(origin), String(untilMs), nowMs);
       await stores.log.write([{ level: 'error', step: 'deliver', event: 'push-service-refuses-us', detail: { origin } }], nowMs);
