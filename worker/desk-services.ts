@@ -81,8 +81,8 @@ export function deskServices(world: World): DeskServices {
     mailer,
     addresses: addressesOf(settings),
     channels: {
-      webhook: webhookChannel({ fetch: world.fetch, linkKey: settings.linkKey, local: settings.local, publicUrl: settings.publicUrl }),
-      push: pushChannel({ fetch: world.fetch, authorize: authorizer(settings), local: settings.local, publicUrl: settings.publicUrl, quarrels: storedQuarrels(stores) }),
+      webhook: webhookChannel({ fetch: world.fetch, linkKey: settings.linkKey, linkKeyBefore: settings.linkKeyBefore, local: settings.local, publicUrl: settings.publicUrl }),
+      push: pushChannel({ fetch: world.fetch, authorize: authorizer(settings, settings.vapid), before: authorizer(settings, settings.vapidBefore), local: settings.local, publicUrl: settings.publicUrl, quarrels: storedQuarrels(stores) }),
       ...(mailer === null ? {} : { mail: mailChannel({ mailer, linkKey: settings.linkKey, publicUrl: settings.publicUrl, mailFrom: settings.mailFrom ?? '' }) }),
       ...(settings.local ? { terminal: terminalChannel(stores.terminal) } : {}),
     },
@@ -92,7 +92,7 @@ export function deskServices(world: World): DeskServices {
 /** Kept for the life of an isolate: a token is signed once for each origin and hour. */
 const authorizers = new Map<string, Authorize>();
 
-function authorizer({ vapid: keys, contact, publicUrl }: Settings): Authorize | null {
+function authorizer({ contact, publicUrl }: Settings, keys: Settings['vapid']): Authorize | null {
   if (keys === null) return null;
   const subject = contact === null ? publicUrl : contact.includes(':') ? contact : `mailto:${contact}`;
   const name = `${keys.publicKey} ${subject}`;

@@ -36,6 +36,11 @@ export async function readLinkToken(linkKey: string, purpose: Purpose, token: st
   return (await sameText(token, await linkToken(linkKey, { purpose, id, version }))) ? { id, version } : null;
 }
 
+/** Tells one public key from another, where it is written down beside what was made under it. */
+export function keyIdOf({ publicKey }: { readonly publicKey: string }): string {
+  return publicKey.slice(1, 13);
+}
+
 /** Whether two texts are the same, in a time that does not tell where they differ. */
 export async function sameText(a: string, b: string): Promise<boolean> {
   const [left, right] = await Promise.all([sha256(a), sha256(b)]);

@@ -30,6 +30,10 @@ export interface Env {
   readonly LINK_KEY?: string;
   readonly VAPID_PUBLIC_KEY?: string;
   readonly VAPID_PRIVATE_KEY?: string;
+  /** While keys are being changed: those before, which sign for whoever was made under them. */
+  readonly VAPID_PUBLIC_KEY_BEFORE?: string;
+  readonly VAPID_PRIVATE_KEY_BEFORE?: string;
+  readonly LINK_KEY_BEFORE?: string;
   readonly OPERATOR_TOKEN_SHA256?: string;
   /** A second key: with it, what loosens a limit sheet needs the approval of whoever holds it. */
   readonly OPERATOR_SECOND_TOKEN_SHA256?: string;
@@ -41,6 +45,9 @@ export interface Env {
   /** Calls that one invocation may make: 50 unless the plan allows more. */
   readonly CALLS_AN_INVOCATION?: string;
 }
+
+/** The two halves of a key pair of VAPID, in base64url. */
+type VapidPair = { readonly publicKey: string; readonly privateKey: string };
 
 export interface Settings {
   /** Origin under which people reach this service. */
@@ -56,7 +63,11 @@ export interface Settings {
   readonly openMeteoKey: string | null;
   readonly contact: string | null;
   readonly linkKey: string | null;
-  readonly vapid: { readonly publicKey: string; readonly privateKey: string } | null;
+  /** Signs webhooks beside the new one; no link of it is opened any more. */
+  readonly linkKeyBefore: string | null;
+  readonly vapid: VapidPair | null;
+  /** Browsers that signed up under it are told under it. */
+  readonly vapidBefore: VapidPair | null;
   readonly operatorTokenSha256: string | null;
   readonly secondTokenSha256: string | null;
   readonly smtp: MailServer | null;
@@ -66,6 +77,7 @@ export interface Settings {
   readonly mostCalls: number;
 }
 
+const LINK_KEY = /^[\x21-\x7e]{32,500}$/;
 const LOOPBACK = new Set(['127.0.0.1', '[::1]', 'localhost']);
 
 /** Every setting, or every one that is wrong. A value that may be secret is never repeated. */
@@ -100,10 +112,16 @@ export function readSettings(env: Partial<Record<keyof Env, unknown>>): Result<S
     return wrong(name, 'not shown', 'this setting has the wrong form', allowed);
   };
 
-  const publicKey = secret('VAPID_PUBLIC_KEY', /^B[A-Za-z0-9_-]{86}$/, '87 characters of base64url: an uncompressed P-256 point');
-  const privateKey = secret('VAPID_PRIVATE_KEY', /^[A-Za-z0-9_-]{43}$/, '43 characters of base64url');
-  if ((text('VAPID_PUBLIC_KEY') === null) !== (text('VAPID_PRIVATE_KEY') === null)) {
-    wrong('VAPID_PRIVATE_KEY', 'missing', 'the two keys of VAPID belong together', 'VAPID_PUBLIC_KEY and VAPID_PRIVATE_KEY, or neither');
+  const vapidKeys = (suffix: '' | '_BEFORE'): VapidPair | null => {
+    const [publicName, privateName] = [`VAPID_PUBLIC_KEY${suffix}`, `VAPID_PRIVATE_KEY${suffix}`] as const;
+    const publicKey = secret(publicName, /^B[A-Za-z0-9_-]{86}$/, '87 characters of base64url: an uncompressed P-256 point');
+    const privateKey = secret(privateName, /^[A-Za-z0-9_-]{43}$/, '43 characters of base64url');
+    if ((text(publicName) === null) !== (text(privateName) === null)) wrong(privateName, 'missing', 'the two keys of VAPID belong together', `${publicName} and ${privateName}, or neither`);
+    return publicKey !== null && privateKey !== null ? { publicKey, privateKey } : null;
+  };
+  for (const name of ['VAPID_PUBLIC_KEY', 'LINK_KEY'] as const) {
+    const before = text(`${name}_BEFORE`);
+    if (before !== null && (text(name) === null || text(name) === before)) wrong(`${name}_BEFORE`, 'not shown', 'there is no newer key beside it', `${name} with the key that takes its place`);
   }
   if (text('OPERATOR_SECOND_TOKEN_SHA256') !== null && text('OPERATOR_SECOND_TOKEN_SHA256') === text('OPERATOR_TOKEN_SHA256')) {
     wrong('OPERATOR_SECOND_TOKEN_SHA256', 'not shown', 'the two keys are one', 'the hash of another token');
@@ -135,8 +153,10 @@ export function readSettings(env: Partial<Record<keyof Env, unknown>>): Result<S
     nwsUrl: origin('NWS_URL', 'https://api.weather.gov'),
     openMeteoKey: secret('OPEN_METEO_KEY', /^[\x21-\x7e]{1,200}$/, 'up to 200 characters without spaces'),
     contact,
-    linkKey: secret('LINK_KEY', /^[\x21-\x7e]{32,500}$/, 'at least 32 characters without spaces, made by chance'),
-    vapid: publicKey !== null && privateKey !== null ? { publicKey, privateKey } : null,
+    linkKey: secret('LINK_KEY', LINK_KEY, 'at least 32 characters without spaces, made by chance'),
+    linkKeyBefore: secret('LINK_KEY_BEFORE', LINK_KEY, 'the key that LINK_KEY was'),
+    vapid: vapidKeys(''),
+    vapidBefore: vapidKeys('_BEFORE'),
     secondTokenSha256: secret('OPERATOR_SECOND_TOKEN_SHA256', /^[0-9a-f]{64}$/, '64 lower-case hexadecimal digits, of another token than the first'),
     operatorTokenSha256: secret('OPERATOR_TOKEN_SHA256', /^[0-9a-f]{64}$/, '64 lower-case hexadecimal digits'),
     smtp,

@@ -1,7 +1,9 @@
 // Browsers that are told by push: the nonce that shows that they asked, and moving to another address (T12, T21-T24, C49-C53).
 import { env } from 'cloudflare:workers';
-import { beforeEach, describe, expect, test } from 'vitest';
-import { base64Url, base64UrlBytes } from '../../worker/secrets.ts';
+import { Webhook } from 'standardwebhooks';
+import { beforeEach, describe, expect, test, vi } from 'vitest';
+import { base64Url, base64UrlBytes, linkToken } from '../../worker/secrets.ts';
+import { LINK_KEY } from './support/house.ts';
 import { everyRow, newPostHouse, wish, type PostHouse } from './support/post-house.ts';
 import { newBrowser, type TestBrowser } from './support/browser.ts';
 
@@ -218,6 +220,105 @@ describe('moving', () => {
     const padded = { endpoint, keys: { p256dh: `${keys.p256dh}=`, auth: `${keys.auth}==` } };
     expect(await (await house.ask('POST', RENEW, { old: padded, fresh: padded })).json()).toEqual({ state: 'active' });
   });
+});
+
+describe('T34 another key of ours', () => {
+  /** A push service as RFC 8292, section 4.2, has it: of a browser that signed up under a key it takes no other. */
+  function pushService(): { signUp(browser: TestBrowser, publicKey: string): void; readonly refused: string[] } {
+    const keys = new Map<string, string>();
+    const refused: string[] = [];
+    house.pushAnswer = ({ url, headers }) => {
+      const under = /k=([\w-]+)$/.exec(headers.get('authorization') ?? '')?.[1];
+      if (under === keys.get(url)) return 201;
+      refused.push(url);
+      return 403;
+    };
+    return { signUp: (browser, publicKey) => { keys.set(browser.subscription.endpoint, publicKey); }, refused };
+  }
+  const outbox = async () => (await env.DB.prepare('SELECT state, COUNT(*) AS n FROM outbox GROUP BY state').all()).results;
+  const keyOf = (browser: TestBrowser) => env.DB.prepare(`SELECT push_key FROM channel WHERE target ->> 'endpoint' = ?`).bind(browser.subscription.endpoint).first('push_key');
+
+  test('T34 keys changed while a morning is being sent: no send fails, each browser is told under the key that it signed up under', async () => {
+    const service = pushService();
+    const old = house.vapid!;
+    const [first, waits, late] = [await newBrowser(), await newBrowser(), await newBrowser()];
+    for (const browser of [first, waits]) {
+      service.signUp(browser, old.publicKey);
+      await confirmed(browser);
+    }
+    const answer = house.pushAnswer;
+    house.pushAnswer = (push) => (push.url === waits.subscription.endpoint ? 503 : answer(push));
+    await morning();
+    expect(await outbox()).toEqual([{ state: 'pending', n: 1 }, { state: 'sent', n: 1 }]);
+    // In the middle of it.
+    house.vapidBefore = old;
+    await house.withPush();
+    house.pushAnswer = answer;
+    expect(await (await house.ask('GET', '/api/v1/push/key')).json()).toEqual({ publicKey: house.vapid!.publicKey });
+    await house.minutes(5);
+    expect(await outbox()).toEqual([{ state: 'sent', n: 2 }]);
+    // One that signs up now does so under the new key; one whose page was open before the change, under the old.
+    const fresh = await newBrowser();
+    service.signUp(fresh, house.vapid!.publicKey);
+    service.signUp(late, old.publicKey);
+    for (const browser of [fresh, late]) await confirmed(browser);
+    expect(service.refused).toEqual([late.subscription.endpoint]);
+    await morning('2027-05-15T04:00:00Z');
+    expect(await outbox()).toEqual([{ state: 'sent', n: 6 }]);
+    expect(service.refused).toHaveLength(1);
+    const ids = await Promise.all([first, waits, late, fresh].map(keyOf));
+    expect(new Set(ids.slice(0, 3)).size).toBe(1);
+    expect(new Set(ids).size).toBe(2);
+    // Its next visit brings a browser under the new key; the old one is given up, and who has not been here since has to.
+    const again = await newBrowser();
+    service.signUp(again, house.vapid!.publicKey);
+    expect((await house.ask('POST', RENEW, { old: first.subscription, fresh: again.subscription })).status).toBe(200);
+    await house.answerAll();
+    expect((await house.ask('POST', CONFIRM, { nonce: await nonceFor(again) })).status).toBe(200);
+    expect(await keyOf(again)).toBe(ids[3]);
+    house.vapidBefore = null;
+    await morning('2027-05-16T04:00:00Z');
+    expect((await env.DB.prepare(`SELECT reason, COUNT(*) AS n FROM outbox WHERE due_local_date = '2027-05-16' GROUP BY reason ORDER BY n, reason`).all()).results).toEqual([
+      { reason: 'taken by the receiver', n: 2 }, { reason: 'this browser signed up under a key that is given up: it signs up again at its next visit', n: 2 },
+    ]);
+    // That quarrels with nobody: the others at the same push service are told.
+    expect(service.refused).toHaveLength(1);
+    expect(await state()).toEqual(['active', 'active', 'active', 'active']);
+  });
+
+  test('T34 a browser of before keys were written down is told under the key before, and its key is written down', async () => {
+    const service = pushService();
+    const browser = await newBrowser();
+    service.signUp(browser, house.vapid!.publicKey);
+    await confirmed(browser);
+    const id = await keyOf(browser);
+    await env.DB.prepare('UPDATE channel SET push_key = NULL').run();
+    house.vapidBefore = house.vapid;
+    await house.withPush();
+    await morning();
+    expect([await outbox(), await keyOf(browser), service.refused]).toEqual([[{ state: 'sent', n: 1 }], id, []]);
+  });
+});
+
+test('T34 another key of links: what webhooks are sent is signed under both, and links of the one before lead nowhere', async () => {
+  const before = 'the-link-key-of-before-for-tests-0123456789';
+  house.options = { ...house.options, env: { LINK_KEY: before }, answer: (post) => (post.id.startsWith('chl_') ? new Response(JSON.stringify({ challenge: (JSON.parse(post.body) as { data: { challenge: string } }).data.challenge })) : new Response(null, { status: 204 })) };
+  const made = (await (await house.ask('POST', POST, wish({ channels: [{ kind: 'webhook', url: 'http://127.0.0.1:9/hook' }] }))).json()) as { links: { manage: string }; webhookSecret: string };
+  await morning();
+  const verified = (secret: string) => new Webhook(secret).verify(house.posts.at(-1)!.body, Object.fromEntries(house.posts.at(-1)!.headers));
+  vi.setSystemTime(house.nowMs);
+  expect(verified(made.webhookSecret)).toMatchObject({ type: 'brief.issued' });
+  house.options = { ...house.options, env: { LINK_KEY_BEFORE: before } };
+  await morning('2027-05-15T04:00:00Z');
+  vi.setSystemTime(house.nowMs);
+  expect(verified(made.webhookSecret)).toMatchObject({ type: 'brief.issued' });
+  const { id } = (await env.DB.prepare('SELECT id FROM subscription').first<{ id: string }>())!;
+  const page = await house.ask('GET', `/manage/${await linkToken(LINK_KEY, { purpose: 'manage', id, version: 1 })}`);
+  const anew = /whsec_[\w+/=]+/.exec(await page.text())?.[0] ?? '';
+  expect(anew).not.toBe(made.webhookSecret);
+  expect(verified(anew)).toMatchObject({ type: 'brief.issued' });
+  expect((await house.ask('GET', new URL(made.links.manage).pathname)).status).toBe(404);
+  vi.useRealTimers();
 });
 
 test('without keys of its own a service says that it sends no push', async () => {

@@ -16,7 +16,7 @@ describe('settings', () => {
     ['PUBLIC_URL', 'brief.example.org'], ['PUBLIC_URL', 'http://brief.example.org'], ['PUBLIC_URL', 'https://brief.example.org/path'],
     ['OPEN_METEO_URL', 'http://127.0.0.1:9000'], ['NWS_URL', 'ftp://example.org'], ['MET_NORWAY_URL', 'https://user@example.org'],
     ['LINK_KEY', 'short'], ['OPERATOR_TOKEN_SHA256', 'ABC'], ['CONTACT', 'nobody'], ['LOCAL', 'yes'], ['HEARTBEAT_URL', 'http://example.org'], ['CALLS_AN_INVOCATION', '49'], ['CALLS_AN_INVOCATION', 'many'],
-    ['LOCAL_TOKEN', 'x'], ['VAPID_PUBLIC_KEY', 'x'],
+    ['LOCAL_TOKEN', 'x'], ['VAPID_PUBLIC_KEY', 'x'], ['LINK_KEY_BEFORE', 'x'.repeat(40)], ['VAPID_PUBLIC_KEY_BEFORE', `B${'x'.repeat(86)}`], ['VAPID_PRIVATE_KEY_BEFORE', 'x'.repeat(43)],
   ])('%s=%s is refused by name', (name, value) => {
     expect(names({ [name]: value })).toContain(name);
   });

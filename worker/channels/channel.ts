@@ -42,10 +42,12 @@ export interface Address {
   /** What the links in a message are derived from. */
   readonly subscriptionId?: string;
   readonly linkVersion?: number;
+  /** Of a browser: which of our keys it signed up under, as far as it is known. */
+  readonly pushKey?: string | null;
 }
 
 export type SendOutcome =
-  | { readonly state: 'sent'; /** It has just shown that it wants to be told. */ readonly verified?: true }
+  | { readonly state: 'sent'; /** It has just shown that it wants to be told. */ readonly verified?: true; /** The key that a browser turned out to have signed up under. */ readonly pushKey?: string }
   /** The world failed for now. */
   | { readonly state: 'retry'; readonly reason: string; readonly afterMs: number | null }
   /** This message will never be taken there, another may be. */

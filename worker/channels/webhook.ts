@@ -15,6 +15,8 @@ const MOST_CHALLENGES = 3;
 export interface WebhookOptions {
   readonly fetch: (url: string, init: RequestInit) => Promise<Response>;
   readonly linkKey: string | null;
+  /** While that key is being changed: the one before, which signs beside it. */
+  readonly linkKeyBefore?: string | null;
   readonly local: boolean;
   readonly publicUrl: string;
 }
@@ -77,13 +79,13 @@ async function signature(key: Uint8Array, content: string): Promise<string> {
 type Post = (id: string, body: unknown) => Promise<Response | 'too late' | 'unreachable'>;
 
 function poster(
-  { fetch }: WebhookOptions,
+  { fetch, linkKeyBefore = null }: WebhookOptions,
   { url, linkKey, address, attempt }: { readonly url: string; readonly linkKey: string; readonly address: Address; readonly attempt: Attempt },
 ): Post {
   return async (id, value) => {
     const body = JSON.stringify(value);
     const timestampS = Math.floor(attempt.nowMs / 1000);
-    const secrets = await webhookSecrets(linkKey, address);
+    const secrets = (await Promise.all([linkKey, ...(linkKeyBefore === null ? [] : [linkKeyBefore])].map((key) => webhookSecrets(key, address)))).flat();
     const signatures = await Promise.all(secrets.map((key) => signature(key, `${id}.${timestampS}.${body}`)));
     const headers = {
       'content-type': 'application/json', 'user-agent': 'dawnmargin',

@@ -27,7 +27,8 @@ export async function deliverOne(services: Services, item: Composed, by: string)
   switch (outcome.state) {
     case 'sent': {
       const verified = outcome.verified === true ? [stores.channel.verify(item.channel.id)] : [];
-      return { state: 'sent', marks: [stores.outbox.settle(row.id, { state: 'sent', reason: 'taken by the receiver' }, nowMs), ...verified] };
+      const under = outcome.pushKey === undefined ? [] : [stores.channel.underKey(item.channel.id, outcome.pushKey)];
+      return { state: 'sent', marks: [stores.outbox.settle(row.id, { state: 'sent', reason: 'taken by the receiver' }, nowMs), ...verified, ...under] };
     }
     case 'gone':
       return { state: 'dead', marks: [stores.channel.end(item.channel.id, outcome.reason), ...dead(services, item, outcome.reason)] };

@@ -2,6 +2,7 @@
 import { channelIssues, minuteOf } from '../../lib/config/subscription-channels.ts';
 import { localDate } from '../../lib/time.ts';
 import type { Issue } from '../../lib/result.ts';
+import { pushKeyOf } from '../security/browser.ts';
 import { channelProblems } from '../security/channel-limits.ts';
 import { act, change, preferencesJson } from '../security/manage.ts';
 import type { DeskServices } from '../service-set.ts';
@@ -120,7 +121,7 @@ async function addChannel({ services, detail, request }: Asked, given: { readonl
   } else if (asked.kind === 'webhook') return wrong('$.channels', 'this webhook is there already', 'another address');
   const free = [0, 1, 2, 3, 4].map((nth) => `${detail.id}-${nth}`).find((id) => channels.every((channel) => channel.id !== id)) ?? '';
   await stores.db.together([known === undefined
-    ? stores.channel.put([{ id: free, subscriptionId: detail.id, rank: Math.max(-1, ...channels.map(({ rank }) => rank)) + 1, kind: asked.kind, target: asked.target, state: 'unverified' }], clock.nowMs())
+    ? stores.channel.put([{ id: free, subscriptionId: detail.id, rank: Math.max(-1, ...channels.map(({ rank }) => rank)) + 1, kind: asked.kind, target: asked.target, state: 'unverified', ...(asked.kind === 'push' ? { pushKey: pushKeyOf(services) } : {}) }], clock.nowMs())
     : stores.channel.askAt(known.id, clock.nowMs())]);
   if (asked.kind === 'push') await services.wake('deliver', 1);
   return { said: asked.kind === 'push' ? 'asked' : 'added', at: known?.id ?? free };

@@ -37,7 +37,7 @@ export async function manageMarkup(services: DeskServices, detail: SubscriptionD
   ]);
   const links = await secretLinks({ publicUrl: settings.publicUrl, linkKey: settings.linkKey ?? '' }, detail.id, detail.linkVersion);
   const none = { reachedAtMs: null, shownAtMs: null, reason: null };
-  const secrets = await Promise.all(rows.map(async (row) => (row.kind === 'webhook' && (row.state === 'unverified' || row.oldestSecretVersion < row.secretVersion) ? addresses.secretOf(row) : null)));
+  const secrets = await Promise.all(rows.map(async (row) => (row.kind === 'webhook' && (row.state === 'unverified' || settings.linkKeyBefore !== null || row.oldestSecretVersion < row.secretVersion) ? addresses.secretOf(row) : null)));
   return managePage({
     ...known, kept, deliveries, refused, nowMs,
     state: detail.state,

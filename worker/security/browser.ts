@@ -8,9 +8,10 @@ import { issue } from '../../lib/config/check.ts';
 import { success, failure, type Issue, type Result } from '../../lib/result.ts';
 import { HOUR_MS } from '../../lib/time.ts';
 import { SEND_TIMEOUT_MS } from '../morning/times.ts';
-import { sameText, sha256Hex } from '../secrets.ts';
+import { keyIdOf, sameText, sha256Hex } from '../secrets.ts';
 import type { DeskServices, Services } from '../service-set.ts';
 import type { ChannelToAsk, StoredChannel } from '../store/channel.ts';
+import { statementsOf } from '../store/mark.ts';
 import { UNCONFIRMED_MS } from '../store/signup.ts';
 import { newToken } from '../store/token.ts';
 import { subscriptionOf } from './manage.ts';
@@ -39,7 +40,7 @@ async function ask(services: Services, channel: ChannelToAsk): Promise<void> {
   };
   const outcome = isOver ? null : await channels['push']?.send(message, { ...channel, state: 'unverified' }, { number: 1, nowMs, timeoutMs: SEND_TIMEOUT_MS, untilMs: message.validUntilMs });
   if (outcome?.state === 'gone') await stores.db.together([stores.channel.end(channel.id, outcome.reason)]);
-  else if (outcome?.state !== 'retry') await stores.db.together([stores.channel.askAt(channel.id, null)]);
+  else if (outcome?.state !== 'retry') await stores.db.together(statementsOf([stores.channel.askAt(channel.id, null), ...(outcome?.state === 'sent' && outcome.pushKey !== undefined ? [stores.channel.underKey(channel.id, outcome.pushKey)] : [])]));
 }
 
 /** A browser sends back what it was sent; false for anything that is no nonce, or one no more. */
@@ -49,6 +50,11 @@ export async function confirmBrowser({ stores, clock }: Pick<DeskServices, 'stor
   if (channel === undefined) return false;
   await stores.db.together([stores.channel.verify(channel.id), stores.channel.rekey(channel.target), stores.token.drop(channel.id)]);
   return true;
+}
+
+/** Under which key a browser signs up now. */
+export function pushKeyOf({ settings: { vapid } }: Pick<DeskServices, 'settings'>): string | null {
+  return vapid === null ? null : keyIdOf(vapid);
 }
 
 /** What became of a renewal: the state of the channel, or null where nobody is told by that browser. */
@@ -67,7 +73,7 @@ export async function renewBrowser(services: DeskServices, renewal: Renewal): Pr
   const nowMs = clock.nowMs();
   const moved = told.filter((channel) => channel.target !== target || channel.state === 'dead');
   await stores.db.together([
-    ...moved.flatMap(({ id }) => [stores.token.drop(id), stores.channel.moveTo(id, target, nowMs)]),
+    ...moved.flatMap(({ id }) => [stores.token.drop(id), stores.channel.moveTo(id, { target, pushKey: pushKeyOf(services) }, nowMs)]),
     ...told.filter((channel) => !moved.includes(channel)).map(({ id }) => stores.channel.askAt(id, nowMs)),
   ]);
   if (told.length === 0) return success(null);

@@ -2,7 +2,7 @@ import { placeName } from '../../lib/brief/words/index.ts';
 import { confirmLetter, knownLetter } from '../../lib/brief/words/letters.ts';
 import type { SubscriptionRequest } from '../../lib/config/subscription.ts';
 import { HOUR_MS } from '../../lib/time.ts';
-import { askBrowsers } from './browser.ts';
+import { askBrowsers, pushKeyOf } from './browser.ts';
 import { letterOf, secretLinks } from './letter.ts';
 import type { Mailer } from './mailer.ts';
 import { SEND_TIMEOUT_MS } from '../morning/times.ts';
@@ -74,12 +74,13 @@ export async function confirm(services: DeskServices, token: string): Promise<{ 
 }
 
 /** A mail address is confirmed by the link it was sent; a webhook and a browser have yet to answer. */
-export function channelRows({ stores, clock }: DeskServices, subscriptionId: string, request: SubscriptionRequest, isMailConfirmed: boolean) {
-  return stores.channel.put(
+export function channelRows(services: DeskServices, subscriptionId: string, request: SubscriptionRequest, isMailConfirmed: boolean) {
+  const pushKey = pushKeyOf(services);
+  return services.stores.channel.put(
     request.channels.map(({ kind, target, quiet }, rank) => ({
-      id: `${subscriptionId}-${rank}`, subscriptionId, rank, kind, target, quiet,
+      id: `${subscriptionId}-${rank}`, subscriptionId, rank, kind, target, quiet, ...(kind === 'push' ? { pushKey } : {}),
       state: kind === 'mail' && isMailConfirmed ? 'active' as const : 'unverified' as const,
     })),
-    clock.nowMs(),
+    services.clock.nowMs(),
   );
 }

@@ -1,4 +1,5 @@
 import type { Database, Statement } from './database.ts';
+import type { Mark } from './mark.ts';
 
 /** Where a subscriber is reached: of the lowest rank first, the next rank when that one is dead. */
 export interface StoredChannel {
@@ -19,20 +20,23 @@ export interface StoredChannel {
   /** Minutes of the subscriber's day between which nothing is sent there; both or neither. */
   readonly quietFrom: number | null;
   readonly quietTo: number | null;
+  /** Of a browser: the id of our key that it signed up under; null when it is not known. */
+  readonly pushKey: string | null;
 }
 
 const COLUMNS = `c.id, c.subscription_id AS subscriptionId, c.rank, c.kind, c.target, c.state, c.secret_version AS secretVersion,
   c.oldest_secret_version AS oldestSecretVersion, COALESCE(s.link_version, 1) AS linkVersion, COALESCE(s.time_zone, 'UTC') AS timeZone,
-  c.quiet_from AS quietFrom, c.quiet_to AS quietTo FROM channel AS c LEFT JOIN subscription AS s ON s.id = c.subscription_id`;
+  c.quiet_from AS quietFrom, c.quiet_to AS quietTo, c.push_key AS pushKey FROM channel AS c LEFT JOIN subscription AS s ON s.id = c.subscription_id`;
 
 /** A browser that is to be sent a nonce: leased to one sender. */
-export interface ChannelToAsk extends Pick<StoredChannel, 'id' | 'target' | 'secretVersion' | 'oldestSecretVersion'> {}
+export interface ChannelToAsk extends Pick<StoredChannel, 'id' | 'target' | 'secretVersion' | 'oldestSecretVersion' | 'pushKey'> {}
 
 /** A browser that did not answer is asked no more by itself. */
 const ASKED_FOR_MS = 48 * 3_600_000;
 
 export interface NewChannel extends Pick<StoredChannel, 'id' | 'subscriptionId' | 'rank' | 'kind' | 'target' | 'state'> {
   readonly quiet?: { readonly from: number; readonly to: number } | null;
+  readonly pushKey?: string | null;
 }
 
 export function channelStore(db: Database) {
@@ -51,9 +55,9 @@ export function channelStore(db: Database) {
     /** New ones are added as given; one that exists keeps its state and secrets and takes the rest. */
     put(channels: readonly NewChannel[], nowMs: number): Statement {
       return {
-        sql: `INSERT INTO channel (id, subscription_id, rank, kind, target, state, quiet_from, quiet_to, stored_at, ask_at)
+        sql: `INSERT INTO channel (id, subscription_id, rank, kind, target, state, quiet_from, quiet_to, push_key, stored_at, ask_at)
           SELECT value ->> 'id', value ->> 'subscriptionId', value ->> 'rank', value ->> 'kind', value ->> 'target', value ->> 'state',
-            value ->> '$.quiet.from', value ->> '$.quiet.to', ?2, CASE WHEN value ->> 'kind' = 'push' AND value ->> 'state' = 'unverified' THEN ?2 END
+            value ->> '$.quiet.from', value ->> '$.quiet.to', value ->> 'pushKey', ?2, CASE WHEN value ->> 'kind' = 'push' AND value ->> 'state' = 'unverified' THEN ?2 END
           FROM json_each(?1) WHERE true
           ON CONFLICT (id) DO UPDATE SET rank = excluded.rank, kind = excluded.kind, target = excluded.target`,
         values: [JSON.stringify(channels), nowMs],
@@ -71,7 +75,7 @@ export function channelStore(db: Database) {
       return db.take<ChannelToAsk>(
         `UPDATE channel SET ask_at = CASE WHEN ?1 < stored_at + ${ASKED_FOR_MS} THEN ?1 + 600000 END
           WHERE id IN (SELECT id FROM channel WHERE ask_at <= ?1 ORDER BY ask_at LIMIT ?2) AND state = 'unverified'
-          RETURNING id, target, secret_version AS secretVersion, oldest_secret_version AS oldestSecretVersion`,
+          RETURNING id, target, secret_version AS secretVersion, oldest_secret_version AS oldestSecretVersion, push_key AS pushKey`,
         nowMs, limit,
       );
     },
@@ -86,8 +90,12 @@ export function channelStore(db: Database) {
       return db.read<StoredChannel>(`SELECT ${COLUMNS} WHERE c.kind = 'push' AND c.target ->> 'endpoint' = ? ORDER BY c.id LIMIT 20`, endpoint);
     },
     /** A browser has another address: it has to show again that it asked. */
-    moveTo(id: string, target: string, nowMs: number): Statement {
-      return { sql: `UPDATE channel SET target = ?2, state = 'unverified', reason = NULL, ask_at = ?3, stored_at = ?3 WHERE id = ?1 AND kind = 'push'`, values: [id, target, nowMs] };
+    moveTo(id: string, { target, pushKey }: { readonly target: string; readonly pushKey: string | null }, nowMs: number): Statement {
+      return { sql: `UPDATE channel SET target = ?2, push_key = ?4, state = 'unverified', reason = NULL, ask_at = ?3, stored_at = ?3 WHERE id = ?1 AND kind = 'push'`, values: [id, target, nowMs, pushKey] };
+    },
+    /** A push service took a message for it under this key of ours. */
+    underKey(id: string, pushKey: string): Mark {
+      return { sql: `UPDATE channel SET push_key = j.value ->> 'pushKey' FROM json_each(?1) AS j WHERE channel.id = j.value ->> 'id'`, row: { id, pushKey } };
     },
     /** The keys that a browser has just shown are its keys, wherever else it is told. */
     rekey(target: string): Statement {

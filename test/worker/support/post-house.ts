@@ -25,6 +25,10 @@ export class PostHouse extends House {
   secondHash: string | null = null;
   vapid: { readonly publicKey: string; readonly privateKey: string } | null = null;
   pushes: { readonly url: string; readonly body: Uint8Array; readonly headers: Headers }[] = [];
+  /** The pair before, while the keys are being changed. */
+  vapidBefore: PostHouse['vapid'] = null;
+  /** What the push service answers. */
+  pushAnswer: (push: PostHouse['pushes'][number]) => number = () => this.pushStatus;
   pushStatus = 201;
 
   /** From now on this house sends pushes: their bytes are kept. */
@@ -44,13 +48,15 @@ export class PostHouse extends House {
         return Promise.resolve(outcome);
       },
     };
-    const settings = { ...services.settings, local: this.isLocal, publicUrl: this.publicUrl, vapid: this.vapid, mailFrom: 'brief@dawnmargin.example.org', operatorTokenSha256: this.operatorHash, secondTokenSha256: this.secondHash };
+    const settings = { ...services.settings, local: this.isLocal, publicUrl: this.publicUrl, vapid: this.vapid, vapidBefore: this.vapidBefore, mailFrom: 'brief@dawnmargin.example.org', operatorTokenSha256: this.operatorHash, secondTokenSha256: this.secondHash };
     const push = pushChannel({
       fetch: (url, init) => {
-        this.pushes.push({ url, body: init.body as Uint8Array, headers: new Headers(init.headers) });
-        return Promise.resolve(new Response(null, { status: this.pushStatus }));
+        const sent = { url, body: init.body as Uint8Array, headers: new Headers(init.headers) };
+        this.pushes.push(sent);
+        return Promise.resolve(new Response(null, { status: this.pushAnswer(sent) }));
       },
-      authorize: this.vapid === null ? null : vapid(this.vapid, 'mailto:ops@example.org'), local: this.isLocal, publicUrl: settings.publicUrl, quarrels: storedQuarrels(services.stores),
+      authorize: this.vapid === null ? null : vapid(this.vapid, 'mailto:ops@example.org'),
+      before: this.vapidBefore === null ? null : vapid(this.vapidBefore, 'mailto:ops@example.org'), local: this.isLocal, publicUrl: settings.publicUrl, quarrels: storedQuarrels(services.stores),
     });
     return { ...services, settings, mailer, addresses: addressesOf(settings), channels: { ...services.channels, push, mail: mailChannel({ mailer, linkKey: LINK_KEY, publicUrl: settings.publicUrl, mailFrom: settings.mailFrom }) } };
   }

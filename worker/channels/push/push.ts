@@ -14,6 +14,8 @@ export interface PushOptions {
   readonly fetch: (url: string, init: RequestInit) => Promise<Response>;
   /** null where this service has no VAPID keys. */
   readonly authorize: Authorize | null;
+  /** While keys are being changed: the one before. A push service takes for a browser only the key that it signed up under. */
+  readonly before?: Authorize | null;
   readonly local: boolean;
   readonly publicUrl: string;
   readonly quarrels: Quarrels;
@@ -50,10 +52,15 @@ export function pushChannel(options: PushOptions): Channel {
       const { origin } = new URL(target.endpoint);
       const quarrelMs = await options.quarrels.untilMs(origin);
       if (quarrelMs !== null && quarrelMs > attempt.nowMs) return { state: 'retry', reason: 'the push service refuses this sender', afterMs: quarrelMs - attempt.nowMs };
-      const { authorize } = options;
-      const full = await post(message, target, attempt, { ...options, authorize, browserKey, minimal: false });
-      // Too large for this service: what fits is the call to look.
-      const outcome = full === 'too-large' ? await post(message, target, attempt, { ...options, authorize, browserKey, minimal: true }) : full;
+      const keys = keysFor(address, options.authorize, options.before ?? null);
+      if (keys.length === 0) return { state: 'refused', reason: 'this browser signed up under a key that is given up: it signs up again at its next visit' };
+      let outcome: Answer = 'quarrel';
+      for (const authorize of keys) {
+        outcome = await postToFit(message, target, attempt, { ...options, authorize, browserKey });
+        if (outcome === 'quarrel') continue;
+        if (typeof outcome === 'object' && outcome.state === 'sent' && authorize.keyId !== undefined && authorize.keyId !== address.pushKey) outcome = { ...outcome, pushKey: authorize.keyId };
+        break;
+      }
       if (outcome === 'too-large') return { state: 'refused', reason: 'the push service answered 413 to the smallest message' };
       if (outcome === 'quarrel') {
         await options.quarrels.begin(origin, attempt.nowMs + QUARREL_MS, attempt.nowMs);
@@ -64,13 +71,27 @@ export function pushChannel(options: PushOptions): Channel {
   };
 }
 
+type Answer = SendOutcome | 'too-large' | 'quarrel';
+
+/** The keys to try, the likeliest first: a browser may have signed up under the one before while we wrote down the new one. */
+function keysFor({ pushKey = null }: Address, newest: Authorize, before: Authorize | null): Authorize[] {
+  if (before === null) return pushKey === null || newest.keyId === undefined || pushKey === newest.keyId ? [newest] : [];
+  return pushKey === newest.keyId ? [newest, before] : pushKey === null || pushKey === before.keyId ? [before, newest] : [];
+}
+
+/** Where all is too large for a service, what fits is the call to look. */
+async function postToFit(message: Message, target: PushTarget, attempt: Attempt, posting: Omit<Posting, 'minimal'>): Promise<Answer> {
+  const full = await post(message, target, attempt, { ...posting, minimal: false });
+  return full === 'too-large' ? post(message, target, attempt, { ...posting, minimal: true }) : full;
+}
+
 interface Posting extends Pick<PushOptions, 'fetch' | 'publicUrl'> {
   readonly authorize: Authorize;
   readonly browserKey: CryptoKey;
   readonly minimal: boolean;
 }
 
-async function post(message: Message, target: PushTarget, { nowMs, timeoutMs, untilMs }: Attempt, posting: Posting): Promise<SendOutcome | 'too-large' | 'quarrel'> {
+async function post(message: Message, target: PushTarget, { nowMs, timeoutMs, untilMs }: Attempt, posting: Posting): Promise<Answer> {
   const body = await encrypt(pushPayload(message, { origin: posting.publicUrl, minimal: posting.minimal }), target.keys, await fresh(), posting.browserKey);
   try {
     const response = await posting.fetch(target.endpoint, {
@@ -100,7 +121,7 @@ async function topicOf(message: Message): Promise<string> {
   return base64Url(await sha256(message.thread ?? message.id)).slice(0, 32);
 }
 
-function outcomeOf(response: Response, nowMs: number): SendOutcome | 'too-large' | 'quarrel' {
+function outcomeOf(response: Response, nowMs: number): Answer {
   const { status } = response;
   if (status >= 200 && status < 300) return { state: 'sent' };
   if (status === 404 || status === 410) return { state: 'gone', reason: `the push service answered ${status}: the subscription has ended` };

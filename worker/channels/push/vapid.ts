@@ -1,4 +1,4 @@
-import { base64Url, base64UrlBytes } from '../../secrets.ts';
+import { base64Url, base64UrlBytes, keyIdOf } from '../../secrets.ts';
 
 /**
  * Voluntary application server identification (RFC 8292): a token signed with ES256 for the origin of a push service.
@@ -16,12 +16,16 @@ const GOOD_FOR_MS = 12 * HOUR_MS;
 const encoder = new TextEncoder();
 
 /** The value of the header Authorization for requests to this origin. */
-export type Authorize = (origin: string, nowMs: number) => Promise<string>;
+export interface Authorize {
+  (origin: string, nowMs: number): Promise<string>;
+  /** Of the public key. */
+  readonly keyId?: string;
+}
 
 /** `subject`: where the operator can be reached, a mailto: or https: address. */
 export function vapid(keys: VapidKeys, subject: string): Authorize {
   const signed = new Map<string, Promise<string>>();
-  return (origin, nowMs) => {
+  const authorize = (origin: string, nowMs: number): Promise<string> => {
     const hour = Math.floor(nowMs / HOUR_MS);
     const name = `${origin} ${hour}`;
     const token = signed.get(name) ?? sign(keys, { aud: origin, exp: Math.floor((hour * HOUR_MS + GOOD_FOR_MS) / 1000), sub: subject });
@@ -29,6 +33,7 @@ export function vapid(keys: VapidKeys, subject: string): Authorize {
     signed.set(name, token);
     return token.then((jwt) => `vapid t=${jwt}, k=${keys.publicKey}`);
   };
+  return Object.assign(authorize, { keyId: keyIdOf(keys) });
 }
 
 async function sign({ publicKey, privateKey }: VapidKeys, claims: { readonly aud: string; readonly exp: number; readonly sub: string }): Promise<string> {

@@ -55,7 +55,8 @@ function secretPart(channel: ChannelView, view: ManageView): Piece {
   const about = `${channelTitle(channel)} ${channel.to}`;
   const fields = hidden('version', String(channel.secretVersion));
   const isChanging = channel.oldestSecretVersion < channel.secretVersion;
-  return html`${channel.secret === null ? null : html`<p>Its secret, shown until ${isChanging ? 'you give up the one before' : 'it has answered'}: <code>${channel.secret}</code></p>`}
+  const until = channel.state === 'unverified' ? 'it has answered' : isChanging ? 'you give up the one before' : 'the one before ceases to sign beside it';
+  return html`${channel.secret === null ? null : html`<p>Its secret, shown until ${until}: <code>${channel.secret}</code></p>`}
 <div class="acts">${isChanging ? act(view, 'old-secret', 'Give up the old secret', { channel: channel.id, about }) : act(view, 'new-secret', 'Make a new secret', { channel: channel.id, about, fields })}</div>`;
 }
 
