@@ -46,7 +46,7 @@ function checkMargin(margin: CombinedMargin, item: string): void {
   }
   compared += 1;
   // The working adds up to the spare again, by hand.
-  const rows = [...item.matchAll(/<tr><th scope="row">.*?<\/th><td class="n">(.*?)<\/td><td>(.*?)<\/td>/gs)];
+  const rows = [...item.matchAll(/<p><span>(.*?)<\/span> ([^,]*), /gs)];
   if (rows.length === 0 || margin.spare === null) return;
   const sum = rows.filter((row) => text(row[2] ?? '') === margin.unit).reduce((total, row) => total + (numberIn(row[1] ?? '')?.value ?? NaN), 0);
   expect(Math.abs(sum - margin.spare), `${margin.id}: the working gives ${sum}, the API ${margin.spare}`).toBeLessThanOrEqual(0.0005 * (rows.length + 1));

@@ -12,23 +12,23 @@ function workedFigure(value: number): string {
   return figure(value, { decimals: 3 }).replace(/(\.\d*?)0+$/, '$1').replace(/\.$/, '');
 }
 
-function termRow(term: Term): Html {
-  return html`<tr><th scope="row">${plainText(term.term, 120)}</th><td class="n">${workedFigure(term.value)}</td><td>${plainText(term.unit)}</td><td>${plainText(term.origin, 240)}</td></tr>`;
+/** One line of the sum: its numbers stand under each other, so that it can be added up on a phone. */
+function line(value: number, unit: string, words: string): Html {
+  return html`<span>${workedFigure(value)}</span> ${plainText(unit)}${words}`;
 }
 
-function workingTable(margin: CombinedMargin, terms: readonly Term[]): Html {
-  const spare = margin.spare === null ? null
-    : html`<tr class="sum"><th scope="row">spare</th><td class="n">${workedFigure(margin.spare)}</td><td>${margin.unit}</td><td>${margin.source === null ? '' : sourceName(margin.source)}</td></tr>`;
-  return html`<div class="scroll" tabindex="0" role="region" aria-label="Working"><table><thead><tr><th scope="col">Term</th><th scope="col">Value</th><th scope="col">Unit</th><th scope="col">Origin</th></tr></thead><tbody>${terms.map(termRow)}${spare}</tbody></table></div>`;
+function working(margin: CombinedMargin, terms: readonly Term[]): Html {
+  const spare = margin.spare === null ? null : html`<p class="sum">${line(margin.spare, margin.unit, margin.source === null ? ' spare' : ` spare, by ${sourceName(margin.source)}`)}</p>`;
+  return html`<div class="working">${terms.map((term) => html`<p>${line(term.value, term.unit, `, ${plainText(term.term, 120)}: ${plainText(term.origin, 240)}`)}</p>`)}${spare}</div>`;
 }
 
 function marginItem(margin: CombinedMargin, detail: HourDetail, reader: Reader): Html {
   const row = marginRow(margin, reader);
   const terms = detail.workings.find(({ id }) => id === margin.id)?.terms ?? [];
-  const working = terms.length === 0 ? html`<p>No working: there was nothing to add up.</p>` : workingTable(margin, terms);
+  const sum = terms.length === 0 ? html`<p>No working: there was nothing to add up.</p>` : working(margin, terms);
   const bar = margin.status === 'beyond' ? 'past' : margin.status === 'unknown' ? 'void' : margin.status === 'close' ? 'near' : 'clear';
   return html`<li><details class="${bar}"><summary><span class="what">${row.name}</span> <span class="left">${row.spare}</span></summary>
-<p>${row.sentence}</p>${working}</details></li>`;
+<p>${row.sentence}</p>${sum}</details></li>`;
 }
 
 export function marginsList(hour: JudgedHour, detail: HourDetail, reader: Reader): Html {
