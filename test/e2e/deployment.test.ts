@@ -11,7 +11,8 @@ import { deskOf } from '../../worker/routes/desk-paths.ts';
 import { DESK_METHODS } from '../../worker/routes/desk.ts';
 import { FRONT_METHODS } from '../../worker/routes/front.ts';
 import { OPERATOR_METHODS } from '../../worker/routes/operator-desk.ts';
-import { secretsIn } from '../../worker/local/state.ts';
+import { changeKeys, secretsIn } from '../../worker/local/state.ts';
+import { readSettings } from '../../worker/settings.ts';
 import { wrangler } from '../../worker/local/wrangler.ts';
 import { startForecastServer, type ForecastServer } from '../support/forecast-server/server.ts';
 import { startWebhookSink, type Behaviour, type WebhookSink } from '../support/sinks/webhook-sink.ts';
@@ -150,4 +151,22 @@ test('a subscriber who echoes the challenge is sent the first brief, made of wha
 test('the books balance after it', async () => {
   const { outbox } = (await (await ask('/healthz')).json()) as { outbox: Record<string, number> };
   expect(outbox).toMatchObject({ pending: 0, dead: 0, expired: 0 });
+});
+
+test('T34 a change of keys keeps those before beside the new ones, only two at once, until they are given up', () => {
+  const at = mkdtempSync(path.join(tmpdir(), 'dawnmargin-keys-'));
+  const { secrets: first } = secretsIn(at);
+  expect(changeKeys(at, 'push')).toBeNull();
+  const { secrets: second } = secretsIn(at);
+  expect(second).toMatchObject({ LINK_KEY: first.LINK_KEY, OPERATOR_TOKEN_SHA256: first.OPERATOR_TOKEN_SHA256, VAPID_PUBLIC_KEY_BEFORE: first.VAPID_PUBLIC_KEY, VAPID_PRIVATE_KEY_BEFORE: first.VAPID_PRIVATE_KEY });
+  expect(second.VAPID_PUBLIC_KEY).not.toBe(first.VAPID_PUBLIC_KEY);
+  expect(readSettings(second)).toMatchObject({ ok: true, value: { vapid: { publicKey: second.VAPID_PUBLIC_KEY }, vapidBefore: { publicKey: first.VAPID_PUBLIC_KEY } } });
+  // Asked again, as after a step that failed: the first pair is not lost.
+  for (const change of ['push', 'link'] as const) expect(changeKeys(at, change)).toContain('a change of keys is under way');
+  expect(secretsIn(at).secrets).toEqual(second);
+  expect(changeKeys(at, 'give-up')).toBeNull();
+  expect(secretsIn(at).secrets).toEqual({ ...second, VAPID_PUBLIC_KEY_BEFORE: '', VAPID_PRIVATE_KEY_BEFORE: '' });
+  expect(changeKeys(at, 'link')).toBeNull();
+  expect(readSettings(secretsIn(at).secrets)).toMatchObject({ ok: true, value: { linkKeyBefore: first.LINK_KEY, vapidBefore: null } });
+  rmSync(at, { recursive: true });
 });

@@ -1,4 +1,4 @@
-// npm run deploy [-- --for-real]: the three workers into the account that wrangler is logged in to. Without --for-real nothing is
+// npm run deploy [-- --for-real [--new-push-key | --new-link-key | --give-up-keys]]: the three workers into the account that wrangler is logged in to. Without --for-real nothing is
 // sent: both are built, and what would be done is said. Exit 2 when a setting is missing, 1 when a step fails.
 import { mkdirSync, readFileSync, writeFileSync } from 'node:fs';
 import path from 'node:path';
@@ -6,7 +6,7 @@ import { parseArgs } from 'node:util';
 import { readSettings } from '../settings.ts';
 import { databaseIdIn, deploySteps, listDatabases, makeDatabase, NO_DATABASE, rehearsalSteps, WORKERS, type Step } from './deploy/steps.ts';
 import { issueLines } from './report.ts';
-import { secretsIn } from './state.ts';
+import { changeKeys, secretsIn } from './state.ts';
 import { root, wrangler } from './wrangler.ts';
 
 const SETTINGS = ['PUBLIC_URL', 'CONTACT', 'SMTP_URL', 'MAIL_FROM', 'HEARTBEAT_URL', 'OPEN_METEO_KEY', 'CALLS_AN_INVOCATION'] as const;
@@ -41,7 +41,7 @@ async function database(): Promise<void> {
 }
 
 const folder = path.join(root, '.data/deploy');
-const { values } = parseArgs({ options: { 'for-real': { type: 'boolean', default: false } } });
+const { values } = parseArgs({ options: { 'for-real': { type: 'boolean', default: false }, 'new-push-key': { type: 'boolean', default: false }, 'new-link-key': { type: 'boolean', default: false }, 'give-up-keys': { type: 'boolean', default: false } } });
 
 try {
   mkdirSync(folder, { recursive: true });
@@ -52,8 +52,13 @@ try {
   if (values['for-real'] && missing.length > 0) throw new Stop(`  ${missing.join(' and ')}: missing; the address people reach this at, and how a weather service reaches you`, 2);
   const secretsFile = path.join(folder, 'settings.json');
   if (values['for-real']) {
-    const { secrets, newOperatorToken } = secretsIn(folder);
-    writeFileSync(secretsFile, JSON.stringify({ ...secrets, ...given }, null, 2), { mode: 0o600 });
+    const { newOperatorToken } = secretsIn(folder);
+    for (const change of [...(values['give-up-keys'] ? ['give-up' as const] : []), ...(values['new-push-key'] ? ['push' as const] : []), ...(values['new-link-key'] ? ['link' as const] : [])]) {
+      const problem = changeKeys(folder, change);
+      if (problem !== null) throw new Stop(`  ${problem}`, 2);
+    }
+    const { secrets } = secretsIn(folder);
+    writeFileSync(secretsFile, JSON.stringify({ ...secrets, ...given }, (_, value: unknown) => (value === '' ? null : value), 2), { mode: 0o600 });
     if (newOperatorToken !== null) console.log(`Operator token, shown this once: ${newOperatorToken}\n`);
     await database();
     for (const step of deploySteps(secretsFile)) await take(step);
