@@ -37,5 +37,8 @@
       if (!(Date.parse(part.dataset.issuedAt ?? '') >= newer)) replace(part, 'Expired: a newer brief has come. Load this page again.');
     }
   });
-  addEventListener('load', () => { navigator.serviceWorker?.register('/sw.js').catch(() => undefined); });
+  // The first seconds of a page are for reading it: the service worker comes with the first touch, or after them.
+  const register = () => { navigator.serviceWorker?.register('/sw.js').catch(() => undefined); };
+  for (const kind of ['pointerdown', 'keydown', 'scroll']) addEventListener(kind, register, { once: true, passive: true });
+  addEventListener('load', () => setTimeout(register, 5000));
 })();
