@@ -1,4 +1,5 @@
 // A day of a club on the test database, counted: what the platform would count, and what it would charge for.
+import { env } from 'cloudflare:workers';
 import { tick } from '../../../worker/morning/tick.ts';
 import type { D1 } from '../../../worker/store/database.ts';
 import type { Step } from '../../../worker/morning/job.ts';
@@ -69,6 +70,15 @@ class Meter {
 }
 
 const DAY_BEGINS = '2027-05-14T02:00:00Z';
+
+/** What was sent in a fortnight is kept, and read past: a house is seldom new. */
+async function lastFortnight(): Promise<void> {
+  await env.DB.prepare(`INSERT INTO outbox (id, subscription_id, channel_id, due_local_date, kind, seq, format, due_at, ready_by, valid_until, state, reason, attempts,
+      next_attempt_at, content, created_at, settled_at)
+    WITH RECURSIVE day(n) AS (SELECT 1 UNION ALL SELECT n + 1 FROM day WHERE n < 13), sent AS (
+      SELECT s.id, c.id AS channel, day.n, s.next_due_at - day.n * 86400000 AS due FROM day CROSS JOIN subscription AS s JOIN channel AS c ON c.subscription_id = s.id)
+    SELECT 'day' || n || channel, id, channel, date(due / 1000, 'unixepoch'), 'brief', 1, 1, due, due, due, 'sent', 'taken by the receiver', 1, due, '{"briefs":[]}', due, due FROM sent`).run();
+}
 
 /** Four hours of minutes around the morning, then the rest of the day hour by hour, as the board asks. */
 export async function clubDay({ sites: siteCount, subscribers: subscriberCount, personalWings }: Club): Promise<{ readonly count: DayCount; readonly house: House }> {
