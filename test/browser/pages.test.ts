@@ -2,11 +2,11 @@
 import { readFileSync } from 'node:fs';
 import path from 'node:path';
 import { gzipSync } from 'node:zlib';
-import AxeBuilder from '@axe-core/playwright';
 import type { Browser } from 'playwright-core';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import { CLOSING } from '../../lib/brief/words/index.ts';
 import { DAYS, fixturePages, fixtureServices } from '../support/page-fixtures.ts';
+import { axeFindings } from './support/axe.ts';
 import { launch, open } from './support/chromium.ts';
 import { serve, type Served } from './support/server.ts';
 
@@ -32,12 +32,8 @@ describe.each(paths)('%s', (where) => {
     await page.evaluate(() => { for (const details of document.querySelectorAll('details')) details.open = true; });
     for (const { width, colorScheme } of looks) {
       await page.setViewportSize({ width, height: 844 });
-      await page.emulateMedia({ colorScheme });
-      // Only colours change with the theme.
-      const rules = colorScheme === 'dark' ? { runOnly: ['color-contrast'] } : { rules: { 'target-size': { enabled: true } } };
       // The dark colours are the same at every width.
-      const violations = width > 390 && colorScheme === 'dark' ? [] : (await new AxeBuilder({ page }).options(rules).analyze()).violations;
-      expect(violations.map(({ id, nodes }) => `${id} at ${width} ${colorScheme}: ${nodes.map(({ html }) => html).join(' ')}`)).toEqual([]);
+      if (width === 390 || colorScheme === 'light') expect(await axeFindings(page, colorScheme)).toEqual([]);
       expect(await page.evaluate(() => document.documentElement.scrollWidth)).toBeLessThanOrEqual(width);
     }
     expect(requests.filter((url) => !url.startsWith(site.origin))).toEqual([]);

@@ -1,6 +1,5 @@
 // The training day in the real browser: enter a day, read the plan, lose an hour, plan again, print to one page, download; and without scripts.
 import { readFileSync } from 'node:fs';
-import AxeBuilder from '@axe-core/playwright';
 import { Hono } from 'hono';
 import ICAL from 'ical.js';
 import type { Browser, Page } from 'playwright-core';
@@ -13,6 +12,7 @@ import { dayKey, pairsOf } from '../../lib/plan/request.ts';
 import { planPages } from '../../worker/routes/plan.ts';
 import type { KeptPlan, PlanServices } from '../../worker/web/plan/plan-services.ts';
 import { DEMO_SITES, demoInput, SHEETS } from '../support/demo-days.ts';
+import { axeFindings } from './support/axe.ts';
 import { launch, open } from './support/chromium.ts';
 import { serve, type Served } from './support/server.ts';
 
@@ -156,10 +156,7 @@ test.each([390, 1280])('at %i px in both themes: no axe violation, no overflow',
   const { page, close } = await open(browser, `${site.origin}/plan`, { width });
   await page.evaluate(() => { for (const details of document.querySelectorAll('details')) details.open = true; });
   for (const colorScheme of ['light', 'dark'] as const) {
-    await page.emulateMedia({ colorScheme });
-    const rules = colorScheme === 'dark' ? { runOnly: ['color-contrast'] } : { rules: { 'target-size': { enabled: true } } };
-    const { violations } = await new AxeBuilder({ page }).options(rules).analyze();
-    expect(violations.map(({ id, nodes }) => `${id} at ${width} ${colorScheme}: ${nodes.map(({ html }) => html).join(' ')}`)).toEqual([]);
+    expect(await axeFindings(page, colorScheme)).toEqual([]);
     expect(await page.evaluate(() => document.documentElement.scrollWidth)).toBeLessThanOrEqual(width);
   }
   await close();

@@ -1,7 +1,7 @@
 // What every journey through a form is held to, and the four looks in which it is made.
-import AxeBuilder from '@axe-core/playwright';
 import type { Page } from 'playwright-core';
 import { expect } from 'vitest';
+import { axeFindings } from './axe.ts';
 
 /** Scripts on and off, on a phone and at a desk. */
 export const LOOKS = [
@@ -16,11 +16,7 @@ export async function expectInOrder(page: Page, { scripts }: { readonly scripts:
   const width = page.viewportSize()?.width ?? 0;
   if (!scripts) return;
   expect(await page.evaluate(() => document.documentElement.scrollWidth)).toBeLessThanOrEqual(width);
-  for (const colorScheme of width < 500 ? (['dark', 'light'] as const) : []) {
-    await page.emulateMedia({ colorScheme });
-    const { violations } = await new AxeBuilder({ page }).analyze();
-    expect(violations.map(({ id, nodes }) => `${colorScheme} ${id}: ${nodes.map(({ html }) => html).join(' ')}`)).toEqual([]);
-  }
+  for (const colorScheme of width < 500 ? (['dark', 'light'] as const) : []) expect(await axeFindings(page, colorScheme)).toEqual([]);
 }
 
 /** Every control can be reached by the tab key and is seen to have the focus. */
