@@ -16,20 +16,38 @@ function stop(message: string): never {
   process.exit(2);
 }
 
-function wholeNumber(text: string, name: string): number {
-  return /^\d{1,9}$/.test(text) ? Number(text) : stop(`--${name} "${text}": a whole number up to 999999999`);
+/** Beyond this no sum is exact any more, and no such house exists. */
+const MOST = 9_999_999;
+
+function wholeNumber(text: string, name: string, least = 0): number {
+  const number = /^\d{1,7}$/.test(text) ? Number(text) : NaN;
+  return number >= least ? number : stop(`--${name} "${text}": a whole number, ${least} to ${MOST}`);
+}
+
+/** A negative number would be taken for an option. */
+function joined(args: readonly string[]): string[] {
+  return args.flatMap((arg, index) => {
+    if (/^--[a-z-]+$/.test(args[index - 1] ?? '') && /^-\d/.test(arg)) return [];
+    return [/^--[a-z-]+$/.test(arg) && /^-\d/.test(args[index + 1] ?? '') ? `${arg}=${args[index + 1]}` : arg];
+  });
 }
 
 function given() {
   try {
-    return parseArgs({
+    const { values, tokens } = parseArgs({
+      args: joined(process.argv.slice(2)), tokens: true,
       options: {
         sites: { type: 'string' }, subscribers: { type: 'string' }, 'own-wings': { type: 'string' }, views: { type: 'string', default: '4' },
         on: { type: 'string', default: 'free' }, weather: { type: 'string', default: String(FREE_QUOTA.perDay) }, json: { type: 'boolean', default: false },
       },
-    }).values;
+    });
+    const names = tokens.flatMap((token) => (token.kind === 'option' ? [token.name] : []));
+    const twice = names.find((name, index) => names.indexOf(name) !== index);
+    return twice === undefined ? values : stop(`--${twice} is given twice`);
   } catch (error) {
-    return stop(error instanceof Error ? error.message : String(error));
+    const [sentence = ''] = (error instanceof Error ? error.message : String(error)).split('\n');
+    const [, name] = /'(--[a-z-]+)[^']*' argument/.exec(sentence) ?? [];
+    return stop(name === undefined ? sentence : `${name} needs a value`);
   }
 }
 
@@ -43,7 +61,7 @@ function weatherLine(sites: number, limit: number): Line {
 
 const values = given();
 if (values.sites === undefined || values.subscribers === undefined) stop('--sites and --subscribers are needed');
-const sites = wholeNumber(values.sites, 'sites');
+const sites = wholeNumber(values.sites, 'sites', 1);
 const subscribers = wholeNumber(values.subscribers, 'subscribers');
 const ownWings = values['own-wings'] === undefined ? Math.ceil(subscribers / 10) : wholeNumber(values['own-wings'], 'own-wings');
 if (ownWings > subscribers) stop(`--own-wings ${ownWings}: at most one a subscriber, ${subscribers}`);
@@ -51,7 +69,7 @@ if (values.on !== 'free' && values.on !== 'paid') stop(`--on "${values.on}": fre
 const plan = figures.plans[values.on];
 
 const needs = needsOf(figures.counts, { sites, subscribers, ownWings, pageViewsPerSubscriber: wholeNumber(values.views, 'views') });
-const lines = linesOf(plan, figures.counts, needs, weatherLine(sites, wholeNumber(values.weather, 'weather')));
+const lines = linesOf(plan, figures.counts, needs, weatherLine(sites, wholeNumber(values.weather, 'weather', 1)));
 const fits = lines.every((line) => shareOf(line) <= 1);
 process.exitCode = fits ? 0 : 1;
 
@@ -65,7 +83,7 @@ if (values.json) {
   for (const line of lines) console.log(row([line.name, whole(line.need), whole(line.limit), `${(100 * shareOf(line)).toFixed(1)} %`]));
   const binding = bindingLine(lines);
   const over = lines.filter((line) => shareOf(line) > 1).length;
-  if (binding !== undefined) console.log(`\n${fits ? `It fits on all ${lines.length} lines; the first to give way: ${binding.name}.` : `It does not fit: ${over} of ${lines.length} lines are passed, first of all ${binding.name}.`}`);
+  if (binding !== undefined) console.log(`\n${fits ? `It fits on all ${lines.length} lines; the first to give way: ${binding.name}.` : `It does not fit: ${over} of ${lines.length} lines ${over === 1 ? 'is' : 'are'} passed, first of all ${binding.name}.`}`);
   if (binding?.name.startsWith('weight')) console.log('With a key of the weather service its own limit counts: --weather WEIGHT A DAY. What does not fit is put off by the worker itself, and its sites say "cannot say".');
   const charges = chargesOf(figures.prices as Prices, needs);
   if (values.on === 'paid') {
