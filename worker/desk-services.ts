@@ -10,6 +10,7 @@ import { storedQuarrels } from './channels/push/quarrels.ts';
 import { vapid, type Authorize } from './channels/push/vapid.ts';
 import { terminalChannel } from './channels/terminal.ts';
 import { webhookChannel } from './channels/webhook.ts';
+import { feedDoor, type FeedDoor } from './feeds/door.ts';
 import type { Job, Step } from './morning/job.ts';
 import { ownData, ownReaders } from './own-data.ts';
 import type { Mailer } from './security/mailer.ts';
@@ -36,8 +37,16 @@ export interface World {
   readonly mailer?: Mailer | null;
   /** Where lines of the running log go; the console unless a test says otherwise. */
   readonly write?: (line: string) => void;
+  /** Before the feeds: kept for the life of an isolate. One that keeps nothing where none is given. */
+  readonly feedDoor?: FeedDoor;
   /** How long database and queue are waited for. */
   readonly patienceMs?: number;
+}
+
+let door: FeedDoor | undefined;
+
+function pause(ms: number): Promise<void> {
+  return new Promise((resolve) => setTimeout(resolve, ms));
 }
 
 /** The world of one invocation, or every setting that is wrong. */
@@ -49,11 +58,12 @@ export function worldOf(env: Env): Result<World, Issue[]> {
     db: env.DB,
     queues: { fetch: env.FETCH_QUEUE, assess: env.ASSESS_QUEUE, deliver: env.DELIVER_QUEUE },
     fetch: (url, init) => fetch(url, init),
-    sleep: (ms) => new Promise((resolve) => setTimeout(resolve, ms)),
+    sleep: pause,
     clock: { nowMs: () => Date.now() },
     ids: { next: () => crypto.randomUUID() },
     random: () => Math.random(),
     mailer: mailerOf(settings.value, env),
+    feedDoor: (door ??= feedDoor(caches.default, pause)),
   });
 }
 
@@ -80,6 +90,7 @@ export function deskServices(world: World): DeskServices {
     judge: judgeDay,
     mailer,
     addresses: addressesOf(settings),
+    feedDoor: world.feedDoor ?? feedDoor(null, world.sleep),
     channels: {
       webhook: webhookChannel({ fetch: world.fetch, linkKey: settings.linkKey, linkKeyBefore: settings.linkKeyBefore, local: settings.local, publicUrl: settings.publicUrl }),
       push: pushChannel({ fetch: world.fetch, authorize: authorizer(settings, settings.vapid), before: authorizer(settings, settings.vapidBefore), local: settings.local, publicUrl: settings.publicUrl, quarrels: storedQuarrels(stores) }),

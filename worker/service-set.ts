@@ -10,6 +10,7 @@ import type { ChannelChecks } from '../lib/config/subscription-channels.ts';
 import type { Address, Channel } from './channels/channel.ts';
 import type { Step } from './morning/job.ts';
 import type { Mailer } from './security/mailer.ts';
+import type { FeedDoor } from './feeds/door.ts';
 import type { Say } from './say.ts';
 import type { Settings } from './settings.ts';
 import type { Source } from './sources/source.ts';
@@ -57,6 +58,7 @@ export interface DeskServices {
   /** The names of the sources of a site, in the order of config; the desk reads what they said, and asks none. */
   readonly sourceNames: (place: Place) => readonly Pick<Source, 'id' | 'kind'>[];
   readonly channels: Readonly<Record<string, Channel>>;
+  readonly feedDoor: FeedDoor;
   /** null where no mail is sent. */
   readonly mailer: Mailer | null;
   readonly addresses: Addresses;

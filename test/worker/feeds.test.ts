@@ -1,9 +1,11 @@
 import { XMLParser, XMLValidator } from 'fast-xml-parser';
 import ICAL from 'ical.js';
 import { env } from 'cloudflare:workers';
+import type { Hono } from 'hono';
 import { beforeEach, describe, expect, test, vi } from 'vitest';
 import { app } from '../../worker/routes/app.ts';
 import { linkToken } from '../../worker/secrets.ts';
+import { feedDoor, type FeedDoor } from '../../worker/feeds/door.ts';
 import { folded, icalText } from '../../worker/feeds/ical-text.ts';
 import { xml } from '../../worker/feeds/atom.ts';
 import { LINK_KEY, newHouse, type House } from './support/house.ts';
@@ -16,6 +18,7 @@ const six = '2027-05-14T04:00:00Z';
 let house: House;
 let token: string;
 let isOpen: boolean;
+let storms = 0;
 
 beforeEach(async () => {
   isOpen = true;
@@ -125,6 +128,72 @@ describe('Atom', () => {
     const hostile = `</title><script>"'&]]>\u0000\ud800`;
     const parsed = new XMLParser().parse(`<a>${xml(hostile)}</a>`) as { a: string };
     expect(parsed.a).toBe(`</title><script>"'&]]>`);
+  });
+});
+
+describe('a storm of polls', () => {
+  /** What one isolate of a data centre has of its own; the cache is shared. */
+  const isolate = (): Hono => behind(feedDoor(caches.default, (ms) => new Promise((resolve) => setTimeout(resolve, ms))));
+  const behind = (door: FeedDoor): Hono => app({ ...house.services(), feedDoor: door });
+  const poll = async (from: Hono, headers: Record<string, string> = {}, form = 'ics'): Promise<Response> => from.request(`/feeds/${token}.${form}`, { headers });
+  const reads = (): number => house.calls.db;
+
+  beforeEach(async () => {
+    // The cache outlives a test: each has a feed of its own.
+    await env.DB.prepare('UPDATE subscription SET link_version = link_version + ?').bind((storms += 1)).run();
+    token = await linkToken(LINK_KEY, { purpose: 'feed', id: 'ana', version: 1 + storms });
+    house.calls.db = 0;
+  });
+
+  test('T26 a thousand polls at once, from forty isolates, read the database as one does, and again after 60 s', async () => {
+    const first = isolate();
+    expect((await poll(first)).status).toBe(200);
+    const once = reads();
+    expect(once).toBeGreaterThan(0);
+    const etag = (await poll(first)).headers.get('etag')!;
+    house.nowMs += 59_999;
+    const answers = await Promise.all(Array.from({ length: 40 }, isolate).flatMap((from) => Array.from({ length: 25 }, (_, index) => poll(from, index === 0 ? {} : { 'if-none-match': etag }))));
+    expect(Map.groupBy(answers, ({ status }) => status).get(304)).toHaveLength(960);
+    expect(answers.filter(({ status }) => status === 200)).toHaveLength(40);
+    expect(reads()).toBe(once);
+    house.nowMs += 1;
+    expect((await Promise.all(Array.from({ length: 25 }, () => poll(first)))).every(({ status }) => status === 200)).toBe(true);
+    expect(reads()).toBe(2 * once);
+  });
+
+  test('T26 whoever polls one feed more than thirty times a minute waits, and nobody else', async () => {
+    const from = isolate();
+    const statuses: number[] = [];
+    for (let index = 0; index < 31; index += 1) statuses.push((await poll(from)).status);
+    expect(statuses).toEqual([...Array.from({ length: 30 }, () => 200), 429]);
+    house.nowMs += 20_000;
+    const refused = await poll(from);
+    expect([refused.status, refused.headers.get('retry-after')]).toEqual([429, '40']);
+    expect((await poll(from, {}, 'atom')).status).toBe(200);
+    house.nowMs += 40_000;
+    expect((await poll(from)).status).toBe(200);
+  });
+
+  test('T26 what is kept says nothing of the token, ends with its days, and a revoked link within 60 s', async () => {
+    const kept: string[] = [];
+    const watched = behind(feedDoor({
+      match: () => Promise.resolve(undefined),
+      put: async (request, response) => { kept.push(new Request(request).url, JSON.stringify([...response.headers]), await response.text()); },
+    }, () => Promise.resolve()));
+    for (const form of ['ics', 'atom']) await poll(watched, {}, form);
+    expect(kept).toHaveLength(6);
+    expect(kept[0]).toMatch(/^http:\/\/127\.0\.0\.1:8787\/feeds\/kept\/[0-9a-f]{64}$/);
+    // The Atom feed names its own address, as RFC 4287 asks: its secret stands in what is kept, behind the hash of it.
+    expect(kept.slice(0, 3).join(), 'the calendar').not.toContain(token);
+    expect([kept[3], kept[4]].join(), 'the name of the Atom feed').not.toContain(token);
+    const near = isolate();
+    house.nowMs = Date.parse('2027-05-14T21:59:59Z');
+    expect(await (await poll(near)).text()).toContain('VEVENT');
+    house.nowMs += 1000;
+    expect(await (await poll(near)).text()).not.toContain('VEVENT');
+    await env.DB.prepare('UPDATE subscription SET link_version = link_version + 1000').run();
+    house.nowMs += 60_000;
+    expect((await poll(near)).status).toBe(404);
   });
 });
 

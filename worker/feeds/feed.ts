@@ -2,7 +2,6 @@ import type { JudgedDay } from '../../lib/brief/day.ts';
 import { shiftDate } from '../../lib/time.ts';
 import { placesOf } from '../morning/places.ts';
 import { judgedDate } from '../morning/times.ts';
-import { readLinkToken } from '../secrets.ts';
 import type { DeskServices } from '../service-set.ts';
 
 /** What a subscriber's feeds are made of: each day that still holds, with everything that was said about it. */
@@ -23,12 +22,11 @@ export interface FeedDay {
   readonly earlier: readonly JudgedDay['windows'][number][];
 }
 
-/** null for a token that is not one of ours, is revoked, or belongs to a subscription that has ended. */
-export async function readFeed(services: DeskServices, token: string): Promise<Feed | null> {
+/** null where its links are revoked, or the subscription has ended. */
+export async function readFeed(services: DeskServices, named: { readonly id: string; readonly version: number }): Promise<Feed | null> {
   const { settings, stores, clock } = services;
-  const named = settings.linkKey === null ? null : await readLinkToken(settings.linkKey, 'feed', token);
-  const subscription = named === null ? null : await stores.subscription.one(named.id);
-  if (named === null || subscription === null || subscription.state === 'ended' || subscription.linkVersion !== named.version) return null;
+  const subscription = await stores.subscription.one(named.id);
+  if (subscription === null || subscription.state === 'ended' || subscription.linkVersion !== named.version) return null;
   const nowMs = clock.nowMs();
   const pairs = await stores.subscription.pairsOf([subscription.id]);
   const places = await placesOf(services, [...new Set(pairs.map((pair) => pair.siteId))]);

@@ -24,7 +24,7 @@ const SAID: Readonly<Record<string, string>> = {
   added: 'Added. Give its receiver the secret below; a test sends it the challenge.',
   'new-secret': 'A new secret is made. Both sign what is sent until you give up the old one.',
   'old-secret': 'The old secret signs nothing any more.',
-  'new-links': 'These are the new links; those before lead nowhere now.',
+  'new-links': 'These are the new links; those before lead nowhere now, a feed that was just read within a minute.',
   welcome: 'Accepted. Keep the address of this page: it is the only way to it, and as secret as a key.',
 };
 
