@@ -96,6 +96,7 @@ export async function clubDay({ sites: siteCount, subscribers: subscriberCount, 
   }));
   await house.seed(subscribers, sites);
   const { stores } = house.services();
+  await lastFortnight();
   await stores.db.together(stores.published.replaceAll(sites.map((siteId) => ({ siteId, wingKey: 'EN B', sheetId: 'hill' }))));
   const sizeBefore = meter.sizeBytes;
   Object.assign(meter, { rowsRead: 0, rowsWritten: 0, statements: 0 });
