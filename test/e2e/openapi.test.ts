@@ -6,6 +6,7 @@ import type { FastPostHouse as House } from '../support/fast-post-house.ts';
 import { FastPostHouse, LINK_KEY, OPERATOR_TOKEN } from '../support/fast-post-house.ts';
 import { ApiRecorder, type Described } from '../support/api-recorder.ts';
 import { openapi } from '../support/openapi.ts';
+import { feedDoor } from '../../worker/feeds/door.ts';
 import { DESK_METHODS } from '../../worker/routes/desk.ts';
 import { FRONT_METHODS } from '../../worker/routes/front.ts';
 import { OPERATOR_METHODS } from '../../worker/routes/operator-desk.ts';
@@ -20,7 +21,8 @@ const recorder = new ApiRecorder(openapi() as unknown as Described);
 const houses: House[] = [];
 
 async function house(env: Readonly<Record<string, string>> = {}): Promise<House> {
-  const made = await FastPostHouse.open({ nowIso: NOW, env });
+  const door = feedDoor(null, async () => undefined);
+  const made = await FastPostHouse.open({ nowIso: NOW, env, instead: () => ({ feedDoor: door }) });
   houses.push(made);
   return made;
 }
@@ -101,6 +103,8 @@ test('subscribing, changing and leaving', async () => {
   expect((await ask('GET', feed, undefined, { headers: { 'if-none-match': known } })).status).toBe(304);
   expect((await ask('GET', `${feed.slice(0, -6)}x.atom`)).status).toBe(404);
   expect((await ask('GET', feed.replace('.atom', '.ics'))).status).toBe(200);
+  for (let index = 0; index < 30; index += 1) await first.ask('GET', feed);
+  expect((await ask('GET', feed)).status).toBe(429);
   await refusals('POST', '/api/v1/subscriptions');
   const open = await FastPostHouse.open({ nowIso: NOW, instead: ({ settings }) => ({ settings: { ...settings, local: false } }) });
   houses.push(open);
