@@ -1,7 +1,7 @@
 import type { Database, Statement } from './database.ts';
 
 /** The number of the newest migration that this code was written for; each migration writes its own. */
-export const SCHEMA_VERSION = 53;
+export const SCHEMA_VERSION = 54;
 
 /** What is wrong with a database of this schema; null when this code can use it. Newer tables serve older code: migrations only add. */
 export function schemaProblem(schema: string | undefined): string | null {

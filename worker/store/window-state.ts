@@ -51,6 +51,9 @@ const SAME = (t: string, j: string): string => `${t}.site_id = ${j}.value ->> 's
 /** A brief due then may still be about a day that has not ended. */
 const TOLD_MS = 40 * 3_600_000;
 
+/** Whatever is due since then is of a day since then: a notice bears the date of its brief, which may have been about the day after. */
+const OF_DAYS_MS = TOLD_MS + 72 * 3_600_000;
+
 type Packed = Omit<SlimBrief, 'hours' | 'windows'> & { readonly hours: string; readonly windows: string };
 
 function slim(row: Packed): SlimBrief {
@@ -88,12 +91,12 @@ export function windowStateStore(db: Database) {
     /** What active subscribers of these pairs were told lately, the oldest first. Found from the pairs: from the outbox, everybody's rows are read for each handful of sites. */
     async tellings(pairDays: readonly PairDay[], nowMs: number): Promise<TellingRow[]> {
       const sql = `SELECT o.id, o.subscription_id AS subscriptionId, o.due_local_date AS dueLocalDate, o.kind, o.seq, o.state, o.content,
-          (SELECT MAX(n.seq) FROM outbox AS n WHERE n.subscription_id = o.subscription_id AND n.due_local_date = o.due_local_date) AS lastSeq,
+          (SELECT MAX(n.seq) FROM outbox AS n INDEXED BY outbox_of_day WHERE n.subscription_id = o.subscription_id AND n.due_local_date = o.due_local_date) AS lastSeq,
           (o.lease_until IS NOT NULL AND o.lease_until > ?2) AS isLeased
         FROM (SELECT DISTINCT p.subscription_id AS id FROM json_each(?1) AS j CROSS JOIN subscription_site AS p
             ON p.site_id = j.value ->> 'siteId' AND p.wing_key = j.value ->> 'wingKey' AND p.sheet_id = j.value ->> 'sheetId') AS w
           CROSS JOIN subscription AS s ON s.id = w.id AND s.state = 'active'
-          CROSS JOIN outbox AS o ON o.subscription_id = s.id
+          CROSS JOIN outbox AS o INDEXED BY outbox_of_day ON o.subscription_id = s.id AND o.due_local_date >= date((?2 - ${OF_DAYS_MS}) / 1000, 'unixepoch')
         WHERE o.due_at > ?2 - ${TOLD_MS} AND o.due_at <= ?2 AND o.kind IN ('brief', 'change') AND o.state IN ('pending', 'sent')
         ORDER BY o.subscription_id, o.due_at, o.seq, o.created_at, o.id`;
       const rows = await db.read<Omit<TellingRow, 'isLeased'> & { isLeased: number }>(sql, JSON.stringify(pairDays), nowMs);
