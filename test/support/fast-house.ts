@@ -32,6 +32,8 @@ export interface FastOptions {
   readonly fetch?: (url: string, init: RequestInit) => Promise<Response>;
   /** One that is always the middle where none is given. */
   readonly random?: () => number;
+  /** One that takes no time where none is given. */
+  readonly sleep?: (ms: number) => Promise<void>;
   readonly source?: (request: SourceRequest) => Promise<ReadonlyMap<string, SourceAnswer>>;
   readonly judge?: (input: DayInput) => JudgedDay;
   readonly around?: (d1: D1) => D1;
@@ -78,7 +80,7 @@ export class FastHouse {
       {
         settings: settings.value, db: this.options.around?.(this.d1) ?? this.d1,
         queues: { fetch: queueOf('fetch'), assess: queueOf('assess'), deliver: queueOf('deliver') },
-        fetch: (url, init) => this.#fetch(url, init), sleep: async () => undefined,
+        fetch: (url, init) => this.#fetch(url, init), sleep: this.options.sleep ?? (async () => undefined),
         clock: { nowMs: () => this.nowMs }, ids: { next: () => `by-${(this.#ids += 1)}` }, random: this.options.random ?? (() => 0.5), patienceMs: 25, write: (line) => { this.lines.push(line); },
       },
       { sourcesFor: () => [{ id: 'stand-in:one', kind: 'deterministic', covers: () => true, fetch: (request) => this.#answers(request) }], judge: (input) => this.options.judge?.(input) ?? judgedAs(input, 'within') },

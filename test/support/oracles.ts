@@ -84,10 +84,11 @@ function repeated(told: readonly Told[], { repeats = 0, messages = 1 }: Expected
 /** O4: nothing after it has ceased to hold. O5: everyone in time. */
 function late(told: readonly Told[], expected: Expected): string[] {
   const dueMs = Date.parse(expected.dueIso);
+  const byName = Map.groupBy(told.filter(({ taken }) => taken), ({ name }) => name);
   return [
     ...told.flatMap(({ name, atMs, validUntilMs }) => (atMs < validUntilMs ? [] : [`O4: ${name} was told after it had ceased to hold`])),
     ...Object.entries(expected.told).flatMap(([name, withinMin]) => {
-      const first = told.find((one) => one.taken && one.name === name);
+      const first = byName.get(name)?.[0];
       if (first === undefined) return [`O5: ${name} was not told`];
       const afterMin = (first.atMs - dueMs) / 60_000;
       return afterMin > withinMin ? [`O5: ${name} was told after ${afterMin} minutes`] : [];

@@ -49,7 +49,7 @@ export interface Address {
 export type SendOutcome =
   | { readonly state: 'sent'; /** It has just shown that it wants to be told. */ readonly verified?: true; /** The key that a browser turned out to have signed up under. */ readonly pushKey?: string }
   /** The world failed for now. */
-  | { readonly state: 'retry'; readonly reason: string; readonly afterMs: number | null }
+  | { readonly state: 'retry'; readonly reason: string; readonly afterMs: number | null; /** These are more messages than it takes. */ readonly busy?: true }
   /** This message will never be taken there, another may be. */
   | { readonly state: 'refused'; readonly reason: string }
   /** Nothing will be taken there any more. */
@@ -68,5 +68,7 @@ export interface Attempt {
 export interface Channel {
   /** Messages of one lane are sent one after the other: a host, so that a slow one holds up only its own. */
   lane(address: Address): string;
+  /** What many lanes share, where that can be too busy for all of them. */
+  host?(address: Address): string;
   send(message: Message, address: Address, attempt: Attempt): Promise<SendOutcome>;
 }

@@ -12,6 +12,8 @@ import { SEND_TIMEOUT_MS } from './times.ts';
 export interface Delivered {
   readonly state: SettledState | 'retry';
   readonly marks: readonly (Mark | Statement)[];
+  /** It said that these are too many. */
+  readonly isBusy?: boolean;
 }
 
 export async function deliverOne(services: Services, item: Composed, by: string): Promise<Delivered> {
@@ -21,7 +23,7 @@ export async function deliverOne(services: Services, item: Composed, by: string)
     return { state: 'expired', marks: [stores.outbox.settle(row.id, { state: 'expired', reason: 'no longer valid when its turn came' }, clock.nowMs())] };
   }
   const quietMs = quietUntilMs(item.channel, clock.nowMs());
-  if (quietMs !== null) return { state: 'retry', marks: [stores.outbox.hold(row.id, by, quietMs)] };
+  if (quietMs !== null) return { state: 'retry', marks: [stores.outbox.hold(row.id, by, { atMs: quietMs, reason: 'quiet hours' })] };
   const outcome = await sendOne(services, item);
   const nowMs = clock.nowMs();
   switch (outcome.state) {
@@ -36,7 +38,7 @@ export async function deliverOne(services: Services, item: Composed, by: string)
       return { state: 'dead', marks: dead(services, item, outcome.reason) };
     case 'retry': {
       const next = nextAttempt({ nowMs, attempts: row.attempts, validUntilMs: lastMomentOf(item), afterMs: outcome.afterMs, random: services.random() });
-      if ('atMs' in next) return { state: 'retry', marks: [stores.outbox.retry(row.id, by, { atMs: next.atMs, reason: outcome.reason })] };
+      if ('atMs' in next) return { state: 'retry', isBusy: outcome.busy === true, marks: [stores.outbox.retry(row.id, by, { atMs: next.atMs, reason: outcome.reason })] };
       if (next.never === 'given up') return { state: 'dead', marks: dead(services, item, `given up after ${row.attempts} attempts; last: ${outcome.reason}`) };
       return { state: 'expired', marks: [stores.outbox.settle(row.id, { state: 'expired', reason: `no attempt left before it ceases to be valid; last: ${outcome.reason}` }, nowMs)] };
     }

@@ -132,12 +132,12 @@ export function outboxStore(db: Database) {
         row: { id, by, ...next },
       };
     },
-    /** Gives a leased row back until quiet hours end: nothing was tried. */
-    hold(id: string, by: string, untilMs: number): Mark {
+    /** Gives a leased row back until then: nothing was tried. */
+    hold(id: string, by: string, until: { readonly atMs: number; readonly reason: string }): Mark {
       return {
-        sql: `UPDATE outbox SET next_attempt_at = j.value ->> 'untilMs', reason = 'quiet hours', lease_until = NULL, lease_by = NULL, attempts = attempts - 1
+        sql: `UPDATE outbox SET next_attempt_at = j.value ->> 'atMs', reason = j.value ->> 'reason', lease_until = NULL, lease_by = NULL, attempts = attempts - 1
           FROM json_each(?1) AS j WHERE outbox.id = j.value ->> 'id' AND outbox.lease_by = j.value ->> 'by' AND outbox.state = 'pending'`,
-        row: { id, by, untilMs },
+        row: { id, by, ...until },
       };
     },
     /** Gives a leased row back as if it had not been taken. */

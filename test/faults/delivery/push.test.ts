@@ -1,7 +1,7 @@
 // What becomes of a morning when push services fail (F57 to F68): a house whose messages go over loopback, each fault with
 // the six oracles. What one answer means to the channel is in wire.test.ts.
-import { createHash } from 'node:crypto';
 import { afterAll, beforeAll, describe, expect, test, vi } from 'vitest';
+import { seeded } from '../../support/seeded.ts';
 import { PushedBrowser } from '../../support/service-worker.ts';
 import { DUE, startWorld, WireHouse, type Answer, type Knock, type World } from '../../support/wire-house.ts';
 
@@ -136,6 +136,16 @@ describe('a push service', () => {
     expect(await house.oracles({ told: Object.fromEntries(names.map((name) => [name, 25])), books: { sent: 32 } })).toEqual([]);
   });
 
+  test('F62: says 403 of an address that somebody signed up with: that is no quarrel, and everybody else is told', async () => {
+    const house = new WireHouse(world, ({ name }) => ({ status: name === 'eve' ? 403 : 201 }), { nowIso: new Date(dueMs - 5 * MINUTE_MS).toISOString() });
+    await house.people({ ana: ['push'], eve: ['push'] });
+    house.d1.ask(`UPDATE channel SET state = 'unverified', ask_at = 0 WHERE subscription_id = 'eve'`);
+    await house.minutes(5);
+    expect(house.of('eve')).toMatchObject([{ read: { kind: 'confirm' } }]);
+    await house.minutes(8);
+    expect(await house.oracles({ told: { ana: 0 }, books: { sent: 1, dead: 1 }, seen: /1 messages could not be delivered/ })).toEqual([]);
+  });
+
   test('F63: says 201 with a place and twenty megabytes: they are not read', async () => {
     const house = new WireHouse(world, ana({ status: 201, headers: { location: 'http://127.0.0.1:9/receipt' }, body: 'x'.repeat(20_000_000) }));
     await house.people({ ana: ['push'], ben: ['push'] });
@@ -170,5 +180,41 @@ describe('a push service', () => {
     await house.minutes(3);
     expect(world.other.pushed.length).toBe(elsewhere);
     expect(await house.oracles({ told: { ana: 2, ben: 0 }, books: { sent: 2 } })).toEqual([]);
+  });
+
+  // A tenth of ten thousand, and of a hundred a second a fifth.
+  test('F66: takes twenty a second of a thousand: they come at the pace it takes, all of them, and nobody is given up', async () => {
+    const names = Array.from({ length: 1000 }, (_, index) => `s${index}`);
+    const bucket = { tokens: 20, atMs: dueMs };
+    let refused = 0;
+    const house: WireHouse = new WireHouse(world, ({ way, atMs }) => {
+      if (way === 'webhook') return { status: 204 };
+      // A send takes 5 ms: left alone we would be ten times as fast.
+      house.nowMs += 5;
+      bucket.tokens = Math.min(20, bucket.tokens + (atMs - bucket.atMs) / 50);
+      bucket.atMs = atMs;
+      const isTaken = bucket.tokens >= 1;
+      if (isTaken) bucket.tokens -= 1;
+      else refused += 1;
+      return { status: isTaken ? 201 : 429 };
+    }, { random: seeded(66), sleep: (ms) => house.sleep(ms), env: { CALLS_AN_INVOCATION: '1000' }, wireless: true });
+    await house.people({ ...Object.fromEntries(names.map((name) => [name, ['push'] as const])), ben: ['webhook'] });
+    for (let minute = 0; minute < 20; minute += 1) {
+      house.nowMs = Math.max(house.nowMs, dueMs + minute * MINUTE_MS);
+      await house.minute();
+    }
+    expect(refused).toBeLessThan(1000);
+    expect(await house.oracles({ told: { ...Object.fromEntries(names.map((name) => [name, 20])), ben: 3 }, books: { sent: 1001 } })).toEqual([]);
+  });
+
+  test('F66: takes nothing of many for an hour: whoever is told by another way does not wait for it', async () => {
+    const house: WireHouse = new WireHouse(world, ({ way, atMs }) => ({ status: way === 'push' && atMs < dueMs + HOUR_MS ? 429 : 201 }), { random: seeded(67), sleep: (ms) => house.sleep(ms), wireless: true });
+    const [busy, others] = ['busy', 'other'].map((word) => Array.from({ length: 60 }, (_, index) => `${word}${index}`)) as [string[], string[]];
+    await house.people({ ...Object.fromEntries(busy.map((name) => [name, ['push'] as const])), ...Object.fromEntries(others.map((name) => [name, ['other push'] as const])) });
+    for (let minute = 0; minute < 120; minute += 1) {
+      house.nowMs = Math.max(house.nowMs, dueMs + minute * MINUTE_MS);
+      await house.minute();
+    }
+    expect(await house.oracles({ told: { ...Object.fromEntries(busy.map((name) => [name, 120])), ...Object.fromEntries(others.map((name) => [name, 1])) }, books: { sent: 120 } })).toEqual([]);
   });
 });

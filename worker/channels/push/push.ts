@@ -37,6 +37,10 @@ export function pushChannel(options: PushOptions): Channel {
   return {
     // A push service is one host for thousands of browsers, and takes them side by side.
     lane: (address) => address.id,
+    host(address) {
+      const target = targetOf(address);
+      return 'problem' in target ? address.id : new URL(target.endpoint).origin;
+    },
     async send(message, address, attempt) {
       // Anyone can send us someone's endpoint; nothing goes there before that browser has shown that it asked.
       if (address.state !== 'active' && message.nonce === undefined) {
@@ -63,7 +67,8 @@ export function pushChannel(options: PushOptions): Channel {
       }
       if (outcome === 'too-large') return { state: 'refused', reason: 'the push service answered 413 to the smallest message' };
       if (outcome === 'quarrel') {
-        await options.quarrels.begin(origin, attempt.nowMs + QUARREL_MS, attempt.nowMs);
+        // Anyone can sign up with an address that is refused: only of one that has shown that it asked is it our own keys.
+        if (message.nonce === undefined) await options.quarrels.begin(origin, attempt.nowMs + QUARREL_MS, attempt.nowMs);
         return { state: 'retry', reason: 'the push service refuses this sender', afterMs: QUARREL_MS };
       }
       return outcome;
@@ -127,7 +132,9 @@ function outcomeOf(response: Response, nowMs: number): Answer {
   if (status === 404 || status === 410) return { state: 'gone', reason: `the push service answered ${status}: the subscription has ended` };
   if (status === 413) return 'too-large';
   if (status === 400 || status === 401 || status === 403) return 'quarrel';
-  const wait = status === 429 || status === 503 ? retryAfterMs(response.headers.get('retry-after'), nowMs) : null;
+  // Of a service that has too many, only time ends the attempts.
+  if (status === 429) return { state: 'retry', reason: 'the push service answered 429', afterMs: retryAfterMs(response.headers.get('retry-after'), nowMs) ?? 0, busy: true };
+  const wait = status === 503 ? retryAfterMs(response.headers.get('retry-after'), nowMs) : null;
   const reason = status === 0 || (status >= 300 && status < 400) ? 'the push service redirects' : `the push service answered ${status}`;
   return { state: 'retry', reason, afterMs: wait };
 }
