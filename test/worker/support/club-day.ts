@@ -32,7 +32,7 @@ export interface DayCount {
 }
 
 /** Counts what D1 itself says it has read and written. */
-class Meter {
+export class Meter {
   rowsRead = 0;
   rowsWritten = 0;
   statements = 0;
