@@ -1,4 +1,9 @@
-// Push: encrypting, and sending to a service on loopback, against the npm library web-push in the same Node.
+// Push: encrypting, and sending to a service on loopback, against the npm library web-push in the same runtime: in Node, whose
+// WebCrypto hands each small step to another thread, and in workerd, where both run when it counts.
+import { builtinModules } from 'node:module';
+import path from 'node:path';
+import { build } from 'esbuild';
+import { convertV4MiniflareOptions, Miniflare } from 'miniflare';
 import webPush from 'web-push';
 import type { Message } from '../../worker/channels/channel.ts';
 import { browserKeyOf, encrypt, fresh } from '../../worker/channels/push/encrypt.ts';
@@ -6,7 +11,7 @@ import { pushChannel } from '../../worker/channels/push/push.ts';
 import { vapid } from '../../worker/channels/push/vapid.ts';
 import { base64UrlBytes } from '../../worker/secrets.ts';
 import { startPushSink } from '../support/sinks/push-sink.ts';
-import { inTurns, say } from './turns.ts';
+import { inTurns, say, type Measured } from './turns.ts';
 
 const AT_ONCE = 20;
 const keys = webPush.generateVAPIDKeys();
@@ -23,6 +28,25 @@ say(await inTurns({
   })),
   yard: () => targets.map(({ p256dh, auth }) => webPush.encrypt(p256dh, auth, text, 'aes128gcm')),
 }));
+
+/** web-push asks for its modules of Node by their bare names, which workerd knows by their full ones. */
+const nodeModules = {
+  name: 'node modules',
+  setup(bundle: Parameters<NonNullable<NonNullable<Parameters<typeof build>[0]['plugins']>[number]['setup']>>[0]): void {
+    bundle.onResolve({ filter: /^[a-z_/]+$/ }, ({ path: name }) => (builtinModules.includes(name) ? { path: `node:${name}`, namespace: 'node-module' } : undefined));
+    bundle.onLoad({ filter: /./, namespace: 'node-module' }, ({ path: name }) => ({ contents: `import * as whole from '${name}'; module.exports = whole.default ?? whole;`, loader: 'js' }));
+  },
+};
+const built = await build({
+  entryPoints: [path.join(import.meta.dirname, 'push-worker.ts')], bundle: true, format: 'esm', write: false, target: 'es2024', platform: 'neutral', mainFields: ['module', 'main'],
+  external: ['node:*'], plugins: [nodeModules], banner: { js: `import { Buffer } from 'node:buffer'; globalThis.Buffer = Buffer;` },
+});
+const miniflare = new Miniflare(convertV4MiniflareOptions({
+  modules: [{ type: 'ESModule', path: 'index.js', contents: built.outputFiles[0]?.text ?? '' }], compatibilityDate: '2026-11-01', compatibilityFlags: ['nodejs_compat'],
+}));
+const answer = await fetch(await miniflare.ready, { method: 'POST', body: JSON.stringify({ targets, text }) });
+say((await answer.json()) as Measured);
+await miniflare.dispose();
 
 const authorize = vapid(keys, 'mailto:bench@example.org');
 const channel = pushChannel({ fetch: (url, init) => fetch(url, init), authorize, local: true, publicUrl: 'https://dawnmargin.example', quarrels: { untilMs: () => Promise.resolve(null), begin: () => Promise.resolve() } });
