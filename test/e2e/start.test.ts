@@ -3,6 +3,7 @@ import { createServer } from 'node:net';
 import path from 'node:path';
 import { afterEach, describe, expect, test } from 'vitest';
 import sites from '../../config/sites.json' with { type: 'json' };
+import { wrangler } from '../../worker/local/wrangler.ts';
 import { startWebhookSink } from '../support/sinks/webhook-sink.ts';
 import { forget, freePort, localToken, newStateDir, nobodyLeft, processesOf, start } from './support/start.ts';
 
@@ -39,6 +40,10 @@ describe('npm start -- --once', () => {
       expect(started.errors()).toBe('');
       await nobodyLeft(setup.stateDir);
     }
+    // The platform's own tool agrees with how the tables came about: on this database it has nothing left to do.
+    const list = wrangler(['d1', 'migrations', 'list', 'DB', '--local', '--persist-to', setup.stateDir], setup.stateDir);
+    expect(await list.ended, list.output()).toBe(0);
+    expect(list.output()).toContain('No migrations to apply');
   });
 });
 

@@ -34,9 +34,13 @@ export interface Running {
 
 /** cli.js, not the package's command: that would put one more process between us and it. */
 export function wrangler(args: readonly string[], folder: string): Running {
-  const cli = path.join(path.dirname(require.resolve('wrangler/package.json')), 'wrangler-dist/cli.js');
+  return guarded([path.join(path.dirname(require.resolve('wrangler/package.json')), 'wrangler-dist/cli.js'), ...args], folder);
+}
+
+/** A script of ours or wrangler's in a process group of its own, which ends when we do. */
+function guarded(scriptAndArguments: readonly string[], folder: string): Running {
   const guard = pathToFileURL(path.join(import.meta.dirname, 'guard.ts')).href;
-  const child = spawn(process.execPath, ['--no-warnings', '--import', guard, cli, ...args], {
+  const child = spawn(process.execPath, ['--no-warnings', '--import', guard, ...scriptAndArguments], {
     cwd: root,
     env: { ...quiet(folder), DAWNMARGIN_GUARDED_BY: String(process.pid) },
     stdio: ['ignore', 'pipe', 'pipe'],
@@ -53,9 +57,9 @@ export function wrangler(args: readonly string[], folder: string): Running {
   return { process: child, output: () => output, ended };
 }
 
-/** Applies the migrations to the local database. Throws with wrangler's own words when that fails. */
+/** Brings the tables of the local database up to date. Throws with the runtime's own words when that fails. */
 export async function migrate(folder: string): Promise<void> {
-  const run = wrangler(['d1', 'migrations', 'apply', 'DB', '--local', '--persist-to', folder], folder);
+  const run = guarded([path.join(import.meta.dirname, 'tables.ts'), folder], folder);
   if ((await run.ended) !== 0) throw new Error(`the local database could not be set up:\n${run.output()}`);
 }
 
