@@ -41,6 +41,12 @@ export async function startWorld(): Promise<World> {
 const LATE = 'late-by-ms';
 const VAPID = vapidKeys();
 
+export interface WireOptions {
+  readonly wireless?: boolean;
+  /** What becomes of requests to addresses that are a test's own; null for all others. */
+  readonly elsewhere?: (url: string, init: RequestInit) => Promise<Response> | null;
+}
+
 export class WireHouse extends FastHouse {
   readonly told: Told[] = [];
   readonly knocks: Knock[] = [];
@@ -51,10 +57,10 @@ export class WireHouse extends FastHouse {
   readonly #attempts = new Map<string, number>();
   readonly #timers: { readonly atMs: number; readonly ring: () => void }[] = [];
 
-  constructor(world: World, answers: (knock: Knock) => Answer = ({ way }) => ({ status: way === 'webhook' ? 204 : 201 }), { env, wireless, ...options }: Partial<FastOptions> & { readonly wireless?: boolean } = {}) {
+  constructor(world: World, answers: (knock: Knock) => Answer = ({ way }) => ({ status: way === 'webhook' ? 204 : 201 }), { env, wireless, elsewhere, ...options }: Partial<FastOptions> & WireOptions = {}) {
     super({
       nowIso: DUE, env: { VAPID_PUBLIC_KEY: VAPID.publicKey, VAPID_PRIVATE_KEY: VAPID.privateKey, ...env },
-      fetch: (url, init) => this.#over(url, init, wireless === true ? (to, what) => this.#straight(to, what) : fetch), ...options,
+      fetch: (url, init) => elsewhere?.(url, init) ?? this.#over(url, init, wireless === true ? (to, what) => this.#straight(to, what) : fetch), ...options,
     });
     this.#world = world;
     this.answers = answers;

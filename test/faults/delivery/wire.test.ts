@@ -1,6 +1,6 @@
 // Faults of push services and receivers on the wire, against the channels themselves. F-numbers are those of the fault
 // catalogue; what the outbox makes of each outcome over time is tested in test/worker.
-import { createHash, createSign, generateKeyPairSync, verify, createPublicKey } from 'node:crypto';
+import { createHash, generateKeyPairSync, verify, createPublicKey } from 'node:crypto';
 import { createServer as createTlsServer } from 'node:https';
 import type { AddressInfo } from 'node:net';
 import { Webhook } from 'standardwebhooks';
@@ -10,6 +10,7 @@ import { pushChannel, type Quarrels } from '../../../worker/channels/push/push.t
 import { vapid } from '../../../worker/channels/push/vapid.ts';
 import { webhookChannel, webhookSecretText } from '../../../worker/channels/webhook.ts';
 import { derivedKey } from '../../../worker/secrets.ts';
+import { certificate } from '../../support/certificate.ts';
 import { startPushSink, type PushAnswer, type PushSink } from '../../support/sinks/push-sink.ts';
 import { startWebhookSink, type WebhookSink } from '../../support/sinks/webhook-sink.ts';
 
@@ -193,7 +194,7 @@ describe('a webhook', () => {
   });
 
   test('F74: a certificate that nobody vouches for is a failure, and no reason to do without one', async () => {
-    const { key, cert } = selfSigned();
+    const { key, cert } = certificate({ host: 'nobody', until: 2049 });
     const server = createTlsServer({ key, cert }, (_, response) => { response.end(); });
     await new Promise<void>((resolve) => server.listen(0, '127.0.0.1', resolve));
     const url = `https://127.0.0.1:${(server.address() as AddressInfo).port}/hook`;
@@ -213,20 +214,3 @@ describe('a webhook', () => {
     expect(await send()).toMatchObject({ state: 'retry', afterMs: 77_000 });
   });
 });
-
-/** A certificate signed by itself (DER by hand: Node makes keys but no certificates). */
-function selfSigned(): { readonly key: string; readonly cert: string } {
-  const { privateKey, publicKey } = generateKeyPairSync('rsa', { modulusLength: 2048 });
-  const der = (tag: number, ...parts: Buffer[]): Buffer => {
-    const body = Buffer.concat(parts);
-    const length = body.length < 128 ? Buffer.from([body.length]) : Buffer.from([0x82, body.length >> 8, body.length & 255]);
-    return Buffer.concat([Buffer.from([tag]), length, body]);
-  };
-  const sha256Rsa = der(0x30, Buffer.from('06092a864886f70d01010b0500', 'hex'));
-  const name = der(0x30, der(0x31, der(0x30, Buffer.from('0603550403', 'hex'), der(0x0c, Buffer.from('nobody')))));
-  const day = (text: string): Buffer => der(0x17, Buffer.from(text));
-  const body = der(0x30, der(0x02, Buffer.from([1])), sha256Rsa, name, der(0x30, day('200101000000Z'), day('491231235959Z')), name, publicKey.export({ format: 'der', type: 'spki' }));
-  const signature = createSign('sha256').update(body).sign(privateKey);
-  const cert = der(0x30, body, sha256Rsa, der(0x03, Buffer.from([0]), signature)).toString('base64');
-  return { key: privateKey.export({ format: 'pem', type: 'pkcs8' }).toString(), cert: `-----BEGIN CERTIFICATE-----\n${cert.replaceAll(/(.{64})/g, '$1\n')}\n-----END CERTIFICATE-----\n` };
-}
