@@ -2,14 +2,6 @@ import { judgeDay } from '../lib/brief/judge-day.ts';
 import { sourcesFor } from '../lib/config/source-order.ts';
 import { success, type Issue, type Result } from '../lib/result.ts';
 import { addressesOf } from './channels/addresses.ts';
-import { mailChannel } from './channels/mail.ts';
-import { bindingMailer } from './channels/mail-binding.ts';
-import { smtpMailer } from './channels/mail-smtp.ts';
-import { pushChannel } from './channels/push/push.ts';
-import { storedQuarrels } from './channels/push/quarrels.ts';
-import { vapid, type Authorize } from './channels/push/vapid.ts';
-import { terminalChannel } from './channels/terminal.ts';
-import { webhookChannel } from './channels/webhook.ts';
 import { feedDoor, type FeedDoor } from './feeds/door.ts';
 import type { Job, Step } from './morning/job.ts';
 import { ownData, ownReaders } from './own-data.ts';
@@ -35,6 +27,8 @@ export interface World {
   readonly ids: IdSource;
   readonly random: () => number;
   readonly mailer?: Mailer | null;
+  /** Whether there is a mailer, where none is given here. */
+  readonly sendsMail?: boolean;
   /** Where lines of the running log go; the console unless a test says otherwise. */
   readonly write?: (line: string) => void;
   /** Before the feeds: kept for the life of an isolate. One that keeps nothing where none is given. */
@@ -62,19 +56,13 @@ export function worldOf(env: Env): Result<World, Issue[]> {
     clock: { nowMs: () => Date.now() },
     ids: { next: () => crypto.randomUUID() },
     random: () => Math.random(),
-    mailer: mailerOf(settings.value, env),
+    sendsMail: settings.value.mailFrom !== null && (settings.value.smtp !== null || env.MAIL !== undefined),
     feedDoor: (door ??= feedDoor(caches.default, pause)),
   });
 }
 
-function mailerOf({ smtp, mailFrom }: Settings, env: Env): Mailer | null {
-  if (mailFrom === null) return null;
-  if (smtp !== null) return smtpMailer(smtp, mailFrom);
-  return env.MAIL === undefined ? null : bindingMailer(env.MAIL, mailFrom);
-}
-
 export function deskServices(world: World): DeskServices {
-  const { settings, clock, ids, random, mailer = null } = world;
+  const { settings, clock, ids, random } = world;
   const patienceMs = world.patienceMs ?? PATIENCE_MS;
   const stores = storesOn(database(world.db, { sleep: world.sleep, random, timeoutMs: patienceMs }));
   return {
@@ -88,26 +76,8 @@ export function deskServices(world: World): DeskServices {
     wake: waker(world.queues, patienceMs),
     sourceNames: ({ site, demo }) => (demo && !settings.rehearsal ? ownData.demo().sources : withCompanions(sourcesFor(ownData.sources(), site))),
     judge: judgeDay,
-    mailer,
+    sendsMail: world.sendsMail ?? (world.mailer ?? null) !== null,
     addresses: addressesOf(settings),
     feedDoor: world.feedDoor ?? feedDoor(null, world.sleep),
-    channels: {
-      webhook: webhookChannel({ fetch: world.fetch, linkKey: settings.linkKey, linkKeyBefore: settings.linkKeyBefore, local: settings.local, publicUrl: settings.publicUrl }),
-      push: pushChannel({ fetch: world.fetch, authorize: authorizer(settings, settings.vapid), before: authorizer(settings, settings.vapidBefore), local: settings.local, publicUrl: settings.publicUrl, quarrels: storedQuarrels(stores) }),
-      ...(mailer === null ? {} : { mail: mailChannel({ mailer, linkKey: settings.linkKey, publicUrl: settings.publicUrl, mailFrom: settings.mailFrom ?? '' }) }),
-      ...(settings.local ? { terminal: terminalChannel(stores.terminal) } : {}),
-    },
   };
-}
-
-/** Kept for the life of an isolate: a token is signed once for each origin and hour. */
-const authorizers = new Map<string, Authorize>();
-
-function authorizer({ contact, publicUrl }: Settings, keys: Settings['vapid']): Authorize | null {
-  if (keys === null) return null;
-  const subject = contact === null ? publicUrl : contact.includes(':') ? contact : `mailto:${contact}`;
-  const name = `${keys.publicKey} ${subject}`;
-  const found = authorizers.get(name) ?? vapid(keys, subject);
-  authorizers.set(name, found);
-  return found;
 }

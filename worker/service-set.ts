@@ -57,10 +57,8 @@ export interface DeskServices {
   readonly wake: (step: Step, calls: number) => Promise<void>;
   /** The names of the sources of a site, in the order of config; the desk reads what they said, and asks none. */
   readonly sourceNames: (place: Place) => readonly Pick<Source, 'id' | 'kind'>[];
-  readonly channels: Readonly<Record<string, Channel>>;
   readonly feedDoor: FeedDoor;
-  /** null where no mail is sent. */
-  readonly mailer: Mailer | null;
+  readonly sendsMail: boolean;
   readonly addresses: Addresses;
   readonly read: Readers;
   readonly wingClasses: () => WingClasses;
@@ -72,6 +70,10 @@ export interface DeskServices {
 
 /** What the morning works with besides: only there are providers asked. */
 export interface Services extends DeskServices {
+  /** The ways to send; the desk only writes down what is to be sent. */
+  readonly channels: Readonly<Record<string, Channel>>;
+  /** null where no mail is sent. */
+  readonly mailer: Mailer | null;
   /** The sources to ask about a site, in the order of config. */
   readonly sourcesFor: (place: Place) => readonly Source[];
   /** Those behind them that cover it too; they are tried once a week. */

@@ -27,7 +27,7 @@ export class FastPostHouse extends FastHouse {
         });
         const mail = mailChannel({ mailer, linkKey: LINK_KEY, publicUrl: services.settings.publicUrl, mailFrom: MAIL_FROM });
         const settings = { ...services.settings, mailFrom: MAIL_FROM, vapid: { publicKey: 'x', privateKey: 'y' } };
-        return { mailer, settings, channels: { ...services.channels, mail, push }, ...options.instead?.(services) };
+        return { mailer, sendsMail: true, settings, channels: { ...services.channels, mail, push }, ...options.instead?.(services) };
       },
     });
   }

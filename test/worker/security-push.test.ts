@@ -106,7 +106,7 @@ describe('the first yes', () => {
   test('one that asks for a test before it has answered is asked once more', async () => {
     const browser = await newBrowser();
     const manage = await signedUp(browser);
-    expect(await (await house.ask('POST', `/api/v1${manage}`, { action: 'test' })).json()).toMatchObject({ tests: [{ kind: 'push', reached: false }] });
+    expect(await (await house.ask('POST', `/api/v1${manage}`, { action: 'test' })).json()).toMatchObject({ tests: [{ kind: 'push', state: 'asked', id: null }] });
     await house.answerAll();
     expect(pushesTo(browser).length).toBe(2);
     expect((await house.ask('POST', CONFIRM, { nonce: await nonceFor(browser) })).status).toBe(200);

@@ -1,6 +1,7 @@
 // Subscribing, changing and leaving over HTTP, by the ids of assurance.md (C and T).
 import { env } from 'cloudflare:workers';
-import { beforeEach, describe, expect, test } from 'vitest';
+import { Webhook } from 'standardwebhooks';
+import { beforeEach, describe, expect, test, vi } from 'vitest';
 import { CLOSING } from '../../lib/brief/words/index.ts';
 import { everyRow, newPostHouse, wish, type PostHouse } from './support/post-house.ts';
 
@@ -239,8 +240,15 @@ describe('a webhook instead of mail', () => {
     expect(made.webhookSecret).toMatch(/^whsec_/);
     house.options = { ...house.options, answer: (post) => (post.id.startsWith('chl_') ? echo(post.body) : new Response(null, { status: 204 })) };
     const manage = `/api/v1${new URL(made.links.manage).pathname}`;
-    expect(await (await house.ask('POST', manage, { action: 'test' })).json()).toMatchObject({ tests: [{ kind: 'webhook', reached: true }] });
-    expect(await (await house.ask('GET', manage)).json()).toMatchObject({ channels: [{ state: 'active' }] });
+    const { tests: [asked] } = (await (await house.ask('POST', manage, { action: 'test' })).json()) as { tests: [{ id: string }] };
+    expect(asked).toEqual({ kind: 'webhook', state: 'planned', id: expect.stringMatching(/^msg_/) as string });
+    expect(await (await house.ask('GET', manage)).json()).toMatchObject({ channels: [{ state: 'unverified' }], deliveries: [{ id: asked.id, state: 'pending', settledAt: null }] });
+    await house.answerAll();
+    expect(await (await house.ask('GET', manage)).json()).toMatchObject({ channels: [{ state: 'active' }], deliveries: [{ id: asked.id, kind: 'test', state: 'sent', reason: 'taken by the receiver', settledAt: '2027-05-13T20:00:00Z', shownAt: null }] });
+    const taken = house.posts.at(-1)!;
+    vi.setSystemTime(house.nowMs);
+    expect(new Webhook(made.webhookSecret).verify(taken.body, Object.fromEntries(taken.headers))).toMatchObject({ type: 'service.test', data: { id: asked.id } });
+    vi.useRealTimers();
     const renewed = (await (await house.ask('POST', manage, { action: 'renew-links' })).json()) as { links: { manage: string } };
     expect((await house.ask('GET', manage)).status).toBe(404);
     expect((await house.ask('DELETE', `/api/v1${new URL(renewed.links.manage).pathname}`)).status).toBe(200);

@@ -1,18 +1,15 @@
 /** What the forms of the page of a subscription do. Each is a POST; whatever cannot be used changes nothing. */
 import { channelIssues, minuteOf } from '../../lib/config/subscription-channels.ts';
-import { localDate } from '../../lib/time.ts';
 import type { Issue } from '../../lib/result.ts';
 import { pushKeyOf } from '../security/browser.ts';
 import { channelProblems } from '../security/channel-limits.ts';
-import { act, change, preferencesJson } from '../security/manage.ts';
+import { act, askTests, change, preferencesJson } from '../security/manage.ts';
 import type { DeskServices } from '../service-set.ts';
 import type { StoredChannel } from '../store/channel.ts';
-import { dropOldSecret, orderChannels, plannedTest, removeChannel, renewSecret, setQuiet } from '../store/deliveries.ts';
+import { dropOldSecret, orderChannels, removeChannel, renewSecret, setQuiet } from '../store/deliveries.ts';
 import type { SubscriptionDetail } from '../store/subscription.ts';
 import { textIn, wishesJson } from '../web/forms/wishes.ts';
 
-const TESTS = { most: 10, withinMs: 24 * 3_600_000 };
-const TEST_VALID_MS = 3_600_000;
 const MOST_CHANNELS = 4;
 
 /** `said` names a sentence of the page; `linkVersion` is that of links made anew. */
@@ -93,18 +90,10 @@ async function ofChannel({ services, detail, form }: Asked, action: 'test' | 'qu
   }
 }
 
-/** Goes the way of every message, so that it proves that way; a browser that has not confirmed is asked once more instead. */
 async function test(services: DeskServices, detail: SubscriptionDetail, channel: StoredChannel): Promise<Done> {
-  const { stores, clock, ids } = services;
-  const nowMs = clock.nowMs();
-  const waitS = await stores.rate.take(`test ${detail.id}`, TESTS, nowMs);
-  if (waitS > 0) return { problems: [{ path: '$.action', value: 'test', problem: 'ten tests a day are sent', allowed: `the next one in ${Math.ceil(waitS / 3600)} h` }], status: 429 };
-  const isAsked = channel.kind === 'push' && channel.state === 'unverified';
-  await stores.db.together([isAsked ? stores.channel.askAt(channel.id, nowMs) : plannedTest({
-    messageId: `msg_${ids.next()}`, subscriptionId: detail.id, channelId: channel.id, localDate: localDate(nowMs, detail.timeZone), nowMs, validUntilMs: nowMs + TEST_VALID_MS,
-  })]);
-  await services.wake('deliver', 1);
-  return { said: isAsked ? 'asked' : 'test', at: channel.id };
+  const tests = await askTests(services, detail, [channel]);
+  if ('waitS' in tests) return { problems: [{ path: '$.action', value: 'test', problem: 'ten tests a day are sent', allowed: `the next one in ${Math.ceil(tests.waitS / 3600)} h` }], status: 429 };
+  return { said: tests[0]?.state === 'asked' ? 'asked' : 'test', at: channel.id };
 }
 
 async function addChannel({ services, detail, request }: Asked, given: { readonly kind: 'push' | 'webhook' } & Readonly<Record<string, unknown>>): Promise<Done> {

@@ -7,8 +7,7 @@ import type { SubscriptionDetail } from '../store/subscription.ts';
 import { managePage } from '../web/manage/manage-page.ts';
 import type { ManageView } from '../web/manage/view.ts';
 import { sitesAndSheets } from './forms-data.ts';
-
-const LOG_MS = 14 * 24 * 3_600_000;
+import { LOG_MS } from './manage.ts';
 
 /** What the page says after something was done: named in the address, so that nobody's words come from it. */
 const SAID: Readonly<Record<string, string>> = {

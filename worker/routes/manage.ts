@@ -1,14 +1,17 @@
 /** Secret links: /api/v1/manage/{token} for programs. GET looks, and never changes anything. */
 import type { Context } from 'hono';
 import { Hono } from 'hono/tiny';
+import { isoUtc } from '../../lib/time.ts';
 import { secretLinks } from '../security/letter.ts';
 import { act, ACTIONS, change, managed, subscriptionOf, type Acted } from '../security/manage.ts';
 import type { DeskServices } from '../service-set.ts';
+import { deliveriesOf } from '../store/deliveries.ts';
 import type { SubscriptionDetail } from '../store/subscription.ts';
 import { jsonBody } from './body.ts';
 import { json, problem } from './problem.ts';
 
 const MAX_BODY_BYTES = 8 * 1024;
+export const LOG_MS = 14 * 24 * 3_600_000;
 
 export function manageApi(services: DeskServices): Hono {
   const app = new Hono();
@@ -16,7 +19,7 @@ export function manageApi(services: DeskServices): Hono {
 
   app.get('/:token', async (c) => {
     const detail = await found(c);
-    return detail === null ? problem('not-found') : json(await managed(services, detail));
+    return detail === null ? problem('not-found') : json({ ...(await managed(services, detail)), deliveries: await deliveries(services, detail) });
   });
   app.put('/:token', async (c) => {
     const detail = await found(c);
@@ -41,6 +44,14 @@ export function manageApi(services: DeskServices): Hono {
     return detail === null ? problem('not-found') : answerOf(services, detail, await act(services, detail, { action: 'end', until: null }));
   });
   return app;
+}
+
+/** What was sent in fourteen days, the newest first, and what became of it. */
+async function deliveries({ stores, clock }: DeskServices, { id }: SubscriptionDetail): Promise<unknown> {
+  const at = (ms: number | null): string | null => (ms === null ? null : isoUtc(ms));
+  return (await deliveriesOf(stores.db, id, clock.nowMs() - LOG_MS)).map(({ id: messageId, kind, state, reason, channelId, dueLocalDate, createdAtMs, settledAtMs, shownAtMs }) => ({
+    id: messageId, kind, state, reason, channel: channelId, localDate: dueLocalDate, plannedAt: at(createdAtMs), settledAt: at(settledAtMs), shownAt: at(shownAtMs),
+  }));
 }
 
 async function answerOf(services: DeskServices, detail: SubscriptionDetail, acted: Acted): Promise<Response> {

@@ -11,12 +11,12 @@ const WEBHOOKS = { most: 5, withinMs: 24 * HOUR_MS };
 
 /** What of the channels this service does not take, whatever their form. */
 export async function channelProblems(services: DeskServices, { channels }: Pick<SubscriptionRequest, 'channels'>, caller: Request): Promise<Issue[]> {
-  const { stores, settings, addresses, mailer } = services;
+  const { stores, settings, addresses, sendsMail } = services;
   const problems: Issue[] = [];
   const hosts: string[] = [];
   for (const [index, { kind, target }] of channels.entries()) {
     const say = (at: string, value: string, problem: string, allowed: string): unknown => problems.push({ path: `$.channels[${index}].${at}`, value, problem, allowed });
-    if (kind === 'mail' && mailer === null) say('kind', '"mail"', 'this service sends no mail', '"webhook" or "push"');
+    if (kind === 'mail' && !sendsMail) say('kind', '"mail"', 'this service sends no mail', '"webhook" or "push"');
     if (kind === 'push' && settings.vapid === null) say('kind', '"push"', 'this service sends no push', '"mail" or "webhook"');
     if (kind === 'push' && !(await addresses.hasKeys(target))) say('keys', 'not shown', 'these are no keys of a browser', 'p256dh: a point of P-256, auth: 16 bytes, in base64url');
     if (kind === 'webhook' && !settings.local) {

@@ -1,12 +1,12 @@
-import { testLetter } from '../../lib/brief/words/letters.ts';
 import type { DisplayUnits } from '../../lib/brief/units-out.ts';
 import { DAYS, isPauseDate } from '../../lib/config/subscription.ts';
 import { isoUtc, localDate } from '../../lib/time.ts';
 import type { Issue } from '../../lib/result.ts';
-import type { Message } from '../channels/channel.ts';
-import { followingDueMs, SEND_TIMEOUT_MS } from '../morning/times.ts';
+import { followingDueMs } from '../morning/times.ts';
 import { readLinkToken, type Purpose } from '../secrets.ts';
 import type { DeskServices } from '../service-set.ts';
+import type { StoredChannel } from '../store/channel.ts';
+import { plannedTest } from '../store/deliveries.ts';
 import type { SubscriptionDetail } from '../store/subscription.ts';
 import { pauseRows, preferenceRows, readPreferences } from './subscribe.ts';
 
@@ -15,6 +15,7 @@ export const ACTIONS = ['pause', 'resume', 'test', 'renew-links', 'end'] as cons
 export type Action = (typeof ACTIONS)[number];
 
 const TESTS = { most: 10, withinMs: 24 * 3_600_000 };
+const TEST_VALID_MS = 3_600_000;
 
 /** null for a token that is none, of another purpose, revoked, or of a subscription that is gone. */
 export async function subscriptionOf({ settings, stores }: DeskServices, purpose: Purpose, token: string): Promise<SubscriptionDetail | null> {
@@ -25,8 +26,10 @@ export async function subscriptionOf({ settings, stores }: DeskServices, purpose
 
 export interface TestResult {
   readonly kind: string;
-  readonly reached: boolean;
-  readonly reason: string;
+  /** `asked`: a browser that has not confirmed is asked once more instead. */
+  readonly state: 'planned' | 'asked' | 'ended';
+  /** Of the message: what became of it stands under the deliveries. */
+  readonly id: string | null;
 }
 
 export type Acted =
@@ -52,9 +55,10 @@ export async function act(services: DeskServices, detail: SubscriptionDetail, { 
     case 'resume':
       await stores.db.together([stores.subscription.resume(id, followingDueMs(detail, nowMs))]);
       return { state: 'done' };
-    case 'test':
-      if ((await stores.rate.take(`test ${id}`, TESTS, nowMs)) > 0) return { state: 'too-many' };
-      return { state: 'done', tests: await testChannels(services, detail) };
+    case 'test': {
+      const tests = await askTests(services, detail, await stores.channel.ofSubscription(id));
+      return 'waitS' in tests ? { state: 'too-many' } : { state: 'done', tests };
+    }
     case 'renew-links':
       await stores.db.together([stores.subscription.renewLinks(id, detail.linkVersion)]);
       return { state: 'done', linkVersion: detail.linkVersion + 1 };
@@ -64,31 +68,25 @@ export async function act(services: DeskServices, detail: SubscriptionDetail, { 
   }
 }
 
-/** Sends a test to each channel now; a receiver that has yet to show that it wants to be told is challenged by it. */
-async function testChannels(services: DeskServices, { id }: SubscriptionDetail): Promise<TestResult[]> {
-  const { stores, channels, clock, settings, ids, wake } = services;
+/**
+ * A test of each of these channels, or how long to wait for the next. It goes the way of every message, so that it proves that
+ * way; a receiver that has yet to show that it wants to be told is challenged by it.
+ */
+export async function askTests({ stores, clock, ids, wake }: DeskServices, detail: SubscriptionDetail, channels: readonly StoredChannel[]): Promise<TestResult[] | { readonly waitS: number }> {
   const nowMs = clock.nowMs();
-  const message: Message = {
-    id: `test_${ids.next()}`, kind: 'test' as Message['kind'], ...testLetter({ service: new URL(settings.publicUrl).host }),
-    issuedAtMs: nowMs, dataRunAtMs: null, validUntilMs: nowMs + 3_600_000, urgent: false, demo: false, days: [],
-  };
-  const results: TestResult[] = [];
-  for (const channel of await stores.channel.ofSubscription(id)) {
-    if (channel.state === 'dead') {
-      results.push({ kind: channel.kind, reached: false, reason: 'this channel has ended' });
-      continue;
-    }
-    if (channel.kind === 'push' && channel.state === 'unverified') {
-      await stores.db.together([stores.channel.askAt(channel.id, nowMs)]);
-      await wake('deliver', 1);
-      results.push({ kind: channel.kind, reached: false, reason: 'this browser has not confirmed yet; it is asked once more' });
-      continue;
-    }
-    const outcome = await channels[channel.kind]?.send(message, channel, { number: 1, nowMs, timeoutMs: SEND_TIMEOUT_MS, untilMs: message.validUntilMs });
-    if (outcome?.state === 'sent' && outcome.verified === true) await stores.db.together([stores.channel.verify(channel.id)]);
-    results.push({ kind: channel.kind, reached: outcome?.state === 'sent', reason: outcome === undefined ? 'this service has no such channel' : outcome.state === 'sent' ? 'taken by the receiver' : outcome.reason });
-  }
-  return results;
+  const waitS = await stores.rate.take(`test ${detail.id}`, TESTS, nowMs);
+  if (waitS > 0) return { waitS };
+  const localDateNow = localDate(nowMs, detail.timeZone);
+  const tests = channels.map(({ id, kind, state }) => {
+    if (state === 'dead') return { result: { kind, state: 'ended' as const, id: null }, statements: [] };
+    if (kind === 'push' && state === 'unverified') return { result: { kind, state: 'asked' as const, id: null }, statements: [stores.channel.askAt(id, nowMs)] };
+    const messageId = `msg_${ids.next()}`;
+    const planned = plannedTest({ messageId, subscriptionId: detail.id, channelId: id, localDate: localDateNow, nowMs, validUntilMs: nowMs + TEST_VALID_MS });
+    return { result: { kind, state: 'planned' as const, id: messageId }, statements: [planned] };
+  });
+  await stores.db.together(tests.flatMap(({ statements }) => statements));
+  await wake('deliver', 1);
+  return tests.map(({ result }) => result);
 }
 
 /** What is kept of somebody's wishes, in the form in which they may change them. */
@@ -129,7 +127,7 @@ export async function managed(services: DeskServices, detail: SubscriptionDetail
     state: detail.state,
     nextBriefAt: detail.state === 'active' ? isoUtc(detail.nextDueAtMs) : null,
     ...(await preferencesJson(services, detail)),
-    channels: channels.map(({ kind, state, target, quietFrom, quietTo }) => ({ kind, state, to: shownTarget(target), quiet: quietFrom === null ? null : { fromMinute: quietFrom, toMinute: quietTo } })),
+    channels: channels.map(({ id, kind, state, target, quietFrom, quietTo }) => ({ id, kind, state, to: shownTarget(target), quiet: quietFrom === null ? null : { fromMinute: quietFrom, toMinute: quietTo } })),
   };
 }
 

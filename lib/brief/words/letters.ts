@@ -26,10 +26,6 @@ export function knownLetter({ link, service }: { readonly link: string; readonly
   return { title: 'This address has a subscription already', text: `${text.join('\n\n')}\n` };
 }
 
-export function testLetter({ service }: { readonly service: string }): LetterWords {
-  return { title: 'Test: this channel reaches you', text: `A test of ${service}, asked for on the page of your subscription. It says nothing about any day.\n\n${CLOSING}\n` };
-}
-
 /** A push that a browser answers by itself: it shows that the browser asked. */
 export function askBrowserWords({ service }: { readonly service: string }): LetterWords {
   return { title: `Confirming the morning brief of ${service}`, text: 'This browser answers by itself; there is nothing to do. No brief is sent to it before.' };

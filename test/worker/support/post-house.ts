@@ -58,7 +58,7 @@ export class PostHouse extends House {
       authorize: this.vapid === null ? null : vapid(this.vapid, 'mailto:ops@example.org'),
       before: this.vapidBefore === null ? null : vapid(this.vapidBefore, 'mailto:ops@example.org'), local: this.isLocal, publicUrl: settings.publicUrl, quarrels: storedQuarrels(services.stores),
     });
-    return { ...services, settings, mailer, addresses: addressesOf(settings), channels: { ...services.channels, push, mail: mailChannel({ mailer, linkKey: LINK_KEY, publicUrl: settings.publicUrl, mailFrom: settings.mailFrom }) } };
+    return { ...services, settings, mailer, sendsMail: true, addresses: addressesOf(settings), channels: { ...services.channels, push, mail: mailChannel({ mailer, linkKey: LINK_KEY, publicUrl: settings.publicUrl, mailFrom: settings.mailFrom }) } };
   }
 
   hono(): Hono {
