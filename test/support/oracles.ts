@@ -30,7 +30,7 @@ export interface Expected {
   readonly told: Readonly<Record<string, number>>;
   readonly dueIso: string;
   /** What may be read in every message: the verdict that was judged, or that nothing can be said; of everybody or by name. */
-  readonly verdict: string | Readonly<Record<string, string>>;
+  readonly verdict: string | Readonly<Record<string, string | readonly string[]>>;
   /** Messages taken twice: what was in flight when something ended. */
   readonly repeats?: number;
   /** How many different messages one may see; one unless more was to be said. */
@@ -54,8 +54,8 @@ export async function oraclesOf({ told, services, ask }: Witness, expected: Expe
 
 /** O1: nothing is said that was not judged. */
 function saidWrong(told: readonly Told[], { verdict }: Expected): string[] {
-  const judged = (name: string): string | undefined => (typeof verdict === 'string' ? verdict : verdict[name]);
-  return told.flatMap(({ name, verdicts }) => (verdicts.length > 0 && verdicts.every((one) => one === judged(name)) ? [] : [`O1: ${name} was told "${verdicts.join(', ')}"`]));
+  const judged = (name: string): readonly string[] => [(typeof verdict === 'string' ? verdict : verdict[name]) ?? []].flat();
+  return told.flatMap(({ name, verdicts }) => (verdicts.length > 0 && verdicts.every((one) => judged(name).includes(one)) ? [] : [`O1: ${name} was told "${verdicts.join(', ')}"`]));
 }
 
 /** O2: what was created is what is sent, expired, dead, suppressed or pending, with a reason. */

@@ -53,6 +53,11 @@ export class PushedBrowser {
     await work;
   }
 
+  /** Its user puts away what is shown. */
+  wipe(): void {
+    this.#shown.clear();
+  }
+
   sees(): { readonly title: string; readonly id: string | null }[] {
     return [...this.#shown.values()].map(({ title, data }) => ({ title, id: data.id }));
   }

@@ -1,9 +1,12 @@
 // What becomes of a morning when push services fail (F57 to F68): a house whose messages go over loopback, each fault with
 // the six oracles. What one answer means to the channel is in wire.test.ts.
 import { afterAll, beforeAll, describe, expect, test, vi } from 'vitest';
+import { app } from '../../../worker/routes/app.ts';
+import { secretLinks } from '../../../worker/security/letter.ts';
 import { seeded } from '../../support/seeded.ts';
 import { PushedBrowser } from '../../support/service-worker.ts';
 import { DUE, startWorld, WireHouse, type Answer, type Knock, type World } from '../../support/wire-house.ts';
+import { judgedAs } from '../../worker/support/stand-ins.ts';
 
 let world: World;
 beforeAll(async () => { world = await startWorld(); });
@@ -216,5 +219,46 @@ describe('a push service', () => {
       await house.minute();
     }
     expect(await house.oracles({ told: { ...Object.fromEntries(busy.map((name) => [name, 120])), ...Object.fromEntries(others.map((name) => [name, 1])) }, books: { sent: 120 } })).toEqual([]);
+  });
+});
+
+describe('what a push service took', () => {
+  test('F67: and no browser shows: the page of the subscription and the test of the week say when it was last handed over, and no more', async () => {
+    const house = new WireHouse(world);
+    await house.people({ ana: ['push'] });
+    await house.minutes(5);
+    const { manage } = await secretLinks({ publicUrl: '', linkKey: 'a-link-key-for-tests-only-0123456789' }, 'ana', 1);
+    const page = await (await app(house.services()).request(manage)).text();
+    expect(page).toMatch(/Last handed over on Fri 14 May[^<]*6:00[^<]*; the browser has not said that it showed anything/);
+    expect(page).toContain('not shown so far');
+    expect(await house.oracles({ told: { ana: 0 }, books: { sent: 1 } })).toEqual([]);
+    // Wednesday noon.
+    house.nowMs = Date.parse('2027-05-19T09:58:00Z');
+    house.told.length = 0;
+    await house.minutes(70);
+    const test = house.of('ana').find(({ read }) => read['kind'] === 'test');
+    expect(test?.read['title']).toMatch(/^Test/);
+    expect(test?.read['body']).toMatch(/Something was last handed over on this way/);
+  });
+
+  test('F68: comes in the wrong order: the older brief is not shown as the newer', async () => {
+    const house = new WireHouse(world, undefined, { judge: (input) => judgedAs(input, input.issuedAt < '2027-05-14T06:00:00Z' ? 'within' : 'beyond') });
+    await house.people({ ana: ['push'], ben: ['push'] });
+    await house.minutes(180);
+    const [brief, change] = house.of('ana');
+    expect([brief?.read['kind'], change?.read['kind']]).toEqual(['brief', 'change']);
+    const browser = new PushedBrowser(house.nowMs);
+    await browser.push(change?.read);
+    await browser.push(brief?.read);
+    expect(browser.sees()).toMatchObject([{ id: change?.read['id'], title: expect.stringMatching(/beyond a limit/i) }]);
+    // Wiped away by its user, it does not let the older one in either.
+    browser.wipe();
+    await browser.push(brief?.read);
+    expect(browser.sees()).toMatchObject([{ id: change?.read['id'] }]);
+    // And when both have ceased to hold, neither does.
+    browser.nowMs = Date.parse(String(change?.read['validUntil']));
+    await browser.push(brief?.read);
+    expect(browser.sees()).toMatchObject([{ title: 'Expired' }]);
+    expect(await house.oracles({ told: { ana: 0, ben: 0 }, verdict: { ana: ['within', 'beyond'], ben: ['within', 'beyond'] }, messages: 2, books: { sent: 4 } })).toEqual([]);
   });
 });
