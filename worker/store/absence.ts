@@ -18,8 +18,8 @@ export interface Books {
 /** How long after its last moment to be made a brief is given up, and after which nothing may be waiting. */
 const DEADLINE_MS = 20 * 60_000;
 
-/** Messages are open for hours, not days: older ones need no look, and reading them all would cost more every day. */
-const LOOKED_AT_MS = 48 * 3_600_000;
+/** A message ends within six hours of its time: whether it ended well needs no look at older ones. */
+const LOOKED_AT_MS = 8 * 3_600_000;
 
 export function absenceStore(db: Database) {
   const IDLE = `o.state = 'pending' AND (o.lease_until IS NULL OR o.lease_until <= ?1)`;
@@ -46,11 +46,11 @@ export function absenceStore(db: Database) {
     async books(nowMs: number): Promise<Books> {
       const [row] = await db.read<Books>(
         `SELECT (SELECT COUNT(*) FROM subscription WHERE state = 'active' AND next_due_at < ?1 - ${DEADLINE_MS / 2}) AS unplanned,
-          COALESCE(SUM(${IDLE} AND o.next_attempt_at <= ?1 - ${DEADLINE_MS} AND o.ready_by <= ?1 - ${DEADLINE_MS} AND o.valid_until > ?1), 0) AS stuck,
-          COALESCE(SUM(${IDLE} AND o.valid_until <= ?1 - 300000), 0) AS overdue,
-          COALESCE(SUM((o.state <> 'pending') <> (o.settled_at IS NOT NULL) OR (o.state <> 'pending' AND o.reason IS NULL)), 0) AS unaccounted,
-          (SELECT COUNT(*) FROM breaker WHERE source LIKE 'push %' AND CAST(body AS INTEGER) > ?1) AS refusals
-          FROM outbox AS o WHERE o.due_at > ?1 - ${LOOKED_AT_MS}`,
+          (SELECT COUNT(*) FROM outbox AS o WHERE ${IDLE} AND o.next_attempt_at <= ?1 - ${DEADLINE_MS} AND o.ready_by <= ?1 - ${DEADLINE_MS} AND o.valid_until > ?1) AS stuck,
+          (SELECT COUNT(*) FROM outbox AS o WHERE ${IDLE} AND o.valid_until <= ?1 - 300000) AS overdue,
+          (SELECT COUNT(*) FROM outbox AS o INDEXED BY outbox_by_due WHERE o.due_at > ?1 - ${LOOKED_AT_MS}
+            AND ((o.state <> 'pending') <> (o.settled_at IS NOT NULL) OR (o.state <> 'pending' AND o.reason IS NULL))) AS unaccounted,
+          (SELECT COUNT(*) FROM breaker WHERE source LIKE 'push %' AND CAST(body AS INTEGER) > ?1) AS refusals`,
         nowMs,
       );
       return row ?? { unplanned: 0, stuck: 0, overdue: 0, unaccounted: 0, refusals: 0 };
