@@ -223,3 +223,38 @@ test('a browser whose push address has changed says so at its next visit, and is
   expect(house.ask('SELECT state FROM channel WHERE target ->> \'endpoint\' = ?', now.endpoint)).toEqual([{ state: 'active' }]);
   await context.close();
 });
+
+test('a browser that signed up under a key that is no longer ours asks for another address at its next visit, and is told there', async () => {
+  const [was, now] = [house.sink.newBrowser().target, house.sink.newBrowser().target];
+  const json = ({ endpoint, p256dh, auth }: typeof was) => ({ endpoint, expirationTime: null, keys: { p256dh, auth } });
+  const wish = { sites: [{ id: 'wennet-meadow' }], wing: { class: 'EN B' }, deliver: { at: '05:30', timeZone: 'Europe/Vienna' }, channels: [{ kind: 'push', endpoint: was.endpoint, keys: json(was).keys }] };
+  expect((await fetch(`${house.origin}/api/v1/subscriptions`, { method: 'POST', headers: { 'content-type': 'application/json' }, body: JSON.stringify(wish) })).status).toBe(202);
+  house.ask('UPDATE channel SET state = \'active\', ask_at = NULL, push_key = \'another-key-\' WHERE target ->> \'endpoint\' = ? RETURNING id', was.endpoint);
+  const { page, context, deliver, settled } = await toldBrowser(browser, `${house.origin}/`);
+  // As the service worker kept it when it confirmed, two days ago; and the browser's own push service, as this page's stand-in.
+  await page.evaluate(async (old) => {
+    await (await caches.open('dawnmargin-pushes')).put('/push-state/told', new Response(JSON.stringify({ at: Date.now() - 2 * 86_400_000, ...old })));
+  }, json(was));
+  const [worker] = context.serviceWorkers();
+  await worker?.evaluate(({ old, fresh }) => {
+    const asked: string[] = [];
+    Object.assign(globalThis, { asked });
+    const given = (value: typeof old) => value as unknown as PushSubscription;
+    PushManager.prototype.getSubscription = () => Promise.resolve({
+      options: { applicationServerKey: new Uint8Array(65).fill(4).buffer, userVisibleOnly: true }, unsubscribe: () => { asked.push('unsubscribe'); return Promise.resolve(true); }, toJSON: () => given(old),
+    } as unknown as PushSubscription);
+    PushManager.prototype.subscribe = (options) => {
+      asked.push(btoa(String.fromCharCode(...(options?.applicationServerKey as Uint8Array))).replaceAll('+', '-').replaceAll('/', '_').replaceAll('=', ''));
+      return Promise.resolve({ toJSON: () => given(fresh) } as unknown as PushSubscription);
+    };
+  }, { old: json(was), fresh: json(now) });
+  await page.reload();
+  await expect.poll(() => house.sink.pushed.some(({ path }) => now.endpoint.endsWith(path))).toBe(true);
+  const { publicKey } = (await (await fetch(`${house.origin}/api/v1/push/key`)).json()) as { publicKey: string };
+  expect(await worker?.evaluate(() => (globalThis as unknown as { asked: string[] }).asked)).toEqual(['unsubscribe', publicKey]);
+  expect(house.ask('SELECT target ->> \'endpoint\' AS endpoint, state, push_key AS pushKey FROM channel WHERE target ->> \'endpoint\' IN (?, ?)', was.endpoint, now.endpoint)).toEqual([{ endpoint: now.endpoint, state: 'unverified', pushKey: publicKey.slice(1, 13) }]);
+  await deliver(house.sink.decrypt(house.sink.pushed.find(({ path }) => now.endpoint.endsWith(path))!));
+  await settled((list) => expect(list.map(({ title }) => title)).toEqual(['This browser is told from now on']));
+  expect(house.ask('SELECT state FROM channel WHERE target ->> \'endpoint\' = ?', now.endpoint)).toEqual([{ state: 'active' }]);
+  await context.close();
+});
