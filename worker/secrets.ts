@@ -68,5 +68,8 @@ export function base64Url(bytes: Uint8Array): string {
 /** Padding is allowed, and not needed. Throws for what is not base64url. */
 export function base64UrlBytes(text: string): Uint8Array {
   const binary = atob(text.replaceAll('-', '+').replaceAll('_', '/').replace(/=+$/, ''));
-  return Uint8Array.from(binary, (character) => character.charCodeAt(0));
+  const bytes = new Uint8Array(binary.length);
+  // Through an iterator it takes twice as long, and each push message has two keys to read.
+  for (let index = 0; index < binary.length; index += 1) bytes[index] = binary.charCodeAt(index);
+  return bytes;
 }
