@@ -1,4 +1,4 @@
-// F75-F77: what becomes of a morning when the mail service takes a letter and it comes back, takes it and does not say so,
+// F75-F77, with the six oracles: what becomes of a morning when the mail service takes a letter and it comes back, takes it and does not say so,
 // or takes only so many. The house runs in this process; its letters go through the worker's own mailer in a real workerd
 // to a mail service on loopback (smtp-server). And the alternative by configuration: the platform's binding MAIL.
 import path from 'node:path';
@@ -12,14 +12,18 @@ import { base64, derivedKey, hmacSha256 } from '../../../worker/secrets.ts';
 import type { SendOutcome } from '../../../worker/channels/channel.ts';
 import { hook } from '../../support/fast-house.ts';
 import { FastPostHouse, LINK_KEY } from '../../support/fast-post-house.ts';
+import { oraclesOf, verdictsIn, type Expected, type Told } from '../../support/oracles.ts';
 import { root } from '../../support/run-tool.ts';
 import { readMail, smtpError, startSmtpSink, type SmtpSink } from '../../support/sinks/smtp-sink.ts';
 
+const EVENING = '2027-05-13T20:00:00Z';
 const MORNING = '2027-05-14T04:00:00Z';
 let runtime: Miniflare;
 let sink: SmtpSink;
 let house: FastPostHouse;
 let letters = 0;
+/** Of each letter that came since then: when, and whether it was taken. */
+let fates: Pick<Told, 'atMs' | 'taken'>[] = [];
 
 beforeAll(async () => {
   const bundled = await build({ stdin: { contents: `import { handOver } from './mail-worker.ts'; export default { fetch: handOver };`, resolveDir: path.join(root, 'test/support'), loader: 'ts' }, bundle: true, format: 'esm', write: false, external: ['cloudflare:sockets'], target: 'esnext' });
@@ -30,12 +34,38 @@ beforeAll(async () => {
 afterAll(() => Promise.all([runtime.dispose(), sink.close()]));
 
 beforeEach(async () => {
-  sink.behave({});
+  behaves({});
   letters = sink.received.length;
   house = await opened({ local: true, send });
 });
 
 afterEach(() => house.d1.close());
+
+function behaves(as: Parameters<SmtpSink['behave']>[0]): void {
+  sink.behave({
+    ...as,
+    data: () => {
+      const answer = as.data?.() ?? null;
+      fates.push({ atMs: house.nowMs, taken: answer === null || answer === 'drop' });
+      return answer;
+    },
+  });
+}
+
+/** What each recipient got: by mail, and by the webhook that it falls back to. */
+function gotten(): Told[] {
+  const mails = sink.received.slice(letters).map(({ to, raw }, index): Told => {
+    const { headers, parts } = readMail(raw);
+    const subject = headers.get('subject') ?? '';
+    return { name: (to[0] ?? '').split('@')[0] ?? '', id: /^<(.+)@/.exec(headers.get('message-id') ?? '')?.[1] ?? '', said: `${subject}\n${parts[0]?.text}`, verdicts: verdictsIn(subject), validUntilMs: Date.parse(headers.get('expires') ?? ''), ...(fates[index] ?? { atMs: NaN, taken: false }) };
+  });
+  const posts = house.posts.map(({ url, id, data, atMs }): Told => ({ name: url.slice(url.lastIndexOf('/') + 1), id, atMs, said: JSON.stringify(data), verdicts: data.days.map(({ verdict }) => verdict), validUntilMs: Date.parse(data.validUntil), taken: true }));
+  return [...mails, ...posts];
+}
+
+function oracles(expected: Omit<Expected, 'dueIso' | 'verdict'>): Promise<string[]> {
+  return oraclesOf({ told: gotten(), services: house.services(), ask: <Row>(sql: string) => Promise.resolve(house.d1.ask<Row>(sql)) }, { dueIso: MORNING, verdict: 'within', ...expected });
+}
 
 async function send(letter: Letter): Promise<SendOutcome> {
   const response = await runtime.dispatchFetch('http://mail.test/', { method: 'POST', body: JSON.stringify({ url: `smtp://127.0.0.1:${sink.port}`, letter, timeoutMs: 3000 }) });
@@ -44,7 +74,7 @@ async function send(letter: Letter): Promise<SendOutcome> {
 
 function opened(mailer: Mailer): Promise<FastPostHouse> {
   return FastPostHouse.open({
-    nowIso: '2027-05-13T20:00:00Z',
+    nowIso: EVENING,
     instead: ({ settings, channels }) => ({
       mailer, settings: { ...settings, mailFrom: 'brief@dawnmargin.example.org' },
       channels: { ...channels, mail: mailChannel({ mailer, linkKey: LINK_KEY, publicUrl: settings.publicUrl, mailFrom: 'brief@dawnmargin.example.org' }) },
@@ -63,6 +93,7 @@ async function told(addresses: readonly string[], fallback: readonly unknown[] =
   }
   house.d1.ask(`UPDATE channel SET state = 'active'`);
   letters = sink.received.length;
+  fates = [];
   house.nowMs = Date.parse(MORNING);
 }
 
@@ -84,6 +115,7 @@ test('F75 taken, and then it comes back: the channel ends, the next in rank is t
   const [first] = arrived();
   await bounced(first?.id ?? '');
   expect(house.posts.map(({ type }) => type)).toEqual(['brief.issued']);
+  expect(await oracles({ told: { ana: 0, next: 0 }, books: { sent: 2 }, seen: /"event":"bounced"/ })).toEqual([]);
   house.nowMs += 24 * 3_600_000;
   await house.minute();
   expect(arrived().length).toBe(1);
@@ -96,44 +128,48 @@ test('F75 with nothing to fall back to the subscription is paused, and its own p
   const manage = /https?:\/\/[^/\s]+(\/manage\/\S+)/.exec(readMail(sink.received.at(-1)?.raw ?? '').parts[0]?.text ?? '')?.[1] ?? '';
   await bounced(arrived()[0]?.id ?? '');
   expect(await (await house.ask('GET', `/api/v1${manage}`)).json()).toMatchObject({ state: 'paused', channels: [{ kind: 'mail', state: 'dead' }] });
+  expect(await oracles({ told: { ana: 0 }, books: { sent: 1 }, seen: /"event":"bounced"/ })).toEqual([]);
 });
 
 test('F76 taken, and the connection is lost before the answer: sent again under the same Message-ID, and counted once', async () => {
   await told(['ana@mail.example.org']);
   let losses = 2;
-  sink.behave({ data: () => ((losses -= 1) >= 0 ? 'drop' : null) });
+  behaves({ data: () => ((losses -= 1) >= 0 ? 'drop' : null) });
   await house.minutes(6);
   const ids = arrived().map(({ id }) => id);
   expect(ids.length).toBe(3);
   expect(new Set(ids).size).toBe(1);
   expect(outbox()).toMatchObject([{ state: 'sent', attempts: 3 }]);
+  expect(await oracles({ told: { ana: 0 }, repeats: 2, books: { sent: 1 } })).toEqual([]);
 });
 
 test('F77 a quota reached in the middle of a morning: the rest comes when it is open again, each once', async () => {
   const addresses = Array.from({ length: 6 }, (_, index) => `p${index}@mail.example.org`);
   await told(addresses);
   let left = 3;
-  sink.behave({ rcpt: () => ((left -= 1) >= 0 ? null : smtpError(452, 'quota')) });
+  behaves({ rcpt: () => ((left -= 1) >= 0 ? null : smtpError(452, 'quota')) });
   await house.minutes(4);
   expect(arrived().length).toBe(3);
   expect(outbox().map(({ state }) => state).toSorted()).toEqual(['pending', 'pending', 'pending', 'sent', 'sent', 'sent']);
-  sink.behave({});
+  behaves({});
   await house.minutes(30);
   expect(arrived().map(({ to = '' }) => to).toSorted((a, b) => a.localeCompare(b))).toEqual(addresses);
-  expect(outbox().every(({ state }) => state === 'sent')).toBe(true);
+  expect(await oracles({ told: { p0: 30, p1: 30, p2: 30, p3: 30, p4: 30, p5: 30 }, books: { sent: 6 } })).toEqual([]);
 });
 
-test('F77 a quota that stays: the message ends with its reason, is counted, and whoever runs the service is told', async () => {
+test('F77 a quota that stays: the message ends with its reason, goes on by the next channel, is counted, and whoever runs the service is told', async () => {
   await told(['ana@mail.example.org']);
-  sink.behave({ rcpt: () => smtpError(452, 'quota') });
+  house.nowMs = Date.parse(EVENING);
+  await told(['ben@mail.example.org'], [{ kind: 'webhook', url: hook('next') }]);
+  behaves({ rcpt: () => smtpError(452, 'quota') });
   for (let minute = 0; minute < 7 * 60; minute += 5) {
     await house.minute();
     house.nowMs += 5 * 60_000;
   }
   expect(arrived()).toEqual([]);
-  const [row] = outbox();
-  expect([row?.state, row?.reason]).toEqual(['dead', 'given up after 7 attempts; last: the mail service answered 452']);
-  expect(await (await house.ask('GET', '/healthz')).json()).toMatchObject({ status: 'needs a look', warnings: expect.arrayContaining(['1 messages could not be delivered']), outbox: { created: 1, dead: 1, pending: 0 } });
+  for (const { reason } of outbox().filter(({ state }) => state === 'dead')) expect(reason).toBe('given up after 7 attempts; last: the mail service answered 452');
+  expect(await (await house.ask('GET', '/healthz')).json()).toMatchObject({ status: 'needs a look', warnings: expect.arrayContaining(['2 messages could not be delivered']), outbox: { created: 3, dead: 2, pending: 0 } });
+  expect(await oracles({ told: { next: 90 }, books: { dead: 2, sent: 1 }, seen: /2 messages could not be delivered/ })).toEqual([]);
 });
 
 test('the binding MAIL in place of SMTP: the same letters, and what its errors mean', async () => {
