@@ -24,7 +24,7 @@ const QUICK = [
 
 /** Those that judge whole days: asked only about what the quick ones let pass. */
 const SLOW = [
-  'test/lib/brief/airspeed.test.ts', 'test/lib/brief/explain-hour.test.ts', 'test/lib/brief/typical-days.test.ts', 'test/lib/brief/judge-day.test.ts',
+  'test/lib/brief/airspeed.test.ts', 'test/lib/brief/hour-detail.test.ts', 'test/lib/brief/typical-days.test.ts', 'test/lib/brief/judge-day.test.ts',
   'test/lib/brief/cautions.test.ts', 'test/properties/hour-laws.test.ts', 'test/properties/day-laws.test.ts', 'test/lib/margin/truth-table.test.ts',
 ];
 
