@@ -137,8 +137,8 @@ export async function clubDay({ sites: siteCount, subscribers: subscriberCount, 
     meter.rowsWritten += others * (meter.rowsWritten - before.rowsWritten);
   };
   for (let hour = 0; hour < 20; hour += 1) {
-    // The board's minute with all that it sets off, two in which notices are looked for, then those in which nothing happens.
-    for (const [atMin, others] of [[7, 0], [8, 0], [9, 0], [12, 44], [15, 11]] as const) {
+    // The minutes of the board and of the recheck, each with two in which notices are looked for, then those in which nothing happens.
+    for (const [atMin, others] of [[7, 0], [8, 0], [9, 0], [10, 0], [11, 0], [12, 0], [14, 42], [15, 10]] as const) {
       house.nowMs = Date.parse('2027-05-14T06:00:00Z') + hour * 3_600_000 + atMin * 60_000;
       await minuteLike(others);
     }
