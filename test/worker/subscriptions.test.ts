@@ -3,6 +3,8 @@ import { env } from 'cloudflare:workers';
 import { Webhook } from 'standardwebhooks';
 import { beforeEach, describe, expect, test, vi } from 'vitest';
 import { CLOSING } from '../../lib/brief/words/index.ts';
+import { linkToken } from '../../worker/secrets.ts';
+import { LINK_KEY } from './support/house.ts';
 import { everyRow, newPostHouse, wish, type PostHouse } from './support/post-house.ts';
 
 let house: PostHouse;
@@ -70,6 +72,19 @@ describe('a whole life', () => {
     await house.minute();
     expect(house.letters.length).toBe(before + 2);
   });
+});
+
+test('its page lists the training days that it is told about, and says nothing of one any more when asked', async () => {
+  const manage = await subscribed();
+  const { stores } = house.services();
+  const [{ id } = { id: '' }] = (await env.DB.prepare('SELECT id FROM subscription').all<{ id: string }>()).results;
+  const row = (plan: string, localDate: string) => [...stores.plan.put({ id: plan, revision: 1, localDate, request: '{}', body: '{}' }, house.nowMs), stores.plan.tell(plan, plan === 'other' ? 'somebody-else' : id)];
+  await stores.db.together([...row('course', '2027-05-15'), ...row('past', '2027-05-12'), ...row('other', '2027-05-15')]);
+  const page = await (await house.ask('GET', manage)).text();
+  expect([...page.matchAll(/href="(\/plan\/[^"]+)">([^<]+)</g)].map(([, path, words]) => [path, words])).toEqual([[`/plan/${await linkToken(LINK_KEY, { purpose: 'plan', id: 'course', version: 1 })}`, 'Training day of Saturday 15 May 2027']]);
+  for (const plan of ['course', 'other']) expect((await house.form(manage, { action: 'leave-plan', plan })).status).toBe(303);
+  expect(await (await house.ask('GET', manage)).text()).not.toContain('Training day');
+  expect((await env.DB.prepare('SELECT id, subscription_id AS who FROM plan ORDER BY id').all()).results).toEqual([{ id: 'course', who: null }, { id: 'other', who: 'somebody-else' }, { id: 'past', who: id }]);
 });
 
 describe('what a stranger can learn or change', () => {

@@ -47,6 +47,9 @@ export async function doAsked(asked: Asked): Promise<Done> {
       const channel = channels.find(({ id }) => id === form.get('channel'));
       return channel === undefined ? 'not-understood' : ofChannel(asked, action, channel, channels);
     }
+    case 'leave-plan':
+      await services.stores.db.together([services.stores.plan.tellNoMore(textIn(form, 'plan'), detail.id)]);
+      return { said: 'no-plan', at: 'wishes' };
     case 'add-browser': return addChannel(asked, { kind: 'push', endpoint: textIn(form, 'endpoint'), keys: { p256dh: textIn(form, 'p256dh'), auth: textIn(form, 'auth') } });
     case 'add-webhook': return addChannel(asked, { kind: 'webhook', url: textIn(form, 'hook') });
     default: return 'not-understood';

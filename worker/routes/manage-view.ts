@@ -1,6 +1,8 @@
 /** Puts together what the page of a subscription shows. It reads and changes nothing. */
+import { localDate } from '../../lib/time.ts';
 import { managed, preferencesJson } from '../security/manage.ts';
 import { secretLinks } from '../security/letter.ts';
+import { linkToken } from '../secrets.ts';
 import type { DeskServices } from '../service-set.ts';
 import { deliveriesOf, reachedOf } from '../store/deliveries.ts';
 import type { SubscriptionDetail } from '../store/subscription.ts';
@@ -20,6 +22,7 @@ const SAID: Readonly<Record<string, string>> = {
   loud: 'There are no quiet hours on this way any more.',
   order: 'The order is changed.',
   removed: 'This way is taken away.',
+  'no-plan': 'Nothing is said of that training day any more.',
   added: 'Added. Give its receiver the secret below; a test sends it the challenge.',
   'new-secret': 'A new secret is made. Both sign what is sent until you give up the old one.',
   'old-secret': 'The old secret signs nothing any more.',
@@ -30,15 +33,17 @@ const SAID: Readonly<Record<string, string>> = {
 export async function manageMarkup(services: DeskServices, detail: SubscriptionDetail, { said = null, refused = null }: { readonly said?: string | null; readonly refused?: ManageView['refused'] }): Promise<string> {
   const { settings, stores, clock, addresses } = services;
   const nowMs = clock.nowMs();
-  const [known, rows, about, deliveries, kept, { channels: seen }] = await Promise.all([
+  const [known, rows, about, deliveries, kept, { channels: seen }, planned] = await Promise.all([
     sitesAndSheets(services), stores.channel.ofSubscription(detail.id), reachedOf(stores.db, detail.id),
     deliveriesOf(stores.db, detail.id, nowMs - LOG_MS), preferencesJson(services, detail), managed(services, detail),
+    stores.plan.ofSubscription(detail.id, localDate(nowMs, detail.timeZone)),
   ]);
+  const plans = await Promise.all(planned.map(async ({ id, linkVersion, localDate: day }) => ({ id, localDate: day, path: `/plan/${await linkToken(settings.linkKey ?? '', { purpose: 'plan', id, version: linkVersion })}` })));
   const links = await secretLinks({ publicUrl: settings.publicUrl, linkKey: settings.linkKey ?? '' }, detail.id, detail.linkVersion);
   const none = { reachedAtMs: null, shownAtMs: null, reason: null };
   const secrets = await Promise.all(rows.map(async (row) => (row.kind === 'webhook' && (row.state === 'unverified' || settings.linkKeyBefore !== null || row.oldestSecretVersion < row.secretVersion) ? addresses.secretOf(row) : null)));
   return managePage({
-    ...known, kept, deliveries, refused, nowMs,
+    ...known, kept, deliveries, refused, nowMs, plans,
     state: detail.state,
     nextBriefAtMs: detail.state === 'active' ? detail.nextDueAtMs : null,
     channels: rows.map((row, nth) => ({ ...row, to: seen[nth]?.to ?? '', secret: secrets[nth] ?? null, ...(about.get(row.id) ?? none) })),

@@ -57,6 +57,13 @@ export function planStore(db: Database) {
     tell(id: string, subscriptionId: string | null): Statement {
       return { sql: 'UPDATE plan SET subscription_id = ?2 WHERE id = ?1', values: [id, subscriptionId] };
     },
+    /** Those from this day on that a subscription is told about, the next day first. */
+    ofSubscription(id: string, fromDate: string): Promise<Pick<StoredPlan, 'id' | 'linkVersion' | 'localDate'>[]> {
+      return db.read('SELECT id, link_version AS linkVersion, local_date AS localDate FROM plan WHERE subscription_id = ? AND local_date >= ? ORDER BY local_date, id LIMIT 50', id, fromDate);
+    },
+    tellNoMore(id: string, subscriptionId: string): Statement {
+      return { sql: 'UPDATE plan SET subscription_id = NULL WHERE id = ? AND subscription_id = ?', values: [id, subscriptionId] };
+    },
     /** The plans of these days that somebody is to be told about. */
     held(localDates: readonly string[]): Promise<(StoredPlan & { readonly subscriptionId: string })[]> {
       const sql = `SELECT ${COLUMNS} FROM plan WHERE local_date IN (SELECT value FROM json_each(?))

@@ -47,6 +47,10 @@ function wishesForm(view: ManageView): Html {
 <fieldset><legend>When, and in which units</legend>${whenFields(wishes)}</fieldset><button type="submit">Use these from the next brief on</button></form>`;
 }
 
+function plansPart(view: ManageView): Html {
+  return html`<ul class="ways">${view.plans.map(({ id, localDate, path }) => html`<li class="way"><p><a href="${path}">Training day of ${dateName(localDate)}</a></p>${act(view, 'leave-plan', 'Say nothing of it', { fields: hidden('plan', id), about: `training day of ${dateName(localDate)}` })}</li>`)}</ul>`;
+}
+
 function pausePart(view: ManageView): Html {
   const { state, refused } = view;
   if (state === 'paused') return html`<p>${nextWords(view)}</p>${act(view, 'resume', 'Resume now')}`;
@@ -73,6 +77,7 @@ ${count === 0 ? null : html`<p class="day" role="alert">Nothing was changed: ${c
 <div class="gist"><p class="day">${wishWords(view)}</p><p>${orderWords(view.channels)} ${nextWords(view)}</p></div>
 ${leaf('ways', 'Ways to reach you', 'in their order', channelsPart(view))}
 ${leaf('wishes', 'What you are told', 'sites, sheets, wing, hour, units', wishesForm(view))}
+${view.plans.length === 0 ? null : leaf('plans', 'Training days', 'told of when a block turns', plansPart(view))}
 ${leaf('pause', 'Pause', view.state === 'paused' ? 'paused now' : 'not paused', pausePart(view))}
 ${leaf('log', 'What was sent', 'the last fourteen days', log(view))}
 ${leaf('links', 'Links', 'secret, like this page', html`<p><a href="${view.feed}">The same as a feed</a>, for a reader of your own. Whoever has seen your links can read and change what you read and change here: new ones end the old.</p>${act(view, 'renew-links', 'Make new links')}`)}

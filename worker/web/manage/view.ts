@@ -32,6 +32,8 @@ export interface ManageView {
   readonly deliveries: readonly Delivery[];
   readonly sites: readonly Site[];
   readonly sheets: readonly LimitSheet[];
+  /** Training days whose blocks it is told about when they turn. */
+  readonly plans: readonly { readonly id: string; readonly localDate: string; readonly path: string }[];
   readonly feed: string;
   /** The page's own path, secret like the link that leads to it. */
   readonly path: string;
