@@ -1,8 +1,5 @@
 // The six oracles after every fault of delivery (O1 to O6 of the fault catalogue), as sentences about what is wrong. They
 // know what each recipient got, whatever it came by, the books, and what health says.
-import { health } from '../../worker/routes/health.ts';
-import type { Services } from '../../worker/service-set.ts';
-
 /** One message that one recipient got. */
 export interface Told {
   /** Whose it is: the name at the end of an address, or before its @. */
@@ -21,7 +18,7 @@ export interface Told {
 
 export interface Witness {
   readonly told: readonly Told[];
-  readonly services: Pick<Services, 'stores' | 'clock' | 'settings'>;
+  readonly health: () => Promise<unknown>;
   readonly ask: <Row>(sql: string) => Promise<Row[]>;
 }
 
@@ -48,8 +45,21 @@ export function verdictsIn(words: string): string[] {
   return Object.entries(PHRASES).flatMap(([verdict, phrase]) => (phrase.test(words) ? [verdict] : []));
 }
 
-export async function oraclesOf({ told, services, ask }: Witness, expected: Expected): Promise<string[]> {
-  return [...saidWrong(told, expected), ...(await booksWrong(ask, expected)), ...repeated(told, expected), ...late(told, expected), ...(await unseen(services, expected))];
+/** A webhook's message, as its receiver reads it. */
+export interface WebhookData {
+  readonly id: string;
+  readonly title: string;
+  readonly validUntil: string;
+  readonly days: readonly { readonly verdict: string }[];
+}
+
+export function toldByWebhook(came: Pick<Told, 'atMs' | 'taken'> & { readonly url: string; readonly id: string }, data: WebhookData): Told {
+  const verdicts = data.days.length > 0 ? data.days.map(({ verdict }) => verdict) : verdictsIn(data.title);
+  return { name: came.url.slice(came.url.lastIndexOf('/') + 1), id: came.id, atMs: came.atMs, said: JSON.stringify(data), verdicts, validUntilMs: Date.parse(data.validUntil), taken: came.taken };
+}
+
+export async function oraclesOf({ told, health, ask }: Witness, expected: Expected): Promise<string[]> {
+  return [...saidWrong(told, expected), ...(await booksWrong(ask, expected)), ...repeated(told, expected), ...late(told, expected), ...unseen(await health(), expected)];
 }
 
 /** O1: nothing is said that was not judged. */
@@ -97,8 +107,8 @@ function late(told: readonly Told[], expected: Expected): string[] {
 }
 
 /** O6: who looks at health sees it, and sees nothing when there is nothing. */
-async function unseen(services: Witness['services'], { seen }: Expected): Promise<string[]> {
-  const said = (await (await health(services)).json()) as { readonly warnings?: readonly string[] };
+function unseen(health: unknown, { seen }: Expected): string[] {
+  const said = health as { readonly warnings?: readonly string[] };
   const isAsItShouldBe = seen === undefined ? said.warnings?.length === 0 : seen.test(JSON.stringify(said));
   return isAsItShouldBe ? [] : [`O6: health says ${JSON.stringify(said).slice(-700)}`];
 }

@@ -4,12 +4,13 @@
 import { vi } from 'vitest';
 import { vapidKeys } from '../faults/delivery/vapid-keys.ts';
 import { FastHouse, type FastOptions } from './fast-house.ts';
-import { oraclesOf, verdictsIn, type Expected, type Told } from './oracles.ts';
+import { health } from '../../worker/routes/health.ts';
+import { oraclesOf, toldByWebhook, verdictsIn, type Expected, type Told, type WebhookData } from './oracles.ts';
 import { startPushSink, type Pushed, type PushSink } from './sinks/push-sink.ts';
 import { startWebhookSink, type Received, type WebhookSink } from './sinks/webhook-sink.ts';
 
-/** A push service, another one, a receiver of webhooks, or a webhook at an address of its own. */
-export type Way = 'push' | 'other push' | 'webhook' | { readonly url: string };
+/** A push service, another one, a push service that a test stands in for, a receiver of webhooks, or a webhook at an address of its own. */
+export type Way = 'push' | 'other push' | 'crowd' | 'webhook' | { readonly url: string };
 
 export interface Knock {
   readonly name: string;
@@ -91,7 +92,7 @@ export class WireHouse extends FastHouse {
   }
 
   oracles(expected: Omit<Expected, 'dueIso' | 'verdict'> & Partial<Expected>): Promise<string[]> {
-    return oraclesOf({ told: this.told, services: this.services(), ask: <Row>(sql: string) => Promise.resolve(this.d1.ask<Row>(sql)) }, { dueIso: DUE, verdict: 'within', ...expected });
+    return oraclesOf({ told: this.told, health: async () => (await health(this.services())).json(), ask: <Row>(sql: string) => Promise.resolve(this.d1.ask<Row>(sql)) }, { dueIso: DUE, verdict: 'within', ...expected });
   }
 
   /** Waits by the clock of the house: whoever wakes first is woken first, and the clock goes on to then. */
@@ -116,6 +117,7 @@ export class WireHouse extends FastHouse {
 
   #targetOf(name: string, way: Way): { readonly kind: string; readonly target: string } {
     if (way === 'webhook') return { kind: 'webhook', target: JSON.stringify({ url: `${this.#world.hooks.origin}/${name}` }) };
+    if (way === 'crowd') return { kind: 'push', target: '{}' };
     if (typeof way === 'object') return { kind: 'webhook', target: JSON.stringify(way) };
     const { target } = this.#service(way).newBrowser();
     this.#names.set(target.endpoint, name);
@@ -130,10 +132,8 @@ export class WireHouse extends FastHouse {
   }
 
   #received({ path, headers, body }: Received) {
-    const read = JSON.parse(body) as { readonly data: { readonly id: string; readonly title: string; readonly validUntil: string; readonly days: readonly { readonly verdict: string }[] } };
-    const { id, title, validUntil, days } = read.data;
-    const verdicts = days.length > 0 ? days.map(({ verdict }) => verdict) : verdictsIn(title);
-    return this.#knocked({ name: path.slice(1), way: 'webhook', headers: headers as Record<string, string>, body, read }, { id, said: body, verdicts, validUntilMs: Date.parse(validUntil) });
+    const read = JSON.parse(body) as { readonly data: WebhookData };
+    return this.#knocked({ name: path.slice(1), way: 'webhook', headers: headers as Record<string, string>, body, read }, toldByWebhook({ url: path, id: read.data.id, atMs: this.nowMs, taken: true }, read.data));
   }
 
   #knocked(came: Omit<Knock, 'attempt' | 'atMs'>, what: Omit<Told, 'name' | 'atMs' | 'taken'>) {

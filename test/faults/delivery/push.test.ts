@@ -1,6 +1,7 @@
 // What becomes of a morning when push services fail (F57 to F68): a house whose messages go over loopback, each fault with
 // the six oracles. What one answer means to the channel is in wire.test.ts.
 import { afterAll, beforeAll, describe, expect, test, vi } from 'vitest';
+import type { Channel } from '../../../worker/channels/channel.ts';
 import { app } from '../../../worker/routes/app.ts';
 import { secretLinks } from '../../../worker/security/letter.ts';
 import { seeded } from '../../support/seeded.ts';
@@ -185,29 +186,34 @@ describe('a push service', () => {
     expect(await house.oracles({ told: { ana: 2, ben: 0 }, books: { sent: 2 } })).toEqual([]);
   });
 
-  // A tenth of ten thousand, and of a hundred a second a fifth.
-  test('F66: takes twenty a second of a thousand: they come at the pace it takes, all of them, and nobody is given up', async () => {
-    const names = Array.from({ length: 1000 }, (_, index) => `s${index}`);
-    const bucket = { tokens: 20, atMs: dueMs };
+  // A channel without encryption, so that ten thousand take seconds; that a push service's 429 is "busy" stands in wire.test.ts.
+  test('F66: takes a hundred a second of ten thousand: they come at the pace it takes, all within minutes, nobody is given up', async () => {
+    const names = Array.from({ length: 10_000 }, (_, index) => `s${index}`);
+    const bucket = { tokens: 100, atMs: dueMs };
     let refused = 0;
-    const house: WireHouse = new WireHouse(world, ({ way, atMs }) => {
-      if (way === 'webhook') return { status: 204 };
-      // A send takes 5 ms: left alone we would be ten times as fast.
-      house.nowMs += 5;
-      bucket.tokens = Math.min(20, bucket.tokens + (atMs - bucket.atMs) / 50);
-      bucket.atMs = atMs;
-      const isTaken = bucket.tokens >= 1;
-      if (isTaken) bucket.tokens -= 1;
-      else refused += 1;
-      return { status: isTaken ? 201 : 429 };
-    }, { random: seeded(66), sleep: (ms) => house.sleep(ms), env: { CALLS_AN_INVOCATION: '1000' }, wireless: true });
-    await house.people({ ...Object.fromEntries(names.map((name) => [name, ['push'] as const])), ben: ['webhook'] });
-    for (let minute = 0; minute < 20; minute += 1) {
+    const crowded: Channel = {
+      lane: ({ id }) => id,
+      host: () => 'https://push.example.net',
+      send: (message, { subscriptionId = '' }) => {
+        // A send takes 5 ms: left alone we would be twice as fast.
+        house.nowMs += 5;
+        bucket.tokens = Math.min(100, bucket.tokens + (house.nowMs - bucket.atMs) / 10);
+        bucket.atMs = house.nowMs;
+        const taken = bucket.tokens >= 1;
+        if (taken) bucket.tokens -= 1;
+        else refused += 1;
+        house.told.push({ name: subscriptionId, id: message.id, atMs: house.nowMs, said: message.text, verdicts: message.days.map(({ verdict }) => verdict), validUntilMs: message.validUntilMs, taken });
+        return Promise.resolve(taken ? { state: 'sent' } : { state: 'retry', reason: 'the push service answered 429', afterMs: 0, busy: true });
+      },
+    };
+    const house: WireHouse = new WireHouse(world, undefined, { random: seeded(66), sleep: (ms) => house.sleep(ms), env: { CALLS_AN_INVOCATION: '1000' }, instead: ({ channels }) => ({ channels: { ...channels, push: crowded } }) });
+    await house.people({ ...Object.fromEntries(names.map((name) => [name, ['crowd'] as const])), ben: ['webhook'] });
+    for (let minute = 0; minute < 6; minute += 1) {
       house.nowMs = Math.max(house.nowMs, dueMs + minute * MINUTE_MS);
       await house.minute();
     }
-    expect(refused).toBeLessThan(1000);
-    expect(await house.oracles({ told: { ...Object.fromEntries(names.map((name) => [name, 20])), ben: 3 }, books: { sent: 1001 } })).toEqual([]);
+    expect(refused).toBeLessThan(500);
+    expect(await house.oracles({ told: { ...Object.fromEntries(names.map((name) => [name, 5])), ben: 3 }, books: { sent: 10_001 } })).toEqual([]);
   });
 
   test('F66: takes nothing of many for an hour: whoever is told by another way does not wait for it', async () => {

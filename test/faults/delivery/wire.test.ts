@@ -85,7 +85,7 @@ describe('Web Push', () => {
     ['60', 60_000], ['86400', 86_400_000], [new Date(Date.now() + 120_000).toUTCString(), 119_000], ['soon', 0], ['-5', 0], ['', 0],
   ])('F59: 429 with Retry-After %j waits as long as it says', async (header, atLeastMs) => {
     const outcome = await send(() => ({ status: 429, headers: { 'retry-after': header } }));
-    expect(outcome).toMatchObject({ state: 'retry' });
+    expect(outcome).toMatchObject({ state: 'retry', busy: true });
     if (outcome.state !== 'retry') return;
     expect(outcome.afterMs! >= atLeastMs - 1500 && outcome.afterMs! <= atLeastMs + 1500).toBe(true);
   });

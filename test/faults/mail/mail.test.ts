@@ -12,7 +12,8 @@ import { base64, derivedKey, hmacSha256 } from '../../../worker/secrets.ts';
 import type { SendOutcome } from '../../../worker/channels/channel.ts';
 import { hook } from '../../support/fast-house.ts';
 import { FastPostHouse, LINK_KEY } from '../../support/fast-post-house.ts';
-import { oraclesOf, verdictsIn, type Expected, type Told } from '../../support/oracles.ts';
+import { health } from '../../../worker/routes/health.ts';
+import { oraclesOf, toldByWebhook, verdictsIn, type Expected, type Told } from '../../support/oracles.ts';
 import { root } from '../../support/run-tool.ts';
 import { readMail, smtpError, startSmtpSink, type SmtpSink } from '../../support/sinks/smtp-sink.ts';
 
@@ -59,12 +60,12 @@ function gotten(): Told[] {
     const subject = headers.get('subject') ?? '';
     return { name: (to[0] ?? '').split('@')[0] ?? '', id: /^<(.+)@/.exec(headers.get('message-id') ?? '')?.[1] ?? '', said: `${subject}\n${parts[0]?.text}`, verdicts: verdictsIn(subject), validUntilMs: Date.parse(headers.get('expires') ?? ''), ...(fates[index] ?? { atMs: NaN, taken: false }) };
   });
-  const posts = house.posts.map(({ url, id, data, atMs }): Told => ({ name: url.slice(url.lastIndexOf('/') + 1), id, atMs, said: JSON.stringify(data), verdicts: data.days.map(({ verdict }) => verdict), validUntilMs: Date.parse(data.validUntil), taken: true }));
+  const posts = house.posts.map((post) => toldByWebhook({ ...post, taken: true }, post.data));
   return [...mails, ...posts];
 }
 
 function oracles(expected: Omit<Expected, 'dueIso' | 'verdict'>): Promise<string[]> {
-  return oraclesOf({ told: gotten(), services: house.services(), ask: <Row>(sql: string) => Promise.resolve(house.d1.ask<Row>(sql)) }, { dueIso: MORNING, verdict: 'within', ...expected });
+  return oraclesOf({ told: gotten(), health: async () => (await health(house.services())).json(), ask: <Row>(sql: string) => Promise.resolve(house.d1.ask<Row>(sql)) }, { dueIso: MORNING, verdict: 'within', ...expected });
 }
 
 async function send(letter: Letter): Promise<SendOutcome> {

@@ -6,6 +6,7 @@ import { selfTester } from '../../../worker/morning/self-test.ts';
 import { tick } from '../../../worker/morning/tick.ts';
 import { app } from '../../../worker/routes/app.ts';
 import { FastHouse, hook, type FastOptions } from '../../support/fast-house.ts';
+import { oraclesOf, toldByWebhook, type Expected } from '../../support/oracles.ts';
 import { PLANTED } from '../../support/planted-faults.ts';
 
 const six = '2027-05-14T04:00:00Z';
@@ -24,6 +25,11 @@ function with_(judge: Judge): Partial<FastOptions> {
 
 const health = async (made: FastHouse) => (await (await app(made.services()).request('/healthz')).json()) as { status: string; warnings: string[]; steps: Record<string, { lastAt: string | null }> };
 const log = (made: FastHouse): string[] => made.d1.ask<{ event: string }>('SELECT event FROM log ORDER BY id').map(({ event }) => event);
+
+function oracles(made: FastHouse, expected: Omit<Expected, 'dueIso'>): Promise<string[]> {
+  const told = made.posts.map((post) => toldByWebhook({ ...post, taken: true }, post.data));
+  return oraclesOf({ told, health: () => health(made), ask: <Row>(sql: string) => Promise.resolve(made.d1.ask<Row>(sql)) }, { dueIso: six, ...expected });
+}
 
 describe('F92, F93, F94: a judge that is broken', () => {
   test.each(Object.entries<Judge>(PLANTED))('%s: nothing it judged is sent, and everybody is told that there is no brief', async (_, judge) => {
@@ -108,12 +114,14 @@ describe('the cron', () => {
     await made.answerAll();
     await made.minutes(5);
     expect(made.posts).toHaveLength(1);
+    expect(await oracles(made, { told: { ana: 0 }, verdict: 'within', books: { sent: 1 } })).toEqual([]);
   });
 
   test('F51: comes twenty minutes late, and the brief says when it was made', async () => {
     const made = await house({ nowIso: '2027-05-14T04:20:00Z' });
     await made.minute(Date.parse(six));
     expect(made.posts[0]!.data.issuedAt).toBe('2027-05-14T04:20:00.000Z');
+    expect(await oracles(made, { told: { ana: 20 }, verdict: 'within', books: { sent: 1 } })).toEqual([]);
   });
 
   test('F52: is missing for a day: yesterday is owned up to, today is briefed', async () => {
@@ -124,6 +132,7 @@ describe('the cron', () => {
     expect(made.posts[1]!.data.days[0]!.localDate).toBe('2027-05-15');
     await made.minutes(3);
     expect(log(made)).not.toContain('step-failed');
+    expect(await oracles(made, { told: { ana: 23 * 60 }, verdict: { ana: ['unknown', 'within'] }, messages: 2, books: { sent: 2 } })).toEqual([]);
   });
 
   test('F83: a clock that jumps back an hour, or a day ahead and back, sends nothing twice', async () => {
