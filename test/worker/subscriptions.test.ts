@@ -83,7 +83,7 @@ test('its page lists the training days that it is told about, and says nothing o
   const page = await (await house.ask('GET', manage)).text();
   expect([...page.matchAll(/href="(\/plan\/[^"]+)">([^<]+)</g)].map(([, path, words]) => [path, words])).toEqual([[`/plan/${await linkToken(LINK_KEY, { purpose: 'plan', id: 'course', version: 1 })}`, 'Training day of Saturday 15 May 2027']]);
   for (const plan of ['course', 'other']) expect((await house.form(manage, { action: 'leave-plan', plan })).status).toBe(303);
-  expect(await (await house.ask('GET', manage)).text()).not.toContain('Training day');
+  expect(await (await house.ask('GET', manage)).text()).not.toContain('Training day of');
   expect((await env.DB.prepare('SELECT id, subscription_id AS who FROM plan ORDER BY id').all()).results).toEqual([{ id: 'course', who: null }, { id: 'other', who: 'somebody-else' }, { id: 'past', who: id }]);
 });
 
