@@ -25,20 +25,23 @@
     if (!Number.isNaN(at)) behindMs = Math.max(0, at - Date.now());
     expire();
   };
-  expire();
-  if (document.querySelector('[data-valid-until]') !== null) void measure();
-  setInterval(expire, 30_000);
-  addEventListener('pageshow', expire);
-  document.addEventListener('visibilitychange', expire);
   // A newer brief has come while the page stood open.
-  navigator.serviceWorker?.addEventListener('message', ({ data }) => {
+  const superseded = ({ data }) => {
     const newer = Date.parse(data?.newer ?? '');
     for (const part of document.querySelectorAll('[data-valid-until]')) {
       if (!(Date.parse(part.dataset.issuedAt ?? '') >= newer)) replace(part, 'Expired: a newer brief has come. Load this page again.');
     }
-  });
-  // The first seconds of a page are for reading it: the service worker comes with the first touch, or after them.
+  };
   const register = () => { navigator.serviceWorker?.register('/sw.js').catch(() => undefined); };
+  expire();
+  setInterval(expire, 30_000);
+  addEventListener('pageshow', expire);
+  document.addEventListener('visibilitychange', expire);
   for (const kind of ['pointerdown', 'keydown', 'scroll']) addEventListener(kind, register, { once: true, passive: true });
-  addEventListener('load', () => setTimeout(register, 5000));
+  // The first moments of a page are for reading it; the service worker comes with the first touch, or some seconds later.
+  addEventListener('load', () => setTimeout(() => {
+    if (document.querySelector('[data-valid-until]') !== null) void measure();
+    navigator.serviceWorker?.addEventListener('message', superseded);
+    setTimeout(register, 5000);
+  }, 200));
 })();
