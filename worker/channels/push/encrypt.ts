@@ -25,13 +25,9 @@ export interface Fresh {
 
 const encoder = new TextEncoder();
 const P256 = { name: 'ECDH', namedCurve: 'P-256' } as const;
-const HMAC = { name: 'HMAC', hash: 'SHA-256' } as const;
-
-/** RFC 5869: the counter that ends the info of a first, and here only, block. */
-const ONE = new Uint8Array([1]);
 const KEY_INFO = encoder.encode('WebPush: info\0');
-const CIPHER_INFO = encoder.encode('Content-Encoding: aes128gcm\0\x01');
-const NONCE_INFO = encoder.encode('Content-Encoding: nonce\0\x01');
+const CIPHER_INFO = encoder.encode('Content-Encoding: aes128gcm\0');
+const NONCE_INFO = encoder.encode('Content-Encoding: nonce\0');
 const DELIMITER = new Uint8Array([2]);
 /** Record size in four bytes, then the length of a point. */
 const SIZES = new Uint8Array([0, 0, RECORD_SIZE >> 8, RECORD_SIZE & 255, 65]);
@@ -41,25 +37,23 @@ export async function fresh(): Promise<Fresh> {
   return { salt: crypto.getRandomValues(new Uint8Array(16)), keys };
 }
 
-/**
- * Throws where the keys are none: a point off the curve, a wrong length. Check them with `areKeys` when they come in. HKDF is
- * written as the HMACs that the RFC gives: the runtime's own would extract once for the key and again for the nonce.
- */
+/** Throws where the keys are none: a point off the curve, a wrong length. Check them with `areKeys` when they come in. */
 export async function encrypt(plain: Uint8Array, to: PushKeys, { salt, keys }: Fresh, imported?: CryptoKey): Promise<Uint8Array> {
   if (plain.length > MOST_PLAIN_BYTES) throw new Error(`a push message holds at most ${MOST_PLAIN_BYTES} bytes, not ${plain.length}`);
-  const [browserKey, own, authKey, saltKey] = await Promise.all([
-    imported ?? crypto.subtle.importKey('raw', to.p256dh, P256, false, []), crypto.subtle.exportKey('raw', keys.publicKey), hmacKey(to.auth), hmacKey(salt),
-  ]);
-  const ownPublic = new Uint8Array(own as ArrayBuffer);
+  const browserKey = imported ?? (await crypto.subtle.importKey('raw', to.p256dh, P256, false, []));
   // Section 3.1: the shared secret. The runtime's name for the peer's key differs from that of its type definitions.
-  const shared = await crypto.subtle.deriveBits({ name: 'ECDH', public: browserKey } as unknown as SubtleCryptoDeriveKeyAlgorithm, keys.privateKey, 256);
-  // Section 3.4: from it and the authentication secret the input key, from that and the salt the key and nonce.
-  const ikm = await hmac(await hmacKey(await hmac(authKey, shared)), joined(KEY_INFO, to.p256dh, ownPublic, ONE));
-  const prk = await hmacKey(await hmac(saltKey, ikm));
-  const [key, nonce] = await Promise.all([hmac(prk, CIPHER_INFO), hmac(prk, NONCE_INFO)]);
-  const cipher = await crypto.subtle.importKey('raw', key.slice(0, 16), 'AES-GCM', false, ['encrypt']);
+  const peer = { name: 'ECDH', public: browserKey } as unknown as SubtleCryptoDeriveKeyAlgorithm;
+  const [shared, own] = await Promise.all([crypto.subtle.deriveBits(peer, keys.privateKey, 256), crypto.subtle.exportKey('raw', keys.publicKey)]);
+  const ownPublic = new Uint8Array(own as ArrayBuffer);
+  // Section 3.3 and 3.4: from it and the authentication secret the input key, from that and the salt the key and nonce.
+  const secret = await hkdfKey(shared);
+  const ikm = await hkdfKey(await crypto.subtle.deriveBits(hkdf(to.auth, joined(KEY_INFO, to.p256dh, ownPublic)), secret, 256));
+  const [cipher, nonce] = await Promise.all([
+    crypto.subtle.deriveKey(hkdf(salt, CIPHER_INFO), ikm, { name: 'AES-GCM', length: 128 }, false, ['encrypt']),
+    crypto.subtle.deriveBits(hkdf(salt, NONCE_INFO), ikm, 96),
+  ]);
   // RFC 8188, section 2: the last record ends in a delimiter of 2, without padding here.
-  const record = await crypto.subtle.encrypt({ name: 'AES-GCM', iv: nonce.slice(0, 12) }, cipher, joined(plain, DELIMITER));
+  const record = await crypto.subtle.encrypt({ name: 'AES-GCM', iv: nonce }, cipher, joined(plain, DELIMITER));
   return joined(salt, SIZES, ownPublic, new Uint8Array(record));
 }
 
@@ -78,12 +72,12 @@ export async function browserKeyOf(keys: PushKeys): Promise<CryptoKey | null> {
   }
 }
 
-function hmacKey(secret: BufferSource): Promise<CryptoKey> {
-  return crypto.subtle.importKey('raw', secret, HMAC, false, ['sign']);
+function hkdf(salt: Uint8Array, info: Uint8Array): SubtleCryptoDeriveKeyAlgorithm {
+  return { name: 'HKDF', hash: 'SHA-256', salt, info };
 }
 
-function hmac(key: CryptoKey, data: BufferSource): Promise<ArrayBuffer> {
-  return crypto.subtle.sign('HMAC', key, data);
+function hkdfKey(secret: ArrayBuffer): Promise<CryptoKey> {
+  return crypto.subtle.importKey('raw', secret, 'HKDF', false, ['deriveBits', 'deriveKey']);
 }
 
 export function joined(...parts: readonly Uint8Array[]): Uint8Array {
