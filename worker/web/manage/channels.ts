@@ -44,20 +44,23 @@ function entry(channel: ChannelView, nth: number, view: ManageView): Html {
   const about = `${channelTitle(channel)} ${channel.to}`;
   const isDead = channel.state === 'dead';
   return html`<li class="way" id="${channel.id}"><h3>${nth + 1}. ${channelTitle(channel)}, ${channel.to}</h3>
-<div data-live="reached-${nth}"><p>${reachedWords(channel, { timeZone: view.kept.deliver.timeZone, nowMs: view.nowMs })}</p>${lastTest(channel, view)}</div>
-<div class="acts">${isDead ? null : act(view, 'test', 'Send a test', { channel: channel.id, about })}${nth === 0 ? null : act(view, 'raise', 'Try this way earlier', { channel: channel.id, about })}${isDead || live > 1 ? act(view, 'remove', 'Take it away', { channel: channel.id, about }) : null}</div>
-${secretPart(channel, view)}${isDead ? null : quietForm(channel, view)}</li>`;
+<div data-live="reached-${nth}"><p>${reachedWords(channel, { timeZone: view.kept.deliver.timeZone, nowMs: view.nowMs })}</p>${lastTest(channel, view)}</div>${secretLine(channel)}
+<div class="acts">${isDead ? null : act(view, 'test', 'Send a test', { channel: channel.id, about })}${nth === 0 ? null : act(view, 'raise', 'Try this way earlier', { channel: channel.id, about })}${isDead || live > 1 ? act(view, 'remove', 'Take it away', { channel: channel.id, about }) : null}${secretAct(channel, view, about)}</div>
+${isDead ? null : quietForm(channel, view)}</li>`;
 }
 
-/** Of a webhook that is being set up its secret; of one that works only how to get another. */
-function secretPart(channel: ChannelView, view: ManageView): Piece {
+/** The secret of a webhook that is being set up, or changes it. */
+function secretLine({ secret, state, secretVersion, oldestSecretVersion }: ChannelView): Piece {
+  if (secret === null || state === 'dead') return null;
+  const until = state === 'unverified' ? 'it has answered' : oldestSecretVersion < secretVersion ? 'you give up the one before' : 'the one before ceases to sign beside it';
+  return html`<p>Its secret, shown until ${until}: <code>${secret}</code></p>`;
+}
+
+function secretAct(channel: ChannelView, view: ManageView, about: string): Piece {
   if (channel.kind !== 'webhook' || channel.state === 'dead') return null;
-  const about = `${channelTitle(channel)} ${channel.to}`;
-  const fields = hidden('version', String(channel.secretVersion));
-  const isChanging = channel.oldestSecretVersion < channel.secretVersion;
-  const until = channel.state === 'unverified' ? 'it has answered' : isChanging ? 'you give up the one before' : 'the one before ceases to sign beside it';
-  return html`${channel.secret === null ? null : html`<p>Its secret, shown until ${until}: <code>${channel.secret}</code></p>`}
-<div class="acts">${isChanging ? act(view, 'old-secret', 'Give up the old secret', { channel: channel.id, about }) : act(view, 'new-secret', 'Make a new secret', { channel: channel.id, about, fields })}</div>`;
+  return channel.oldestSecretVersion < channel.secretVersion
+    ? act(view, 'old-secret', 'Give up the old secret', { channel: channel.id, about })
+    : act(view, 'new-secret', 'Make a new secret', { channel: channel.id, about, fields: hidden('version', String(channel.secretVersion)) });
 }
 
 /** Shown by the script of the page where this browser can be told; without scripts nothing is offered that would not work. */
