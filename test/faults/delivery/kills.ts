@@ -9,6 +9,7 @@ import type { Bundle } from './plant/bundle.ts';
 import { seedOf } from './plant/seed.ts';
 import { settle, startPlant, type Plant } from './plant/plant.ts';
 import { seeded } from '../../support/seeded.ts';
+import { oraclesOf, toldByWebhook, type Told, type WebhookData } from '../../support/oracles.ts';
 
 export interface KillReport {
   readonly kills: number;
@@ -19,6 +20,8 @@ export interface KillReport {
   /** Subscribers who got two messages under different ids: what a person would see twice. */
   readonly shownTwice: number;
   readonly mostRepeatsOfAKill: number;
+  /** What the six oracles say at the end. */
+  readonly wrong: readonly string[];
 }
 
 export interface KillSetup {
@@ -38,6 +41,7 @@ export async function killAgainAndAgain({ bundle, kills, seed, perRound = 24, re
   const wanted: string[] = [];
   let mostRepeatsOfAKill = 0;
   let repeatsBefore = 0;
+  const startMs = Date.now();
   const port = await freePort();
   const begin = async (round: number): Promise<Plant> => {
     const plant = await startPlant({ bundle, stateDir, port });
@@ -70,12 +74,23 @@ export async function killAgainAndAgain({ bundle, kills, seed, perRound = 24, re
     await plant.post('begin');
     await plant.post('morning');
     await settle(plant, 120_000);
+    const told = sink.received.map(({ path: to, id, body, atMs }): Told => toldByWebhook({ url: to, id, atMs, taken: true }, (JSON.parse(body) as { readonly data: WebhookData }).data));
+    const last = plant;
+    const wrong = await oraclesOf({
+      told,
+      health: async () => (await fetch(`${last.origin}/healthz`)).json(),
+      ask: async <Row>() => Object.entries((await last.progress()).outbox).flatMap(([state, n]) => (n === 0 ? [] : [{ state, n, unexplained: 0 } as Row])),
+    }, {
+      // What the first round, which nobody disturbed, was told: it is the same weather for all.
+      dueIso: new Date(startMs).toISOString(), verdict: Object.fromEntries(wanted.map((id) => [id, told.find(({ name }) => name.startsWith('r0-'))?.verdicts ?? []])),
+      told: Object.fromEntries(wanted.map((id) => [id, 5 + kills])), repeats: 6 * kills, books: { sent: wanted.length },
+    });
     await plant.kill();
     const byPath = Map.groupBy(sink.received, (one) => one.path);
     const lost = wanted.filter((id) => !byPath.has(`/${id}`)).length;
     const shownTwice = [...byPath.values()].filter((received) => new Set(received.map(({ id }) => id)).size > 1).length;
     const repeats = repeatsIn(sink.received.map(({ id }) => id));
-    return { kills, deliveries: sink.received.length, lost, repeats, shownTwice, mostRepeatsOfAKill: Math.max(mostRepeatsOfAKill, repeats - repeatsBefore) };
+    return { kills, deliveries: sink.received.length, lost, repeats, shownTwice, mostRepeatsOfAKill: Math.max(mostRepeatsOfAKill, repeats - repeatsBefore), wrong };
   } finally {
     await sink.close();
     rmSync(stateDir, { recursive: true, force: true, maxRetries: 5 });
