@@ -99,6 +99,30 @@ describe('T17 nobody is called through us who does not want to be', () => {
     expect(await rows()).toBe(4);
   });
 
+  test('T14 T17 by form as by the API: on the page of a subscription too, and what is refused stores nothing and calls nobody', async () => {
+    house.isLocal = false;
+    house.publicUrl = 'https://brief.example.net';
+    const from = (ip: number) => ({ 'cf-connecting-ip': `192.0.2.${ip}` });
+    const wishes = [['site', 'north'], ['sheet.north', 'hill'], ['wing', 'EN B'], ['at', '06:00'], ['zone', 'Europe/Vienna'], ['speed', 'm/s'], ['height', 'm'], ['first', 'webhook'], ...['mon', 'tue', 'wed', 'thu', 'fri', 'sat', 'sun'].map((day) => ['day', day])];
+    const byForm = (url: string, ip: number) => house.form('/subscribe', [...wishes, ['hook', url], ['to', 'send']], from(ip));
+    const manage = (await byForm('https://victim.example.com/1', 20)).headers.get('location')!.split('?')[0]!;
+    expect(manage).toMatch(/^\/manage\//);
+    const byPage = (url: string, ip: number) => house.form(manage, { action: 'add-webhook', hook: url }, from(ip));
+    const before = (await everyRow()).replace(/rate: .*/, '');
+    for (const [index, [why, [url = '']]] of REFUSED.entries()) {
+      if (url.trim() !== url || url.includes('workers.dev')) continue;
+      for (const answer of [await byForm(url, 30 + index), await byPage(url, 30 + index)]) expect([answer.status, await answer.text()], why).toEqual([400, expect.stringContaining('id="hook-wrong"')]);
+    }
+    expect((await everyRow()).replace(/rate: .*/, '')).toBe(before);
+    expect(house.posts).toEqual([]);
+    expect((await byPage('https://victim.example.com/2', 21)).status).toBe(303);
+    expect((await byPage('https://victim.example.com/2', 21)).status).toBe(400);
+    expect((await byForm('https://victim.example.com/3', 22)).status).toBe(303);
+    for (const answer of [await byPage('https://victim.example.com/4', 23), await byForm('https://victim.example.com/4', 24)]) expect([answer.status, await answer.text()]).toEqual([400, expect.stringContaining('have not answered their challenge')]);
+    for (const nth of [3, 4]) expect((await byPage(`https://h${nth}.example.com/x`, 25)).status).toBe(303);
+    expect(await (await byPage('https://h5.example.com/x', 25)).text()).toContain('There are four ways to reach you already');
+  });
+
   test('five webhooks a day of one owner without an address, and no sixth', async () => {
     house.isLocal = false;
     for (let index = 0; index < 5; index += 1) expect((await house.ask('POST', POST, asking(`https://h${index}.example.com/x`), { 'cf-connecting-ip': '2001:db8:1:2::1' })).status).toBe(202);

@@ -65,12 +65,16 @@ function secretAct(channel: ChannelView, view: ManageView, about: string): Piece
 
 /** Shown by the script of the page where this browser can be told; without scripts nothing is offered that would not work. */
 function addBrowser(view: ManageView): Piece {
-  if (view.pushKey === null || view.channels.length >= 4) return null;
+  if (view.pushKey === null || isFull(view)) return null;
   return html`<form class="act" method="post" action="${view.path}" data-browser="${view.pushKey}" hidden>${hidden('action', 'add-browser')}${hidden('endpoint', '')}${hidden('p256dh', '')}${hidden('auth', '')}<button type="button">Tell this browser too</button><p class="hint" role="status"></p></form>`;
 }
 
+function isFull({ channels }: ManageView): boolean {
+  return channels.length >= 4;
+}
+
 function addWebhook(view: ManageView): Piece {
-  if (view.channels.length >= 4) return null;
+  if (isFull(view)) return null;
   const refused = view.refused?.action === 'add-webhook' ? view.refused : null;
   const fields = inputField({
     name: 'hook', label: 'Webhook', value: refused === null ? '' : textIn(refused.form, 'hook'), problems: refused?.problems ?? [], hint: 'An https address of a program of yours that takes signed posts.',
@@ -79,7 +83,7 @@ function addWebhook(view: ManageView): Piece {
 }
 
 export function channelsPart(view: ManageView): Html {
-  const refused = view.refused !== null && ['test', 'add-browser', 'remove', 'raise', 'new-secret', 'old-secret'].includes(view.refused.action) ? view.refused : null;
+  const refused = view.refused !== null && ['test', 'add-browser', 'remove', 'raise', 'new-secret', 'old-secret', ...(isFull(view) ? ['add-webhook'] : [])].includes(view.refused.action) ? view.refused : null;
   return html`${refused === null ? null : html`<p class="wrong">${problemWords(refused.problems)}</p>`}
 <p class="hint">A message goes the first way; the next is taken when that has ended. A test goes now, and counts as shown only when the browser says so. Quiet hours hold a message back until they end, unless it is of no use by then; empty both to have none.</p>
 <ol class="ways">${view.channels.map((channel, nth) => entry(channel, nth, view))}</ol>${addBrowser(view)}${addWebhook(view)}`;
