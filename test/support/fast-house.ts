@@ -14,6 +14,7 @@ import type { Services } from '../../worker/service-set.ts';
 import { readSettings } from '../../worker/settings.ts';
 import type { SourceAnswer, SourceRequest } from '../../worker/sources/source.ts';
 import type { D1 } from '../../worker/store/database.ts';
+import type { Faults } from '../worker/support/faults.ts';
 import { judgedAs, launchFeature } from '../worker/support/stand-ins.ts';
 import { sqliteD1, type SqliteD1 } from './sqlite-d1.ts';
 
@@ -37,6 +38,7 @@ export interface FastOptions {
   readonly source?: (request: SourceRequest) => Promise<ReadonlyMap<string, SourceAnswer>>;
   readonly judge?: (input: DayInput) => JudgedDay;
   readonly around?: (d1: D1) => D1;
+  readonly faults?: Faults;
   /** Anything of the services replaced. */
   readonly instead?: (services: Services) => Partial<Services>;
   readonly env?: Readonly<Record<string, string>>;
@@ -75,12 +77,20 @@ export class FastHouse {
   services(): Services {
     const settings = readSettings({ LOCAL: '1', LINK_KEY: 'a-link-key-for-tests-only-0123456789', PUBLIC_URL: 'http://127.0.0.1:8787', ...this.options.env });
     if (!settings.ok) throw new Error('the settings of the test house are wrong');
-    const queueOf = (step: Step) => ({ sendBatch: async (messages: Iterable<unknown>) => { for (const _ of messages) this.queue.push(step); return undefined as never; } });
+    const { faults } = this.options;
+    faults?.begin();
+    const queueOf = (step: Step) => ({
+      sendBatch: async (messages: Iterable<unknown>) => {
+        const send = async (): Promise<void> => { for (const _ of messages) this.queue.push(step); };
+        await (faults?.call('queue', send) ?? send());
+        return undefined as never;
+      },
+    });
     const services = assemble(
       {
-        settings: settings.value, db: this.options.around?.(this.d1) ?? this.d1,
+        settings: settings.value, db: this.options.around?.(this.d1) ?? faults?.around(this.d1) ?? this.d1,
         queues: { fetch: queueOf('fetch'), assess: queueOf('assess'), deliver: queueOf('deliver') },
-        fetch: (url, init) => this.#fetch(url, init), sleep: this.options.sleep ?? (async () => undefined),
+        fetch: (url, init) => faults?.call('fetch', () => this.#fetch(url, init)) ?? this.#fetch(url, init), sleep: this.options.sleep ?? (async () => undefined),
         clock: { nowMs: () => this.nowMs }, ids: { next: () => `by-${(this.#ids += 1)}` }, random: this.options.random ?? (() => 0.5), patienceMs: 25, write: (line) => { this.lines.push(line); },
       },
       { sourcesFor: () => [{ id: 'stand-in:one', kind: 'deterministic', covers: () => true, fetch: (request) => this.#answers(request) }], judge: (input) => this.options.judge?.(input) ?? judgedAs(input, 'within') },
