@@ -152,8 +152,10 @@ describe('a push service', () => {
 
   test('F63: says 201 with a place and twenty megabytes: they are not read', async () => {
     const house = new WireHouse(world, ana({ status: 201, headers: { location: 'http://127.0.0.1:9/receipt' }, body: 'x'.repeat(20_000_000) }));
-    await house.people({ ana: ['push'], ben: ['push'] });
+    await house.people({ ana: ['push'], ben: ['other push'] });
     await house.minutes(2);
+    expect(await world.push.pushed.at(-1)?.isAnswerRead).toBe(false);
+    expect(await world.other.pushed.at(-1)?.isAnswerRead).toBe(true);
     expect(await house.oracles({ told: { ana: 0, ben: 0 }, books: { sent: 2 } })).toEqual([]);
   });
 

@@ -9,6 +9,7 @@ import { afterAll, afterEach, beforeAll, describe, expect, test, vi } from 'vite
 import { webhookSecretText } from '../../../worker/channels/webhook.ts';
 import { derivedKey } from '../../../worker/secrets.ts';
 import { certificate, type Certificate } from '../../support/certificate.ts';
+import { seeded } from '../../support/seeded.ts';
 import { startWorld, WireHouse, type Answer, type Knock, type World } from '../../support/wire-house.ts';
 
 const LINK_KEY = 'a-link-key-for-tests-only-0123456789';
@@ -66,6 +67,19 @@ describe('a receiver', () => {
     await house.minutes(4);
     expect(house.d1.ask(`SELECT attempts FROM outbox WHERE channel_id = 'ana-0'`)).toEqual([{ attempts: 2 }]);
     expect(await house.oracles({ told: { ana: 0, ben: 1 }, repeats: 1, books: { sent: 2 } })).toEqual([]);
+  });
+
+  test('F66: takes twenty a minute of a hundred that are told there: all of them are told, and nobody is given up', async () => {
+    let [minute, tokens] = [0, 20];
+    const house = new WireHouse(world, ({ atMs }) => {
+      if (Math.floor(atMs / MINUTE_MS) !== minute) [minute, tokens] = [Math.floor(atMs / MINUTE_MS), 20];
+      tokens -= 1;
+      return tokens >= 0 ? { status: 201 } : { status: 429, headers: { 'retry-after': '60' } };
+    }, { random: seeded(66), wireless: true });
+    const names = Array.from({ length: 100 }, (_, index) => `s${index}`);
+    await house.people(Object.fromEntries(names.map((name) => [name, ['webhook']])));
+    await house.minutes(45);
+    expect(await house.oracles({ told: Object.fromEntries(names.map((name) => [name, 45])), books: { sent: 100 } })).toEqual([]);
   });
 
   test('F72: ends the connection when it has read everything: tried again, and told apart by its id', async () => {

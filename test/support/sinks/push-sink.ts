@@ -10,6 +10,8 @@ export interface Pushed {
   readonly headers: IncomingHttpHeaders;
   readonly body: Buffer;
   readonly atMs: number;
+  /** Whether the answer was read to its end. */
+  readonly isAnswerRead?: Promise<boolean>;
 }
 
 export type PushAnswer = 'silence' | 'reset' | { readonly status: number; readonly headers?: Record<string, string>; readonly afterMs?: number; readonly body?: string };
@@ -37,7 +39,8 @@ export async function startPushSink(): Promise<PushSink> {
     const chunks: Buffer[] = [];
     request.on('data', (chunk: Buffer) => chunks.push(chunk));
     request.on('end', () => {
-      const one = { path: request.url ?? '', headers: request.headers, body: Buffer.concat(chunks), atMs: Date.now() };
+      const isAnswerRead = new Promise<boolean>((resolve) => { response.once('close', () => resolve(response.writableFinished)); });
+      const one = { path: request.url ?? '', headers: request.headers, body: Buffer.concat(chunks), atMs: Date.now(), isAnswerRead };
       pushed.push(one);
       reply(response, behaviour(one));
     });
