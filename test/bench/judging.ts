@@ -24,7 +24,7 @@ for (const input of inputs) {
 const points: { size: number; cost: number }[] = [];
 for (const size of [10, 100, 1000]) {
   const day = await inTurns({
-    name: `${size} sites`, yardstick: `${size} parses of 150 kB`, warmUp: 2, rounds: size === 1000 ? 5 : 20,
+    name: `${size} sites`, yardstick: `${size} parses of 150 kB`, warmUp: size === 1000 ? 1 : 2, rounds: size === 1000 ? 4 : 20,
     own: () => Array.from({ length: size }, (_, index) => { const input = nth(index); return input === undefined ? null : judgeDay(input).verdict; }),
     yard: () => Array.from({ length: size }, parse).length,
   });

@@ -1,5 +1,6 @@
 // npm run bench [-- --write] [-- judging parsing …]: each bench in a process of its own, several times; medians of the ratios with
-// their spread. With --write the rounds and the versions are kept in test/bench/RESULTS.md.
+// their spread. With --write the rounds and the versions are kept in test/bench/RESULTS.md; rows of benches that were not asked
+// for stay as they are.
 import { execFileSync } from 'node:child_process';
 import { readFileSync, writeFileSync } from 'node:fs';
 import { availableParallelism } from 'node:os';
@@ -43,12 +44,18 @@ function row(results: readonly Result[]): string {
   return `| ${first.name} | **${median(ratios).toFixed(2)}** x ${first.yardstick} | ${spread(ratios)} | ${results.map((result) => `${ms((result as Measured).ownMs)} / ${ms((result as Measured).yardMs)} ms`).join(', ')} |`;
 }
 
-const table = ['| work | ratio, or growth | least to most of the rounds | raw rounds |', '|---|---|---|---|', ...[...rounds.values()].map(row)].join('\n');
+const HEADING = ['| work | ratio, or growth | least to most of the rounds | raw rounds |', '|---|---|---|---|'];
+const measured = new Map([...rounds].map(([name, results]) => [name, row(results)]));
+const table = [...HEADING, ...measured.values()].join('\n');
 console.log(table);
 if (values.write) {
   const versionOf = (name: string): string => (JSON.parse(readFileSync(path.join(import.meta.dirname, '../../node_modules', name, 'package.json'), 'utf8')) as { version: string }).version;
   const file = path.join(import.meta.dirname, 'RESULTS.md');
   const text = readFileSync(file, 'utf8');
   const head = `Node ${process.version}, ${availableParallelism()} processors, web-push ${versionOf('web-push')}, workerd of miniflare ${versionOf('miniflare')}; ${ROUNDS} processes each.`;
-  writeFileSync(file, text.replace(/(<!-- bench:begin -->)[\s\S]*(<!-- bench:end -->)/, (_, begin: string, end: string) => `${begin}\n${head}\n\n${table}\n${end}`));
+  const [before = '', known = '', after = ''] = text.split(/(?<=<!-- bench:begin -->)|(?=<!-- bench:end -->)/);
+  const nameOf = (line: string): string => line.split('|')[1]?.trim() ?? '';
+  const kept = positionals.length === 0 ? [] : known.split('\n').filter((line) => line.startsWith('| ') && line !== HEADING[0]);
+  const rows = [...kept.map((line) => measured.get(nameOf(line)) ?? line), ...[...measured].flatMap(([name, line]) => (kept.some((other) => nameOf(other) === name) ? [] : [line]))];
+  writeFileSync(file, `${before}\n${head}\n\n${[...HEADING, ...rows].join('\n')}\n${after}`);
 }
