@@ -166,6 +166,28 @@ test('what the mail service reports', async () => {
   expect((await ask('POST', '/api/v1/bounces', 'x'.repeat(9000))).status).toBe(413);
 });
 
+test('what a webhook is sent is what is described, from its challenge to its brief', async () => {
+  const sent: string[] = [];
+  const hooked = await FastPostHouse.open({
+    nowIso: NOW,
+    fetch: (_, init) => {
+      sent.push(init.body as string);
+      const { data } = JSON.parse(init.body as string) as { data: { challenge?: string } };
+      return Promise.resolve(Response.json({ challenge: data.challenge }));
+    },
+  });
+  houses.push(hooked);
+  const made = (await (await ask('POST', '/api/v1/subscriptions', wish([{ kind: 'webhook', url: 'http://127.0.0.1:9/x' }]), { of: hooked })).json()) as { links: { manage: string } };
+  await ask('POST', `/api/v1${new URL(made.links.manage).pathname}`, { action: 'test' }, { of: hooked });
+  await hooked.answerAll();
+  hooked.nowMs = Date.parse('2027-05-14T04:00:00Z');
+  await hooked.minute();
+  const bodies = sent.map((text) => JSON.parse(text) as { type: string; data: object });
+  expect(bodies.map(({ type }) => type)).toEqual(['endpoint.challenge', 'service.test', 'brief.issued']);
+  expect(bodies.filter((body) => !recorder.sends(body))).toEqual([]);
+  expect(bodies.map(({ data, ...rest }) => recorder.sends({ ...rest, data: {} }))).toEqual([false, false, false]);
+});
+
 test('the operator', async () => {
   const as = { headers: bearer };
   const read = async (path: string): Promise<Record<string, string>> => ({ ...bearer, 'if-match': (await ask('GET', path, undefined, as)).headers.get('etag') ?? '' });

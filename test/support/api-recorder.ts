@@ -51,6 +51,11 @@ export class ApiRecorder {
     return response;
   }
 
+  /** Whether what a webhook was sent is what is described. */
+  sends(body: unknown): boolean {
+    return this.#ajv.compile({ $ref: `api#/webhooks/message/post/requestBody/content/${pointer('application/json')}/schema` })(body) === true;
+  }
+
   /** Whether a request is one that is described. */
   takes(method: string, path: string, body: unknown): boolean {
     return this.#ajv.compile({ $ref: `api#/paths/${pointer(path)}/${method.toLowerCase()}/requestBody/content/${pointer('application/json')}/schema` })(body) === true;

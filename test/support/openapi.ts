@@ -31,6 +31,35 @@ export function openapi(): Json {
   return {
     openapi: '3.1.0',
     info: { title: 'Dawnmargin', version: '1', description: 'Margins of launches and tow strips, computed from forecasts, not observed. Local rules, site rules, instructor or tow master and the sky itself decide.', license: { name: 'MIT', identifier: 'MIT' } },
+    webhooks: {
+      message: {
+        post: {
+          summary: 'What a webhook is sent, signed by Standard Webhooks 1.0 with the secret that its subscription was given',
+          description: 'Answer within 15 s: 2xx takes it, 410 ends the webhook, anything else is tried again under the same webhook-id. Before its first message it is sent a challenge, to be echoed with 200 as {"challenge": "…"}.',
+          parameters: ['webhook-id', 'webhook-timestamp', 'webhook-signature'].map((name) => ({ ...parameter(name, 'header', 'of Standard Webhooks 1.0') })),
+          requestBody: body({
+            oneOf: [
+              { type: 'object', required: ['type', 'timestamp', 'data'], properties: { type: { const: 'endpoint.challenge' }, timestamp: { type: 'string', format: 'date-time' }, data: { type: 'object', required: ['challenge'], properties: { challenge: { type: 'string' } } } } },
+              {
+                type: 'object', required: ['type', 'timestamp', 'data'],
+                properties: {
+                  type: { enum: ['brief.issued', 'brief.changed', 'brief.missed', 'plan.turned', 'service.test'] }, timestamp: { type: 'string', format: 'date-time' },
+                  data: {
+                    type: 'object', required: ['id', 'title', 'text', 'issuedAt', 'dataRunAt', 'validUntil', 'inventedWeather', 'days', 'notice'],
+                    properties: {
+                      id: { type: 'string' }, title: { type: 'string' }, text: { type: 'string' }, issuedAt: { type: 'string', format: 'date-time' }, dataRunAt: { type: ['string', 'null'], format: 'date-time' }, validUntil: { type: 'string', format: 'date-time' },
+                      inventedWeather: { type: 'boolean' }, notice: { type: 'string' },
+                      days: { type: 'array', items: { type: 'object', required: ['siteId', 'localDate', 'verdict', 'windows'], properties: { siteId: { type: 'string' }, localDate: { type: 'string', format: 'date' }, verdict: { type: 'string' }, windows: { type: 'array' } } } },
+                    },
+                  },
+                },
+              },
+            ],
+          }),
+          responses: { 200: { description: 'Taken; of a challenge, its echo' }, 410: { description: 'Gone: nothing is sent there any more' } },
+        },
+      },
+    },
     paths: {
       '/api/v1/assess': { post: { summary: 'Judge hours that the caller gives; nothing is stored', requestBody: body(ref('AssessRequest')), responses: { 200: answer('Hours with margins and their working'), ...WRONG, 429: problem('More than 300 a minute') } } },
       '/api/v1/sites': { get: { summary: 'The sites, as GeoJSON', responses: { 200: answer('A FeatureCollection', { type: 'object' }, 'application/geo+json') } } },
