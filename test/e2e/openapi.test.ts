@@ -185,7 +185,7 @@ test('what a webhook is sent is what is described, from its challenge to its bri
   const bodies = sent.map((text) => JSON.parse(text) as { type: string; data: object });
   expect(bodies.map(({ type }) => type)).toEqual(['endpoint.challenge', 'service.test', 'brief.issued']);
   expect(bodies.filter((body) => !recorder.sends(body))).toEqual([]);
-  expect(bodies.map(({ data, ...rest }) => recorder.sends({ ...rest, data: {} }))).toEqual([false, false, false]);
+  expect(bodies.map(({ type }) => recorder.sends({ type, timestamp: NOW, data: {} }))).toEqual([false, false, false]);
 });
 
 test('the operator', async () => {
