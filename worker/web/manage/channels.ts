@@ -53,7 +53,7 @@ ${isDead ? null : quietForm(channel, view)}</li>`;
 function secretLine({ secret, state, secretVersion, oldestSecretVersion }: ChannelView): Piece {
   if (secret === null || state === 'dead') return null;
   const until = state === 'unverified' ? 'it has answered' : oldestSecretVersion < secretVersion ? 'you give up the one before' : 'the one before ceases to sign beside it';
-  return html`<p>Its secret, shown until ${until}: <code>${secret}</code></p>`;
+  return html`<p>Its secret, shown until ${until}: <code>${secret}</code>. <a href="/api/v1/openapi.json">What it is sent and has to answer</a> is written for programs.</p>`;
 }
 
 function secretAct(channel: ChannelView, view: ManageView, about: string): Piece {
