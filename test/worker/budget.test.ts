@@ -7,7 +7,7 @@ import { newHouse } from './support/house.ts';
 
 test('20 sites and 500 subscribers, 50 of them with a wing of their own: at most 50 calls an invocation, under 10,000 queue operations a day', { timeout: 180_000 }, async () => {
   const { count, house } = await clubDay({ sites: 20, subscribers: 500, personalWings: 50 });
-  const rows = await env.DB.prepare('SELECT state, COUNT(*) AS n FROM outbox GROUP BY state').all<{ state: string; n: number }>();
+  const rows = await env.DB.prepare(`SELECT state, COUNT(*) AS n FROM outbox WHERE due_local_date >= '2027-05-14' GROUP BY state`).all<{ state: string; n: number }>();
   expect(rows.results).toEqual([{ state: 'sent', n: 500 }]);
   expect(house.posts).toHaveLength(500);
   console.log(`${count.invocations} invocations, at most ${count.most.calls} calls in one (${count.most.where}); ${count.messages} messages, ${count.messages * 3} queue operations; the last of each half hour handed over within ${count.lateMin} min`);
