@@ -5,7 +5,7 @@ import { planDue } from '../../worker/morning/due.ts';
 import { clubDay } from './support/club-day.ts';
 import { newHouse } from './support/house.ts';
 
-test('20 sites and 500 subscribers, 50 of them with a wing of their own: at most 50 calls an invocation, under 10,000 queue operations a day', { timeout: 180_000 }, async () => {
+test('20 sites and 500 subscribers, 50 of them with a wing of their own: at most 50 calls an invocation, under 10,000 queue operations a day', { timeout: 300_000 }, async () => {
   const { count, house } = await clubDay({ sites: 20, subscribers: 500, personalWings: 50 });
   const rows = await env.DB.prepare(`SELECT state, COUNT(*) AS n FROM outbox WHERE due_local_date >= '2027-05-14' GROUP BY state`).all<{ state: string; n: number }>();
   expect(rows.results).toEqual([{ state: 'sent', n: 500 }]);
