@@ -79,18 +79,6 @@ describe('a call that ends at the worst moment', () => {
     await house.minutes(4);
     expect(await oracles(house, { told: within(names, 5), dueIso: six, verdict: 'within', books: { sent: 3 } })).toEqual([]);
   });
-
-  test.each([1, 2, 3, 4, 5, 6, 7, 8])('F31, F32: the database fails before and after its call number %i of a delivery', async (at) => {
-    for (const mode of ['before', 'after'] as const) {
-      const names = named(3);
-      const house = await readyHouse(names);
-      house.options = { ...house.options, faults: new Faults('db', at, mode) };
-      await house.answer('deliver').catch(() => undefined);
-      house.nowMs += LEASE_MS;
-      await house.minutes(3);
-      expect(await oracles(house, { told: within(names, 4), dueIso: six, verdict: 'within', repeats: 3, books: { sent: 3 } }), mode).toEqual([]);
-    }
-  });
 });
 
 describe('a queue', () => {

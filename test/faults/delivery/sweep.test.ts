@@ -43,7 +43,7 @@ async function wrongAfter(house: FastHouse, faults: Faults): Promise<string[]> {
   return wrong.map((text) => `${faults.kind} call ${faults.at}, ${faults.mode}: ${text}`);
 }
 
-describe.each<Kind>(['db', 'fetch', 'queue'])('every %s call of a morning', (kind) => {
+describe.each<[string, Kind]>([['F31, F32, F34, F54', 'db'], ['F42, F64, F72', 'fetch'], ['F43, F44', 'queue']])('%s: every %s call of a morning', (_, kind) => {
   test.each<Mode>(MODES.map((mode) => mode))('fails in the way "%s", and nothing is lost', { timeout: 240_000 }, async (mode) => {
     const wrong: string[] = [];
     let cases = 0;
