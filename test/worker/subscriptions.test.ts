@@ -271,6 +271,18 @@ describe('a webhook instead of mail', () => {
   });
 });
 
+test('a test is of the way it was asked for: one that fails says so, and is not answered by another way', async () => {
+  house.options = { ...house.options, answer: (post) => (post.id.startsWith('chl_') ? new Response(JSON.stringify({ challenge: (JSON.parse(post.body) as { data: { challenge: string } }).data.challenge })) : new Response(null, { status: 410 })) };
+  const manage = await subscribed({ channels: [{ kind: 'webhook', url: 'http://127.0.0.1:9/hook' }, { kind: 'mail', address: 'ana@mail.example.org' }] });
+  const letters = house.letters.length;
+  const { id } = (await env.DB.prepare(`SELECT id FROM channel WHERE kind = 'webhook'`).first<{ id: string }>())!;
+  expect((await house.form(manage, { action: 'test', channel: id })).status).toBe(303);
+  await house.answerAll();
+  const { results } = await env.DB.prepare(`SELECT c.kind AS way, o.state FROM outbox AS o JOIN channel AS c ON c.id = o.channel_id WHERE o.kind = 'test'`).all();
+  expect(results).toEqual([{ way: 'webhook', state: 'dead' }]);
+  expect(house.letters.length).toBe(letters);
+});
+
 const ZONES = ['Europe/Vienna', 'Europe/London', 'America/New_York', 'America/Los_Angeles', 'America/St_Johns', 'America/Santiago', 'Africa/Casablanca', 'Asia/Kathmandu', 'Asia/Tokyo', 'Australia/Lord_Howe', 'Australia/Adelaide', 'Pacific/Auckland'];
 
 // test/e2e/journey.test.ts goes the whole way at each zone's own changes; here the runtime's own clocks and database count.

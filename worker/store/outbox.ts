@@ -148,14 +148,14 @@ export function outboxStore(db: Database) {
         values: [JSON.stringify(ids), by],
       };
     },
-    /** The same message for the channels of the next rank, when one is dead. */
+    /** The same message for the channels of the next rank, when one is dead; not a test that somebody asked for, which is of that one. */
     fallBack(id: string, nowMs: number): Mark {
       return {
         sql: `INSERT INTO outbox (id, subscription_id, channel_id, due_local_date, kind, seq, format, due_at, ready_by, valid_until,
             state, next_attempt_at, content, created_at)
           SELECT 'msg_' || lower(hex(randomblob(16))), o.subscription_id, c.id, o.due_local_date, o.kind, o.seq, ${OUTBOX_FORMAT}, o.due_at,
             o.ready_by, o.valid_until, 'pending', j.value ->> 'nowMs', o.content, j.value ->> 'nowMs'
-          FROM json_each(?1) AS j JOIN outbox AS o ON o.id = j.value ->> 'id' AND o.state = 'dead'
+          FROM json_each(?1) AS j JOIN outbox AS o ON o.id = j.value ->> 'id' AND o.state = 'dead' AND COALESCE(o.content ->> 'asked', 0) = 0
           JOIN channel AS was ON was.id = o.channel_id
           JOIN channel AS c ON c.subscription_id = o.subscription_id AND c.state <> 'dead'
             AND c.rank = (SELECT MIN(rank) FROM channel WHERE subscription_id = o.subscription_id AND state <> 'dead' AND rank > was.rank)
