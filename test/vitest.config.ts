@@ -68,8 +68,8 @@ export default defineConfig({
           include: ['test/e2e/**/*.test.ts', 'test/faults/**/*.test.ts'],
           testTimeout: 120_000,
           hookTimeout: 120_000,
-          // Three at a time on two processors: most of them wait for a process of their own, which has its own port and folder.
-          maxWorkers: 3,
+          // Two at a time: most of them wait for a process of their own, which has its own port and folder.
+          maxWorkers: 2,
           sequence: { groupOrder: 3 },
         },
       },

@@ -4,6 +4,8 @@
 
   // Push: permission is asked for on a press of the button, never before.
   const addressOf = async (key) => {
+    // A page registers it by itself only after some seconds.
+    await navigator.serviceWorker.register('/sw.js');
     const registration = await navigator.serviceWorker.ready;
     const ask = () => registration.pushManager.subscribe({ userVisibleOnly: true, applicationServerKey: bytesOf(key) });
     try {

@@ -37,8 +37,8 @@
   setInterval(expire, 30_000);
   addEventListener('pageshow', expire);
   document.addEventListener('visibilitychange', expire);
-  for (const kind of ['pointerdown', 'keydown', 'scroll']) addEventListener(kind, register, { once: true, passive: true });
-  // The first moments of a page are for reading it; the service worker comes with the first touch, or some seconds later.
+  // The first moments of a page are for reading it. The service worker comes some seconds later; not with a touch, which may
+  // be on its way to another page.
   addEventListener('load', () => setTimeout(() => {
     if (document.querySelector('[data-valid-until]') !== null) void measure();
     navigator.serviceWorker?.addEventListener('message', superseded);

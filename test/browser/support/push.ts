@@ -40,7 +40,8 @@ export async function toldBrowser(browser: Browser, url: string, { width = 390, 
   const seen: string[] = [];
   cdp.on('ServiceWorker.workerRegistrationUpdated', ({ registrations }) => seen.push(...registrations.map((registration) => registration.registrationId)));
   await page.goto(url);
-  await page.keyboard.press('Shift');
+  // What the page does by itself some seconds later.
+  await page.evaluate(() => navigator.serviceWorker.register('/sw.js'));
   await cdp.send('ServiceWorker.enable');
   // Until it is activated in full, the browser drops what is delivered to it.
   await expect.poll(() => page.evaluate(async () => (await navigator.serviceWorker.ready).active?.state), { timeout: 20_000 }).toBe('activated');
