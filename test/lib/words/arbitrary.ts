@@ -7,8 +7,12 @@ import { failureSentence, type Reader } from '../../../lib/brief/words/index.ts'
 import type { SourceFailure } from '../../../lib/forecast/failure.ts';
 import { MARGIN_IDS } from '../../../lib/margin/ids.ts';
 import { dayOf, marginOf, UNIT_OF, voteOf } from '../../support/days.ts';
+import { blemishes } from './forbidden.ts';
 
 const count = fc.integer({ min: 0, max: 100_000 });
+
+/** What a service may have called something. Chance makes words of it, or runs of dots, that a text of ours must not hold: those are not ours. */
+const given = fc.string().filter((text) => blemishes(`called ${text} there`).length === 0);
 
 export const failures: fc.Arbitrary<SourceFailure> = fc.oneof(
   fc.constantFrom<SourceFailure>(
@@ -19,8 +23,8 @@ export const failures: fc.Arbitrary<SourceFailure> = fc.oneof(
   fc.record({ kind: fc.constant('too-large' as const), limitBytes: count }),
   fc.record({ kind: fc.constantFrom('refused' as const, 'server-error' as const), status: fc.integer({ min: 400, max: 599 }) }),
   fc.record({ kind: fc.constant('rate-limited' as const), retryAfterS: fc.option(count) }),
-  fc.record({ kind: fc.constant('shape' as const), path: fc.string() }),
-  fc.record({ kind: fc.constant('unit' as const), field: fc.string(), expected: fc.string(), found: fc.option(fc.string()) }),
+  fc.record({ kind: fc.constant('shape' as const), path: given }),
+  fc.record({ kind: fc.constant('unit' as const), field: given, expected: given, found: fc.option(given) }),
   fc.record({ kind: fc.constant('times' as const), why: fc.constantFrom('unsorted' as const, 'duplicate' as const, 'gap' as const, 'not-hourly' as const, 'not-utc' as const, 'wrong-day' as const, 'empty' as const) }),
   fc.record({ kind: fc.constant('run-old' as const), ageHours: count }),
   fc.record({ kind: fc.constant('run-future' as const), aheadHours: count }),
